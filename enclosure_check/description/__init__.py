@@ -1,0 +1,1 @@
+"""The document: what the user writes, strictly read, validated and resolved."""

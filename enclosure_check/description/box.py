@@ -1,0 +1,99 @@
+"""Models of the box: its size, tilt, walls and how each wall is mounted."""
+
+from typing import ClassVar, Literal
+
+from pydantic import Field
+
+from enclosure_check.description.base import (
+    AngleDeg,
+    ContactWPerM2K,
+    DistanceMm,
+    LengthMm,
+    Name,
+    Strict,
+    TemperatureC,
+)
+
+MountingKind = Literal["open_air", "against_surface", "standing_on", "bolted_to", "insulated"]
+
+
+class Tilt(Strict):
+    """How the whole box stands in the gravity field; first the lean, then the roll."""
+
+    lean_back_deg: AngleDeg = Field(
+        0.0, description="Rotation that moves the top towards the rear. [deg]"
+    )
+    roll_right_deg: AngleDeg = Field(
+        0.0, description="Rotation that moves the top towards the right, seen from the front. [deg]"
+    )
+
+
+class Box(Strict):
+    """Size and attitude of the box."""
+
+    width_mm: LengthMm = Field(description="Left to right, seen from the front. [mm]")
+    height_mm: LengthMm = Field(description="Bottom to top. [mm]")
+    depth_mm: LengthMm = Field(description="Front to rear. [mm]")
+    dimensions: Literal["inside", "outside"] = Field(
+        "inside", description="Whether the three sizes are those of the cavity or of the housing."
+    )
+    tilt: Tilt = Field(default_factory=Tilt, description="How the box stands in gravity.")
+
+
+class Mounting(Strict):
+    """What the outside of a wall faces.
+
+    ``open_air``: free air. ``against_surface``: a surface at a small closed gap.
+    ``standing_on`` and ``bolted_to``: contact with a surface. ``insulated``: no heat passes.
+    """
+
+    kind: MountingKind = Field("open_air", description="What the outside of this wall faces.")
+    gap_mm: DistanceMm | None = Field(
+        None,
+        description="against_surface: distance to the surface, its edges closed; 0.1 when it lies "
+        "flush. Up to 5 mm in this version. [mm]",
+    )
+    contact_w_per_m2k: ContactWPerM2K | None = Field(
+        None,
+        description="standing_on, bolted_to: conductance of the joint per area of the wall. "
+        "[W/m2K]",
+    )
+    surface_c: TemperatureC | None = Field(
+        None,
+        description="Temperature of the surface; that of the surrounding air when left out. [C]",
+    )
+    surface_emissivity: float | None = Field(
+        None, ge=0, le=1, description="against_surface: emissivity of the surface; default 0.9."
+    )
+
+
+class WallDefaults(Strict):
+    """What every wall is made of unless it says otherwise."""
+
+    material: Name | None = Field(None, description="A row of `materials` or of the library.")
+    thickness_mm: LengthMm | None = Field(None, description="Wall thickness. [mm]")
+    finish_outside: Name | None = Field(None, description="A row of `finishes` or the library.")
+    finish_inside: Name | None = Field(
+        None, description="A row of `finishes` or the library; as outside when left out."
+    )
+
+
+class Wall(WallDefaults):
+    """One of the six walls; what it leaves out comes from `defaults.wall`."""
+
+    NOT_YET: ClassVar[dict[str, str]] = {
+        "openings": "openings and vent flow are not computed in this version; the box must be "
+        "sealed",
+        "fins": "fins are not computed in this version",
+        "cables": "cables through a wall are not computed in this version",
+        "neighbour": "a neighbouring box is not computed in this version; describe it with "
+        "`mounting: {kind: against_surface}` when it is close",
+    }
+    mounting: Mounting = Field(
+        default_factory=Mounting, description="What the outside of this wall faces."
+    )
+    touch_max_c: TemperatureC | None = Field(
+        None,
+        description="Highest outside temperature allowed for touch; overrides "
+        "`requirements.touch_max_c` for this wall. [C]",
+    )

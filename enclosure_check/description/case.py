@@ -1,0 +1,202 @@
+"""A case: one document under one condition, every default filled in, still in mm and Celsius."""
+
+from dataclasses import dataclass, field
+
+from enclosure_check.description.base import WallName
+from enclosure_check.description.box import MountingKind
+from enclosure_check.description.frames import Vector
+from enclosure_check.description.part import LimitKind
+
+
+@dataclass(frozen=True)
+class Material:
+    """What a wall or board is made of."""
+
+    name: str
+    conductivity_w_per_mk: float
+    in_plane_conductivity_w_per_mk: float
+    density_kg_per_m3: float
+    heat_capacity_j_per_kgk: float
+
+
+@dataclass(frozen=True)
+class Finish:
+    """How a surface radiates."""
+
+    name: str
+    emissivity: float
+    solar_absorptivity: float
+
+
+@dataclass(frozen=True)
+class MountingCase:
+    """What the outside of a wall faces, with its defaults filled in."""
+
+    kind: MountingKind
+    gap_mm: float
+    contact_w_per_m2k: float
+    surface_c: float
+    surface_emissivity: float
+
+
+@dataclass(frozen=True)
+class WallCase:
+    """A wall with its defaults filled in."""
+
+    name: WallName
+    material: Material
+    thickness_mm: float
+    finish_outside: Finish
+    finish_inside: Finish
+    mounting: MountingCase
+    touch_max_c: float | None
+    sun_w_per_m2: float
+
+
+@dataclass(frozen=True)
+class CopperCase:
+    """One copper layer of a board."""
+
+    name: str
+    thickness_um: float
+    coverage_pct: float
+
+
+@dataclass(frozen=True)
+class BoardCase:
+    """A board in its place; ``low_mm`` and ``size_mm`` are in the box frame."""
+
+    name: str
+    axis: int
+    low_mm: Vector
+    size_mm: Vector
+    laminate: Material
+    copper: tuple[CopperCase, ...]
+    conductivity_in_plane_w_per_mk: float | None
+    finish: Finish
+    other_power_w: float
+
+    @property
+    def high_mm(self) -> Vector:
+        """Far corner in the box frame [mm]."""
+        return _add(self.low_mm, self.size_mm)
+
+
+@dataclass(frozen=True)
+class LimitCase:
+    """A limit at one point of a part."""
+
+    kind: LimitKind
+    max_c: float | None
+    min_c: float | None
+    derated: bool
+
+
+@dataclass(frozen=True)
+class PadCase:
+    """A pad in its place, compressed to ``distance_mm``.
+
+    ``low_mm`` and ``size_mm`` are its extent in the box frame, nothing along its thickness.
+    """
+
+    wall: WallName
+    distance_mm: float
+    conductivity_w_per_mk: float
+    contact_mm2k_per_w: float
+    low_mm: Vector
+    size_mm: Vector
+
+    @property
+    def area_mm2(self) -> float:
+        """Area of the pad [mm2]."""
+        first, second = sorted(self.size_mm)[1:]
+        return first * second
+
+
+@dataclass(frozen=True)
+class PartCase:
+    """A part in its place.
+
+    ``place`` is where it sits, ``host`` the board or wall (``air`` for a body in the air),
+    ``side`` the wall its top faces, ``low_mm`` and ``size_mm`` its body in the box frame.
+    """
+
+    name: str
+    place: str
+    host: str
+    side: WallName
+    low_mm: Vector
+    size_mm: Vector
+    power_w: float
+    power_at_c: float
+    power_slope_pct_per_k: float
+    power_doubling_k: float | None
+    theta_jc_top_k_per_w: float | None
+    theta_jc_bottom_k_per_w: float | None
+    theta_jb_k_per_w: float | None
+    bottom_contact_k_per_w: float | None
+    finish: Finish
+    pad: PadCase | None
+    limits: tuple[LimitCase, ...]
+
+    @property
+    def centre_mm(self) -> Vector:
+        """Centre of the body in the box frame [mm]."""
+        x, y, z = (low + size / 2 for low, size in zip(self.low_mm, self.size_mm, strict=True))
+        return (x, y, z)
+
+
+@dataclass(frozen=True)
+class SurroundingsCase:
+    """What the box stands in."""
+
+    air_c: float
+    radiant_c: float
+    altitude_m: float
+    sky: str
+    sky_c: float | None
+
+
+@dataclass(frozen=True)
+class ReadingCase:
+    """One thermocouple reading: ``kind`` is part, wall or air; ``point`` where on it."""
+
+    run: str
+    kind: str
+    name: str
+    point: str
+    measured_c: float
+
+
+@dataclass(frozen=True)
+class Note:
+    """A remark on a field of the document: a warning or an assumption made."""
+
+    path: tuple[str | int, ...]
+    message: str
+
+
+@dataclass(frozen=True)
+class Case:
+    """One document under one condition, ready to be built into a network."""
+
+    title: str
+    condition: str
+    option: str | None
+    mode: str | None
+    inside_mm: Vector
+    outside_mm: Vector
+    up: Vector
+    walls: dict[WallName, WallCase]
+    boards: dict[str, BoardCase]
+    parts: dict[str, PartCase]
+    surroundings: SurroundingsCase
+    margin_k: float | None
+    confidence_pct: float | None
+    readings: tuple[ReadingCase, ...] = ()
+    warnings: tuple[Note, ...] = ()
+    assumptions: tuple[str, ...] = field(default=())
+
+
+def _add(a: Vector, b: Vector) -> Vector:
+    return (a[0] + b[0], a[1] + b[1], a[2] + b[2])

@@ -1,0 +1,84 @@
+"""Fill in a validated document to a case: defaults, types, places, and checks across fields."""
+
+from enclosure_check.description.case import Case, ReadingCase
+from enclosure_check.description.document import Document
+from enclosure_check.description.remarks import Remarks
+from enclosure_check.description.resolve_board import resolve_boards
+from enclosure_check.description.resolve_box import (
+    Rows,
+    resolve_sizes,
+    resolve_surroundings,
+    resolve_walls,
+    up_vector,
+)
+from enclosure_check.description.resolve_part import PartResolver
+
+
+def resolve(document: Document, condition: str, option: str | None = None) -> Case:
+    """Resolve one document, already patched by its option and condition.
+
+    Raises
+    ------
+    FieldErrors
+        With everything that does not fit together, each at the path of its field.
+    """
+    remarks = Remarks()
+    if document.mode is not None and document.mode not in document.modes:
+        remarks.unknown(("mode",), "mode", document.mode, list(document.modes))
+    rows = Rows(document, remarks)
+    walls = resolve_walls(document, rows, remarks)
+    surroundings = resolve_surroundings(document, remarks)
+    inside, outside = resolve_sizes(document, walls, remarks)
+    if min(inside) <= 0:
+        remarks.finish()
+    boards = resolve_boards(document, inside, rows, remarks)
+    parts = PartResolver(document, inside, walls, boards, rows, remarks).resolve()
+    readings = _readings(document, condition, remarks)
+    remarks.finish()
+    requirements = document.requirements
+    return Case(
+        title=document.title,
+        condition=condition,
+        option=option,
+        mode=document.mode,
+        inside_mm=inside,
+        outside_mm=outside,
+        up=up_vector(document.box.tilt),
+        walls=walls,
+        boards=boards,
+        parts=parts,
+        surroundings=surroundings,
+        margin_k=requirements.margin_k,
+        confidence_pct=requirements.confidence_pct,
+        readings=readings,
+        warnings=tuple(remarks.warnings),
+        assumptions=remarks.assumptions(),
+    )
+
+
+def _readings(document: Document, condition: str, remarks: Remarks) -> tuple[ReadingCase, ...]:
+    """Give the readings taken under this condition; every name in them must exist."""
+    readings: list[ReadingCase] = []
+    for run, measured in document.measured.items():
+        for part in measured.parts:
+            if part not in document.parts:
+                path = ("measured", run, "parts", part)
+                remarks.unknown(path, "part", part, list(document.parts))
+        if (measured.condition or "base") != condition:
+            continue
+        for part, points in measured.parts.items():
+            readings += [
+                ReadingCase(run, "part", part, point, value) for point, value in points.items()
+            ]
+        for wall, reading in measured.walls.items():
+            readings += [
+                ReadingCase(run, "wall", wall, point, value)
+                for point, value in (
+                    ("outside", reading.outside_c),
+                    ("inside", reading.inside_c),
+                )
+                if value is not None
+            ]
+        if measured.air_c is not None:
+            readings.append(ReadingCase(run, "air", "air", "mean", measured.air_c))
+    return tuple(readings)

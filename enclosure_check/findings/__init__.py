@@ -1,0 +1,1 @@
+"""Findings: what a solved case says about limits, heat, ranges and margins."""

@@ -1,0 +1,70 @@
+"""Where the heat leaves: wall by wall, the balance of the whole box, and the inside air."""
+
+from enclosure_check.findings.results import (
+    AirFinding,
+    AirLayer,
+    HeatBalance,
+    OpeningsFinding,
+    WallFinding,
+    judge,
+)
+from enclosure_check.findings.solved import Solved
+
+
+def wall_findings(solved: Solved) -> tuple[WallFinding, ...]:
+    """Give the six walls."""
+    return tuple(_wall(solved, name) for name in solved.case.walls)
+
+
+def _wall(solved: Solved, name: str) -> WallFinding:
+    wall = next(wall for key, wall in solved.case.walls.items() if key == name)
+    places, owner = solved.network.places, f"wall:{name}"
+    outside = float(solved.temperature_c[places.wall_outside[name]])
+    touch = None if wall.touch_max_c is None else wall.touch_max_c - outside
+    return WallFinding(
+        name=name,
+        mounting=wall.mounting.kind,
+        outside_c=outside,
+        outside_max_c=outside,
+        inside_c=float(solved.temperature_c[places.wall_inside[name]]),
+        convection_w=solved.flow(owner, "convection_outside"),
+        radiation_w=solved.flow(owner, "radiation_outside"),
+        sun_w=solved.put_in(owner, "sun"),
+        openings_w=0.0,
+        mounting_w=solved.flow(owner, "mounting"),
+        touch_max_c=wall.touch_max_c,
+        touch_margin_k=touch,
+        touch_verdict=None if touch is None else judge(touch, solved.case.margin_k or 0.0),
+    )
+
+
+def heat_balance(solved: Solved, walls: tuple[WallFinding, ...]) -> HeatBalance:
+    """Give heat in against heat out."""
+    generated, sun = solved.total_put_in("power"), solved.total_put_in("sun")
+    convection = sum(wall.convection_w for wall in walls)
+    radiation = sum(wall.radiation_w for wall in walls)
+    openings = sum(wall.openings_w for wall in walls)
+    mounting = sum(wall.mounting_w for wall in walls)
+    return HeatBalance(
+        generated,
+        sun,
+        convection,
+        radiation,
+        openings,
+        mounting,
+        generated + sun - convection - radiation - openings - mounting,
+    )
+
+
+def air_finding(solved: Solved) -> AirFinding:
+    """Give the inside air: one body in this version, so the same from bottom to top."""
+    mean = float(solved.temperature_c[solved.network.places.air])
+    height = sum(
+        size * abs(up) for size, up in zip(solved.case.inside_mm, solved.case.up, strict=True)
+    )
+    return AirFinding(mean, mean, (AirLayer(0.0, mean), AirLayer(height, mean)))
+
+
+def openings_finding() -> OpeningsFinding:
+    """Give the flow through openings: none, boxes are sealed in this version."""
+    return OpeningsFinding(0.0)

@@ -1,0 +1,116 @@
+"""Margins of parts against their limits, where their heat goes, and readings beside them."""
+
+from enclosure_check.description.case import LimitCase, PartCase, ReadingCase
+from enclosure_check.findings.results import (
+    BoardFinding,
+    PartFinding,
+    PartHeat,
+    ReadingFinding,
+    judge,
+)
+from enclosure_check.findings.solved import Solved
+
+
+def part_findings(solved: Solved) -> tuple[PartFinding, ...]:
+    """Give every part against every limit, the worst margin first."""
+    findings = [
+        _finding(solved, part, limit, side)
+        for part in solved.case.parts.values()
+        for limit in part.limits
+        for side in ("max", "min")
+        if getattr(limit, f"{side}_c") is not None
+    ]
+    return tuple(sorted(findings, key=lambda finding: finding.margin_k))
+
+
+def _finding(solved: Solved, part: PartCase, limit: LimitCase, side: str) -> PartFinding:
+    temperature = point_c(solved, part.name, limit.kind)
+    allowed = limit.max_c if side == "max" else limit.min_c
+    assert allowed is not None
+    margin = allowed - temperature if side == "max" else temperature - allowed
+    return PartFinding(
+        name=part.name,
+        limit_kind=limit.kind,
+        limit_side="max" if side == "max" else "min",
+        temperature_c=temperature,
+        band_k=None,
+        limit_c=allowed,
+        derated=limit.derated and side == "max",
+        margin_k=margin,
+        verdict=judge(margin, solved.case.margin_k or 0.0),
+        local_air_c=float(solved.temperature_c[solved.network.places.parts[part.name].air]),
+    )
+
+
+def point_c(solved: Solved, part: str, point: str) -> float:
+    """Give the temperature of a point of a part: junction, case, board or air [C]."""
+    node = getattr(solved.network.places.parts[part], point)
+    if node is None:
+        raise ValueError(f"part {part!r} has no {point}")
+    return float(solved.temperature_c[node])
+
+
+def part_heat(solved: Solved) -> tuple[PartHeat, ...]:
+    """Give where the heat of each part goes, the hottest part first."""
+    rows = []
+    for name, nodes in solved.network.places.parts.items():
+        owner = f"part:{name}"
+        rows.append(
+            PartHeat(
+                name=name,
+                power_w=solved.put_in(owner, "power"),
+                junction_c=float(solved.temperature_c[nodes.junction]),
+                case_c=float(solved.temperature_c[nodes.case]),
+                board_c=None if nodes.board is None else float(solved.temperature_c[nodes.board]),
+                to_mount_w=solved.flow(owner, "to_board") + solved.flow(owner, "to_wall"),
+                to_pad_w=solved.flow(owner, "pad"),
+                to_air_w=solved.flow(owner, "convection_inside"),
+                to_radiation_w=solved.flow(owner, "radiation_inside"),
+            )
+        )
+    return tuple(sorted(rows, key=lambda row: -row.junction_c))
+
+
+def board_findings(solved: Solved) -> tuple[BoardFinding, ...]:
+    """Give each board's mean and hottest place."""
+    places, rows = solved.network.places, []
+    for name in solved.case.boards:
+        sides = [
+            float(solved.temperature_c[node])
+            for (board, _), node in places.board_sides.items()
+            if board == name
+        ]
+        under = [
+            (float(solved.temperature_c[node]), part.name)
+            for part in solved.case.parts.values()
+            if part.host == name and (node := places.parts[part.name].board) is not None
+        ]
+        hottest, where = max(under, default=(max(sides), None))
+        if hottest < max(sides):
+            hottest, where = max(sides), None
+        rows.append(BoardFinding(name, sum(sides) / len(sides), hottest, where))
+    return tuple(rows)
+
+
+def reading_findings(solved: Solved) -> tuple[ReadingFinding, ...]:
+    """Give the readings taken under this condition beside the predictions."""
+    return tuple(_reading(solved, reading) for reading in solved.case.readings)
+
+
+def _reading(solved: Solved, reading: ReadingCase) -> ReadingFinding:
+    places = solved.network.places
+    if reading.kind == "part":
+        predicted = point_c(solved, reading.name, reading.point)
+    elif reading.kind == "wall":
+        nodes = places.wall_outside if reading.point == "outside" else places.wall_inside
+        predicted = float(solved.temperature_c[nodes[reading.name]])
+    else:
+        predicted = float(solved.temperature_c[places.air])
+    return ReadingFinding(
+        reading.run,
+        reading.name,
+        reading.point,
+        reading.measured_c,
+        predicted,
+        predicted - reading.measured_c,
+    )

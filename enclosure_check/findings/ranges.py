@@ -1,0 +1,126 @@
+"""The range audit: every film law where it was used, against the range it was published for."""
+
+import numpy as np
+
+from enclosure_check.findings.results import RangeFinding
+from enclosure_check.findings.solved import Solved
+from enclosure_check.network.links import BodyFilm, BoxFilm, FilmAudit, LinkLabel, PlateFilm
+from enclosure_check.physics.air import air, rayleigh_number
+from enclosure_check.physics.correlation import CORRELATIONS, PLATE_LAWS
+
+_LAWS = (*PLATE_LAWS, "yovanovich_cuboid")
+# A surface this close to its air moves no heat to speak of; its law's range does not matter. [K]
+_NO_RISE_K = 0.1
+
+
+def range_findings(solved: Solved) -> tuple[RangeFinding, ...]:
+    """Give every film of the network with its groups and whether its law holds there."""
+    rows: list[RangeFinding] = []
+    rise, reference = solved.solution.rise, solved.network.reference_k
+    for kind in solved.network.kinds:
+        if not isinstance(kind, PlateFilm | BodyFilm | BoxFilm):
+            continue
+        audit = kind.audit(rise[kind.stencil], reference)
+        prandtl = air(audit.film_temperature, kind.pressure_pa).prandtl
+        for index, label in enumerate(kind.labels):
+            if isinstance(kind, BoxFilm) and not kind.geometry.open_faces[index]:
+                continue
+            rows.append(_row(audit, prandtl, index, label))
+        if isinstance(kind, BoxFilm) and kind.geometry.open_faces.any():
+            rows.append(_whole_box(kind, audit))
+    return tuple(rows)
+
+
+def _row(audit: FilmAudit, prandtl: np.ndarray, index: int, label: LinkLabel) -> RangeFinding:
+    at = (index, 0)
+    return _finding(
+        surface=surface_name(label),
+        key=_LAWS[int(audit.law[at])],
+        length=float(audit.length[at]),
+        rise=float(audit.rise[at]),
+        rayleigh=float(audit.rayleigh[at]),
+        prandtl=float(prandtl[at]),
+        nusselt=float(audit.nusselt[at]),
+        film=float(audit.coefficient[at]),
+    )
+
+
+def _whole_box(kind: BoxFilm, audit: FilmAudit) -> RangeFinding:
+    """Give the law the box's films are scaled to, at the area-mean rise."""
+    box = kind.geometry
+    share = box.open_share[:, None]
+    rise = float(np.sum(share * np.abs(audit.rise)))
+    properties = air(float(np.sum(share * audit.film_temperature)), kind.pressure_pa)
+    length = float(np.sqrt(box.body_area))
+    heat = float(np.sum(box.open_area[:, None] * audit.coefficient * np.abs(audit.rise)))
+    film = heat / max(float(box.open_area.sum()) * rise, 1e-300)
+    return _finding(
+        surface="whole box outside",
+        key="box_shelter",
+        length=length,
+        rise=rise,
+        rayleigh=float(rayleigh_number(rise, length, properties)),
+        prandtl=float(properties.prandtl),
+        nusselt=film * length / float(properties.conductivity),
+        film=film,
+    )
+
+
+def _finding(
+    surface: str,
+    key: str,
+    length: float,
+    rise: float,
+    rayleigh: float,
+    prandtl: float,
+    nusselt: float,
+    film: float,
+) -> RangeFinding:
+    law = CORRELATIONS[key]
+    outside_by = 1.0
+    if abs(rise) > _NO_RISE_K:
+        if rayleigh < law.valid_from:
+            outside_by = rayleigh / law.valid_from
+        elif rayleigh > law.valid_to:
+            outside_by = rayleigh / law.valid_to
+    return RangeFinding(
+        surface=surface,
+        correlation=key,
+        length_mm=length * 1e3,
+        rise_k=rise,
+        grashof=rayleigh / prandtl,
+        prandtl=prandtl,
+        rayleigh=rayleigh,
+        nusselt=nusselt,
+        film_w_per_m2k=film,
+        valid_from=law.valid_from,
+        valid_to=law.valid_to,
+        inside_range=outside_by == 1.0,
+        outside_by=outside_by,
+    )
+
+
+def surface_name(label: LinkLabel) -> str:
+    """Give a surface the way a reader says it."""
+    kind, name = label.owner.split(":", 1)
+    where = "outside" if label.role.endswith("outside") else "inside"
+    return f"{kind} {name}" if kind == "part" else f"{kind} {name} {where}"
+
+
+def range_warnings(ranges: tuple[RangeFinding, ...]) -> list[str]:
+    """Give one line per law used outside its range, naming the surfaces."""
+    by_law: dict[str, list[RangeFinding]] = {}
+    for row in ranges:
+        if not row.inside_range:
+            by_law.setdefault(row.correlation, []).append(row)
+    lines = []
+    for key, rows in by_law.items():
+        law = CORRELATIONS[key]
+        worst = max(rows, key=lambda row: max(row.outside_by, 1 / max(row.outside_by, 1e-300)))
+        names = ", ".join(row.surface for row in rows[:4])
+        more = f" and {len(rows) - 4} more" if len(rows) > 4 else ""
+        lines.append(
+            f"{law.name}: used outside its range Ra {law.valid_from:.3g} to {law.valid_to:.3g} on "
+            f"{names}{more}; furthest {worst.surface} at Ra {worst.rayleigh:.2g}"
+        )
+    return lines

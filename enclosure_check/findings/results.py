@@ -1,0 +1,258 @@
+"""The result of a check, as it is reported: plain frozen records, one description per field.
+
+Temperatures in Celsius, powers in W, lengths in mm: this is what people and other programs read.
+The descriptions make up the JSON Schema of the report.
+"""
+
+from dataclasses import dataclass
+from typing import Annotated, Literal
+
+from pydantic import Field
+
+Verdict = Literal["pass", "marginal", "fail"]
+VERDICTS: tuple[Verdict, ...] = ("pass", "marginal", "fail")
+
+
+def _about(text: str) -> object:
+    return Field(description=text)
+
+
+@dataclass(frozen=True)
+class PartFinding:
+    """One part against one of its limits."""
+
+    name: Annotated[str, _about("Reference of the part.")]
+    limit_kind: Annotated[
+        Literal["junction", "case", "board", "air"], _about("The point the limit holds for.")
+    ]
+    limit_side: Annotated[Literal["max", "min"], _about("Highest or lowest temperature allowed.")]
+    temperature_c: Annotated[float, _about("Temperature of that point. [C]")]
+    band_k: Annotated[
+        float | None, _about("Half-width at about 95 %; null until confidence is computed. [K]")
+    ]
+    limit_c: Annotated[float, _about("The limit. [C]")]
+    derated: Annotated[bool, _about("Whether the limit comes from a derating curve.")]
+    margin_k: Annotated[float, _about("Distance to the limit, negative beyond it. [K]")]
+    verdict: Annotated[Verdict, _about("Whether it holds.")]
+    local_air_c: Annotated[float, _about("Air around the part. [C]")]
+
+
+@dataclass(frozen=True)
+class PartHeat:
+    """Where the heat of one part goes; negative where it takes heat up."""
+
+    name: Annotated[str, _about("Reference of the part.")]
+    power_w: Annotated[float, _about("Power it turns to heat. [W]")]
+    junction_c: Annotated[float, _about("Junction temperature. [C]")]
+    case_c: Annotated[float, _about("Temperature of its outer surface. [C]")]
+    board_c: Annotated[float | None, _about("Board under it; null off boards. [C]")]
+    to_mount_w: Annotated[float, _about("To the board or wall it sits on. [W]")]
+    to_pad_w: Annotated[float, _about("Through its pad. [W]")]
+    to_air_w: Annotated[float, _about("To the air by convection. [W]")]
+    to_radiation_w: Annotated[float, _about("To other surfaces by radiation. [W]")]
+
+
+@dataclass(frozen=True)
+class BoardFinding:
+    """One board; in this version each side has one mean temperature."""
+
+    name: Annotated[str, _about("Name of the board.")]
+    mean_c: Annotated[float, _about("Mean over both sides. [C]")]
+    hottest_c: Annotated[float, _about("Hottest place, under one of its parts. [C]")]
+    hottest_at: Annotated[str | None, _about("The part there; null for a board without parts.")]
+
+
+@dataclass(frozen=True)
+class AirLayer:
+    """Inside air at one height."""
+
+    height_mm: Annotated[float, _about("Height over the lowest point of the inside. [mm]")]
+    air_c: Annotated[float, _about("Air temperature there. [C]")]
+
+
+@dataclass(frozen=True)
+class AirFinding:
+    """Inside air; in this version one well-mixed body of air."""
+
+    mean_c: Annotated[float, _about("Mean. [C]")]
+    top_c: Annotated[float, _about("At the highest point. [C]")]
+    profile: Annotated[tuple[AirLayer, ...], _about("From the bottom up.")]
+
+
+@dataclass(frozen=True)
+class WallFinding:
+    """One wall; heat rates are positive when they leave the box."""
+
+    name: Annotated[str, _about("Which wall.")]
+    mounting: Annotated[str, _about("What its outside faces.")]
+    outside_c: Annotated[float, _about("Mean outside temperature. [C]")]
+    outside_max_c: Annotated[float, _about("Highest outside temperature. [C]")]
+    inside_c: Annotated[float, _about("Mean inside temperature. [C]")]
+    convection_w: Annotated[float, _about("To the surrounding air. [W]")]
+    radiation_w: Annotated[float, _about("To surroundings and sky. [W]")]
+    sun_w: Annotated[float, _about("Sun absorbed. [W]")]
+    openings_w: Annotated[float, _about("Through openings in it. [W]")]
+    mounting_w: Annotated[float, _about("To what it is mounted on. [W]")]
+    touch_max_c: Annotated[float | None, _about("Highest temperature allowed for touch. [C]")]
+    touch_margin_k: Annotated[float | None, _about("Distance to it. [K]")]
+    touch_verdict: Annotated[Verdict | None, _about("Whether it holds.")]
+
+
+@dataclass(frozen=True)
+class HeatBalance:
+    """Heat in against heat out, for the whole box."""
+
+    generated_w: Annotated[float, _about("Power of all parts and boards. [W]")]
+    sun_w: Annotated[float, _about("Sun absorbed. [W]")]
+    convection_w: Annotated[float, _about("Leaves by convection. [W]")]
+    radiation_w: Annotated[float, _about("Leaves by radiation. [W]")]
+    openings_w: Annotated[float, _about("Leaves through openings. [W]")]
+    mounting_w: Annotated[float, _about("Leaves to what the box is mounted on. [W]")]
+    imbalance_w: Annotated[float, _about("In less out. [W]")]
+
+
+@dataclass(frozen=True)
+class Headroom:
+    """How far ambient temperature and power can rise until a limit is met."""
+
+    wanted_margin_k: Annotated[float, _about("Margin kept to the limits. [K]")]
+    highest_air_c: Annotated[
+        float | None,
+        _about("Highest surrounding air, all surroundings rising together; null if none. [C]"),
+    ]
+    air_limited_by: Annotated[str | None, _about("The limit met there.")]
+    power_pct: Annotated[
+        float | None,
+        _about("Power at which a limit is met, in percent of this case; null if none. [%]"),
+    ]
+    power_limited_by: Annotated[str | None, _about("The limit met there.")]
+
+
+@dataclass(frozen=True)
+class HandEstimate:
+    """What a hand calculation gives, beside the answer; not used for any verdict."""
+
+    heat_w: Annotated[float, _about("Heat that leaves by the open walls. [W]")]
+    area_m2: Annotated[float, _about("Area of the open walls. [m2]")]
+    flux_w_per_m2: Annotated[float, _about("Heat over area. [W/m2]")]
+    film_w_per_m2k: Annotated[
+        float | None, _about("Heat over area and mean wall rise of the answer. [W/m2K]")
+    ]
+    wall_rise_k: Annotated[float, _about("Area-mean rise of the open walls in the answer. [K]")]
+    plates_wall_rise_k: Annotated[
+        float | None,
+        _about(
+            "Rise of an isothermal box by isolated-plate laws and radiation to air temperature. [K]"
+        ),
+    ]
+
+
+@dataclass(frozen=True)
+class OpeningsFinding:
+    """Flow through openings; none in this version, the box is sealed."""
+
+    flow_g_per_s: Annotated[float, _about("Air flow through the box. [g/s]")]
+
+
+@dataclass(frozen=True)
+class SolverFinding:
+    """How well the balance was met."""
+
+    unknowns: Annotated[int, _about("Temperatures found.")]
+    iterations: Annotated[int, _about("Newton steps.")]
+    fallbacks: Annotated[int, _about("Steps taken back.")]
+    worst_imbalance_w: Annotated[float, _about("Largest imbalance of a node. [W]")]
+    worst_node: Annotated[str, _about("Where it is.")]
+
+
+@dataclass(frozen=True)
+class RangeFinding:
+    """One film law where it was used, against the range it was published for."""
+
+    surface: Annotated[str, _about("Surface.")]
+    correlation: Annotated[str, _about("Key of the law, see the method.")]
+    length_mm: Annotated[float, _about("Characteristic length. [mm]")]
+    rise_k: Annotated[float, _about("Surface minus air temperature. [K]")]
+    grashof: Annotated[float, _about("Grashof number.")]
+    prandtl: Annotated[float, _about("Prandtl number.")]
+    rayleigh: Annotated[float, _about("Rayleigh number.")]
+    nusselt: Annotated[float, _about("Nusselt number.")]
+    film_w_per_m2k: Annotated[float, _about("Film coefficient. [W/m2K]")]
+    valid_from: Annotated[float, _about("Lower end of the law's range of Rayleigh numbers.")]
+    valid_to: Annotated[float, _about("Upper end of the law's range of Rayleigh numbers.")]
+    inside_range: Annotated[bool, _about("Whether the law is used inside its range.")]
+    outside_by: Annotated[
+        float, _about("Rayleigh number over the end of the range it passes, 1 inside.")
+    ]
+
+
+@dataclass(frozen=True)
+class ReadingFinding:
+    """A thermocouple reading beside the prediction."""
+
+    run: Annotated[str, _about("Name of the run.")]
+    name: Annotated[str, _about("Part or wall, or air.")]
+    point: Annotated[str, _about("Where on it.")]
+    measured_c: Annotated[float, _about("Reading. [C]")]
+    predicted_c: Annotated[float, _about("Prediction. [C]")]
+    difference_k: Annotated[float, _about("Prediction minus reading. [K]")]
+
+
+@dataclass(frozen=True)
+class ConditionFinding:
+    """Everything found for one condition."""
+
+    name: Annotated[str, _about("Name of the condition; base when there are none.")]
+    verdict: Annotated[Verdict, _about("The worst verdict in it.")]
+    option: Annotated[str | None, _about("Design option applied.")]
+    mode: Annotated[str | None, _about("Operating mode.")]
+    surrounding_air_c: Annotated[float, _about("Surrounding air. [C]")]
+    altitude_m: Annotated[float, _about("Altitude. [m]")]
+    parts: Annotated[tuple[PartFinding, ...], _about("Worst margin first.")]
+    part_heat: Annotated[tuple[PartHeat, ...], _about("Hottest first.")]
+    boards: Annotated[tuple[BoardFinding, ...], _about("By board.")]
+    air: Annotated[AirFinding, _about("Inside air.")]
+    walls: Annotated[tuple[WallFinding, ...], _about("By wall.")]
+    heat_balance: Annotated[HeatBalance, _about("Heat in against heat out.")]
+    headroom: Annotated[Headroom, _about("How far ambient and power can rise.")]
+    hand_estimate: Annotated[HandEstimate, _about("A hand calculation beside the answer.")]
+    openings: Annotated[OpeningsFinding, _about("Flow through openings.")]
+    solver: Annotated[SolverFinding, _about("How well the balance was met.")]
+    ranges: Annotated[tuple[RangeFinding, ...], _about("Every film law used.")]
+    readings: Annotated[tuple[ReadingFinding, ...], _about("Measured beside predicted.")]
+    warnings: Annotated[tuple[str, ...], _about("What should be looked at.")]
+    assumptions: Annotated[tuple[str, ...], _about("What was assumed because not stated.")]
+
+
+@dataclass(frozen=True)
+class Report:
+    """The result of a check."""
+
+    format: Annotated[Literal[1], _about("Version of this report format.")]
+    version: Annotated[str, _about("Version of the program.")]
+    document: Annotated[str, _about("Path of the document, as given.")]
+    digest: Annotated[str, _about("SHA-256 of the document's bytes.")]
+    title: Annotated[str, _about("Title of the document.")]
+    verdict: Annotated[Verdict, _about("The worst verdict of all conditions.")]
+    margin_stated: Annotated[bool, _about("Whether the document states a margin wanted.")]
+    conditions: Annotated[tuple[ConditionFinding, ...], _about("In the document's order.")]
+    caution: Annotated[str, _about("What this check is not.")]
+
+
+CAUTION = (
+    "Computed, not measured: a check before a prototype, not in place of one. Where heat can "
+    "hurt people or property (touch temperature, batteries, fire), the governing product "
+    "standard, local codes and licensed practice decide; verify by test in the final installation."
+)
+
+
+def worst(verdicts: list[Verdict]) -> Verdict:
+    """Give the worst of some verdicts, pass when there are none."""
+    return max(verdicts, key=VERDICTS.index, default="pass")
+
+
+def judge(margin_k: float, wanted_k: float) -> Verdict:
+    """Give the verdict on a margin: negative fails, less than wanted is marginal."""
+    if margin_k < 0:
+        return "fail"
+    return "marginal" if margin_k < wanted_k else "pass"

@@ -1,0 +1,230 @@
+"""The network as arrays, and its heat balance and Jacobian by array operations."""
+
+from dataclasses import dataclass, replace
+from functools import cached_property
+
+import numpy as np
+import numpy.typing as npt
+
+from enclosure_check.network.links import FloatArray, IntArray, LinkKind, LinkLabel
+
+BoolArray = npt.NDArray[np.bool_]
+
+# Twice the doubled power is doubled 60 times at most: keeps an iterate that runs away finite.
+_LARGEST_EXPONENT = 60.0
+LN2 = float(np.log(2.0))
+
+
+@dataclass(frozen=True, eq=False)
+class Sources:
+    """Heat put into nodes: ``P (1 + s (T - T0)) 2^((T - T0) / D)``.
+
+    ``slope`` and ``doublings`` (1/D) are zero where the power does not depend on temperature.
+    """
+
+    node: IntArray
+    labels: tuple[LinkLabel, ...]
+    power: FloatArray
+    """Power at the temperature it is stated for [W], shape (s, 1) or (s, v)."""
+    stated_at_k: FloatArray
+    slope: FloatArray
+    """[1/K], shape (s, 1)."""
+    doublings: FloatArray
+    """[1/K], shape (s, 1)."""
+
+    @cached_property
+    def by_temperature(self) -> bool:
+        """Whether any power depends on temperature."""
+        return bool(np.any(self.slope != 0) or np.any(self.doublings != 0))
+
+    def heat(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
+        """Heat put in [W], shape (s, v)."""
+        if not self.by_temperature:
+            return np.broadcast_to(self.power, rise.shape)
+        over = rise + reference_k - self.stated_at_k
+        growth = np.exp2(np.clip(self.doublings * over, -_LARGEST_EXPONENT, _LARGEST_EXPONENT))
+        heat: FloatArray = self.power * np.maximum(1.0 + self.slope * over, 0.0) * growth
+        return heat
+
+    def heat_by_rise(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
+        """Derivative of `heat` by the node's rise [W/K], shape (s, v)."""
+        if not self.by_temperature:
+            return np.zeros_like(rise)
+        over = rise + reference_k - self.stated_at_k
+        exponent = self.doublings * over
+        growth = np.exp2(np.clip(exponent, -_LARGEST_EXPONENT, _LARGEST_EXPONENT))
+        growing = np.where(np.abs(exponent) < _LARGEST_EXPONENT, LN2 * self.doublings, 0.0)
+        line = np.maximum(1.0 + self.slope * over, 0.0)
+        by_line = np.where(line > 0, self.slope, 0.0)
+        slope: FloatArray = self.power * growth * (by_line + line * growing)
+        return slope
+
+    def heat_by_power(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
+        """Derivative of `heat` by the power stated [-], shape (s, v)."""
+        unit = replace(self, power=np.ones_like(self.power))
+        return unit.heat(rise, reference_k)
+
+
+@dataclass(frozen=True)
+class PartNodes:
+    """Nodes of a part; several are one and the same where nothing lies between them."""
+
+    junction: int
+    case: int
+    board: int | None
+    air: int
+
+
+@dataclass(frozen=True)
+class Places:
+    """Where the things of the description are in the network."""
+
+    ambient: int
+    air: int
+    wall_outside: dict[str, int]
+    wall_inside: dict[str, int]
+    board_sides: dict[tuple[str, str], int]
+    parts: dict[str, PartNodes]
+
+
+@dataclass(frozen=True, eq=False)
+class Network:
+    """Nodes and links of one case, for ``v`` variants at once.
+
+    Attributes
+    ----------
+    node_labels
+        One per node, shape (n,).
+    reference_k
+        Temperature that rises count from: the surrounding air [K], shape (v,).
+    fixed
+        Whether a node's temperature is given, shape (n,).
+    fixed_rise
+        Rise of the nodes whose temperature is given, zero for the others [K], shape (n, v).
+    kinds
+        The links, one object per kind.
+    """
+
+    node_labels: tuple[str, ...]
+    reference_k: FloatArray
+    fixed: BoolArray
+    fixed_rise: FloatArray
+    kinds: tuple[LinkKind, ...]
+    sources: Sources
+    places: Places
+
+    @property
+    def variants(self) -> int:
+        """How many variants are computed at once."""
+        return int(self.reference_k.shape[0])
+
+    @cached_property
+    def unknown(self) -> IntArray:
+        """Nodes whose temperature is to be found, shape (u,)."""
+        return np.flatnonzero(~self.fixed)
+
+    @cached_property
+    def size(self) -> int:
+        """How many nodes there are."""
+        return len(self.node_labels)
+
+    @cached_property
+    def _stencils(self) -> tuple[IntArray, ...]:
+        return tuple(kind.stencil for kind in self.kinds)
+
+    @cached_property
+    def _ends(self) -> tuple[IntArray, IntArray]:
+        """Nodes the heat of all links leaves and enters, kinds one after the other."""
+        return (
+            np.concatenate([kind.a for kind in self.kinds]),
+            np.concatenate([kind.b for kind in self.kinds]),
+        )
+
+    @cached_property
+    def _entries(self) -> IntArray:
+        """Flat position in the n x n matrix of every derivative, the leaving ends first."""
+        leaving, entering = [], []
+        for kind, stencil in zip(self.kinds, self._stencils, strict=True):
+            leaving.append((kind.a[None, :] * self.size + stencil).ravel())
+            entering.append((kind.b[None, :] * self.size + stencil).ravel())
+        diagonal = self.sources.node * (self.size + 1)
+        return np.concatenate([*leaving, *entering, diagonal])
+
+    @cached_property
+    def link_labels(self) -> tuple[LinkLabel, ...]:
+        """Labels of all links, kinds one after the other as in `heat`."""
+        return tuple(label for kind in self.kinds for label in kind.labels)
+
+    @cached_property
+    def outgoing(self) -> IntArray:
+        """Links that end at a node of given temperature, shape (o,)."""
+        a, b = self._ends
+        return np.flatnonzero(self.fixed[a] | self.fixed[b])
+
+    def full_rise(self, unknown_rise: FloatArray) -> FloatArray:
+        """Fill the given rises in: from shape (u, v) to (n, v)."""
+        rise = self.fixed_rise.copy()
+        rise[self.unknown] = unknown_rise
+        return rise
+
+    def heat(self, rise: FloatArray) -> FloatArray:
+        """Heat through every link from its ``a`` to its ``b`` [W], shape (links, v)."""
+        return np.concatenate(
+            [
+                kind.heat(rise[stencil], self.reference_k)
+                for kind, stencil in zip(self.kinds, self._stencils, strict=True)
+            ]
+        )
+
+    def imbalance(self, rise: FloatArray, heat: FloatArray | None = None) -> FloatArray:
+        """Heat leaving each node through links less heat put in [W], shape (n, v)."""
+        heat = self.heat(rise) if heat is None else heat
+        a, b = self._ends
+        sources = self.sources
+        put_in = sources.heat(rise[sources.node], self.reference_k)
+        return self._sum_at(
+            np.concatenate((a, b, sources.node)), np.concatenate((heat, -heat, -put_in))
+        )
+
+    def jacobian(self, rise: FloatArray) -> FloatArray:
+        """Derivative of `imbalance` by every node's rise [W/K], shape (v, n, n)."""
+        parts = [
+            kind.heat_by_rise(rise[stencil], self.reference_k).reshape(-1, rise.shape[1])
+            for kind, stencil in zip(self.kinds, self._stencils, strict=True)
+        ]
+        links = np.concatenate(parts)
+        own = self.sources.heat_by_rise(rise[self.sources.node], self.reference_k)
+        values = np.concatenate((links, -links, -own))
+        n = self.size
+        matrices = [
+            np.bincount(self._entries, weights=values[:, v], minlength=n * n).reshape(n, n)
+            for v in range(rise.shape[1])
+        ]
+        return np.stack(matrices)
+
+    def first_guess(self, nominal_rise: float = 10.0) -> FloatArray:
+        """Rises of the linear network whose links behave as they do at a nominal rise [K]."""
+        n, u = self.size, self.unknown
+        laplacian = np.zeros((n, n))
+        for kind, stencil in zip(self.kinds, self._stencils, strict=True):
+            rise = np.where(stencil == kind.b[None, :], 0.0, nominal_rise)[:, :, None]
+            sample = kind.first_variant().heat(rise, self.reference_k[:1])
+            conductance = sample[:, 0] / nominal_rise
+            for one, other in ((kind.a, kind.b), (kind.b, kind.a)):
+                np.add.at(laplacian, (one, one), conductance)
+                np.add.at(laplacian, (one, other), -conductance)
+        sources = self.sources
+        stated = np.broadcast_to(sources.power, (len(sources.node), self.variants))
+        put_in = self._sum_at(sources.node, stated)
+        right = put_in[u] - laplacian[u] @ self.fixed_rise
+        return np.asarray(np.linalg.solve(laplacian[np.ix_(u, u)], right), dtype=np.float64)
+
+    def _sum_at(self, node: IntArray, values: FloatArray) -> FloatArray:
+        """Add values (e, v) up at their nodes (e,): shape (n, v)."""
+        v = values.shape[1]
+        if v == 1:
+            one = np.bincount(node, values[:, 0], self.size)
+            return np.asarray(one, dtype=np.float64)[:, None]
+        flat = (node[:, None] * v + np.arange(v)).ravel()
+        total = np.bincount(flat, values.ravel(), self.size * v)
+        return np.asarray(total, dtype=np.float64).reshape(self.size, v)

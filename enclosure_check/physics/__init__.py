@@ -1,0 +1,1 @@
+"""Laws of heat transfer: pure functions of numbers and arrays, importing nothing else of ours."""

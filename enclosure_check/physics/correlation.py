@@ -1,0 +1,253 @@
+"""The registry of laws: where each comes from, where it holds and how well.
+
+The functions live with their subject; the range audit and the contract tests read this table.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Callable
+from dataclasses import dataclass
+from typing import Literal
+
+import numpy as np
+import numpy.typing as npt
+from numpy.typing import ArrayLike
+
+from enclosure_check.physics import bodies, plates
+
+FloatArray = npt.NDArray[np.float64]
+Law = Callable[[ArrayLike, ArrayLike], FloatArray]
+
+STATED = "stated by the authors"
+SCATTER = "scatter against independent data"
+EXPERIMENT = "scatter against numerical experiments made for this project"
+MEMORY = "from memory"
+
+
+@dataclass(frozen=True)
+class Correlation:
+    """Data sheet of a law."""
+
+    key: str
+    """Name in the registry and in reports."""
+    name: str
+    """Name for a reader."""
+    equation: str
+    """Equation as text."""
+    characteristic_length: str
+    """Length in the Rayleigh and Nusselt numbers."""
+    variable: Literal["rayleigh", "elenbaas", "reynolds", "temperature", "none"]
+    """Group that the range is given in."""
+    valid_from: float
+    """Lower end of the range of that group [-], or [K] for a temperature."""
+    valid_to: float
+    """Upper end of the range of that group [-], or [K] for a temperature."""
+    prandtl_from: float
+    """Lower end of the Prandtl number [-]."""
+    prandtl_to: float
+    """Upper end of the Prandtl number [-]."""
+    accuracy_pct: float
+    """Half-width of the band that holds about 95 % of data [%]."""
+    accuracy_basis: str
+    """Where the accuracy comes from."""
+    reference: str
+    """Author, year, title, journal."""
+
+
+_CHURCHILL_CHU_PLATE = (
+    "S. W. Churchill, H. H. S. Chu, 1975, Correlating equations for laminar and turbulent free "
+    "convection from a vertical plate, International Journal of Heat and Mass Transfer 18, "
+    "1323-1329"
+)
+_MCADAMS = "W. H. McAdams, 1954, Heat Transmission, 3rd ed., McGraw-Hill"
+
+_ROWS = (
+    Correlation(
+        key="churchill_chu_1975_vertical",
+        name="Churchill & Chu, vertical plate",
+        equation="Nu = 0.68 + 0.670 Ra^(1/4) / (1 + (0.492/Pr)^(9/16))^(4/9) to Ra = 1e9; "
+        "Nu = (0.825 + 0.387 Ra^(1/6) / (1 + (0.492/Pr)^(9/16))^(8/27))^2 from Ra = 1e10; "
+        "blended in between",
+        characteristic_length="length along gravity",
+        variable="rayleigh",
+        valid_from=0.0,
+        valid_to=1e12,
+        prandtl_from=0.0,
+        prandtl_to=math.inf,
+        accuracy_pct=10.0,
+        accuracy_basis=f"{MEMORY}; near transition less: the authors' full law lies 17 % above "
+        "their laminar law at Ra = 1e8 and 33 % above it at 1e9",
+        reference=_CHURCHILL_CHU_PLATE,
+    ),
+    Correlation(
+        key="lloyd_moran_hot_up",
+        name="Lloyd & Moran, horizontal plate, warm face up or cold face down",
+        equation="Nu = max(((2/pi)^4 + 0.54^4 Ra)^(1/4), 0.15 Ra^(1/3))",
+        characteristic_length="area / perimeter",
+        variable="rayleigh",
+        valid_from=1e4,
+        valid_to=1e11,
+        prandtl_from=0.5,
+        prandtl_to=math.inf,
+        accuracy_pct=15.0,
+        accuracy_basis=MEMORY,
+        reference="J. R. Lloyd, W. R. Moran, 1974, Natural convection adjacent to horizontal "
+        f"surface of various planforms, Journal of Heat Transfer 96, 443-447; {_MCADAMS}",
+    ),
+    Correlation(
+        key="raithby_hollands_hot_down",
+        name="Raithby & Hollands, horizontal plate, warm face down or cold face up",
+        equation="Nu = ((2/pi)^5 + 0.52^5 Ra)^(1/5)",
+        characteristic_length="area / perimeter",
+        variable="rayleigh",
+        valid_from=1e4,
+        valid_to=1e9,
+        prandtl_from=0.7,
+        prandtl_to=math.inf,
+        accuracy_pct=20.0,
+        accuracy_basis=MEMORY,
+        reference="G. D. Raithby, K. G. T. Hollands, 1998, Natural convection, in Handbook of Heat "
+        "Transfer, 3rd ed., McGraw-Hill",
+    ),
+    Correlation(
+        key="mcadams_hot_down",
+        name="McAdams, horizontal plate, warm face down or cold face up",
+        equation="Nu = 0.27 Ra^(1/4)",
+        characteristic_length="area / perimeter",
+        variable="rayleigh",
+        valid_from=1e5,
+        valid_to=1e10,
+        prandtl_from=0.7,
+        prandtl_to=math.inf,
+        accuracy_pct=20.0,
+        accuracy_basis=MEMORY,
+        reference=_MCADAMS,
+    ),
+    Correlation(
+        key="yovanovich_cuboid",
+        name="Yovanovich, cuboid with air all round",
+        equation="Nu = 3.388 + F(Pr) G Ra^(1/4), F = 0.670 / (1 + (0.5/Pr)^(9/16))^(4/9), "
+        "G = 2^(1/8) ((0.625 L^(4/3) W + H (L + W)^(4/3)) / (H W + H L + L W)^(7/6))^(3/4)",
+        characteristic_length="square root of the whole area",
+        variable="rayleigh",
+        valid_from=0.0,
+        valid_to=5e8,
+        prandtl_from=0.0,
+        prandtl_to=math.inf,
+        accuracy_pct=10.0,
+        accuracy_basis=f"{EXPERIMENT} (-5 to +10 %); the author's own range ends at 1e8 ({MEMORY})",
+        reference="M. M. Yovanovich, 1987, On the effect of shape, aspect ratio and orientation "
+        "upon natural convection from isothermal bodies of complex shape, ASME HTD-82, 121-129",
+    ),
+    Correlation(
+        key="box_shelter",
+        name="shelter of the faces of a box by each other",
+        equation="h = scale^w shelter h_plate; shelter: vertical 0.90, stable horizontal 0.95, "
+        "unstable horizontal 0.68 - 0.35 r; scale = cuboid law / sum of sheltered plate laws",
+        characteristic_length="square root of the whole area",
+        variable="rayleigh",
+        valid_from=8e7,
+        valid_to=5e8,
+        prandtl_from=0.7,
+        prandtl_to=0.72,
+        accuracy_pct=10.0,
+        accuracy_basis=f"{EXPERIMENT}: total; sides and bottom 12 %, top 35 %",
+        reference="form and constants made for this project from its numerical experiments",
+    ),
+    Correlation(
+        key="churchill_chu_1975_cylinder",
+        name="Churchill & Chu, horizontal cylinder",
+        equation="Nu = (0.60 + 0.387 Ra^(1/6) / (1 + (0.559/Pr)^(9/16))^(8/27))^2",
+        characteristic_length="diameter",
+        variable="rayleigh",
+        valid_from=1e-5,
+        valid_to=1e12,
+        prandtl_from=0.0,
+        prandtl_to=math.inf,
+        accuracy_pct=20.0,
+        accuracy_basis=f"{SCATTER}: Morgan 1975, Ra 1e2 to 1e9 (18 % low at 1e2)",
+        reference="S. W. Churchill, H. H. S. Chu, 1975, Correlating equations for laminar and "
+        "turbulent free convection from a horizontal cylinder, International Journal of Heat and "
+        "Mass Transfer 18, 1049-1053",
+    ),
+    Correlation(
+        key="carroll_mrt",
+        name="Carroll, mean radiant temperature",
+        equation="x_i (1 - x_i / sum x) = A_i; 1/F_i = 1/x_i + (1 - eps_i) / (eps_i A_i)",
+        characteristic_length="none",
+        variable="none",
+        valid_from=0.0,
+        valid_to=math.inf,
+        prandtl_from=0.0,
+        prandtl_to=math.inf,
+        accuracy_pct=4.0,
+        accuracy_basis="scatter against exact view factors: heat between two opposite faces of a "
+        "cuboid, emissivity 0.9, edges to 1 : 5, the other faces adiabatic",
+        reference="J. A. Carroll, 1980, An 'MRT method' of computing radiant energy exchange in "
+        "rooms, 2nd Systems Simulation and Economics Analysis Conference, San Diego (from memory)",
+    ),
+    Correlation(
+        key="swinbank_sky",
+        name="Swinbank, clear sky",
+        equation="T_sky = 0.0552 T_air^1.5",
+        characteristic_length="none",
+        variable="temperature",
+        valid_from=275.0,
+        valid_to=303.0,
+        prandtl_from=0.0,
+        prandtl_to=math.inf,
+        accuracy_pct=2.0,
+        accuracy_basis=f"{MEMORY} (about 5 K)",
+        reference="W. C. Swinbank, 1963, Long-wave radiation from clear skies, Quarterly Journal "
+        "of the Royal Meteorological Society 89, 339-348 (from memory)",
+    ),
+    Correlation(
+        key="air_properties",
+        name="dry air as an ideal gas, Lemmon & Jacobsen transport properties",
+        equation="rho = p / (R T), beta = 1 / T; viscosity and conductivity by cubics in T",
+        characteristic_length="none",
+        variable="temperature",
+        valid_from=193.15,
+        valid_to=523.15,
+        prandtl_from=0.0,
+        prandtl_to=math.inf,
+        accuracy_pct=0.35,
+        accuracy_basis=f"{SCATTER}: CoolProp",
+        reference="E. W. Lemmon, R. T. Jacobsen, 2004, Viscosity and thermal conductivity "
+        "equations for nitrogen, oxygen, argon, and air, International Journal of Thermophysics "
+        "25, 21-69",
+    ),
+)
+
+#: Every law used, by key.
+CORRELATIONS: dict[str, Correlation] = {row.key: row for row in _ROWS}
+
+#: Keys for the law codes of `PlateFilm`: vertical, hot side up, hot side down.
+PLATE_LAWS: tuple[str, str, str] = (
+    "churchill_chu_1975_vertical",
+    "lloyd_moran_hot_up",
+    "raithby_hollands_hot_down",
+)
+
+
+def _cube(ra: ArrayLike, pr: ArrayLike) -> FloatArray:
+    return bodies.cuboid_nusselt(ra, pr, bodies.cuboid_gravity_function(1.0, 1.0, 1.0))
+
+
+def _of_rayleigh(law: Callable[[ArrayLike], FloatArray]) -> Law:
+    def with_prandtl(ra: ArrayLike, pr: ArrayLike) -> FloatArray:
+        return np.broadcast_to(law(ra), np.broadcast_shapes(np.shape(ra), np.shape(pr)))
+
+    return with_prandtl
+
+
+#: The laws of the form Nu(Ra, Pr); the cuboid's is shown for a cube.
+LAWS: dict[str, Law] = {
+    "churchill_chu_1975_vertical": plates.vertical_plate,
+    "lloyd_moran_hot_up": _of_rayleigh(plates.hot_side_up),
+    "raithby_hollands_hot_down": _of_rayleigh(plates.hot_side_down),
+    "mcadams_hot_down": _of_rayleigh(plates.mcadams_down),
+    "yovanovich_cuboid": _cube,
+    "churchill_chu_1975_cylinder": bodies.horizontal_cylinder,
+}

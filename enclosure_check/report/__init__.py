@@ -1,0 +1,1 @@
+"""Writers: each turns a report into text, computes nothing and prints nothing."""

@@ -1,0 +1,29 @@
+"""The report as JSON, for other programs."""
+
+from dataclasses import fields, is_dataclass
+from typing import Any
+
+from enclosure_check.findings.results import Report
+from enclosure_check.report.options import WriterOptions
+
+
+def write_json(report: Report, options: WriterOptions) -> str:  # noqa: ARG001 - the same anywhere
+    """Give a report as JSON: the keys of its records, pure ASCII, the same bytes every time.
+
+    Raises
+    ------
+    ValueError
+        When a number is not finite: JSON has no word for it.
+    """
+    import json
+
+    return json.dumps(plain(report), indent=2, allow_nan=False) + "\n"
+
+
+def plain(value: Any) -> Any:
+    """Give records as dictionaries and tuples as lists, all the way down."""
+    if is_dataclass(value):
+        return {field.name: plain(getattr(value, field.name)) for field in fields(value)}
+    if isinstance(value, tuple):
+        return [plain(item) for item in value]
+    return value

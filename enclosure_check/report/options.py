@@ -1,0 +1,15 @@
+"""What a writer is told about the place its text goes to."""
+
+from dataclasses import dataclass
+
+
+@dataclass(frozen=True)
+class WriterOptions:
+    """How to lay a report out; a format that needs none of it ignores it."""
+
+    width: int = 80
+    """Longest line, in character cells."""
+    colour: bool = False
+    """Whether colour may be added to words."""
+    encoding: str = "utf-8"
+    """Encoding of the place; characters it lacks are written as escapes."""

@@ -1,0 +1,128 @@
+"""The report for a reader: the answer first, then each condition, the worst first."""
+
+from collections.abc import Sequence
+
+from enclosure_check.findings.results import ConditionFinding, Report
+from enclosure_check.report.condition import write_condition
+from enclosure_check.report.layout import Cell, Column, Page, counted, digits, listed, tenths
+from enclosure_check.report.limits import WORDS, Held, limits_of, worst_first
+from enclosure_check.report.options import WriterOptions
+
+# Conditions named in a sentence before the rest become a number.
+MOST_NAMED = 4
+
+
+def write_text(report: Report, options: WriterOptions) -> str:
+    """Give a report as plain text of at most ``options.width`` columns."""
+    page = Page(options)
+    conditions = worst_first(report.conditions)
+    _title(page, report)
+    _verdict(page, report, conditions)
+    _summary(page, conditions)
+    shared = shared_assumptions(report.conditions)
+    for condition in conditions:
+        write_condition(page, condition, shared)
+    if shared:
+        page.gap()
+        several = len(conditions) > 1
+        page.heading("Assumed in every condition" if several else "Assumed, because not stated")
+        page.bullets(page.clean(line) for line in shared)
+    page.gap()
+    page.paragraph(f"Caution: {report.caution}")
+    page.paragraph(
+        f"enclosure-check {report.version}; document SHA-256 {report.digest[:16]}; open air and "
+        "inside air still, steady state."
+    )
+    return page.text()
+
+
+def shared_assumptions(conditions: Sequence[ConditionFinding]) -> tuple[str, ...]:
+    """Give the assumptions that every condition makes, in the order of the first."""
+    first, *others = (condition.assumptions for condition in conditions)
+    return tuple(line for line in first if all(line in other for other in others))
+
+
+def _title(page: Page, report: Report) -> None:
+    page.heading(page.clean(report.title))
+    page.paragraph(page.clean(report.document))
+    option = report.conditions[0].option
+    if option is not None:
+        page.paragraph(f"Option: {page.clean(option)}")
+    page.gap()
+
+
+# The answer -------------------------------------------------------------------------------
+
+
+def _verdict(page: Page, report: Report, conditions: Sequence[ConditionFinding]) -> None:
+    named = len(conditions) > 1
+    page.paragraph(_headline(page, report, conditions), style=report.verdict)
+    worst = _worst(conditions)
+    if worst is not None:
+        condition, held = worst
+        under = f" under {page.clean(condition.name)}" if named else ""
+        page.paragraph(f"Smallest margin {tenths(held.margin_k)} K: {page.clean(held.label)}{under}.")
+
+
+def _headline(page: Page, report: Report, conditions: Sequence[ConditionFinding]) -> str:
+    """Say how it stands, in words."""
+    short = [each for each in conditions if each.verdict == report.verdict]
+    names = listed([page.clean(each.name) for each in short], MOST_NAMED)
+    where = f" under {len(short)} of {len(conditions)} conditions: {names}"
+    if len(conditions) == 1:
+        where = ""
+    elif len(short) == len(conditions):
+        where = f" under all {len(conditions)} conditions"
+    wanted = sorted({each.headroom.wanted_margin_k for each in short})
+    kept = f"{tenths(wanted[0])} K" if len(wanted) == 1 else "margin"
+    if report.verdict == "fail":
+        return f"FAIL: past a limit{where}."
+    if report.verdict == "marginal":
+        return f"MARGINAL: inside every limit, but closer than the {kept} wanted{where}."
+    if all(not limits_of(each) for each in conditions):
+        return "PASS: no limit is stated, so there was nothing to fail."
+    held = "" if wanted == [0.0] else f" with the {kept} wanted"
+    return f"PASS: every limit is kept{held}{where}."
+
+
+def _worst(conditions: Sequence[ConditionFinding]) -> tuple[ConditionFinding, Held] | None:
+    """Give the smallest margin of all, and the condition it arises in."""
+    found = [(each, held[0]) for each in conditions if (held := limits_of(each))]
+    return min(found, key=lambda pair: pair[1].margin_k, default=None)
+
+
+_SUMMARY = (
+    Column("Condition", yields=True),
+    Column("Verdict"),
+    Column("Margin K", right=True),
+    Column("Smallest at", yields=True),
+    Column("Air C", right=True),
+    Column("Up to C", right=True),
+    Column("Power to %", right=True),
+)
+
+
+def _summary(page: Page, conditions: Sequence[ConditionFinding]) -> None:
+    page.gap()
+    page.table(_SUMMARY, (_summary_row(page, condition) for condition in conditions))
+    page.paragraph(
+        "Up to: surrounding air, all surroundings rising together, at which a highest limit is "
+        "met. Power to: percent of the power here at which one is met. Each alone, with the "
+        "margin wanted kept.",
+        first="  ",
+        rest="  ",
+    )
+
+
+def _summary_row(page: Page, condition: ConditionFinding) -> list[str | Cell]:
+    held = limits_of(condition)
+    room = condition.headroom
+    return [
+        page.clean(condition.name),
+        Cell(WORDS[condition.verdict], condition.verdict),
+        tenths(held[0].margin_k) if held else "-",
+        page.clean(held[0].label) if held else "no limit stated",
+        tenths(condition.surrounding_air_c),
+        "-" if room.highest_air_c is None else tenths(room.highest_air_c),
+        "-" if room.power_pct is None else digits(room.power_pct),
+    ]

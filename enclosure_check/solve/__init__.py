@@ -1,0 +1,1 @@
+"""Solving a network: the steady state, and sensitivities of it."""

@@ -1,0 +1,68 @@
+"""Sensitivities of temperatures by the adjoint: one transposed solve serves every parameter."""
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from enclosure_check.network.links import FloatArray
+from enclosure_check.network.network import Network
+from enclosure_check.solve.steady import Solution
+
+
+@dataclass(frozen=True, eq=False)
+class Sensitivities:
+    """Derivatives of one node's temperature by every parameter of a network (one variant)."""
+
+    by_power: FloatArray
+    """By the power of each source [K/W], shape (s,)."""
+    by_fixed: FloatArray
+    """By each given temperature, zero for the unknown nodes [K/K], shape (n,)."""
+    by_parameter: tuple[dict[str, FloatArray], ...]
+    """By each link's own parameters, one dictionary per kind [K/unit], shapes (m,)."""
+
+
+def sensitivities(network: Network, solution: Solution, node: int) -> Sensitivities:
+    """Give the derivatives of a node's temperature by every parameter.
+
+    With the balance ``r(x, p) = 0``: ``dT/dp = -w . dr/dp``, ``J^T w = e_node``.
+
+    Parameters
+    ----------
+    network
+        The network, one variant.
+    solution
+        Its steady state.
+    node
+        An unknown node.
+
+    Raises
+    ------
+    ValueError
+        When the node's temperature is given, or there are several variants.
+    """
+    unknown = network.unknown
+    if network.variants != 1:
+        raise ValueError("sensitivities are taken of one variant")
+    place = np.flatnonzero(unknown == node)
+    if len(place) != 1:
+        raise ValueError(f"the temperature of {network.node_labels[node]!r} is given")
+    rise, reference = solution.rise, network.reference_k
+    jacobian = network.jacobian(rise)[0]
+    target = np.zeros(len(unknown))
+    target[place[0]] = 1.0
+    weight = np.zeros(network.size)
+    weight[unknown] = np.linalg.solve(jacobian[np.ix_(unknown, unknown)].T, target)
+    by_fixed = np.where(network.fixed, -(weight @ jacobian), 0.0)
+    sources = network.sources
+    unit = sources.heat_by_power(rise[sources.node], reference)[:, 0]
+    by_parameter = []
+    for kind in network.kinds:
+        ends = rise[kind.stencil]
+        between = weight[kind.a] - weight[kind.b]
+        by_parameter.append(
+            {
+                name: -between * kind.heat_by_parameter(ends, reference, name)[:, 0]
+                for name in kind.PARAMETERS
+            }
+        )
+    return Sensitivities(weight[sources.node] * unit, by_fixed, tuple(by_parameter))
