@@ -4,7 +4,8 @@ import numpy as np
 
 from enclosure_check.findings.results import HandEstimate
 from enclosure_check.findings.solved import Solved
-from enclosure_check.network.links import BoxFilm, FloatArray
+from enclosure_check.network.films import BoxFilm
+from enclosure_check.network.links import FloatArray
 from enclosure_check.physics.air import air, rayleigh_number
 from enclosure_check.physics.box import BoxGeometry
 from enclosure_check.physics.plates import (
@@ -30,7 +31,10 @@ def hand_estimate(solved: Solved) -> HandEstimate:
     area = float(box.open_area.sum())
     reference = float(solved.network.reference_k[0])
     rises = np.array(
-        [solved.solution.rise[solved.network.places.wall_outside[wall.name], 0] for wall in walls]
+        [
+            solved.solution.rise[solved.network.places.wall_outside[wall.name].mean, 0]
+            for wall in walls
+        ]
     )
     mean_rise = float(np.sum(rises * box.open_share))
     heat = sum(

@@ -13,7 +13,7 @@ from enclosure_check.findings.results import Headroom, PartFinding, WallFinding
 from enclosure_check.findings.solved import Solved
 from enclosure_check.network.links import FloatArray, IntArray
 from enclosure_check.network.network import Network
-from enclosure_check.solve.steady import solve_steady
+from enclosure_check.solve.nearby import inverse_jacobian, solve_nearby
 
 # The searches end when the smallest margin is met this closely. [K]
 CLOSE_K = 0.02
@@ -76,9 +76,10 @@ def _upper_limits(
         if part.limit_side == "max"
     ]
     rows += [
-        (places.wall_outside[wall.name], wall.touch_max_c, f"{wall.name} wall touch")
+        (int(node), wall.touch_max_c, f"{wall.name} wall touch")
         for wall in walls
         if wall.touch_max_c is not None
+        for node in places.wall_outside[wall.name].cells.ravel()
     ]
     if not rows:
         return None
@@ -110,6 +111,7 @@ class _Search:
         self.limits = limits
         self.wanted = wanted
         self.start = np.repeat(start, 2, axis=1)
+        self.inverse = inverse_jacobian(network, network.full_rise(start))
         self.limited_by: list[str | None] = [None, None]
         base = limits.margins(network.full_rise(start), network.reference_k)[:, 0]
         self.base = float(base.min()) - wanted
@@ -134,7 +136,9 @@ class _Search:
     def _margins(self, shift: float, factor: float) -> FloatArray | None:
         """Margins over the wanted ones in both variants, shape (limits, 2)."""
         network = self.network
-        is_power = np.array([label.role == "power" for label in network.sources.labels])
+        is_power = np.array(
+            [network.labels[label].role == "power" for label in network.sources.label], dtype=bool
+        )
         scaled = np.where(is_power[:, None], [1.0, factor], 1.0)
         pair = replace(
             network,
@@ -142,7 +146,7 @@ class _Search:
             fixed_rise=np.repeat(network.fixed_rise, 2, axis=1),
             sources=replace(network.sources, power=network.sources.power * scaled),
         )
-        solution = solve_steady(pair, self.start)
+        solution = solve_nearby(pair, self.start, self.inverse)
         if not solution.converged:
             return None
         self.start = solution.rise[network.unknown]

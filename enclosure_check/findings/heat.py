@@ -19,14 +19,15 @@ def wall_findings(solved: Solved) -> tuple[WallFinding, ...]:
 def _wall(solved: Solved, name: str) -> WallFinding:
     wall = next(wall for key, wall in solved.case.walls.items() if key == name)
     places, owner = solved.network.places, f"wall:{name}"
-    outside = float(solved.temperature_c[places.wall_outside[name]])
-    touch = None if wall.touch_max_c is None else wall.touch_max_c - outside
+    outside = solved.at(places.wall_outside[name].mean)
+    hottest = float(solved.temperature_c[places.wall_outside[name].cells].max())
+    touch = None if wall.touch_max_c is None else wall.touch_max_c - hottest
     return WallFinding(
         name=name,
         mounting=wall.mounting.kind,
         outside_c=outside,
-        outside_max_c=outside,
-        inside_c=float(solved.temperature_c[places.wall_inside[name]]),
+        outside_max_c=hottest,
+        inside_c=solved.at(places.wall_inside[name].mean),
         convection_w=solved.flow(owner, "convection_outside"),
         radiation_w=solved.flow(owner, "radiation_outside"),
         sun_w=solved.put_in(owner, "sun"),

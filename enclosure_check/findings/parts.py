@@ -72,24 +72,25 @@ def part_heat(solved: Solved) -> tuple[PartHeat, ...]:
 
 
 def board_findings(solved: Solved) -> tuple[BoardFinding, ...]:
-    """Give each board's mean and hottest place."""
-    places, rows = solved.network.places, []
-    for name in solved.case.boards:
-        sides = [
-            float(solved.temperature_c[node])
-            for (board, _), node in places.board_sides.items()
-            if board == name
-        ]
-        under = [
-            (float(solved.temperature_c[node]), part.name)
-            for part in solved.case.parts.values()
-            if part.host == name and (node := places.parts[part.name].board) is not None
-        ]
-        hottest, where = max(under, default=(max(sides), None))
-        if hottest < max(sides):
-            hottest, where = max(sides), None
-        rows.append(BoardFinding(name, sum(sides) / len(sides), hottest, where))
-    return tuple(rows)
+    """Give each board's mean, its hottest place and its map."""
+    return tuple(_board(solved, name) for name in solved.case.boards)
+
+
+def _board(solved: Solved, name: str) -> BoardFinding:
+    places = solved.network.places
+    plate = places.boards[name]
+    cells = solved.temperature_c[plate.cells]
+    hottest, where = float(cells.max()), None
+    for part in solved.case.parts.values():
+        nodes = places.parts[part.name]
+        if part.host != name or nodes.board is None:
+            continue
+        entering = solved.flow(f"part:{part.name}", "to_board")
+        middle = solved.at(nodes.board) + entering * nodes.peak_k_per_w
+        if middle > hottest:
+            hottest, where = middle, part.name
+    rows = tuple(tuple(row) for row in cells.T[::-1].tolist())
+    return BoardFinding(name, solved.at(plate.mean), hottest, where, rows)
 
 
 def reading_findings(solved: Solved) -> tuple[ReadingFinding, ...]:
@@ -103,7 +104,7 @@ def _reading(solved: Solved, reading: ReadingCase) -> ReadingFinding:
         predicted = point_c(solved, reading.name, reading.point)
     elif reading.kind == "wall":
         nodes = places.wall_outside if reading.point == "outside" else places.wall_inside
-        predicted = float(solved.temperature_c[nodes[reading.name]])
+        predicted = solved.at(nodes[reading.name].mean)
     else:
         predicted = float(solved.temperature_c[places.air])
     return ReadingFinding(

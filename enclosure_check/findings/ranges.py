@@ -4,7 +4,8 @@ import numpy as np
 
 from enclosure_check.findings.results import RangeFinding
 from enclosure_check.findings.solved import Solved
-from enclosure_check.network.links import BodyFilm, BoxFilm, FilmAudit, LinkLabel, PlateFilm
+from enclosure_check.network.films import BoxFilm, FilmAudit, Films
+from enclosure_check.network.links import LinkLabel
 from enclosure_check.physics.air import air, rayleigh_number
 from enclosure_check.physics.correlation import CORRELATIONS, PLATE_LAWS
 
@@ -18,14 +19,15 @@ def range_findings(solved: Solved) -> tuple[RangeFinding, ...]:
     rows: list[RangeFinding] = []
     rise, reference = solved.solution.rise, solved.network.reference_k
     for kind in solved.network.kinds:
-        if not isinstance(kind, PlateFilm | BodyFilm | BoxFilm):
+        if not isinstance(kind, Films):
             continue
-        audit = kind.audit(rise[kind.stencil], reference)
+        audit = kind.audit(rise[kind.nodes], reference)
         prandtl = air(audit.film_temperature, kind.pressure_pa).prandtl
-        for index, label in enumerate(kind.labels):
+        labels = kind.surface_value(kind.label)
+        for index, label in enumerate(labels.tolist()):
             if isinstance(kind, BoxFilm) and not kind.geometry.open_faces[index]:
                 continue
-            rows.append(_row(audit, prandtl, index, label))
+            rows.append(_row(audit, prandtl, index, solved.network.labels[label]))
         if isinstance(kind, BoxFilm) and kind.geometry.open_faces.any():
             rows.append(_whole_box(kind, audit))
     return tuple(rows)

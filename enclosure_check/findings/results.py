@@ -54,12 +54,19 @@ class PartHeat:
 
 @dataclass(frozen=True)
 class BoardFinding:
-    """One board; in this version each side has one mean temperature."""
+    """One board: its mean, its hottest place and its map."""
 
     name: Annotated[str, _about("Name of the board.")]
-    mean_c: Annotated[float, _about("Mean over both sides. [C]")]
+    mean_c: Annotated[float, _about("Mean. [C]")]
     hottest_c: Annotated[float, _about("Hottest place, under one of its parts. [C]")]
-    hottest_at: Annotated[str | None, _about("The part there; null for a board without parts.")]
+    hottest_at: Annotated[str | None, _about("The part there; null where there is none.")]
+    map_c: Annotated[
+        tuple[tuple[float, ...], ...],
+        _about(
+            "Temperatures of its cells, rows from the upper (or rear) edge down, each along the "
+            "box's width (or depth), as seen from the front, the right or the top. [C]"
+        ),
+    ]
 
 
 @dataclass(frozen=True)

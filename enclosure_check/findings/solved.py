@@ -23,8 +23,7 @@ class Solved:
     @cached_property
     def temperature_c(self) -> FloatArray:
         """Temperature of every node [C], shape (n,)."""
-        kelvin = self.solution.rise[:, 0] + self.network.reference_k[0]
-        return np.array([celsius(value) for value in kelvin])
+        return self.solution.rise[:, 0] + celsius(float(self.network.reference_k[0]))
 
     @cached_property
     def heat_w(self) -> FloatArray:
@@ -33,19 +32,20 @@ class Solved:
 
     @cached_property
     def _flows(self) -> dict[tuple[str, str], float]:
-        flows: dict[tuple[str, str], float] = {}
-        for label, heat in zip(self.network.link_labels, self.heat_w.tolist(), strict=True):
-            flows[label] = flows.get(label, 0.0) + heat
-        return flows
+        network = self.network
+        total = np.bincount(network.link_label, self.heat_w, len(network.labels))
+        return dict(zip(network.labels, total.tolist(), strict=True))
 
     @cached_property
     def _sources(self) -> dict[tuple[str, str], float]:
-        sources = self.network.sources
-        heat = sources.heat(self.solution.rise[sources.node], self.network.reference_k)
-        put_in: dict[tuple[str, str], float] = {}
-        for label, value in zip(sources.labels, heat[:, 0].tolist(), strict=True):
-            put_in[label] = put_in.get(label, 0.0) + value
-        return put_in
+        network, sources = self.network, self.network.sources
+        heat = sources.heat(self.solution.rise[sources.node], network.reference_k)
+        total = np.bincount(sources.label, heat[:, 0], len(network.labels))
+        return dict(zip(network.labels, total.tolist(), strict=True))
+
+    def at(self, node: int) -> float:
+        """Temperature of a node [C]."""
+        return float(self.temperature_c[node])
 
     def flow(self, owner: str, role: str) -> float:
         """Heat through all links of an owner and role [W]."""

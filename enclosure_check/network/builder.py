@@ -1,23 +1,26 @@
 """Collects nodes and links while the small builders run, then makes the network of them."""
 
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
 from typing import Any
 
 import numpy as np
+from numpy.typing import ArrayLike
 
+from enclosure_check.network.films import BodyFilm, BoxFilm, PlateFilm
 from enclosure_check.network.links import (
-    BodyFilm,
-    BoxFilm,
     Conduction,
+    IntArray,
     LinkKind,
     LinkLabel,
-    PlateFilm,
     Radiation,
 )
 from enclosure_check.network.network import Network, Places, Sources
 from enclosure_check.physics.box import BoxGeometry
 
-_Row = tuple[int, int, LinkLabel, tuple[float, ...]]
+# Resistances below this, and conductances over its inverse, are far beyond what any part of a
+# check can tell; stated as zero they are taken as this. [K/W]
+LEAST_RESISTANCE = 1e-4
 
 
 @dataclass(frozen=True)
@@ -33,59 +36,179 @@ class PlaneFace:
     up_cosine: float
 
 
+class Blocks:
+    """Links of one kind, collected as rows of growing arrays: whole numbers, and values."""
+
+    def __init__(self, numbers: Sequence[str], values: Sequence[str]) -> None:
+        self.names = (tuple(numbers), tuple(values))
+        self.count = 0
+        self._numbers = np.zeros((len(numbers), 64), dtype=np.intp)
+        self._values = np.zeros((len(values), 64))
+
+    def add(self, length: int, numbers: Sequence[ArrayLike], values: Sequence[ArrayLike]) -> None:
+        """Add so many links; each entry is one for all of them or flat and as long."""
+        start, end = self.count, self.count + length
+        while end > self._numbers.shape[1]:
+            self._numbers = np.concatenate((self._numbers, np.zeros_like(self._numbers)), axis=1)
+            self._values = np.concatenate((self._values, np.zeros_like(self._values)), axis=1)
+        for row, entry in zip(self._numbers, numbers, strict=True):
+            row[start:end] = entry
+        for value_row, entry in zip(self._values, values, strict=True):
+            value_row[start:end] = entry
+        self.count = end
+
+    def columns(self) -> dict[str, Any]:
+        """Give every column by name, values with a trailing axis for variants."""
+        numbers, values = self._numbers[:, : self.count], self._values[:, : self.count]
+        return {
+            **dict(zip(self.names[0], numbers, strict=True)),
+            **{name: row[:, None] for name, row in zip(self.names[1], values, strict=True)},
+        }
+
+
+_ENDS = ("a", "b", "label")
+
+
+class FilmBlocks:
+    """Films of one kind: cells in blocks, and one row per surface."""
+
+    def __init__(self, values: Sequence[str]) -> None:
+        self.cells = Blocks((*_ENDS, "surface"), ("area",))
+        self.surfaces = Blocks(("mean", "air"), values)
+
+    def add(
+        self,
+        length: int,
+        cells: ArrayLike,
+        air: ArrayLike,
+        label: int,
+        area: ArrayLike,
+        nodes: tuple[int, int],
+        values: Sequence[float],
+    ) -> None:
+        """Add one surface with so many cells."""
+        self.cells.add(length, (cells, air, label, self.surfaces.count), (area,))
+        self.surfaces.add(1, nodes, values)
+
+    def columns(self) -> dict[str, Any]:
+        """Give every column by name."""
+        rows = self.surfaces.columns()
+        nodes = np.stack((rows.pop("mean"), rows.pop("air")))
+        factor = np.ones((nodes.shape[1], 1))
+        return {**self.cells.columns(), **rows, "nodes": nodes, "factor": factor}
+
+
 @dataclass
 class NetworkBuilder:
     """Nodes and links being collected; temperatures in kelvin, all else in SI."""
 
     reference_k: float
     pressure_pa: float
-    _labels: list[str] = field(default_factory=list)
+    _node_labels: list[str] = field(default_factory=list)
     _fixed_k: list[float | None] = field(default_factory=list)
-    _conduction: list[_Row] = field(default_factory=list)
-    _radiation: list[_Row] = field(default_factory=list)
-    _plates: list[_Row] = field(default_factory=list)
-    _bodies: list[_Row] = field(default_factory=list)
-    _boxes: list[LinkKind] = field(default_factory=list)
-    _sources: list[_Row] = field(default_factory=list)
+    _labels: dict[LinkLabel, int] = field(default_factory=dict)
+
+    def __post_init__(self) -> None:
+        self._conduction = Blocks((*_ENDS, "x", "y"), ("conductance",))
+        self._radiation = Blocks(_ENDS, Radiation.PARAMETERS)
+        self._plates = FilmBlocks(PlateFilm.PARAMETERS[2:])
+        self._bodies = FilmBlocks(BodyFilm.PARAMETERS[2:])
+        self._boxes: list[LinkKind] = []
+        self._sources = Blocks(("node", "label"), ("power", "stated_at_k", "slope", "doublings"))
+        self.nowhere = self.node("no place", self.reference_k)
+
+    # Nodes -------------------------------------------------------------------------------
 
     def node(self, label: str, fixed_k: float | None = None) -> int:
         """Add a node, its temperature given or to be found; gives its number."""
-        self._labels.append(label)
+        self._node_labels.append(label)
         self._fixed_k.append(fixed_k)
-        return len(self._labels) - 1
+        return len(self._node_labels) - 1
 
-    def conduct(self, a: int, b: int, conductance: float, label: LinkLabel) -> None:
-        """Join two nodes by a conductance [W/K]; none joins nothing."""
-        if conductance > 0:
-            self._conduction.append((a, b, label, (conductance,)))
+    def nodes(self, label: str, shape: tuple[int, ...]) -> IntArray:
+        """Add an array of nodes whose temperatures are to be found; gives their numbers."""
+        first = len(self._node_labels)
+        count = int(np.prod(shape))
+        self._node_labels += [f"{label}, cell {index + 1}" for index in range(count)]
+        self._fixed_k += [None] * count
+        return np.arange(first, first + count).reshape(shape)
+
+    def mean(self, label: str, cells: IntArray, weights: ArrayLike) -> int:
+        """Give a node that keeps the weighted mean of cells, which is no heat."""
+        node = self.node(label)
+        row = self._label(LinkLabel(label, "mean"))
+        share = np.ravel(weights) / np.sum(weights)
+        flat = cells.ravel()
+        self._conduction.add(flat.size, (node, self.nowhere, row, node, flat), (share,))
+        return node
+
+    # Links -------------------------------------------------------------------------------
+
+    def conduct(self, a: ArrayLike, b: ArrayLike, conductance: ArrayLike, label: LinkLabel) -> None:
+        """Join nodes by conductances [W/K], one by one where arrays are given."""
+        a, b, conductance = np.ravel(a), np.ravel(b), np.ravel(conductance)
+        length = max(a.size, b.size)
+        self._conduction.add(length, (a, b, self._label(label), a, b), (conductance,))
+
+    def resist(self, a: int, b: int, resistance: float, label: LinkLabel) -> None:
+        """Join two nodes by a resistance [K/W]; one of nothing by the least there is."""
+        self.conduct(a, b, 1.0 / max(resistance, LEAST_RESISTANCE), label)
 
     def behind(self, a: int, resistance: float, label: str, link: LinkLabel) -> int:
         """Give the node behind a resistance [K/W]: a new one, or ``a`` itself without any."""
         if resistance <= 0:
             return a
         node = self.node(label)
-        self.conduct(a, node, 1.0 / resistance, link)
+        self.resist(a, node, resistance, link)
         return node
+
+    def spread(
+        self,
+        a: int,
+        cells: IntArray,
+        shares: ArrayLike,
+        mean: int,
+        resistance: float,
+        label: LinkLabel,
+    ) -> None:
+        """Join a node to cells that share its heat out by fixed shares.
+
+        The heat follows the difference to the cells' mean over ``resistance`` [K/W], which may be
+        negative (see `PlateGrid.sub_cell`) but not nothing.
+        """
+        flow, flat = np.ravel(shares) / resistance, cells.ravel()
+        self._conduction.add(flat.size, (a, flat, self._label(label), a, mean), (flow,))
 
     def radiate(
         self,
-        a: int,
+        a: ArrayLike,
         b: int,
-        area: float,
-        exchange_area: float,
+        area: ArrayLike,
+        exchange_area: ArrayLike,
         emissivity: float,
         label: LinkLabel,
         share: float = 1.0,
     ) -> None:
-        """Join two nodes by radiation; areas [m2]."""
-        if area > 0 and share > 0:
-            self._radiation.append((a, b, label, (area, exchange_area, share, emissivity)))
+        """Join nodes by radiation; areas [m2]."""
+        if share > 0:
+            a, row = np.ravel(a), self._label(label)
+            values = (np.ravel(area), np.ravel(exchange_area), share, emissivity)
+            self._radiation.add(a.size, (a, b, row), values)
 
-    def plate_film(self, a: int, air: int, area: float, face: PlaneFace, label: LinkLabel) -> None:
-        """Join a plane face to air; ``area`` [m2] may be less or more than the face's own."""
-        if area > 0:
-            row = (area, 1.0, face.fall_length, face.area_perimeter_length, face.up_cosine)
-            self._plates.append((a, air, label, row))
+    def plate_film(
+        self,
+        cells: ArrayLike,
+        mean: int,
+        air: int,
+        area: ArrayLike,
+        face: PlaneFace,
+        label: LinkLabel,
+    ) -> None:
+        """Join a plane face to air; ``area`` of its cells [m2] is what they convect with."""
+        values = (face.fall_length, face.area_perimeter_length, face.up_cosine)
+        cells = np.ravel(cells)
+        row, nodes = self._label(label), (mean, air)
+        self._plates.add(cells.size, cells, air, row, np.ravel(area), nodes, values)
 
     def body_film(
         self,
@@ -97,18 +220,27 @@ class NetworkBuilder:
         label: LinkLabel,
     ) -> None:
         """Join a small body to air; areas [m2]."""
-        if area > 0:
-            self._bodies.append((a, air, label, (area, 1.0, body_area, gravity_function)))
+        values = (body_area, gravity_function)
+        self._bodies.add(1, a, air, self._label(label), area, (a, air), values)
 
     def box_film(
-        self, faces: list[int], air: int, geometry: BoxGeometry, labels: list[LinkLabel]
+        self,
+        cells: Sequence[IntArray],
+        means: Sequence[int],
+        air: int,
+        geometry: BoxGeometry,
+        labels: Sequence[LinkLabel],
     ) -> None:
-        """Join the six outer faces of a box to the air around it."""
+        """Join the outer faces of a box, all six in order, to the air around it."""
+        blocks = Blocks((*_ENDS, "surface"), ("area",))
+        for index, (face, label) in enumerate(zip(cells, labels, strict=True)):
+            area = geometry.area[index] / face.size
+            blocks.add(face.size, (face.ravel(), air, self._label(label), index), (area,))
+        nodes = np.repeat(np.array([*means, air])[:, None], 6, axis=1)
         self._boxes.append(
             BoxFilm(
-                a=np.array(faces, dtype=np.intp),
-                b=np.full(6, air, dtype=np.intp),
-                labels=tuple(labels),
+                **blocks.columns(),
+                nodes=nodes,
                 geometry=geometry,
                 factor=np.ones((6, 1)),
                 pressure_pa=self.pressure_pa,
@@ -117,53 +249,45 @@ class NetworkBuilder:
 
     def heat(
         self,
-        node: int,
-        power: float,
+        node: ArrayLike,
+        power: ArrayLike,
         label: LinkLabel,
         stated_at_k: float = 298.15,
         slope: float = 0.0,
         doublings: float = 0.0,
     ) -> None:
-        """Put heat [W] into a node, growing with its temperature if so said [1/K]."""
-        if power != 0:
-            self._sources.append((node, node, label, (power, stated_at_k, slope, doublings)))
+        """Put heat [W] into nodes, growing with their temperature if so said [1/K]."""
+        if np.any(power):
+            node, row = np.ravel(node), self._label(label)
+            self._sources.add(node.size, (node, row), (power, stated_at_k, slope, doublings))
 
     def finish(self, places: Places) -> Network:
         """Make the network."""
         in_air: dict[str, Any] = {"pressure_pa": self.pressure_pa}
-        kinds: list[LinkKind] = [
-            kind(**_columns(rows, kind.PARAMETERS), **more)
-            for kind, rows, more in (
-                (Conduction, self._conduction, {}),
-                (Radiation, self._radiation, {}),
-                (PlateFilm, self._plates, in_air),
-                (BodyFilm, self._bodies, in_air),
-            )
-            if rows
+        made: list[tuple[Any, Blocks | FilmBlocks, Mapping[str, Any]]] = [
+            (Conduction, self._conduction, {}),
+            (Radiation, self._radiation, {}),
+            (PlateFilm, self._plates, in_air),
+            (BodyFilm, self._bodies, in_air),
         ]
-        kinds += self._boxes
-        sources = _columns(self._sources, ("power", "stated_at_k", "slope", "doublings"))
-        sources["node"] = sources.pop("a")
-        del sources["b"]
+        kinds: list[LinkKind] = []
+        for kind, blocks, more in made:
+            columns = blocks.columns()
+            if columns["a"].size:
+                kinds.append(kind(**columns, **more))
         fixed = np.array([value is not None for value in self._fixed_k])
         rise = [0.0 if value is None else value - self.reference_k for value in self._fixed_k]
         return Network(
-            node_labels=tuple(self._labels),
+            node_labels=tuple(self._node_labels),
             reference_k=np.array([self.reference_k]),
             fixed=fixed,
             fixed_rise=np.array(rise)[:, None],
-            kinds=tuple(kinds),
-            sources=Sources(**sources),
+            nowhere=self.nowhere,
+            labels=tuple(self._labels),
+            kinds=(*kinds, *self._boxes),
+            sources=Sources(**self._sources.columns()),
             places=places,
         )
 
-
-def _columns(rows: list[_Row], names: tuple[str, ...]) -> dict[str, Any]:
-    """Turn rows into columns by name: ends, labels, and one (m, 1) array per value."""
-    values = np.array([row[3] for row in rows], dtype=np.float64).reshape(len(rows), len(names))
-    return {
-        "a": np.array([row[0] for row in rows], dtype=np.intp),
-        "b": np.array([row[1] for row in rows], dtype=np.intp),
-        "labels": tuple(row[2] for row in rows),
-        **{name: values[:, index : index + 1] for index, name in enumerate(names)},
-    }
+    def _label(self, label: LinkLabel) -> int:
+        return self._labels.setdefault(label, len(self._labels))

@@ -1,19 +1,24 @@
 """Builds the radiation inside: every surface exchanges with all others over one mean node."""
 
+import numpy as np
+
 from enclosure_check.network.site import Site
 from enclosure_check.physics.radiation import mean_radiant_exchange_areas
 
 
 def build_inside_radiation(site: Site) -> None:
     """Join every inside surface to the mean radiant node of the cavity."""
-    surfaces = [surface for surface in site.surfaces if surface.area > 0]
-    exchange = mean_radiant_exchange_areas([surface.area for surface in surfaces])
-    for surface, exchange_area in zip(surfaces, exchange, strict=True):
+    surfaces = [surface for surface in site.surfaces if surface.area.sum() > 0]
+    areas = np.array([float(surface.area.sum()) for surface in surfaces])
+    for surface, area, exchange in zip(
+        surfaces, areas, mean_radiant_exchange_areas(areas), strict=True
+    ):
+        bare = surface.area > 0
         site.builder.radiate(
-            surface.node,
+            surface.cells[bare],
             site.radiant_inside,
-            surface.area,
-            float(exchange_area),
+            surface.area[bare],
+            surface.area[bare] * (exchange / area),
             surface.emissivity,
             surface.label,
         )

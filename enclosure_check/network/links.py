@@ -11,9 +11,6 @@ from typing import Any, ClassVar, NamedTuple, Protocol, Self
 import numpy as np
 import numpy.typing as npt
 
-from enclosure_check.physics.bodies import cuboid_film
-from enclosure_check.physics.box import BoxGeometry, box_film
-from enclosure_check.physics.plates import inclined_plate
 from enclosure_check.physics.radiation import (
     STEFAN_BOLTZMANN,
     grey_exchange,
@@ -23,11 +20,10 @@ from enclosure_check.physics.radiation import (
 FloatArray = npt.NDArray[np.float64]
 IntArray = npt.NDArray[np.intp]
 
-# Step of a differenced derivative. Film laws are smooth over this width (their rounding at zero
-# difference is 100 times wider), and rounding leaves eight digits. [K]
-DIFFERENCE_K = 1e-4
 # Relative step for derivatives by a parameter.
 DIFFERENCE_SHARE = 1e-6
+# Rise at which links that are not linear are taken for the first guess. [K]
+NOMINAL_RISE_K = 10.0
 
 
 class LinkLabel(NamedTuple):
@@ -35,18 +31,6 @@ class LinkLabel(NamedTuple):
 
     owner: str
     role: str
-
-
-class FilmAudit(NamedTuple):
-    """What the range audit needs of a film; every field has shape (m, v), laws are names."""
-
-    rise: FloatArray
-    film_temperature: FloatArray
-    coefficient: FloatArray
-    rayleigh: FloatArray
-    nusselt: FloatArray
-    length: FloatArray
-    law: IntArray
 
 
 class LinkKind(Protocol):
@@ -63,12 +47,12 @@ class LinkKind(Protocol):
         """Node the heat enters, shape (m,)."""
 
     @property
-    def stencil(self) -> IntArray:
-        """Nodes each link depends on, shape (k, m)."""
+    def label(self) -> IntArray:
+        """Number of each link's label in the network's table, shape (m,)."""
 
     @property
-    def labels(self) -> tuple[LinkLabel, ...]:
-        """One label per link."""
+    def stencil(self) -> IntArray:
+        """Nodes each link depends on, shape (k, m)."""
 
     def heat(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
         """Heat rate from ``a`` to ``b`` [W], shape (m, v).
@@ -84,23 +68,26 @@ class LinkKind(Protocol):
     def heat_by_rise(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
         """Derivative of `heat` by each rise of the stencil [W/K], shape (k, m, v)."""
 
+    def nominal(self, reference_k: FloatArray) -> FloatArray:
+        """Factors of a linear link that behaves so at a nominal rise [W/K], shape (k, m, 1)."""
+
     def heat_by_parameter(self, rise: FloatArray, reference_k: FloatArray, name: str) -> FloatArray:
         """Derivative of `heat` by the link's own value of a parameter, shape (m, v)."""
 
-    def with_parameter(self, name: str, value: FloatArray) -> Self:
-        """Give the same links with other values of a parameter, shape (m, 1) or (m, v)."""
+    def parameter_of(self, name: str) -> IntArray:
+        """Which value of a parameter is each link's own, shape (m,)."""
 
-    def first_variant(self) -> Self:
-        """Give the links of the first variant alone."""
+    def with_parameter(self, name: str, value: FloatArray) -> Self:
+        """Give the same links with other values of a parameter, shape (p, 1) or (p, v)."""
 
 
 @dataclass(frozen=True, eq=False)
-class _Links:
-    """Links between two nodes each."""
+class Links:
+    """What all kinds have: two ends and a label each."""
 
     a: IntArray
     b: IntArray
-    labels: tuple[LinkLabel, ...]
+    label: IntArray
 
     PARAMETERS: ClassVar[tuple[str, ...]] = ()
 
@@ -113,60 +100,46 @@ class _Links:
         """Heat rate from ``a`` to ``b`` [W], shape (m, v)."""
         raise NotImplementedError
 
-    def heat_by_rise(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
-        """Derivative of `heat` by each rise, by differences of the same function [W/K]."""
-        k, m, v = rise.shape
-        # All shifted copies ride on the trailing axis: one evaluation instead of k + 1.
-        shifted = np.repeat(rise[:, :, None, :], k + 1, axis=2)
-        for index in range(k):
-            shifted[index, :, index + 1, :] += DIFFERENCE_K
-        copies = np.tile(np.broadcast_to(reference_k, (v,)), k + 1)
-        heat = self._repeated(k + 1, v).heat(shifted.reshape(k, m, (k + 1) * v), copies)
-        heat = heat.reshape(m, k + 1, v)
-        return np.moveaxis((heat[:, 1:, :] - heat[:, :1, :]) / DIFFERENCE_K, 1, 0)
-
     def heat_by_parameter(self, rise: FloatArray, reference_k: FloatArray, name: str) -> FloatArray:
         """Derivative of `heat` by a parameter, by a difference of the same function."""
         value = getattr(self, name)
         step = DIFFERENCE_SHARE * np.maximum(np.abs(value), 1e-3)
         moved = self.with_parameter(name, value + step)
-        slope: FloatArray = (moved.heat(rise, reference_k) - self.heat(rise, reference_k)) / step
+        change = moved.heat(rise, reference_k) - self.heat(rise, reference_k)
+        slope: FloatArray = change / step[self.parameter_of(name)]
         return slope
 
+    def parameter_of(self, name: str) -> IntArray:
+        """Which value of a parameter is each link's own: its own one, unless said otherwise."""
+        return np.arange(len(self.a))
+
     def with_parameter(self, name: str, value: FloatArray) -> Self:
-        """Give the same links with other values of a parameter, shape (m, 1) or (m, v)."""
+        """Give the same links with other values of a parameter, shape (p, 1) or (p, v)."""
         if name not in self.PARAMETERS:
             raise KeyError(f"{type(self).__name__} has no parameter {name!r}")
         changed: dict[str, Any] = {name: value}
         return replace(self, **changed)
 
-    def first_variant(self) -> Self:
-        """Give the links of the first variant alone."""
-        changed: dict[str, Any] = {
-            name: getattr(self, name)[:, :1]
-            for name in self.PARAMETERS
-            if getattr(self, name).shape[-1] > 1
-        }
-        return replace(self, **changed) if changed else self
-
-    def _repeated(self, copies: int, variants: int) -> Self:
-        """Repeat parameters that differ by variant, to go with repeated rises."""
-        changed: dict[str, Any] = {
-            name: np.tile(getattr(self, name), (1, copies))
-            for name in self.PARAMETERS
-            if variants > 1 and getattr(self, name).shape[-1] == variants
-        }
-        return replace(self, **changed) if changed else self
-
 
 @dataclass(frozen=True, eq=False)
-class Conduction(_Links):
-    """Heat conduction: ``G (T_a - T_b)``."""
+class Conduction(Links):
+    """Heat that goes with one difference of temperatures: ``G (T_x - T_y)``.
 
+    For plain conduction x and y are the ends themselves. A source spread evenly over cells
+    follows the mean of the cells, not each cell; a mean over cells is kept by a balance of its own.
+    """
+
+    x: IntArray
+    y: IntArray
     conductance: FloatArray
     """[W/K], shape (m, 1) or (m, v)."""
 
     PARAMETERS: ClassVar[tuple[str, ...]] = ("conductance",)
+
+    @property
+    def stencil(self) -> IntArray:
+        """Nodes each link depends on, shape (2, m)."""
+        return np.stack((self.x, self.y))
 
     def heat(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
         """Heat rate from ``a`` to ``b`` [W], shape (m, v)."""
@@ -178,6 +151,11 @@ class Conduction(_Links):
         g = np.broadcast_to(self.conductance, rise.shape[1:])
         return np.stack((g, -g))
 
+    def nominal(self, reference_k: FloatArray) -> FloatArray:
+        """Factors of the link itself [W/K], shape (2, m, 1)."""
+        g = self.conductance[:, :1]
+        return np.stack((g, -g))
+
     def heat_by_parameter(self, rise: FloatArray, reference_k: FloatArray, name: str) -> FloatArray:
         """Derivative of `heat` by the conductance [K], shape (m, v)."""
         if name != "conductance":
@@ -187,7 +165,7 @@ class Conduction(_Links):
 
 
 @dataclass(frozen=True, eq=False)
-class Radiation(_Links):
+class Radiation(Links):
     """Grey-diffuse radiation: ``s C sigma (T_a^4 - T_b^4)``, C the surface and space in series.
 
     ``C = 1 / (1/X + (1 - e) / (e A))`` with the exchange area X of the space and the share s of
@@ -213,6 +191,11 @@ class Radiation(_Links):
         slope[1] *= -1.0
         return slope
 
+    def nominal(self, reference_k: FloatArray) -> FloatArray:
+        """Factors at a nominal rise [W/K], shape (2, m, 1)."""
+        slope = 4.0 * self._conductance()[:, :1] * (reference_k + NOMINAL_RISE_K) ** 3
+        return np.stack((slope, -slope))
+
     def heat_by_parameter(self, rise: FloatArray, reference_k: FloatArray, name: str) -> FloatArray:
         """Derivative of `heat` by a parameter, analytic by the emissivity."""
         if name != "emissivity":
@@ -233,116 +216,3 @@ def _fourth_power_difference(rise: FloatArray, reference_k: FloatArray) -> Float
     a, b = rise[0] + reference_k, rise[1] + reference_k
     difference: FloatArray = (rise[0] - rise[1]) * (a + b) * (a * a + b * b)
     return difference
-
-
-@dataclass(frozen=True, eq=False)
-class PlateFilm(_Links):
-    """Free convection of a plane face to air: ``f h A (T_a - T_b)``, h by the face's tilt."""
-
-    area: FloatArray
-    factor: FloatArray
-    """Multiplies the law; 1, or a draw within its accuracy."""
-    fall_length: FloatArray
-    area_perimeter_length: FloatArray
-    up_cosine: FloatArray
-    pressure_pa: float
-
-    PARAMETERS: ClassVar[tuple[str, ...]] = (
-        "area",
-        "factor",
-        "fall_length",
-        "area_perimeter_length",
-        "up_cosine",
-    )
-
-    def heat(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
-        """Heat rate from ``a`` to ``b`` [W], shape (m, v)."""
-        audit = self.audit(rise, reference_k)
-        return self.factor * self.area * audit.coefficient * audit.rise
-
-    def audit(self, rise: FloatArray, reference_k: FloatArray) -> FilmAudit:
-        """Give the films with the groups of their laws."""
-        difference = rise[0] - rise[1]
-        film_temperature = reference_k + 0.5 * (rise[0] + rise[1])
-        film = inclined_plate(
-            difference,
-            film_temperature,
-            self.pressure_pa,
-            self.fall_length,
-            self.area_perimeter_length,
-            self.up_cosine,
-        )
-        return FilmAudit(difference, film_temperature, *film)
-
-
-@dataclass(frozen=True, eq=False)
-class BodyFilm(_Links):
-    """Free convection of a small body to air: ``f h A (T_a - T_b)``, h by the cuboid law."""
-
-    area: FloatArray
-    factor: FloatArray
-    body_area: FloatArray
-    """Area the law is formed with: that of the body and its mirror images [m2]."""
-    gravity_function: FloatArray
-    pressure_pa: float
-
-    PARAMETERS: ClassVar[tuple[str, ...]] = ("area", "factor", "body_area", "gravity_function")
-    LAW: ClassVar[int] = 3
-
-    def heat(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
-        """Heat rate from ``a`` to ``b`` [W], shape (m, v)."""
-        audit = self.audit(rise, reference_k)
-        return self.factor * self.area * audit.coefficient * audit.rise
-
-    def audit(self, rise: FloatArray, reference_k: FloatArray) -> FilmAudit:
-        """Give the films with the groups of their laws."""
-        difference = rise[0] - rise[1]
-        film_temperature = reference_k + 0.5 * (rise[0] + rise[1])
-        film = cuboid_film(
-            difference, film_temperature, self.pressure_pa, self.body_area, self.gravity_function
-        )
-        law = np.full(difference.shape, self.LAW, dtype=np.intp)
-        return FilmAudit(difference, film_temperature, *film, law)
-
-
-@dataclass(frozen=True, eq=False)
-class BoxFilm(_Links):
-    """Free convection of the six outer faces of one box to the air around it.
-
-    Each face's film depends on the temperatures of all of them, so the stencil of every link is
-    the six faces and the air. Faces that are not open carry no heat.
-    """
-
-    geometry: BoxGeometry
-    factor: FloatArray
-    pressure_pa: float
-
-    PARAMETERS: ClassVar[tuple[str, ...]] = ("factor",)
-
-    @property
-    def stencil(self) -> IntArray:
-        """Nodes each link depends on, shape (7, 6)."""
-        nodes = np.append(self.a, self.b[0])
-        return np.repeat(nodes[:, None], len(self.a), axis=1)
-
-    def heat(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
-        """Heat rate from each face to the air [W], shape (6, v)."""
-        audit = self.audit(rise, reference_k)
-        return self.factor * self.geometry.area[:, None] * audit.coefficient * audit.rise
-
-    def audit(self, rise: FloatArray, reference_k: FloatArray) -> FilmAudit:
-        """Give the films with the groups of their laws."""
-        # Every column of the stencil is the same: the faces and the air.
-        faces, air = rise[:6, 0], rise[6, 0]
-        film = box_film(faces + reference_k, air + reference_k, self.pressure_pa, self.geometry)
-        difference = faces - air
-        film_temperature = reference_k + 0.5 * (faces + air)
-        return FilmAudit(
-            difference,
-            film_temperature,
-            film.coefficient,
-            film.rayleigh,
-            film.nusselt,
-            film.length,
-            film.law,
-        )

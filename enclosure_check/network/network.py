@@ -23,7 +23,7 @@ class Sources:
     """
 
     node: IntArray
-    labels: tuple[LinkLabel, ...]
+    label: IntArray
     power: FloatArray
     """Power at the temperature it is stated for [W], shape (s, 1) or (s, v)."""
     stated_at_k: FloatArray
@@ -36,6 +36,20 @@ class Sources:
     def by_temperature(self) -> bool:
         """Whether any power depends on temperature."""
         return bool(np.any(self.slope != 0) or np.any(self.doublings != 0))
+
+    @cached_property
+    def growing(self) -> BoolArray:
+        """Whether each power grows with temperature, shape (s, 1)."""
+        return (self.slope > 0) | (self.doublings > 0)
+
+    def held(self, rise: FloatArray, reference_k: FloatArray) -> "Sources":
+        """Give the same sources, those that grow held at what they put in at given rises (s, v)."""
+        return replace(
+            self,
+            power=np.where(self.growing, self.heat(rise, reference_k), self.power),
+            slope=np.where(self.growing, 0.0, self.slope),
+            doublings=np.where(self.growing, 0.0, self.doublings),
+        )
 
     def heat(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
         """Heat put in [W], shape (s, v)."""
@@ -67,12 +81,25 @@ class Sources:
 
 @dataclass(frozen=True)
 class PartNodes:
-    """Nodes of a part; several are one and the same where nothing lies between them."""
+    """Nodes of a part; several are one and the same where nothing lies between them.
+
+    ``peak_k_per_w`` is how much hotter the board is under the middle of the part than in the mean
+    under it, per watt that enters it there.
+    """
 
     junction: int
     case: int
     board: int | None
     air: int
+    peak_k_per_w: float = 0.0
+
+
+@dataclass(frozen=True, eq=False)
+class PlateNodes:
+    """Nodes of a wall's face or a board: its cells, by its two axes, and their mean."""
+
+    cells: IntArray
+    mean: int
 
 
 @dataclass(frozen=True)
@@ -81,9 +108,9 @@ class Places:
 
     ambient: int
     air: int
-    wall_outside: dict[str, int]
-    wall_inside: dict[str, int]
-    board_sides: dict[tuple[str, str], int]
+    wall_outside: dict[str, PlateNodes]
+    wall_inside: dict[str, PlateNodes]
+    boards: dict[str, PlateNodes]
     parts: dict[str, PartNodes]
 
 
@@ -103,12 +130,20 @@ class Network:
         Rise of the nodes whose temperature is given, zero for the others [K], shape (n, v).
     kinds
         The links, one object per kind.
+    sources
+        The heat put in.
+    places
+        Where the things of the description are.
     """
 
     node_labels: tuple[str, ...]
     reference_k: FloatArray
     fixed: BoolArray
     fixed_rise: FloatArray
+    nowhere: int
+    """A node of given temperature that takes up what is no heat: the balances of means."""
+    labels: tuple[LinkLabel, ...]
+    """The labels that links and sources refer to by number."""
     kinds: tuple[LinkKind, ...]
     sources: Sources
     places: Places
@@ -141,25 +176,42 @@ class Network:
         )
 
     @cached_property
-    def _entries(self) -> IntArray:
-        """Flat position in the n x n matrix of every derivative, the leaving ends first."""
-        leaving, entering = [], []
-        for kind, stencil in zip(self.kinds, self._stencils, strict=True):
-            leaving.append((kind.a[None, :] * self.size + stencil).ravel())
-            entering.append((kind.b[None, :] * self.size + stencil).ravel())
-        diagonal = self.sources.node * (self.size + 1)
-        return np.concatenate([*leaving, *entering, diagonal])
+    def _positions(self) -> IntArray:
+        """Place of each node among the unknown ones, -1 for the others, shape (n,)."""
+        positions = np.full(self.size, -1, dtype=np.intp)
+        positions[self.unknown] = np.arange(len(self.unknown))
+        return positions
 
     @cached_property
-    def link_labels(self) -> tuple[LinkLabel, ...]:
-        """Labels of all links, kinds one after the other as in `heat`."""
-        return tuple(label for kind in self.kinds for label in kind.labels)
+    def _entries(self) -> IntArray:
+        """Flat place in the u x u matrix of every derivative, the leaving ends first.
+
+        Derivatives of or by nodes of given temperature go to one place past its end.
+        """
+        u, positions = len(self.unknown), self._positions
+        columns = [positions[stencil] for stencil in self._stencils]
+        rows = [
+            np.broadcast_to(positions[end], column.shape)
+            for ends in ("a", "b")
+            for kind, column in zip(self.kinds, columns, strict=True)
+            for end in (getattr(kind, ends),)
+        ]
+        row = np.concatenate([entry.ravel() for entry in rows])
+        column = np.concatenate([entry.ravel() for entry in columns] * 2)
+        flat = np.where((row >= 0) & (column >= 0), row * u + column, u * u)
+        own = positions[self.sources.node]
+        return np.concatenate((flat, np.where(own >= 0, own * (u + 1), u * u)))
+
+    @cached_property
+    def link_label(self) -> IntArray:
+        """Number of each link's label, kinds one after the other as in `heat`, shape (links,)."""
+        return np.concatenate([kind.label for kind in self.kinds])
 
     @cached_property
     def outgoing(self) -> IntArray:
         """Links that end at a node of given temperature, shape (o,)."""
         a, b = self._ends
-        return np.flatnonzero(self.fixed[a] | self.fixed[b])
+        return np.flatnonzero((self.fixed[a] | self.fixed[b]) & (b != self.nowhere))
 
     def full_rise(self, unknown_rise: FloatArray) -> FloatArray:
         """Fill the given rises in: from shape (u, v) to (n, v)."""
@@ -187,37 +239,38 @@ class Network:
         )
 
     def jacobian(self, rise: FloatArray) -> FloatArray:
-        """Derivative of `imbalance` by every node's rise [W/K], shape (v, n, n)."""
-        parts = [
-            kind.heat_by_rise(rise[stencil], self.reference_k).reshape(-1, rise.shape[1])
-            for kind, stencil in zip(self.kinds, self._stencils, strict=True)
-        ]
-        links = np.concatenate(parts)
+        """Derivative of the unknown nodes' `imbalance` by their rises [W/K], shape (v, u, u)."""
+        links = np.concatenate(
+            [
+                kind.heat_by_rise(rise[stencil], self.reference_k).reshape(-1, rise.shape[1])
+                for kind, stencil in zip(self.kinds, self._stencils, strict=True)
+            ]
+        )
         own = self.sources.heat_by_rise(rise[self.sources.node], self.reference_k)
         values = np.concatenate((links, -links, -own))
-        n = self.size
-        matrices = [
-            np.bincount(self._entries, weights=values[:, v], minlength=n * n).reshape(n, n)
-            for v in range(rise.shape[1])
-        ]
-        return np.stack(matrices)
+        return np.stack([self._matrix(values[:, v]) for v in range(rise.shape[1])])
 
-    def first_guess(self, nominal_rise: float = 10.0) -> FloatArray:
-        """Rises of the linear network whose links behave as they do at a nominal rise [K]."""
-        n, u = self.size, self.unknown
-        laplacian = np.zeros((n, n))
-        for kind, stencil in zip(self.kinds, self._stencils, strict=True):
-            rise = np.where(stencil == kind.b[None, :], 0.0, nominal_rise)[:, :, None]
-            sample = kind.first_variant().heat(rise, self.reference_k[:1])
-            conductance = sample[:, 0] / nominal_rise
-            for one, other in ((kind.a, kind.b), (kind.b, kind.a)):
-                np.add.at(laplacian, (one, one), conductance)
-                np.add.at(laplacian, (one, other), -conductance)
-        sources = self.sources
-        stated = np.broadcast_to(sources.power, (len(sources.node), self.variants))
-        put_in = self._sum_at(sources.node, stated)
-        right = put_in[u] - laplacian[u] @ self.fixed_rise
-        return np.asarray(np.linalg.solve(laplacian[np.ix_(u, u)], right), dtype=np.float64)
+    def first_guess(self) -> FloatArray:
+        """Rises of the linear network whose links behave as at a nominal rise [K], shape (u, v)."""
+        factors = [kind.nominal(self.reference_k[:1]) for kind in self.kinds]
+        links = np.concatenate([factor.ravel() for factor in factors])
+        own = np.zeros(len(self.sources.node))
+        matrix = self._matrix(np.concatenate((links, -links, own)))
+        pulled = np.concatenate(
+            [
+                np.sum(factor * self.fixed_rise[stencil], axis=0)
+                for factor, stencil in zip(factors, self._stencils, strict=True)
+            ]
+        )
+        cold = replace(self.sources, slope=np.zeros(1), doublings=np.zeros(1))
+        right = -replace(self, sources=cold).imbalance(self.fixed_rise, pulled)[self.unknown]
+        return np.asarray(np.linalg.solve(matrix, right), dtype=np.float64)
+
+    def _matrix(self, values: FloatArray) -> FloatArray:
+        """Add derivatives up at their places: shape (u, u)."""
+        u = len(self.unknown)
+        flat = np.bincount(self._entries, values, u * u + 1)
+        return np.asarray(flat[: u * u], dtype=np.float64).reshape(u, u)
 
     def _sum_at(self, node: IntArray, values: FloatArray) -> FloatArray:
         """Add values (e, v) up at their nodes (e,): shape (n, v)."""

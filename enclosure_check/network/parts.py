@@ -1,15 +1,15 @@
 """Builds the parts: junction to case, board, wall and air."""
 
+import numpy as np
+
 from enclosure_check.description.case import Case, PadCase, PartCase
-from enclosure_check.description.frames import AXIS
+from enclosure_check.description.frames import AXIS, OPPOSITE
 from enclosure_check.network.links import LinkLabel
 from enclosure_check.network.network import PartNodes
-from enclosure_check.network.site import InsideSurface, Site, facing_wall, footprint
+from enclosure_check.network.site import InsideSurface, Site, Spot, footprint
 from enclosure_check.network.units import kelvin, metres, metres_3
 from enclosure_check.physics.bodies import cuboid_gravity_function_tilted
 
-# Resistances stated as zero are taken as this, far below what any part of a check can tell. [K/W]
-LEAST_RESISTANCE = 1e-4
 # Air under a body that stands on a board or wall without a stated joint.
 # (common practice, no source) [m]
 BODY_STAND_OFF = 1e-4
@@ -39,37 +39,42 @@ def _build_part(part: PartCase, site: Site) -> None:
         f"{part.name} case",
         LinkLabel(owner, "junction_to_case"),
     )
-    board = None
+    board: Spot | None = None
     if part.place == "board":
         board = _join_board(part, junction, site)
     elif part.place == "wall":
         _join_wall(part, junction, site)
     _join_air(part, case, site)
-    site.parts[part.name] = PartNodes(junction, case, board, site.air)
+    site.parts[part.name] = PartNodes(
+        junction,
+        case,
+        None if board is None else board.node,
+        site.air,
+        0.0 if board is None else board.peak_k_per_w,
+    )
 
 
-def _join_board(part: PartCase, junction: int, site: Site) -> int:
-    """Join a part to its board; gives the node of the board under it."""
+def _join_board(part: PartCase, junction: int, site: Site) -> Spot:
+    """Join a part to its board; gives the spot of the board under it."""
     owner = f"part:{part.name}"
-    plate_node = site.board_sides[part.host, part.side]
-    spot = site.spot(part.host, plate_node, metres_3(part.low_mm), metres_3(part.size_mm), owner)
     if part.theta_jb_k_per_w is not None:
         resistance = part.theta_jb_k_per_w
     else:
         resistance = (part.theta_jc_bottom_k_per_w or 0.0) + _joint(part, site)
-    _conduct(site, junction, spot, resistance, LinkLabel(owner, "to_board"))
+    low, size = metres_3(part.low_mm), metres_3(part.size_mm)
+    spot = site.spot(part.host, site.boards[part.host], low, size, owner, resistance)
+    site.builder.resist(junction, spot.node, resistance, LinkLabel(owner, "to_board"))
     return spot
 
 
 def _join_wall(part: PartCase, junction: int, site: Site) -> None:
     """Join a part that sits on a wall to it."""
-    owner, wall = f"part:{part.name}", facing_wall(part)
-    spot = site.spot(
-        wall, site.wall_inside[wall], metres_3(part.low_mm), metres_3(part.size_mm), owner
-    )
+    owner, wall = f"part:{part.name}", OPPOSITE[part.side]
     joint = _pad_resistance(part.pad) if part.pad is not None else _joint(part, site)
     resistance = (part.theta_jc_bottom_k_per_w or 0.0) + joint
-    _conduct(site, junction, spot, resistance, LinkLabel(owner, "to_wall"))
+    low, size = metres_3(part.low_mm), metres_3(part.size_mm)
+    spot = site.spot(wall, site.wall_inside[wall], low, size, owner, resistance)
+    site.builder.resist(junction, spot.node, resistance, LinkLabel(owner, "to_wall"))
 
 
 def _join_air(part: PartCase, case: int, site: Site) -> None:
@@ -94,17 +99,23 @@ def _join_air(part: PartCase, case: int, site: Site) -> None:
             free -= part.pad.area_mm2 * 1e-6
             _join_pad(part, part.pad, case, site)
         face = site.board_faces[part.host, part.side]
-        builder.plate_film(case, site.air, free, face, convection)
+        builder.plate_film(case, case, site.air, free, face, convection)
     site.surfaces.append(
-        InsideSurface(case, free, part.finish.emissivity, LinkLabel(owner, "radiation_inside"))
+        InsideSurface(
+            np.array([case]),
+            np.array([free]),
+            part.finish.emissivity,
+            LinkLabel(owner, "radiation_inside"),
+        )
     )
 
 
 def _join_pad(part: PartCase, pad: PadCase, case: int, site: Site) -> None:
     owner = f"part:{part.name}"
-    wall_node = site.wall_inside[pad.wall]
-    spot = site.spot(pad.wall, wall_node, metres_3(pad.low_mm), metres_3(pad.size_mm), owner)
-    _conduct(site, case, spot, _pad_resistance(pad), LinkLabel(owner, "pad"))
+    resistance = _pad_resistance(pad)
+    low, size = metres_3(pad.low_mm), metres_3(pad.size_mm)
+    spot = site.spot(pad.wall, site.wall_inside[pad.wall], low, size, owner, resistance)
+    site.builder.resist(case, spot.node, resistance, LinkLabel(owner, "pad"))
 
 
 def _pad_resistance(pad: PadCase) -> float:
@@ -121,8 +132,3 @@ def _joint(part: PartCase, site: Site) -> float:
     if part.theta_jc_bottom_k_per_w is not None and part.place == "board":
         return 0.0
     return BODY_STAND_OFF / (site.air_conductivity * footprint(part))
-
-
-def _conduct(site: Site, a: int, b: int, resistance: float, label: LinkLabel) -> None:
-    """Join two nodes by a resistance, one of nothing by the least there is."""
-    site.builder.conduct(a, b, 1.0 / max(resistance, LEAST_RESISTANCE), label)

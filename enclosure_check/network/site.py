@@ -1,42 +1,37 @@
 """What the builders share while a network is being made: the surroundings, air and surfaces."""
 
 from dataclasses import dataclass, field
-from functools import lru_cache
+
+import numpy as np
 
 from enclosure_check.description.case import Case, PartCase
-from enclosure_check.description.frames import AXIS, OPPOSITE, Vector
+from enclosure_check.description.frames import AXIS, Vector
 from enclosure_check.network.builder import NetworkBuilder, PlaneFace
-from enclosure_check.network.links import LinkLabel
-from enclosure_check.network.network import PartNodes
+from enclosure_check.network.grid import GridOptions, PlateGrid
+from enclosure_check.network.links import FloatArray, IntArray, LinkLabel
+from enclosure_check.network.network import PartNodes, PlateNodes
 from enclosure_check.network.units import kelvin, metres_3
 from enclosure_check.physics.air import air, pressure_at_altitude
-from enclosure_check.physics.conduction import spreading_resistance
 from enclosure_check.physics.plates import fall_length
 from enclosure_check.physics.radiation import sky_temperature_clear
 
-# Film coefficient of both faces of a plate together for the spreading terms, which have to assume
-# one: still air and radiation, two faces of 10 W/m2K. (common practice, no source)
-SPREADING_FILM_W_PER_M2K = 20.0
 
-
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class InsideSurface:
-    """A surface that radiates inside the box."""
+    """A surface that radiates inside the box: its cells and their bare areas [m2]."""
 
-    node: int
-    area: float
+    cells: IntArray
+    area: FloatArray
     emissivity: float
     label: LinkLabel
 
 
 @dataclass(frozen=True)
-class Plate:
-    """A wall or board as the spreading term sees it: two axes, its extent and ``k t``."""
+class Spot:
+    """Where a source meets a plate: its node, and how much hotter its middle is per watt."""
 
-    axes: tuple[int, int]
-    low: Vector
-    size: Vector
-    sheet_conductance: float
+    node: int
+    peak_k_per_w: float
 
 
 @dataclass
@@ -44,6 +39,7 @@ class Site:
     """The network being made, with the nodes every builder needs."""
 
     builder: NetworkBuilder
+    options: GridOptions
     up: Vector
     ambient: int
     radiant: int
@@ -51,18 +47,16 @@ class Site:
     air: int
     radiant_inside: int
     air_conductivity: float
-    covered: dict[str, float]
-    """Area taken away from the faces (by host, or host and side) by parts and pads [m2]."""
     surfaces: list[InsideSurface] = field(default_factory=list)
-    plates: dict[str, Plate] = field(default_factory=dict)
-    wall_outside: dict[str, int] = field(default_factory=dict)
-    wall_inside: dict[str, int] = field(default_factory=dict)
-    board_sides: dict[tuple[str, str], int] = field(default_factory=dict)
+    grids: dict[str, PlateGrid] = field(default_factory=dict)
+    wall_outside: dict[str, PlateNodes] = field(default_factory=dict)
+    wall_inside: dict[str, PlateNodes] = field(default_factory=dict)
+    boards: dict[str, PlateNodes] = field(default_factory=dict)
     board_faces: dict[tuple[str, str], PlaneFace] = field(default_factory=dict)
     parts: dict[str, PartNodes] = field(default_factory=dict)
 
     @classmethod
-    def of(cls, case: Case) -> "Site":
+    def of(cls, case: Case, options: GridOptions) -> "Site":
         """Set up the surroundings and the inside air of a case."""
         around = case.surroundings
         air_k = kelvin(around.air_c)
@@ -76,6 +70,7 @@ class Site:
         }[around.sky]
         return cls(
             builder=builder,
+            options=options,
             up=case.up,
             ambient=builder.node("surrounding air", air_k),
             radiant=builder.node("radiant surroundings", kelvin(around.radiant_c)),
@@ -83,7 +78,6 @@ class Site:
             air=builder.node("inside air"),
             radiant_inside=builder.node("inside radiant mean"),
             air_conductivity=float(air(air_k, pressure).conductivity),
-            covered=_covered(case),
         )
 
     def plane_face(self, size: Vector, axis: int, sign: int) -> PlaneFace:
@@ -96,60 +90,59 @@ class Site:
             up_cosine=sign * self.up[axis],
         )
 
-    def spot(self, host: str, node: int, low: Vector, size: Vector, owner: str) -> int:
-        """Give the node of a spot on a plate, behind the spreading resistance to its mean.
+    def plate(self, label: str, grid: PlateGrid) -> PlateNodes:
+        """Add the cells of a plate's face and their mean, and join the cells along it."""
+        cells = self.builder.nodes(label, grid.counts)
+        mean = self.builder.mean(f"{label}, mean", cells, np.ones(cells.size))
+        return PlateNodes(cells, mean)
+
+    def conduct_along(
+        self, cells: IntArray, grid: PlateGrid, share: float, label: LinkLabel
+    ) -> None:
+        """Join neighbouring cells by the share of the plate's sheet conductance they have."""
+        step_first, step_second = grid.steps
+        for axis, across, along in ((0, step_second, step_first), (1, step_first, step_second)):
+            sheet = np.moveaxis(grid.sheet[axis], axis, 0)
+            nodes = np.moveaxis(cells, axis, 0)
+            between = 2.0 * sheet[1:] * sheet[:-1] / (sheet[1:] + sheet[:-1])
+            self.builder.conduct(nodes[:-1], nodes[1:], share * between * across / along, label)
+
+    def spot(
+        self, host: str, plate: PlateNodes, low: Vector, size: Vector, owner: str, series: float
+    ) -> Spot:
+        """Join a source to the cells it covers; gives the node of the plate under it.
 
         Parameters
         ----------
         host
             Name of the wall or board.
-        node
-            Node of the plate's face.
+        plate
+            The face of it that the source lies on.
         low, size
             Extent of the source in the box frame [m].
         owner
             Whose link it is.
+        series
+            Resistance between the source and the plate [K/W]: where the cells tell too high a
+            temperature for a small source, as much is given back, but never more than this.
         """
-        plate = self.plates[host]
-        first, second = plate.axes
-        resistance = _spreading(
-            size[first],
-            size[second],
-            low[first] + size[first] / 2 - plate.low[first],
-            low[second] + size[second] / 2 - plate.low[second],
-            plate.size[first],
-            plate.size[second],
-            plate.sheet_conductance,
-        )
-        return self.builder.behind(
-            node, resistance, f"{host} under {owner}", LinkLabel(owner, "spreading")
-        )
+        grid = self.grids[host]
+        shares = grid.shares(low, size)
+        hit = shares > 0
+        name = f"{host} under {owner.split(':', 1)[1]}"
+        mean = self.builder.mean(f"{name}, cells", plate.cells[hit], shares[hit])
+        added, peak = grid.sub_cell(low, size)
+        added = max(added, -0.9 * series)
+        if abs(added) < LEAST_SPREADING:
+            added = LEAST_SPREADING
+        node = self.builder.node(name)
+        label = LinkLabel(owner, "spreading")
+        self.builder.spread(node, plate.cells[hit], shares[hit], mean, added, label)
+        return Spot(node, peak)
 
 
-@lru_cache(maxsize=4096)
-def _spreading(
-    a: float, b: float, x: float, y: float, plate_a: float, plate_b: float, sheet: float
-) -> float:
-    """Give a spreading resistance; the same shapes come again under every condition [K/W]."""
-    film = SPREADING_FILM_W_PER_M2K
-    return float(spreading_resistance(a, b, x, y, plate_a, plate_b, sheet, film))
-
-
-def _covered(case: Case) -> dict[str, float]:
-    """Give the area that parts and pads cover, by wall, and by board and side [m2]."""
-    covered: dict[str, float] = {}
-    for part in case.parts.values():
-        if part.place != "air":
-            key = part.host if part.place == "wall" else side_key(part.host, part.side)
-            covered[key] = covered.get(key, 0.0) + footprint(part)
-        if part.pad is not None and part.place == "board":
-            covered[part.pad.wall] = covered.get(part.pad.wall, 0.0) + part.pad.area_mm2 * 1e-6
-    return covered
-
-
-def side_key(board: str, side: str) -> str:
-    """Give the key of a board's side among the covered faces (no wall name has a slash)."""
-    return f"{board}/{side}"
+# A spreading term this small is told from none by nobody. [K/W]
+LEAST_SPREADING = 1e-5
 
 
 def footprint(part: PartCase) -> float:
@@ -157,8 +150,3 @@ def footprint(part: PartCase) -> float:
     size = metres_3(part.size_mm)
     first, second = (axis for axis in range(3) if axis != AXIS[part.side])
     return size[first] * size[second]
-
-
-def facing_wall(part: PartCase) -> str:
-    """Give the wall under a part that sits on a wall."""
-    return OPPOSITE[part.side]

@@ -4,7 +4,7 @@ from collections.abc import Sequence
 
 from enclosure_check.findings.results import ConditionFinding, Report
 from enclosure_check.report.condition import write_condition
-from enclosure_check.report.layout import Cell, Column, Page, counted, digits, listed, tenths
+from enclosure_check.report.layout import Cell, Column, Page, digits, listed, tenths
 from enclosure_check.report.limits import WORDS, Held, limits_of, worst_first
 from enclosure_check.report.options import WriterOptions
 
@@ -61,7 +61,9 @@ def _verdict(page: Page, report: Report, conditions: Sequence[ConditionFinding])
     if worst is not None:
         condition, held = worst
         under = f" under {page.clean(condition.name)}" if named else ""
-        page.paragraph(f"Smallest margin {tenths(held.margin_k)} K: {page.clean(held.label)}{under}.")
+        page.paragraph(
+            f"Smallest margin {tenths(held.margin_k)} K: {page.clean(held.label)}{under}."
+        )
 
 
 def _headline(page: Page, report: Report, conditions: Sequence[ConditionFinding]) -> str:

@@ -4,7 +4,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from enclosure_check.network.links import FloatArray
+from enclosure_check.network.links import FloatArray, IntArray
 from enclosure_check.network.network import Network
 from enclosure_check.solve.steady import Solution
 
@@ -18,7 +18,7 @@ class Sensitivities:
     by_fixed: FloatArray
     """By each given temperature, zero for the unknown nodes [K/K], shape (n,)."""
     by_parameter: tuple[dict[str, FloatArray], ...]
-    """By each link's own parameters, one dictionary per kind [K/unit], shapes (m,)."""
+    """By each parameter of each kind, one dictionary per kind [K/unit], shapes (p,)."""
 
 
 def sensitivities(network: Network, solution: Solution, node: int) -> Sensitivities:
@@ -51,18 +51,29 @@ def sensitivities(network: Network, solution: Solution, node: int) -> Sensitivit
     target = np.zeros(len(unknown))
     target[place[0]] = 1.0
     weight = np.zeros(network.size)
-    weight[unknown] = np.linalg.solve(jacobian[np.ix_(unknown, unknown)].T, target)
-    by_fixed = np.where(network.fixed, -(weight @ jacobian), 0.0)
+    weight[unknown] = np.linalg.solve(jacobian.T, target)
     sources = network.sources
     unit = sources.heat_by_power(rise[sources.node], reference)[:, 0]
+    by_node = np.zeros(network.size)
     by_parameter = []
     for kind in network.kinds:
         ends = rise[kind.stencil]
         between = weight[kind.a] - weight[kind.b]
+        slopes = kind.heat_by_rise(ends, reference)[:, :, 0]
+        np.add.at(by_node, kind.stencil, -between * slopes)
         by_parameter.append(
             {
-                name: -between * kind.heat_by_parameter(ends, reference, name)[:, 0]
+                name: _summed(
+                    kind.parameter_of(name),
+                    -between * kind.heat_by_parameter(ends, reference, name)[:, 0],
+                )
                 for name in kind.PARAMETERS
             }
         )
+    by_fixed = np.where(network.fixed, by_node, 0.0)
     return Sensitivities(weight[sources.node] * unit, by_fixed, tuple(by_parameter))
+
+
+def _summed(index: IntArray, values: FloatArray) -> FloatArray:
+    """Add the links' derivatives up by the parameter they share."""
+    return np.asarray(np.bincount(index, values), dtype=np.float64)

@@ -1,0 +1,162 @@
+"""Plates on a grid of cells: geometry, shares of a footprint, and what cells do not resolve."""
+
+from dataclasses import dataclass
+from functools import cached_property, lru_cache
+
+import numpy as np
+
+from enclosure_check.description.frames import Vector
+from enclosure_check.network.links import FloatArray
+from enclosure_check.physics.conduction import plate_source_rise, spreading_resistance
+
+# Film coefficient of both faces of a plate together for the spreading terms, which have to assume
+# one: still air and radiation, two faces of 10 W/m2K. (common practice, no source)
+SPREADING_FILM_W_PER_M2K = 20.0
+
+
+@dataclass(frozen=True)
+class GridOptions:
+    """How finely plates are divided: cells per plate, near enough, and at least so many a side."""
+
+    board_cells: int = 144
+    wall_cells: int = 9
+    least_per_side: int = 3
+
+
+@dataclass(frozen=True, eq=False)
+class PlateGrid:
+    """A rectangular plate in the box frame divided into equal cells.
+
+    Attributes
+    ----------
+    axes
+        Its two axes in the box frame, in rising order.
+    low, size
+        Its extent in the box frame [m].
+    counts
+        Cells along each axis.
+    sheet
+        Conductivity times thickness of each cell along each axis [W/K], shape (2, n, m).
+    """
+
+    axes: tuple[int, int]
+    low: Vector
+    size: Vector
+    counts: tuple[int, int]
+    sheet: FloatArray
+
+    @cached_property
+    def edges(self) -> tuple[FloatArray, FloatArray]:
+        """Box coordinates of the cells' edges along each axis [m]."""
+        first, second = (
+            self.low[axis] + np.linspace(0.0, self.size[axis], count + 1)
+            for axis, count in zip(self.axes, self.counts, strict=True)
+        )
+        return first, second
+
+    @cached_property
+    def centres(self) -> tuple[FloatArray, FloatArray]:
+        """Box coordinates of the cells' centres along each axis [m]."""
+        first, second = (0.5 * (edge[1:] + edge[:-1]) for edge in self.edges)
+        return first, second
+
+    @property
+    def steps(self) -> tuple[float, float]:
+        """Sizes of a cell along each axis [m]."""
+        first, second = (
+            self.size[axis] / count for axis, count in zip(self.axes, self.counts, strict=True)
+        )
+        return first, second
+
+    @property
+    def cell_area(self) -> float:
+        """Area of a cell [m2]."""
+        first, second = self.steps
+        return first * second
+
+    def overlap(self, low: Vector, size: Vector) -> FloatArray:
+        """Area of a rectangle that lies on each cell [m2], shape ``counts``."""
+        lengths = []
+        for axis, edge in zip(self.axes, self.edges, strict=True):
+            from_, to = low[axis], low[axis] + size[axis]
+            lengths.append(np.maximum(np.minimum(edge[1:], to) - np.maximum(edge[:-1], from_), 0.0))
+        return np.outer(lengths[0], lengths[1])
+
+    def shares(self, low: Vector, size: Vector) -> FloatArray:
+        """Share of a rectangle that lies on each cell, summing to one, shape ``counts``."""
+        area = self.overlap(low, size)
+        return np.asarray(area / area.sum())
+
+    def sub_cell(self, low: Vector, size: Vector) -> tuple[float, float]:
+        """Resistances a source adds to what the cells tell of it [K/W].
+
+        The exact mean rise of an even source on a plate of the sheet conductance under it, less
+        the same on this grid, so that spreading is counted once whatever the cells; and how much
+        hotter the middle of the source is than its mean. The first can be negative, where the
+        source just fills cells that hold it concentrated in their centres.
+        """
+        first, second = self.axes
+        shares = self.shares(low, size)
+        kt = [float(np.sum(sheet * shares)) for sheet in self.sheet]
+        mean = (kt[0] * kt[1]) ** 0.5
+        # An orthotropic plate is an isotropic one with its lengths scaled.
+        stretch = ((mean / kt[0]) ** 0.5, (mean / kt[1]) ** 0.5)
+        shape = (
+            size[first] * stretch[0],
+            size[second] * stretch[1],
+            (low[first] + size[first] / 2 - self.low[first]) * stretch[0],
+            (low[second] + size[second] / 2 - self.low[second]) * stretch[1],
+            self.size[first] * stretch[0],
+            self.size[second] * stretch[1],
+            mean,
+        )
+        exact, peak = _exact(*(float(value) for value in shape))
+        return exact - self._on_grid(shares, kt[0], kt[1]), peak - exact
+
+    def _on_grid(self, shares: FloatArray, kt_first: float, kt_second: float) -> float:
+        """Mean rise over a source above that of the plate, per watt, on the cells themselves."""
+        n, m = self.counts
+        step_first, step_second = self.steps
+        rows, columns = _cosines(n), _cosines(m)
+        spectrum = rows @ shares @ columns.T
+        along_first = kt_first * step_second / step_first * _eigenvalues(n)
+        along_second = kt_second * step_first / step_second * _eigenvalues(m)
+        loss = along_first[:, None] + along_second[None, :]
+        loss = loss + SPREADING_FILM_W_PER_M2K * self.cell_area
+        spectrum[0, 0] = 0.0
+        return float(np.sum(spectrum * spectrum / loss))
+
+
+@lru_cache(maxsize=4096)
+def _exact(
+    a: float, b: float, x: float, y: float, plate_a: float, plate_b: float, sheet: float
+) -> tuple[float, float]:
+    """Mean and centre rise of a source over its plate's mean, per watt [K/W].
+
+    Kept, as the same shapes come again under every condition.
+    """
+    film = SPREADING_FILM_W_PER_M2K
+    mean = float(spreading_resistance(a, b, x, y, plate_a, plate_b, sheet, film))
+    centre = float(plate_source_rise(x, y, a, b, x, y, plate_a, plate_b, sheet, film))
+    return mean, centre - 1.0 / (film * plate_a * plate_b)
+
+
+@lru_cache(maxsize=64)
+def _cosines(count: int) -> FloatArray:
+    """Orthonormal modes of a row of cells with adiabatic ends, shape (count, count)."""
+    modes, places = np.arange(count)[:, None], np.arange(count)[None, :]
+    matrix = np.cos(np.pi * modes * (places + 0.5) / count) * np.sqrt(2.0 / count)
+    matrix[0] *= np.sqrt(0.5)
+    return np.asarray(matrix)
+
+
+@lru_cache(maxsize=64)
+def _eigenvalues(count: int) -> FloatArray:
+    """Eigenvalues of the second difference of a row of cells with adiabatic ends."""
+    return np.asarray(4.0 * np.sin(0.5 * np.pi * np.arange(count) / count) ** 2)
+
+
+def cell_counts(length: float, width: float, cells: int, least: int) -> tuple[int, int]:
+    """Divide a rectangle into about so many cells, as square as can be."""
+    edge = (length * width / cells) ** 0.5
+    return max(round(length / edge), least), max(round(width / edge), least)
