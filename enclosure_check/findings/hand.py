@@ -30,12 +30,8 @@ def hand_estimate(solved: Solved) -> HandEstimate:
     is_open = box.open_faces
     area = float(box.open_area.sum())
     reference = float(solved.network.reference_k[0])
-    rises = np.array(
-        [
-            solved.solution.rise[solved.network.places.wall_outside[wall.name].mean, 0]
-            for wall in walls
-        ]
-    )
+    outside = solved.network.places.wall_outside
+    rises = np.array([solved.solution.rise[outside[wall.name].mean, 0] for wall in walls])
     mean_rise = float(np.sum(rises * box.open_share))
     heat = sum(
         solved.flow(f"wall:{wall.name}", role)

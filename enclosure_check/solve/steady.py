@@ -257,6 +257,7 @@ class State:
 
     @classmethod
     def of(cls, network: Network, x: FloatArray) -> "State":
+        """Evaluate the balance at given rises of the unknown nodes [K], shape (u, v)."""
         rise = network.full_rise(x)
         links = network.heat(rise)
         own = network.imbalance(rise, links)[network.unknown]

@@ -1,0 +1,621 @@
+"""Radiative exchange areas between axis-parallel rectangles in a closed space, with obstruction.
+
+An exchange area is ``A_i F_ij`` [m2]: area times view factor, the same seen from either side.
+Pairs that nothing can come between are exact; the others are the exact unobstructed value times
+the visible share, which is counted with rays that are the same in every run. What is left of the
+closure error is then spread over all entries.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+from typing import NamedTuple
+
+import numpy as np
+import numpy.typing as npt
+from numpy.typing import ArrayLike
+
+FloatArray = npt.NDArray[np.float64]
+IntArray = npt.NDArray[np.intp]
+BoolArray = npt.NDArray[np.bool_]
+
+#: Rays of a pair that an obstacle may come between: with a small view factor, with a large one.
+RAYS_SMALL, RAYS_LARGE = 128, 512
+_LARGE_VIEW = 0.05
+#: Rays traced at once: bounds the memory and keeps the arrays in the cache.
+RAYS_AT_ONCE = 16384
+#: Pairs of patches looked at together, for the same reason.
+PAIRS_AT_ONCE = 4096
+#: Row sums of the consistent exchange areas, relative to the area [-].
+CLOSURE = 1e-13
+# Lengths below this share of the largest coordinate, and ray parameters below it, are rounding.
+_ROUNDING = 1e-9
+_CORRECTIONS = 60
+# Smallest factor of one correction step on an entry: keeps entries above zero.
+_LEAST_FACTOR = 0.2
+# Added to the scaled matrix of the correction, whose lowest eigenvalue is 0 for two groups of
+# patches that see only each other.
+_RIDGE = 1e-10
+_TINY = 1e-300
+_OTHER_AXES = np.array([[1, 2], [0, 2], [0, 1]])
+
+
+@dataclass(frozen=True, eq=False)
+class Rectangles:
+    """Flat patches parallel to the planes of one frame."""
+
+    axis: IntArray
+    """Axis of the normal, 0 to 2, shape (n,)."""
+    sign: FloatArray
+    """Sign of the normal that points into the air, -1 or 1, shape (n,)."""
+    position: FloatArray
+    """Coordinate along the axis of the normal [m], shape (n,)."""
+    low: FloatArray
+    """Lower ends along the two other axes in rising order [m], shape (n, 2)."""
+    high: FloatArray
+    """Upper ends along the two other axes in rising order [m], shape (n, 2)."""
+
+    def __post_init__(self) -> None:
+        n = self.axis.size
+        flat = self.axis.shape == self.sign.shape == self.position.shape == (n,)
+        if not flat or self.low.shape != (n, 2) or self.high.shape != (n, 2):
+            raise ValueError(
+                "fields of Rectangles have the shapes (n,), (n,), (n,), (n, 2), (n, 2)"
+            )
+        if not np.isin(self.axis, (0, 1, 2)).all() or not np.isin(self.sign, (-1, 1)).all():
+            raise ValueError("axis of a rectangle is 0, 1 or 2, its sign -1 or 1")
+        if not (np.isfinite(self.position).all() and _ordered(self.low, self.high)):
+            raise ValueError("rectangles need finite coordinates with low <= high")
+
+    @property
+    def area(self) -> FloatArray:
+        """Areas [m2], shape (n,)."""
+        return np.asarray(np.prod(self.high - self.low, axis=1))
+
+    @property
+    def corners(self) -> FloatArray:
+        """Lowest and highest corner in all three coordinates [m], shape (n, 2, 3)."""
+        corners = np.empty((self.axis.size, 2, 3))
+        ends = np.stack((self.low, self.high), axis=1)
+        np.put_along_axis(corners, _OTHER_AXES[self.axis][:, None, :], ends, axis=2)
+        np.put_along_axis(corners, self.axis[:, None, None], self.position[:, None, None], axis=2)
+        return corners
+
+
+@dataclass(frozen=True, eq=False)
+class Boxes:
+    """Opaque cuboids parallel to the frame; one without thickness is an opaque sheet."""
+
+    low: FloatArray
+    """Lowest corners [m], shape (m, 3)."""
+    high: FloatArray
+    """Highest corners [m], shape (m, 3)."""
+
+    def __post_init__(self) -> None:
+        if self.low.ndim != 2 or self.low.shape[1] != 3 or self.high.shape != self.low.shape:
+            raise ValueError("low and high of Boxes have the shape (m, 3)")
+        if not _ordered(self.low, self.high):
+            raise ValueError("boxes need finite coordinates with low <= high")
+
+
+def _ordered(low: FloatArray, high: FloatArray) -> bool:
+    return bool(np.isfinite(low).all() and np.isfinite(high).all() and (low <= high).all())
+
+
+def parallel_rectangles(
+    low_1: ArrayLike, high_1: ArrayLike, low_2: ArrayLike, high_2: ArrayLike, distance: ArrayLike
+) -> FloatArray:
+    """Exchange area of two parallel rectangles that face each other, sides parallel.
+
+    With ``u`` the differences of the ends along the first axis, ``v`` along the second and ``z``
+    the distance, the sum over the sixteen pairs of corners, with alternating sign, of::
+
+        1/(2 pi) [ v w atan(v/w) + u t atan(u/t) - z**2/2 ln(u**2 + v**2 + z**2) ]
+        w = sqrt(u**2 + z**2),  t = sqrt(v**2 + z**2)
+
+    Parameters
+    ----------
+    low_1, high_1, low_2, high_2 : array_like, shape (..., 2)
+        Ends of the rectangles along the two axes of their planes [m], low <= high.
+    distance : array_like, shape (...)
+        Distance of the planes [m], not negative.
+
+    Returns
+    -------
+    ndarray, shape (...)
+        Exchange area ``A_1 F_12`` [m2]: the overlapping area at distance zero, zero where a
+        rectangle has no area.
+
+    Notes
+    -----
+    Exact. Rounding leaves some 1e-15 times the square of the largest difference [m2].
+
+    References
+    ----------
+    J. R. Ehlert, T. F. Smith, "View factors for perpendicular and parallel rectangular plates",
+    J. Thermophys. Heat Transfer 7 (1993) 173-175 (from memory); J. R. Howell, A Catalog of
+    Radiation Heat Transfer Configuration Factors, C-13 (from memory).
+    """
+    u = _corner_differences(low_1, high_1, low_2, high_2, 0)[..., :, None]
+    v = _corner_differences(low_1, high_1, low_2, high_2, 1)[..., None, :]
+    z2 = np.square(np.asarray(distance, dtype=np.float64))[..., None, None]
+    w, t = np.sqrt(u * u + z2), np.sqrt(v * v + z2)
+    square = u * u + t * t
+    terms = v * w * np.arctan2(v, w) + u * t * np.arctan2(u, t)
+    terms = terms - 0.5 * z2 * np.log(_relative(square))
+    return _sum_corners(terms * (_DIFFERENCE_SIGN[:, None] * _DIFFERENCE_SIGN))
+
+
+def perpendicular_rectangles(
+    along_1: ArrayLike, away_1: ArrayLike, along_2: ArrayLike, away_2: ArrayLike
+) -> FloatArray:
+    """Exchange area of two rectangles at right angles, sides parallel to the line of their planes.
+
+    With ``v`` the differences of the ends along the line in which the two planes meet, and ``x``
+    and ``y`` the distances of the ends from it, the sum over the sixteen combinations, with
+    alternating sign, of::
+
+        1/(2 pi) [ v w atan(v/w) - (w**2 - v**2)/4 ln(w**2 + v**2) ],  w = sqrt(x**2 + y**2)
+
+    Parameters
+    ----------
+    along_1, along_2 : array_like, shape (..., 2)
+        Low and high end of each rectangle along the line where the planes meet [m].
+    away_1, away_2 : array_like, shape (..., 2)
+        Low and high end of each rectangle away from that line, counted to the side that the other
+        one faces [m]; what lies on the negative side is not seen and cut off.
+
+    Returns
+    -------
+    ndarray, shape (...)
+        Exchange area ``A_1 F_12`` [m2]; zero where nothing is left of a rectangle.
+
+    Notes
+    -----
+    Exact. Rounding leaves some 1e-15 times the square of the largest distance [m2].
+
+    References
+    ----------
+    As `parallel_rectangles`; D. C. Hamilton, W. R. Morgan, NACA TN 2836 (1952) (from memory);
+    Howell's catalogue C-15 and, with a common edge, C-14 (from memory).
+    """
+    one, two = (np.asarray(x, dtype=np.float64) for x in (along_1, along_2))
+    v = _corner_differences(one[..., :1], one[..., 1:], two[..., :1], two[..., 1:], 0)
+    v = v[..., None, :]
+    x, y = (np.maximum(np.asarray(a, dtype=np.float64), 0.0) for a in (away_1, away_2))
+    w2 = (np.square(x)[..., :, None] + np.square(y)[..., None, :]).reshape(
+        *np.broadcast_shapes(x.shape[:-1], y.shape[:-1]), 4, 1
+    )
+    w = np.sqrt(w2)
+    v2 = v * v
+    terms = v * w * np.arctan2(v, w) - 0.25 * (w2 - v2) * np.log(_relative(w2 + v2))
+    return _sum_corners(terms * (_AWAY_SIGN[:, None] * _DIFFERENCE_SIGN))
+
+
+_DIFFERENCE_SIGN = np.array([1.0, -1.0, -1.0, 1.0])
+_AWAY_SIGN = np.array([1.0, -1.0, -1.0, 1.0])
+
+
+def _corner_differences(
+    low_1: ArrayLike, high_1: ArrayLike, low_2: ArrayLike, high_2: ArrayLike, axis: int
+) -> FloatArray:
+    """Differences low-low, low-high, high-low, high-high along one axis, shape (..., 4)."""
+    ends = [np.asarray(x, dtype=np.float64)[..., axis] for x in (low_1, high_1, low_2, high_2)]
+    return np.stack([a - b for a in ends[:2] for b in ends[2:]], axis=-1)
+
+
+def _relative(square: FloatArray) -> FloatArray:
+    """Squares over the largest of their pair, one where they are zero: log(0) comes times zero."""
+    largest = square.max(axis=(-2, -1), keepdims=True)
+    return np.asarray(np.where(square > 0.0, square, 1.0) / np.where(largest > 0.0, largest, 1.0))
+
+
+def _sum_corners(terms: FloatArray) -> FloatArray:
+    total: FloatArray = terms.sum(axis=(-2, -1)) / (2.0 * np.pi)
+    return np.maximum(total, 0.0)
+
+
+class _Pairs(NamedTuple):
+    """Pairs of patches that face each other, each in a frame of its own.
+
+    The third axis is the normal of the first patch, counted from it. Parallel patches: the second
+    lies at a distance along it. Perpendicular ones: the first axis is the line where the planes
+    meet, the second leads away from the plane of the second patch; both are cut to what the other
+    can see.
+    """
+
+    first: IntArray
+    second: IntArray
+    parallel: BoolArray
+    axes: IntArray
+    """Axes of the patches' frame that make up the frame of the pair, shape (k, 3)."""
+    flip: FloatArray
+    """Signs of these axes, shape (k, 3)."""
+    origin: FloatArray
+    """Origin of the frame of the pair on the axes of ``axes``, shape (k, 3)."""
+    ends: FloatArray
+    """Low and high corner of the first and the second patch [m], shape (k, 2, 2, 3)."""
+
+    def take(self, chosen: BoolArray | slice) -> _Pairs:
+        """Some of the pairs."""
+        return _Pairs(
+            self.first[chosen],
+            self.second[chosen],
+            self.parallel[chosen],
+            self.axes[chosen],
+            self.flip[chosen],
+            self.origin[chosen],
+            self.ends[chosen],
+        )
+
+    def turned(self, corners: FloatArray) -> FloatArray:
+        """Corners (k or 1, m, 2, 3) in the frames of the pairs, (k, m, 2, 3)."""
+        axes, flip, origin = (x[:, None, None, :] for x in (self.axes, self.flip, self.origin))
+        return np.sort(flip * (np.take_along_axis(corners, axes, axis=3) - origin), axis=2)
+
+
+def _facing_pairs(patches: Rectangles) -> _Pairs:
+    """Pairs of patches that see each other, if nothing stands between."""
+    first, second = np.triu_indices(patches.axis.size, 1)
+    parallel = patches.axis[first] == patches.axis[second]
+    k, other = ~parallel, second[patches.axis[first] != patches.axis[second]]
+    axes = np.column_stack((_OTHER_AXES[patches.axis[first]], patches.axis[first]))
+    axes[k, 0], axes[k, 1] = 3 - axes[k, 2] - patches.axis[other], patches.axis[other]
+    flip, origin = np.ones(axes.shape), np.zeros(axes.shape)
+    flip[:, 2], origin[:, 2] = patches.sign[first], patches.position[first]
+    flip[k, 1], origin[k, 1] = patches.sign[other], patches.position[other]
+    pairs = _Pairs(first, second, parallel, axes, flip, origin, np.empty(0))
+    corners = patches.corners
+    ends = pairs.turned(np.stack((corners[first], corners[second]), axis=1))
+    ends[k, 0, :, 1] = np.maximum(ends[k, 0, :, 1], 0.0)
+    ends[k, 1, :, 2] = np.maximum(ends[k, 1, :, 2], 0.0)
+
+    extent = ends[:, :, 1] - ends[:, :, 0]
+    second_seen = np.where(
+        parallel,
+        (extent[:, 1, 1] > 0.0)
+        & (ends[:, 1, 0, 2] > 0.0)
+        & (patches.sign[first] != patches.sign[second]),
+        extent[:, 1, 2] > 0.0,
+    )
+    seen = second_seen & (extent[:, 0, :2] > 0.0).all(axis=1) & (extent[:, 1, 0] > 0.0)
+    return pairs._replace(ends=ends).take(seen)
+
+
+def _parallel_exchange(ends: FloatArray) -> FloatArray:
+    corners = ends[..., :2]
+    (low_1, high_1), (low_2, high_2) = ((corners[:, i, 0], corners[:, i, 1]) for i in range(2))
+    return parallel_rectangles(low_1, high_1, low_2, high_2, ends[:, 1, 0, 2])
+
+
+def _perpendicular_exchange(ends: FloatArray) -> FloatArray:
+    one, two = ends[:, 0], ends[:, 1]
+    return perpendicular_rectangles(one[..., 0], one[..., 1], two[..., 0], two[..., 2])
+
+
+def _parallel_hull_meets(ends: FloatArray, boxes: FloatArray) -> BoolArray:
+    """Whether boxes reach into the outline of the hull, whose sides run straight, (k, m)."""
+    share = np.clip(boxes[..., 2] / ends[:, None, 1, :1, 2], 0.0, 1.0)[..., None]
+    start, span = ends[:, None, None, 0, :, :2], (ends[:, 1] - ends[:, 0])[:, None, None, :, :2]
+    sides = start + span * share[..., None]
+    low, high = sides[..., 0, :].min(axis=2), sides[..., 1, :].max(axis=2)
+    meets = (boxes[..., 0, :2] < high) & (boxes[..., 1, :2] > low)
+    return np.asarray(meets.all(axis=-1))
+
+
+def _perpendicular_hull_meets(ends: FloatArray, boxes: FloatArray) -> BoolArray:
+    """Whether boxes reach between the lines that join the near and the far edges, (k, m)."""
+    (x_near, x_far), (y_near, y_far) = ends[:, 0, :, 1].T, ends[:, 1, :, 2].T
+    (x_low, y_low), (x_high, y_high) = (np.maximum(boxes[..., i, 1:], 0.0).T for i in range(2))
+    below_far = x_low * y_far + y_low * x_far < x_far * y_far
+    above_near = x_high * y_near + y_high * x_near >= x_near * y_near
+    return np.asarray((below_far & above_near).T)
+
+
+def _hammersley(count: int) -> FloatArray:
+    """Hammersley points in four dimensions, shape (4, count), all inside 0 to 1.
+
+    J. M. Hammersley, "Monte Carlo methods for solving multivariable problems", Ann. New York
+    Acad. Sci. 86 (1960) 844-874 (from memory); radical inverses in the bases 2, 3 and 5.
+    """
+    points = np.zeros((4, count))
+    points[0] = (np.arange(count) + 0.5) / count
+    for row, base in zip(points[1:], (2, 3, 5), strict=True):
+        rest, digit = np.arange(1, count + 1), 1.0 / base
+        while rest.any():
+            row += digit * (rest % base)
+            rest, digit = rest // base, digit / base
+    return points
+
+
+def _points_along(
+    ends: FloatArray, scale: FloatArray, u: FloatArray, v: FloatArray
+) -> tuple[FloatArray, FloatArray, FloatArray]:
+    """Points on the first of two intervals (k, 2, 2), steps to the second one, and weights.
+
+    Uniform on the shorter one; on the longer one uniform in the angle under which it is seen from
+    there at the distance ``scale``.
+    """
+    swap = np.ptp(ends[:, 0], axis=1) > np.ptp(ends[:, 1], axis=1)
+    short, long = (np.where(swap[:, None], ends[:, i], ends[:, 1 - i]) for i in (1, 0))
+    near = short[:, :1] + u * (short[:, 1:] - short[:, :1])
+    from_angle = np.arctan((long[:, :1] - near) / scale)
+    angle = np.arctan((long[:, 1:] - near) / scale) - from_angle
+    slope = np.tan(from_angle + v * angle)
+    step = scale * slope
+    weight = angle * scale * (1.0 + slope * slope)
+    swap = swap[:, None]
+    return np.where(swap, near + step, near), np.where(swap, -step, step), weight
+
+
+def _points_away(
+    ends: FloatArray, near: FloatArray, u: FloatArray
+) -> tuple[FloatArray, FloatArray]:
+    """Points away from the line where two planes meet, denser towards it, and their weights.
+
+    Uniform in the square root of the distance plus ``near``, the distance of the patches from the
+    line: close to it the kernel grows as one over the distance.
+    """
+    root = np.sqrt(ends + near)
+    span = root[:, 1:] - root[:, :1]
+    root = root[:, :1] + u * span
+    return np.maximum(root * root - near, 0.0), root * span
+
+
+_Rays = tuple[FloatArray, FloatArray, FloatArray]
+
+
+def _parallel_rays(ends: FloatArray, points: FloatArray) -> _Rays:
+    """Starts and lengths along the axes, (3, k, rays), and weights, (k, rays).
+
+    A weight is the kernel over the density of the points, but for a factor common to the pair.
+    """
+    a, b, c, d = points[:, None, :]
+    z = ends[:, 1, :1, 2]
+    p, dp, p_weight = _points_along(ends[..., 0], z, a, b)
+    q, dq, q_weight = _points_along(ends[..., 1], z, c, d)
+    weight = p_weight * q_weight / np.square(dp * dp + dq * dq + z * z)
+    return np.stack((p, q, 0.0 * p)), np.stack((dp, dq, z + 0.0 * p)), weight
+
+
+def _perpendicular_rays(ends: FloatArray, points: FloatArray) -> _Rays:
+    """As `_parallel_rays`."""
+    a, b, c, d = points[:, None, :]
+    near = np.hypot(ends[:, 0, :1, 1], ends[:, 1, :1, 2])
+    x, x_weight = _points_away(ends[:, 0, :, 1], near, c)
+    y, y_weight = _points_away(ends[:, 1, :, 2], near, d)
+    r2 = x * x + y * y
+    p, dp, p_weight = _points_along(ends[..., 0], np.sqrt(r2), a, b)
+    weight = p_weight * x_weight * y_weight * x * y / np.square(dp * dp + r2)
+    return np.stack((p, x, 0.0 * x)), np.stack((dp, -x, y)), weight
+
+
+class _Kind(NamedTuple):
+    """What parallel and perpendicular pairs do differently."""
+
+    exchange: Callable[[FloatArray], FloatArray]
+    hull_meets: Callable[[FloatArray, FloatArray], BoolArray]
+    rays: Callable[[FloatArray, FloatArray], _Rays]
+
+
+_PARALLEL = _Kind(_parallel_exchange, _parallel_hull_meets, _parallel_rays)
+_PERPENDICULAR = _Kind(_perpendicular_exchange, _perpendicular_hull_meets, _perpendicular_rays)
+
+
+def _may_obstruct(kind: _Kind, ends: FloatArray, boxes: FloatArray, rounding: float) -> BoolArray:
+    """Boxes whose inside may meet the convex hull of a pair, shape (k, m)."""
+    low, high = ends.min(axis=(1, 2))[:, None], ends.max(axis=(1, 2))[:, None]
+    meets = (boxes[:, :, 0] < high - rounding) & (boxes[:, :, 1] > low + rounding)
+    return np.asarray(meets.all(axis=2) & kind.hull_meets(ends, boxes))
+
+
+def _visible_share(
+    kind: _Kind, ends: FloatArray, boxes: FloatArray, candidates: BoolArray, rays: int
+) -> FloatArray:
+    """Kernel-weighted share of the rays of each pair that no candidate cuts, shape (k,).
+
+    Segments against boxes by the slab method (T. L. Kay, J. T. Kajiya, "Ray tracing complex
+    scenes", SIGGRAPH 1986, from memory). One that leaves or reaches a box at its own end is not
+    cut by it.
+    """
+    points = _hammersley(rays)
+    share = np.empty(ends.shape[0])
+    step = max(1, RAYS_AT_ONCE // rays)
+    for begin in range(0, share.size, step):
+        part = slice(begin, begin + step)
+        start, along, weight = kind.rays(ends[part], points)
+        inverse = 1.0 / np.where(along == 0.0, _TINY, along)
+        cut = np.zeros(weight.shape, dtype=np.bool_)
+        for box in np.flatnonzero(candidates[part].any(axis=0)):
+            k = np.flatnonzero(candidates[part, box])
+            faces = boxes[part][k, box].transpose(1, 2, 0)[..., None]
+            one, two = (faces - start[:, k]) * inverse[:, k]
+            enter = np.minimum(one, two).max(axis=0)
+            leave = np.maximum(one, two).min(axis=0)
+            cut[k] |= (enter <= leave) & (leave > _ROUNDING) & (enter < 1.0 - _ROUNDING)
+        share[part] = 1.0 - np.sum(weight * cut, axis=1) / weight.sum(axis=1)
+    return np.clip(share, 0.0, 1.0)
+
+
+def exposed_areas(patches: Rectangles, obstacles: Boxes) -> FloatArray:
+    """Areas of the patches that no obstacle lies on.
+
+    Parameters
+    ----------
+    patches : Rectangles
+        Patches, n of them.
+    obstacles : Boxes
+        Opaque bodies that do not overlap each other, m of them; none may be given.
+
+    Returns
+    -------
+    ndarray, shape (n,)
+        Areas [m2]: the whole one less the footprints of what touches the patch on its air side or
+        stands in its plane.
+    """
+    rest = patches.area
+    if obstacles.low.shape[0] == 0:
+        return rest
+    low, high = (x[:, patches.axis].T for x in (obstacles.low, obstacles.high))
+    position = patches.position[:, None]
+    rounding = _ROUNDING * max(float(np.ptp(low)), float(np.ptp(high)))
+    above = np.where(patches.sign[:, None] > 0, high - position, position - low)
+    below = np.where(patches.sign[:, None] > 0, position - low, high - position)
+    covers = (above > rounding) & (below > -rounding)
+    footprint = np.ones(covers.shape)
+    for k in range(2):
+        axis = _OTHER_AXES[patches.axis, k]
+        upper = np.minimum(patches.high[:, k, None], obstacles.high[:, axis].T)
+        lower = np.maximum(patches.low[:, k, None], obstacles.low[:, axis].T)
+        footprint *= np.maximum(upper - lower, 0.0)
+    exposed = rest - np.where(covers, footprint, 0.0).sum(axis=1)
+    return np.where(exposed > _ROUNDING * rest, exposed, 0.0)
+
+
+def visible_exchange_areas(patches: Rectangles, obstacles: Boxes) -> FloatArray:
+    """Exchange areas past the obstacles, before closure.
+
+    Parameters
+    ----------
+    patches, obstacles
+        As `exchange_areas`; the patches need not enclose a space.
+
+    Returns
+    -------
+    ndarray, shape (n, n)
+        Symmetric exchange areas ``A_i F_ij`` [m2]. Exact for pairs that no obstacle can come
+        between. Else the exact unobstructed value times the visible share of the kernel
+        ``cos cos / (pi r**2)``, counted with the same rays in every run.
+
+    Notes
+    -----
+    Error of the counted ones as a share of the smaller area, against 16384 rays in boxes with up
+    to three boards: root mean square 0.002, largest 0.006 (numerical experiment made for this
+    project). The rays of a pair have no symmetry: mirrored pairs differ by as much.
+    """
+    exchange = np.zeros((patches.axis.size, patches.axis.size))
+    area, corners = patches.area, patches.corners
+    if area.size < 2:
+        return exchange
+    rounding = _ROUNDING * float(np.ptp(corners, axis=(0, 1)).max())
+    obstacle_corners = np.stack((obstacles.low, obstacles.high), axis=1)[None]
+    facing = _facing_pairs(patches)
+    for kind, of_kind in ((_PARALLEL, facing.parallel), (_PERPENDICULAR, ~facing.parallel)):
+        all_pairs = facing.take(of_kind)
+        for begin in range(0, all_pairs.first.size, PAIRS_AT_ONCE):
+            pairs = all_pairs.take(slice(begin, begin + PAIRS_AT_ONCE))
+            value = kind.exchange(pairs.ends)
+            boxes = pairs.turned(obstacle_corners)
+            candidates = _may_obstruct(kind, pairs.ends, boxes, rounding)
+            uncertain = candidates.any(axis=1)
+            view = value / np.minimum(area[pairs.first], area[pairs.second])
+            for chosen, rays in (
+                (uncertain & (view <= _LARGE_VIEW), RAYS_SMALL),
+                (uncertain & (view > _LARGE_VIEW), RAYS_LARGE),
+            ):
+                value[chosen] *= _visible_share(
+                    kind, pairs.ends[chosen], boxes[chosen], candidates[chosen], rays
+                )
+            exchange[pairs.first, pairs.second] = value
+    return exchange + exchange.T
+
+
+def consistent_exchange_areas(exchange: ArrayLike, area: ArrayLike) -> FloatArray:
+    """Exchange areas with exact closure and reciprocity, from inexact ones.
+
+    Of all symmetric corrections that make row i sum to ``A_i``, the one with the least sum of
+    squares over the entries corrected: ``x_ij (1 + l_i + l_j)``, where the multipliers l solve
+    ``(D + X) l = A - D`` with D the row sums. Shortened where it would turn an entry negative, and
+    repeated until the rows close.
+
+    Parameters
+    ----------
+    exchange : array_like, shape (n, n)
+        Exchange areas [m2], not negative; the mean with the transpose is taken.
+    area : array_like, shape (n,)
+        Areas that the rows shall sum to [m2].
+
+    Returns
+    -------
+    ndarray, shape (n, n)
+        Exactly symmetric, not negative; rows sum to the area within 1e-12 of it. Zeros stay zero,
+        so a row of zeros stays one.
+
+    Raises
+    ------
+    ValueError
+        If no correction closes the rows: the patches do not enclose a space.
+
+    References
+    ----------
+    J. van Leersum, "A method for determining a consistent set of radiation view factors from a set
+    generated by a nonexact method", Int. J. Heat Fluid Flow 10 (1989) 83-85, for the aim and the
+    repetition; M. E. Larsen, J. R. Howell, "Least-squares smoothing of direct-exchange areas in
+    zonal analysis", J. Heat Transfer 108 (1986) 239-242, for the multipliers (both from memory;
+    the weights are chosen here).
+    """
+    x = np.asarray(exchange, dtype=np.float64)
+    x = 0.5 * (x + x.T)
+    seen = x.sum(axis=1) > 0.0
+    target = np.asarray(area, dtype=np.float64)[seen]
+    x = x[np.ix_(seen, seen)]
+    linked = x > 0.0
+    if not (target > 0.0).all():
+        raise ValueError("a patch without area has exchange areas above zero")
+    scale = 1.0 / np.sqrt(target)
+    for _ in range(_CORRECTIONS):
+        missing = target - x.sum(axis=1)
+        if (np.abs(missing) <= CLOSURE * target).all():
+            break
+        matrix = scale[:, None] * x * scale
+        matrix[np.diag_indices_from(matrix)] += x.sum(axis=1) / target + _RIDGE
+        multiplier = scale * np.linalg.solve(matrix, scale * missing)
+        change = multiplier[:, None] + multiplier
+        least = float(np.min(change, where=linked, initial=0.0))
+        x = x * (1.0 + change * min(1.0, (_LEAST_FACTOR - 1.0) / min(least, -1e-9)))
+    else:
+        worst = float(np.max(np.abs(target - x.sum(axis=1)) / target))
+        raise ValueError(
+            f"exchange areas do not close: a row misses {worst:.1%} of its area; "
+            "the patches do not enclose a space"
+        )
+    closed = np.zeros((seen.size, seen.size))
+    closed[np.ix_(seen, seen)] = x
+    return closed
+
+
+def exchange_areas(patches: Rectangles, obstacles: Boxes) -> FloatArray:
+    """Consistent exchange areas between all patches of a closed space.
+
+    Parameters
+    ----------
+    patches : Rectangles
+        Patches, n of them, which together bound the air: walls and both sides of what stands in
+        it. What is left out is made up for by the others, in proportion.
+    obstacles : Boxes
+        Opaque bodies, m of them (0 allowed). Patches may lie on their faces.
+
+    Returns
+    -------
+    ndarray, shape (n, n)
+        Symmetric exchange areas ``A_i F_ij`` [m2], not negative. Row i sums to the exposed area of
+        patch i (`exposed_areas`; the whole area where nothing stands on it), to 1e-12 of it. A
+        patch that sees nothing, or has no area, keeps a row of zeros.
+
+    Raises
+    ------
+    ValueError
+        As `consistent_exchange_areas`.
+
+    Notes
+    -----
+    `visible_exchange_areas`, then `consistent_exchange_areas`. Diffuse surfaces, each patch of one
+    radiosity; the air takes no part.
+    """
+    exposed = exposed_areas(patches, obstacles)
+    exchange = visible_exchange_areas(patches, obstacles)
+    covered = exposed == 0.0
+    exchange[covered] = 0.0
+    exchange[:, covered] = 0.0
+    return consistent_exchange_areas(exchange, exposed)
