@@ -37,6 +37,20 @@ class Sources:
         """Whether any power depends on temperature."""
         return bool(np.any(self.slope != 0) or np.any(self.doublings != 0))
 
+    @cached_property
+    def growing(self) -> BoolArray:
+        """Whether each power grows with temperature, shape (s, 1)."""
+        return (self.slope > 0) | (self.doublings > 0)
+
+    def held(self, rise: FloatArray, reference_k: FloatArray) -> "Sources":
+        """Give the same sources, those that grow held at what they put in at given rises (s, v)."""
+        return replace(
+            self,
+            power=np.where(self.growing, self.heat(rise, reference_k), self.power),
+            slope=np.where(self.growing, 0.0, self.slope),
+            doublings=np.where(self.growing, 0.0, self.doublings),
+        )
+
     def heat(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
         """Heat put in [W], shape (s, v)."""
         if not self.by_temperature:

@@ -3,9 +3,14 @@
 Knows residuals and Jacobians only. Each step solves ``(J + mu D) d = -r`` with D the size of J's
 diagonal: ``mu = 0`` is Newton's step; a step that does not lessen the imbalance is taken back and
 ``mu`` raised, which turns the iteration into steps of a pseudo-time.
+
+Power that grows with temperature may allow several steady states; the lowest is the one a box
+comes to from cold, so it is approached from below. Power held at what it is at lower temperatures
+gives lower temperatures again: from there Newton is tried, and where that does not lead to a
+stable state the power is held at the temperatures found, and so on until it does or none is left.
 """
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from enum import Enum
 
 import numpy as np
@@ -28,6 +33,10 @@ class Outcome(Enum):
     STALLED = (
         "no step lessens the imbalance any more. Check the part named for a power or resistance "
         "that is out of scale"
+    )
+    TOO_HOT = (
+        "no steady temperatures within thousands of kelvin of the surroundings. Check the part or "
+        "board named for a power or resistance that is out of scale"
     )
     TOO_MANY_STEPS = (
         "not balanced within the steps allowed. Check the part named for a power or resistance "
@@ -64,14 +73,39 @@ class Solution:
     worst_imbalance_w: FloatArray
     """Largest imbalance of a node [W], shape (v,)."""
     worst_node: IntArray
-    """Where it is, shape (v,)."""
+    """Where it is; the hottest node where the outcome is TOO_HOT, shape (v,)."""
     heat_w: FloatArray
     """Heat that flows: power, sun and exchange with the surroundings [W], shape (v,)."""
 
     @property
     def converged(self) -> bool:
         """Whether every variant converged."""
-        return all(outcome is Outcome.CONVERGED for outcome in self.outcome)
+        return bool(self.each_converged.all())
+
+    @property
+    def each_converged(self) -> BoolArray:
+        """Whether each variant converged, shape (v,)."""
+        return np.array([outcome is Outcome.CONVERGED for outcome in self.outcome])
+
+    def after(self, other: "Solution") -> "Solution":
+        """Count the steps of the solution this one started from as well."""
+        return replace(
+            self, steps=self.steps + other.steps, fallbacks=self.fallbacks + other.fallbacks
+        )
+
+    def improved(self, later: "Solution") -> "Solution":
+        """Give the variants that converged here, and the others as they are in a later solution."""
+        keep = self.each_converged
+        both = zip(keep, self.outcome, later.outcome, strict=True)
+        return Solution(
+            rise=np.where(keep, self.rise, later.rise),
+            outcome=tuple(one if kept else other for kept, one, other in both),
+            steps=np.where(keep, self.steps, self.steps + later.steps),
+            fallbacks=np.where(keep, self.fallbacks, self.fallbacks + later.fallbacks),
+            worst_imbalance_w=np.where(keep, self.worst_imbalance_w, later.worst_imbalance_w),
+            worst_node=np.where(keep, self.worst_node, later.worst_node),
+            heat_w=np.where(keep, self.heat_w, later.heat_w),
+        )
 
 
 # What is left of the balance when all is rounding: heat below this is not told from none. [W]
@@ -79,6 +113,10 @@ LEAST_HEAT_W = 1e-4
 # Regularisation of a step that did not help: the first try, its growth and the way back to none.
 _FIRST_MU, _MU_GROWTH, _MU_DECAY, _LEAST_MU = 1e-3, 8.0, 0.1, 1e-6
 _LARGEST_MU = 1e9
+# The linear guess is not believed beyond this. [K]
+_FARTHEST_GUESS_K = 1_000.0
+# How often growing power is held and let go before no steady state is believed in.
+_MOST_HOLDS = 60
 
 
 def solve_steady(
@@ -91,7 +129,7 @@ def solve_steady(
     network
         The network, for v variants.
     start
-        Rises of the unknown nodes to start from [K], shape (u, v); a linear guess when left out.
+        Rises of the unknown nodes to start from [K], shape (u, v); found out when left out.
     options
         Tolerances and bounds.
 
@@ -101,8 +139,54 @@ def solve_steady(
         Also when a variant did not converge: its ``outcome`` says so.
     """
     options = options or SolveOptions()
+    if not network.sources.growing.any():
+        return _newton(network, _guess(network) if start is None else start, options)
+    if start is not None:
+        solution = _newton(network, start, options)
+        if solution.converged:
+            return solution
+    return _from_below(network, options)
+
+
+def _guess(network: Network) -> FloatArray:
+    return np.clip(network.first_guess(), -_FARTHEST_GUESS_K, _FARTHEST_GUESS_K)
+
+
+def _from_below(network: Network, options: SolveOptions) -> Solution:
+    """Find the lowest steady state of a network with power that grows with temperature."""
+    sources, reference = network.sources, network.reference_k
+    # Without power no node would be colder than the coldest of the surroundings.
+    coldest = np.minimum(network.fixed_rise.min(axis=0), 0.0)
+    rise = np.broadcast_to(coldest, (network.size, network.variants))
+    start = _guess(network)
+    best: Solution | None = None
+    runs_away = np.ones(network.variants, dtype=bool)
+    for _ in range(_MOST_HOLDS):
+        held = replace(network, sources=sources.held(rise[sources.node], reference))
+        below = _newton(held, start, options)
+        rise, start = below.rise, below.rise[network.unknown]
+        trial = _newton(network, start, options).after(below)
+        if best is None:
+            # Power that is out of scale before it grows is another matter.
+            best, runs_away = trial, below.each_converged
+        else:
+            best = best.improved(trial)
+        if np.all(best.each_converged | ~below.each_converged):
+            break
+    assert best is not None
+    each = zip(best.outcome, best.each_converged, runs_away, strict=True)
+    return replace(
+        best,
+        outcome=tuple(
+            Outcome.RUNAWAY if growth and not done else outcome for outcome, done, growth in each
+        ),
+    )
+
+
+def _newton(network: Network, start: FloatArray, options: SolveOptions) -> Solution:
+    """Iterate from given rises of the unknown nodes [K], shape (u, v)."""
     unknown = network.unknown
-    x = network.first_guess() if start is None else start.copy()
+    x = start.copy()
     variants = x.shape[1]
     mu = np.zeros(variants)
     steps = np.zeros(variants, dtype=np.intp)
@@ -110,8 +194,9 @@ def solve_steady(
     state = _State.of(network, x)
     ended = state.balanced(options)
     stalled = np.zeros(variants, dtype=bool)
+    too_hot = np.zeros(variants, dtype=bool)
     for _ in range(options.max_steps):
-        active = ~(ended | stalled)
+        active = ~(ended | stalled | too_hot)
         if not active.any():
             break
         step = _step(network, state, mu, options)
@@ -126,13 +211,14 @@ def solve_steady(
         mu = np.where(active & ~better, np.maximum(mu * _MU_GROWTH, _FIRST_MU), mu)
         ended |= better & state.balanced(options)
         stalled |= active & (mu > _LARGEST_MU)
-        stalled |= active & (np.max(np.abs(x), axis=0) > options.hottest_rise_k)
+        too_hot |= active & (np.max(np.abs(x), axis=0) > options.hottest_rise_k)
     rise = network.full_rise(x)
     residual = np.abs(state.residual)
-    worst = np.argmax(residual, axis=0)
+    # Where a temperature is past all bounds, it names the culprit better than the imbalance does.
+    worst = np.argmax(np.where(too_hot, np.abs(x), residual), axis=0)
     return Solution(
         rise=rise,
-        outcome=_outcomes(network, rise, ended, stalled),
+        outcome=_outcomes(network, rise, ended, stalled, too_hot),
         steps=steps,
         fallbacks=fallbacks,
         worst_imbalance_w=residual[worst, np.arange(variants)],
@@ -203,16 +289,22 @@ def _step(network: Network, state: _State, mu: FloatArray, options: SolveOptions
 
 
 def _outcomes(
-    network: Network, rise: FloatArray, ended: BoolArray, stalled: BoolArray
+    network: Network,
+    rise: FloatArray,
+    ended: BoolArray,
+    stalled: BoolArray,
+    too_hot: BoolArray,
 ) -> tuple[Outcome, ...]:
-    grows = network.sources.by_temperature
+    grows = bool(network.sources.growing.any())
     stable = _stable(network, rise) if grows else np.ones(len(ended), dtype=bool)
     outcomes = []
-    for done, stuck, steady in zip(ended, stalled, stable, strict=True):
+    for done, stuck, hot, steady in zip(ended, stalled, too_hot, stable, strict=True):
         if done and steady:
             outcomes.append(Outcome.CONVERGED)
         elif grows and (done or not steady):
             outcomes.append(Outcome.RUNAWAY)
+        elif hot:
+            outcomes.append(Outcome.TOO_HOT)
         elif stuck:
             outcomes.append(Outcome.STALLED)
         else:
