@@ -4,6 +4,7 @@ import sys
 from collections.abc import Iterator
 from typing import Any
 
+from pydantic.fields import FieldInfo
 from pydantic_core import PydanticUndefined
 
 from enclosure_check.description.base import Strict
@@ -38,7 +39,7 @@ UNITS = (
     ("_j_per_kgk", "J/kgK", "specific heat capacity"),
 )
 
-# What an empty YAML value, or text without a sign of being text, is called in the table.
+# What a value read from YAML is called.
 _KINDS = {str: "text", int: "a number", float: "a number", bool: "true or false"}
 
 
@@ -51,7 +52,7 @@ def document_page() -> str:
         Markdown: the rules, then one table of keys per model, ending in a line feed.
     """
     models = list(_models(Shape(Document), ""))
-    titles = {model: path for model, path in reversed(models)}
+    titles = dict(reversed(models))
     keys = "\n".join(_section(model, path, titles) for model, path in models)
     return (
         f"{INTRODUCTION}\n{_units()}\n{YAML_RULES}\n{_yaml_values()}\n{CHANGES}\n"
@@ -100,7 +101,7 @@ def _section(model: type[Strict], path: str, titles: dict[type[Strict], str]) ->
         lines += [f"Takes every key of {_link(titles[base])} too, and these:", ""]
     head = ("key", "meaning", "what may stand there", "default")
     rows = [
-        (f"`{name}`", _meaning(info.description or ""), _kind(info, titles), _default(info))
+        (f"`{name}`", _meaning(info), _allowed(field_shape(info), titles), _default(info))
         for name, info in own
     ]
     lines += [_table([head, *rows]), ""]
@@ -118,29 +119,27 @@ def _about(model: type[Strict]) -> str:
     return " ".join((model.__doc__ or "").replace("``", "`").split())
 
 
-def _meaning(description: str) -> str:
-    """Give a description without its unit, which stands with the numbers allowed."""
+def _meaning(info: FieldInfo) -> str:
+    """Give a key's description without its unit, which stands with the numbers allowed."""
+    description = info.description or ""
     text = description.partition("[")[0] if description.endswith("]") else description
     return text.rstrip()
 
 
-def _kind(info: Any, titles: dict[type[Strict], str]) -> str:
-    """Say what may stand at a key."""
-    return _allowed(field_shape(info), titles)
-
-
 def _allowed(shape: Shape, titles: dict[type[Strict], str]) -> str:
+    """Say what may stand at a place of the document."""
     if shape.is_model:
         return f"see {_link(titles[shape.core])}"
+    if shape.core is dict and shape.item.core is Any:
+        return "a patch, see [options and conditions](#options-and-conditions)"
     if shape.core is dict:
         keys = shape.key.words()
         names = f"any of {', '.join(map(str, keys))}" if keys else "a name"
-        inner = "any key of the document" if shape.item.core is Any else ""
-        return f"mapping from {names} to: {inner or _allowed(shape.item, titles)}"
+        return f"mapping from {names} to: {_allowed(shape.item, titles)}"
     return allowed(shape)
 
 
-def _default(info: Any) -> str:
+def _default(info: FieldInfo) -> str:
     """Give a key's default as it would be written."""
     if info.is_required():
         return "**required**"

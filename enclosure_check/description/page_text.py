@@ -6,11 +6,12 @@ INTRODUCTION = """\
 This page is written by `python -m enclosure_check.description.page > docs/document.md`; edit the
 models in `enclosure_check/description/` instead.
 
-A document is one YAML file: a box, what is in it and what is around it. `title`, `box` and
-`surroundings` are all that is required, once `defaults.wall` says what the walls are made of.
-Everything else has a default; defaults that matter are listed under "assumptions" in every
-report. Where positions are counted from is drawn in [coordinates](coordinates.md); materials and
-finishes that may be named are listed in the [library](library.md).
+A document is one YAML file: a box, what is in it and what is around it. Required are `title`,
+`box`, `surroundings`, and for every wall a material, a thickness and an outside finish, which
+`defaults.wall` can give for all six. Everything else has a default; those that change an answer
+are listed as assumptions in every report. Where positions are counted from is drawn in
+[coordinates](coordinates.md); materials and finishes that may be named are listed in the
+[library](library.md).
 
 Whatever repeats (walls, boards, copper layers, parts, limits, modes, options, conditions) is a
 mapping by name, never a list, so that a patch can reach one member of it. Names are yours: 1 to
@@ -20,7 +21,8 @@ or `air`.
 ## Units
 
 Every number with a unit carries it at the end of its key. There is no conversion: a key with
-another unit is refused with the key that is meant.
+another unit is refused with the key that is meant. The one exception are readings of parts under
+`measured`, which are keyed by the point (`junction`, `case`) and are in degrees Celsius.
 """
 
 YAML_RULES = """\
@@ -82,7 +84,7 @@ boards:
 surroundings: {air_c: 35, sky: clear}
 requirements: {touch_max_c: 70}
 options:
-  bare: {defaults: {wall: {finish_outside: aluminium_mill}}}
+  bare: {defaults: {wall: {finish_outside: bare_aluminium_rolled}}}
 conditions:
   noon: {surroundings: {sun_w_per_m2: {top: 900, front: 400}}}
   night:
@@ -117,6 +119,7 @@ Checked after the keys themselves, with every option and condition applied:
   for parts on boards. A derating curve has rising temperatures and a load that does not rise; the
   temperature at which it still allows the load is the limit.
 - `mode` and every mode named in a power exist. `tolerances` match at least one number each.
-  `measured` names parts that exist, and its condition when there are any.
+  `measured` names parts that exist, and its condition when there are any. Tolerances and
+  `confidence_pct` are checked but not used in this version.
 - `sky_c` goes with `sky: given`. Sun on a wall that is not in open air is left out, with a warning.
 """

@@ -60,10 +60,15 @@ def _readings(document: Document, condition: str, remarks: Remarks) -> tuple[Rea
     """Give the readings taken under this condition; every name in them must exist."""
     readings: list[ReadingCase] = []
     for run, measured in document.measured.items():
-        for part in measured.parts:
+        for part, points in measured.parts.items():
             if part not in document.parts:
                 path = ("measured", run, "parts", part)
                 remarks.unknown(path, "part", part, list(document.parts))
+            elif "board" in points and document.parts[part].place not in document.boards:
+                remarks.error(
+                    ("measured", run, "parts", part, "board"),
+                    "a board reading needs a part on a board",
+                )
         if (measured.condition or "base") != condition:
             continue
         for part, points in measured.parts.items():

@@ -1,5 +1,7 @@
 """Fill in the boards: their place in the box, laminate, copper and other power."""
 
+from collections.abc import Iterable, Mapping
+
 from enclosure_check.description.base import WallName
 from enclosure_check.description.board import Board
 from enclosure_check.description.case import BoardCase, CopperCase
@@ -65,13 +67,9 @@ def _resolve_board(
         )
     elif board.conductivity_in_plane_w_per_mk is None and not copper:
         remarks.assume("no copper layers given: the board is bare laminate", name)
-    power = mode_power(
-        board.other_power_w,
-        board.other_power_by_mode_w,
-        document,
-        (*path, "other_power_by_mode_w"),
-        remarks,
-    )
+    by_mode = board.other_power_by_mode_w
+    check_mode_names(by_mode, document, (*path, "other_power_by_mode_w"), remarks)
+    power = mode_power(board.other_power_w, by_mode, document)
     if laminate is None or finish is None or low is None:
         return None
     return BoardCase(
@@ -128,13 +126,17 @@ def place_between_walls(
     return (low[0], low[1], low[2])
 
 
-def mode_power(
-    power: float, by_mode: dict[str, float], document: Document, path: Path, remarks: Remarks
-) -> float:
-    """Give the power in the mode that applies [W]."""
-    for name in by_mode:
+def check_mode_names(
+    names: Iterable[str], document: Document, path: Path, remarks: Remarks
+) -> None:
+    """Refuse powers by mode whose mode does not exist."""
+    for name in names:
         if name not in document.modes:
             remarks.unknown((*path, name), "mode", name, list(document.modes))
+
+
+def mode_power(power: float, by_mode: Mapping[str, float], document: Document) -> float:
+    """Give the power in the mode that applies [W]."""
     mode = document.mode
     if mode is None:
         return power

@@ -5,6 +5,10 @@ from itertools import pairwise
 from enclosure_check.description.case import LimitCase
 from enclosure_check.description.part import Limit, LimitKind
 from enclosure_check.description.remarks import Path, Remarks
+from enclosure_check.description.yaml_nodes import plain_value
+
+# The temperatures a derating curve may be drawn over, as every other temperature limit. [C]
+LOWEST_C, HIGHEST_C = -150.0, 500.0
 
 
 def resolve_limit(
@@ -50,10 +54,15 @@ def _derated(here: Path, limit: Limit, remarks: Remarks) -> float | None:
     curve_path = (*here, "derating", "allowed_pct")
     points: list[tuple[float, float]] = []
     for text, allowed in limit.derating.allowed_pct.items():
-        try:
-            temperature = float(text)
-        except ValueError:
+        temperature = plain_value(text)
+        if isinstance(temperature, bool) or not isinstance(temperature, int | float):
             remarks.error((*curve_path, text), f"given {text!r}, allowed: a temperature in Celsius")
+            return None
+        if not LOWEST_C <= temperature <= HIGHEST_C:
+            remarks.error(
+                (*curve_path, text),
+                f"given {text!r}, allowed: {LOWEST_C:g} to {HIGHEST_C:g} Celsius",
+            )
             return None
         points.append((temperature, allowed))
     if any(

@@ -23,7 +23,11 @@ from enclosure_check.description.frames import (
 )
 from enclosure_check.description.part import Limit, LimitKind, Pad, Part
 from enclosure_check.description.remarks import ROUNDING_MM, Path, Remarks
-from enclosure_check.description.resolve_board import mode_power, place_between_walls
+from enclosure_check.description.resolve_board import (
+    check_mode_names,
+    mode_power,
+    place_between_walls,
+)
 from enclosure_check.description.resolve_box import Rows, reserved_names
 from enclosure_check.description.resolve_limit import resolve_limit
 
@@ -32,6 +36,8 @@ POWER_AT_C = 25.0
 # A pad squeezed to less than this share of its thickness is beyond what data sheets allow.
 # (common practice, no source)
 LEAST_PAD_SHARE = 0.5
+# Parts heaped on one spot overlap by pairs without end; nobody reads on after so many. [-]
+MOST_WARNINGS = 100
 
 
 class PartResolver:
@@ -102,16 +108,19 @@ class PartResolver:
             for point, value in limits.items()
             if (limit := self._limit(part, path, point, value)) is not None
         )
-        by_mode = {
-            **(kind.power_by_mode_w if kind is not None else {}),
-            **part.power_by_mode_w,
-        }
+        of_type = kind.power_by_mode_w if kind is not None else {}
+        by_mode = {**of_type, **part.power_by_mode_w}
         stated = pick("power_w")
         if stated is None and not by_mode:
             remarks.assume("no power stated: taken as none", name)
-        power = mode_power(
-            stated or 0.0, by_mode, self.document, (*path, "power_by_mode_w"), remarks
+        check_mode_names(
+            [name for name in of_type if name not in part.power_by_mode_w],
+            self.document,
+            ("part_types", str(part.type), "power_by_mode_w"),
+            remarks,
         )
+        check_mode_names(part.power_by_mode_w, self.document, (*path, "power_by_mode_w"), remarks)
+        power = mode_power(stated or 0.0, by_mode, self.document)
         slope, doubling = pick("power_slope_pct_per_k"), pick("power_doubling_k")
         if slope is not None and doubling is not None:
             remarks.error(
@@ -133,8 +142,9 @@ class PartResolver:
         pad: Pad | None = pick("pad")
         self._check_paths(name, place, thetas, pad is not None)
         pad_case = self._pad(where("pad"), pad, place, part.place, side, low, size) if pad else None
-        if pad is None and place == "board":
-            self._check_headroom(path, side, low, size)
+        if pad is None or place == "wall":
+            lift = pad.thickness_mm if pad is not None else 0.0
+            self._check_headroom(path, side, low, size, lift)
         return PartCase(
             name=name,
             place=place,
@@ -267,8 +277,10 @@ class PartResolver:
             return low[axis]
         return self.inside[axis] - low[axis] - size[axis]
 
-    def _check_headroom(self, path: Path, side: WallName, low: Vector, size: Vector) -> None:
-        room = self._distance_to_wall(side, low, size)
+    def _check_headroom(
+        self, path: Path, side: WallName, low: Vector, size: Vector, lift: float
+    ) -> None:
+        room = self._distance_to_wall(side, low, size) - lift
         if room < -ROUNDING_MM:
             self.remarks.error(
                 (*path, "place"), f"its top reaches {-room:g} mm into the {side} wall"
@@ -371,6 +383,8 @@ def _warn_overlaps(parts: dict[str, PartCase], remarks: Remarks) -> None:
                 if second.low_mm[0] > first.low_mm[0] + first.size_mm[0]:
                     break
                 if _overlap(first, second):
+                    if len(remarks.warnings) >= MOST_WARNINGS:
+                        return
                     remarks.warn(
                         ("parts", second.name), f"its outline overlaps that of {first.name}"
                     )

@@ -208,7 +208,7 @@ def _given(node: Node | None, shape: Shape | None) -> str:
     if node is None or node.value is None:
         return "nothing"
     if isinstance(node.value, str):
-        if not isinstance(plain_value(node.text), str):
+        if isinstance(plain_value(node.text), int | float):
             return f"{quoted(node.text)} (text, because it is quoted)"
         return f"{quoted(node.text)} (text)"
     text = node.text if len(node.text) <= 40 else f"{node.text[:40]}..."

@@ -263,10 +263,8 @@ class _Reader:
         try:
             for event in yaml.parse(text, Loader=_LOADER):
                 self._take(event)
-            if self.root is None:
+            if self.root is None or is_null(self.root):
                 self.problem((1, 1), "the document is empty")
-            elif is_null(self.root):
-                self.problem((self.root.line, self.root.column), "the document is empty")
             elif not isinstance(self.root, MappingNode):
                 kind = "a list" if isinstance(self.root, SequenceNode) else "a single value"
                 self.problem(

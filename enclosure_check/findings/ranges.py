@@ -96,7 +96,7 @@ def _finding(
         nusselt=nusselt,
         film_w_per_m2k=film,
         valid_from=law.valid_from,
-        valid_to=law.valid_to,
+        valid_to=law.valid_to if np.isfinite(law.valid_to) else None,
         inside_range=outside_by == 1.0,
         outside_by=outside_by,
     )

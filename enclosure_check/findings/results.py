@@ -186,7 +186,10 @@ class RangeFinding:
     nusselt: Annotated[float, _about("Nusselt number.")]
     film_w_per_m2k: Annotated[float, _about("Film coefficient. [W/m2K]")]
     valid_from: Annotated[float, _about("Lower end of the law's range of Rayleigh numbers.")]
-    valid_to: Annotated[float, _about("Upper end of the law's range of Rayleigh numbers.")]
+    valid_to: Annotated[
+        float | None,
+        _about("Upper end of the law's range of Rayleigh numbers; null when it has none."),
+    ]
     inside_range: Annotated[bool, _about("Whether the law is used inside its range.")]
     outside_by: Annotated[
         float, _about("Rayleigh number over the end of the range it passes, 1 inside.")

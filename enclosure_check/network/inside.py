@@ -2,6 +2,7 @@
 
 import numpy as np
 
+from enclosure_check.network.links import LinkLabel
 from enclosure_check.network.site import Site
 from enclosure_check.physics.radiation import mean_radiant_exchange_areas
 
@@ -22,3 +23,7 @@ def build_inside_radiation(site: Site) -> None:
             surface.emissivity,
             surface.label,
         )
+    if all(surface.emissivity == 0 for surface in surfaces):
+        # Nothing radiates: the mean node rests at air temperature, and no heat passes.
+        label = LinkLabel("inside", "no_radiation")
+        site.builder.conduct(site.radiant_inside, site.air, 1.0, label)

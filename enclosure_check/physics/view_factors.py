@@ -10,6 +10,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass
+from functools import cache
 from typing import NamedTuple
 
 import numpy as np
@@ -24,20 +25,24 @@ BoolArray = npt.NDArray[np.bool_]
 RAYS_SMALL, RAYS_LARGE = 128, 512
 _LARGE_VIEW = 0.05
 #: Rays traced at once: bounds the memory and keeps the arrays in the cache.
-RAYS_AT_ONCE = 16384
+RAYS_AT_ONCE = 8192
 #: Pairs of patches looked at together, for the same reason.
 PAIRS_AT_ONCE = 4096
 #: Row sums of the consistent exchange areas, relative to the area [-].
 CLOSURE = 1e-13
-# Lengths below this share of the largest coordinate, and ray parameters below it, are rounding.
+# Lengths below this share of the extent of all patches are rounding, as are shares of a ray.
 _ROUNDING = 1e-9
+# Most correction steps; a space that closes takes two or three.
 _CORRECTIONS = 60
 # Smallest factor of one correction step on an entry: keeps entries above zero.
 _LEAST_FACTOR = 0.2
 # Added to the scaled matrix of the correction, whose lowest eigenvalue is 0 for two groups of
 # patches that see only each other.
 _RIDGE = 1e-10
+# Stands for zero in the direction of a ray.
 _TINY = 1e-300
+# Signs of the corner sums over the ends low-low, low-high, high-low, high-high.
+_CORNER_SIGN = np.array([1.0, -1.0, -1.0, 1.0])
 _OTHER_AXES = np.array([[1, 2], [0, 2], [0, 1]])
 
 
@@ -144,7 +149,7 @@ def parallel_rectangles(
     square = u * u + t * t
     terms = v * w * np.arctan2(v, w) + u * t * np.arctan2(u, t)
     terms = terms - 0.5 * z2 * np.log(_relative(square))
-    return _sum_corners(terms * (_DIFFERENCE_SIGN[:, None] * _DIFFERENCE_SIGN))
+    return _sum_corners(terms * (_CORNER_SIGN[:, None] * _CORNER_SIGN))
 
 
 def perpendicular_rectangles(
@@ -190,11 +195,7 @@ def perpendicular_rectangles(
     w = np.sqrt(w2)
     v2 = v * v
     terms = v * w * np.arctan2(v, w) - 0.25 * (w2 - v2) * np.log(_relative(w2 + v2))
-    return _sum_corners(terms * (_AWAY_SIGN[:, None] * _DIFFERENCE_SIGN))
-
-
-_DIFFERENCE_SIGN = np.array([1.0, -1.0, -1.0, 1.0])
-_AWAY_SIGN = np.array([1.0, -1.0, -1.0, 1.0])
+    return _sum_corners(terms * (_CORNER_SIGN[:, None] * _CORNER_SIGN))
 
 
 def _corner_differences(
@@ -239,24 +240,21 @@ class _Pairs(NamedTuple):
 
     def take(self, chosen: BoolArray | slice) -> _Pairs:
         """Some of the pairs."""
-        return _Pairs(
-            self.first[chosen],
-            self.second[chosen],
-            self.parallel[chosen],
-            self.axes[chosen],
-            self.flip[chosen],
-            self.origin[chosen],
-            self.ends[chosen],
-        )
+        return _Pairs._make(field[chosen] for field in self)
 
     def turned(self, corners: FloatArray) -> FloatArray:
         """Corners (k or 1, m, 2, 3) in the frames of the pairs, (k, m, 2, 3)."""
-        axes, flip, origin = (x[:, None, None, :] for x in (self.axes, self.flip, self.origin))
-        return np.sort(flip * (np.take_along_axis(corners, axes, axis=3) - origin), axis=2)
+        picked = np.take_along_axis(corners, self.axes[:, None, None, :], axis=3)
+        flip, origin = self.flip[:, None, None, :], self.origin[:, None, None, :]
+        return np.sort(flip * (picked - origin), axis=2)
+
+
+def _rounding_length(patches: Rectangles) -> float:
+    return _ROUNDING * float(np.ptp(patches.corners, axis=(0, 1)).max())
 
 
 def _facing_pairs(patches: Rectangles) -> _Pairs:
-    """Pairs of patches that see each other, if nothing stands between."""
+    """Pairs of patches that see each other, if nothing stands between; touching ones do not."""
     first, second = np.triu_indices(patches.axis.size, 1)
     parallel = patches.axis[first] == patches.axis[second]
     k, other = ~parallel, second[patches.axis[first] != patches.axis[second]]
@@ -271,15 +269,11 @@ def _facing_pairs(patches: Rectangles) -> _Pairs:
     ends[k, 0, :, 1] = np.maximum(ends[k, 0, :, 1], 0.0)
     ends[k, 1, :, 2] = np.maximum(ends[k, 1, :, 2], 0.0)
 
-    extent = ends[:, :, 1] - ends[:, :, 0]
-    second_seen = np.where(
-        parallel,
-        (extent[:, 1, 1] > 0.0)
-        & (ends[:, 1, 0, 2] > 0.0)
-        & (patches.sign[first] != patches.sign[second]),
-        extent[:, 1, 2] > 0.0,
-    )
-    seen = second_seen & (extent[:, 0, :2] > 0.0).all(axis=1) & (extent[:, 1, 0] > 0.0)
+    rounding = _rounding_length(patches)
+    extent = ends[:, :, 1] - ends[:, :, 0] > rounding
+    opposed = (patches.sign[first] != patches.sign[second]) & (ends[:, 1, 0, 2] > rounding)
+    seen = extent[:, 0, 0] & extent[:, 0, 1] & extent[:, 1, 0]
+    seen &= np.where(parallel, opposed & extent[:, 1, 1], extent[:, 1, 2])
     return pairs._replace(ends=ends).take(seen)
 
 
@@ -313,6 +307,7 @@ def _perpendicular_hull_meets(ends: FloatArray, boxes: FloatArray) -> BoolArray:
     return np.asarray((below_far & above_near).T)
 
 
+@cache
 def _hammersley(count: int) -> FloatArray:
     """Hammersley points in four dimensions, shape (4, count), all inside 0 to 1.
 
@@ -326,6 +321,7 @@ def _hammersley(count: int) -> FloatArray:
         while rest.any():
             row += digit * (rest % base)
             rest, digit = rest // base, digit / base
+    points.setflags(write=False)
     return points
 
 
@@ -363,14 +359,12 @@ def _points_away(
     return np.maximum(root * root - near, 0.0), root * span
 
 
+# Starts and lengths along the axes, (3, k, rays), and weights, (k, rays).
 _Rays = tuple[FloatArray, FloatArray, FloatArray]
 
 
 def _parallel_rays(ends: FloatArray, points: FloatArray) -> _Rays:
-    """Starts and lengths along the axes, (3, k, rays), and weights, (k, rays).
-
-    A weight is the kernel over the density of the points, but for a factor common to the pair.
-    """
+    """Rays of each pair; a weight is the kernel over the density, but for a factor of the pair."""
     a, b, c, d = points[:, None, :]
     z = ends[:, 1, :1, 2]
     p, dp, p_weight = _points_along(ends[..., 0], z, a, b)
@@ -459,7 +453,7 @@ def exposed_areas(patches: Rectangles, obstacles: Boxes) -> FloatArray:
         return rest
     low, high = (x[:, patches.axis].T for x in (obstacles.low, obstacles.high))
     position = patches.position[:, None]
-    rounding = _ROUNDING * max(float(np.ptp(low)), float(np.ptp(high)))
+    rounding = _rounding_length(patches)
     above = np.where(patches.sign[:, None] > 0, high - position, position - low)
     below = np.where(patches.sign[:, None] > 0, position - low, high - position)
     covers = (above > rounding) & (below > -rounding)
@@ -495,10 +489,10 @@ def visible_exchange_areas(patches: Rectangles, obstacles: Boxes) -> FloatArray:
     project). The rays of a pair have no symmetry: mirrored pairs differ by as much.
     """
     exchange = np.zeros((patches.axis.size, patches.axis.size))
-    area, corners = patches.area, patches.corners
+    area = patches.area
     if area.size < 2:
         return exchange
-    rounding = _ROUNDING * float(np.ptp(corners, axis=(0, 1)).max())
+    rounding = _rounding_length(patches)
     obstacle_corners = np.stack((obstacles.low, obstacles.high), axis=1)[None]
     facing = _facing_pairs(patches)
     for kind, of_kind in ((_PARALLEL, facing.parallel), (_PERPENDICULAR, ~facing.parallel)):

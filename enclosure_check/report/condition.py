@@ -1,8 +1,18 @@
 """The section of a text report on one condition."""
 
-from enclosure_check.findings.results import ConditionFinding, Headroom, PartFinding
+from enclosure_check.findings.results import ConditionFinding, PartFinding, ReadingFinding
 from enclosure_check.report.heat import write_heat
-from enclosure_check.report.layout import Cell, Column, Page, counted, digits, tenths
+from enclosure_check.report.layout import (
+    Cell,
+    Column,
+    Page,
+    Shown,
+    counted,
+    cut,
+    digits,
+    right,
+    tenths,
+)
 from enclosure_check.report.limits import WORDS
 
 # Limits shown in full; those that do not pass are shown in any case.
@@ -12,8 +22,9 @@ MOST_LIMITS = 25
 def write_condition(page: Page, condition: ConditionFinding, shared: tuple[str, ...]) -> None:
     """Put in everything about one condition; ``shared`` assumptions are stated elsewhere."""
     page.gap()
-    title = f"{page.clean(condition.name)}: {WORDS[condition.verdict]}"
-    page.heading(title)
+    verdict = f": {WORDS[condition.verdict]}"
+    name = cut(page.clean(condition.name), page.options.width - len(verdict))
+    page.heading(name + verdict, condition.verdict)
     page.heading("-" * page.options.width, "")
     _site(page, condition)
     _limits(page, condition)
@@ -41,13 +52,20 @@ def _site(page: Page, condition: ConditionFinding) -> None:
 # Limits -----------------------------------------------------------------------------------
 
 _LIMITS = (
-    Column("Part", yields=True),
-    Column("Limit at"),
-    Column("Temp. C", right=True),
-    Column("Limit C", right=True),
-    Column("Margin K", right=True),
-    Column("Verdict"),
-    Column("Air C", right=True),
+    Shown[PartFinding](Column("Part", yields=True), lambda row: row.name),
+    Shown[PartFinding](Column("Limit at"), lambda row: f"{row.limit_kind} {row.limit_side}"),
+    Shown[PartFinding](
+        right("Temp. C"),
+        lambda row: (
+            tenths(row.temperature_c) + ("" if row.band_k is None else f" +-{tenths(row.band_k)}")
+        ),
+    ),
+    Shown[PartFinding](
+        right("Limit C"), lambda row: tenths(row.limit_c) + ("*" if row.derated else "")
+    ),
+    Shown[PartFinding](right("Margin K"), lambda row: tenths(row.margin_k)),
+    Shown[PartFinding](Column("Verdict"), lambda row: Cell(WORDS[row.verdict], row.verdict)),
+    Shown[PartFinding](right("Air C"), lambda row: tenths(row.local_air_c)),
 )
 
 
@@ -57,29 +75,15 @@ def _limits(page: Page, condition: ConditionFinding) -> None:
     if not rows:
         page.paragraph("No part states a limit.")
         return
-    failing = sum(row.verdict != "pass" for row in rows)
-    shown = rows[: max(MOST_LIMITS, failing)]
     page.heading("Parts against their limits (margin: distance to the limit, negative past it)")
-    page.table(_LIMITS, (_limit_row(page, row) for row in shown))
-    hidden = rows[len(shown) :]
-    if hidden:
+    shown = rows[: max(MOST_LIMITS, sum(row.verdict != "pass" for row in rows))]
+    page.records(_LIMITS, shown)
+    notes = ["* from the part's derating curve"] if any(row.derated for row in shown) else []
+    if hidden := rows[len(shown) :]:
         least = tenths(hidden[0].margin_k)
-        page.paragraph(f"  and {len(hidden)} more with margins of {least} K and over")
-    if any(row.derated for row in shown):
-        page.paragraph("* from the part's derating curve", first="  ", rest="    ")
-
-
-def _limit_row(page: Page, row: PartFinding) -> list[str | Cell]:
-    band = "" if row.band_k is None else f" +-{tenths(row.band_k)}"
-    return [
-        page.clean(row.name),
-        f"{row.limit_kind} {row.limit_side}",
-        tenths(row.temperature_c) + band,
-        tenths(row.limit_c) + ("*" if row.derated else ""),
-        tenths(row.margin_k),
-        Cell(WORDS[row.verdict], row.verdict),
-        tenths(row.local_air_c),
-    ]
+        notes.append(f"and {len(hidden)} more with margins of {least} K and over")
+    for note in notes:
+        page.paragraph(note, first="  ", rest="  ")
 
 
 # Headroom ---------------------------------------------------------------------------------
@@ -87,64 +91,58 @@ def _limit_row(page: Page, row: PartFinding) -> list[str | Cell]:
 
 def _headroom(page: Page, condition: ConditionFinding) -> None:
     page.gap()
-    page.paragraph(headroom_words(page, condition.headroom, condition))
+    page.paragraph(page.clean(headroom_words(condition)))
 
 
-def headroom_words(page: Page, room: Headroom, condition: ConditionFinding) -> str:
-    """Say how far surroundings and power can rise."""
+def headroom_words(condition: ConditionFinding) -> str:
+    """Say how far surroundings and power can rise, each alone."""
+    room = condition.headroom
     upper = any(part.limit_side == "max" for part in condition.parts)
     if not upper and all(wall.touch_max_c is None for wall in condition.walls):
-        return "Headroom: no highest temperature is stated, so there is none to give."
-    kept = f" with {tenths(room.wanted_margin_k)} K to spare" if room.wanted_margin_k else ""
+        return "Headroom: no highest temperature is stated, so there is nothing to give it by."
+    kept = f", {tenths(room.wanted_margin_k)} K kept" if room.wanted_margin_k else ""
+    joint = "; " if room.power_pct is None else ", or "
+    return f"Headroom{kept}: {_air_room(condition)}{joint}{_power_room(condition)}."
+
+
+def _air_room(condition: ConditionFinding) -> str:
+    room = condition.headroom
     if room.highest_air_c is None:
-        air = "surrounding air: no temperature was found at which a limit is just met"
-    else:
-        shift = room.highest_air_c - condition.surrounding_air_c
-        only, way = ("only ", "less") if shift < 0 else ("", "more")
-        air = (
-            f"highest limits hold{kept} {only}up to {tenths(room.highest_air_c)} C surrounding "
-            f"air, {tenths(abs(shift))} K {way} than here ({page.clean(room.air_limited_by or '')})"
-        )
+        return "no surrounding air was found at which a limit is just met"
+    shift = room.highest_air_c - condition.surrounding_air_c
+    only, way = ("only ", "below") if shift < 0 else ("", "above")
+    return (
+        f"limits hold {only}up to {tenths(room.highest_air_c)} C surrounding air, "
+        f"{tenths(abs(shift))} K {way} that here ({room.air_limited_by})"
+    )
+
+
+def _power_room(condition: ConditionFinding) -> str:
+    room = condition.headroom
     if room.power_pct is not None:
         only = "only " if room.power_pct < 100 else ""
-        power = f"{only}up to {digits(room.power_pct)} % of this power "
-        power += f"({page.clean(room.power_limited_by or '')})"
-    elif condition.heat_balance.generated_w == 0:
-        power = "no power is put in here that could grow"
-    else:
-        power = "no power was found at which a limit is just met"
-    return f"Headroom: {air}; at this air, {power}."
+        return f"{only}up to {digits(room.power_pct)} % of this power ({room.power_limited_by})"
+    if condition.heat_balance.generated_w == 0:
+        return "no power is put in that could grow"
+    return "no power was found at which a limit is just met"
 
 
 # Readings and solver ----------------------------------------------------------------------
 
 _READINGS = (
-    Column("Run", yields=True),
-    Column("Point", yields=True),
-    Column("Measured C", right=True),
-    Column("Predicted C", right=True),
-    Column("Difference K", right=True),
+    Shown[ReadingFinding](Column("Run", yields=True), lambda row: row.run),
+    Shown[ReadingFinding](Column("At", yields=True), lambda row: f"{row.name} {row.point}"),
+    Shown[ReadingFinding](right("Measured C"), lambda row: tenths(row.measured_c)),
+    Shown[ReadingFinding](right("Predicted C"), lambda row: tenths(row.predicted_c)),
+    Shown[ReadingFinding](right("Difference K"), lambda row: tenths(row.difference_k)),
 )
 
 
 def _readings(page: Page, condition: ConditionFinding) -> None:
-    if not condition.readings:
-        return
-    page.gap()
-    page.heading("Readings beside the prediction (difference: prediction less reading)")
-    page.table(
-        _READINGS,
-        (
-            [
-                page.clean(row.run),
-                page.clean(f"{row.name} {row.point}"),
-                tenths(row.measured_c),
-                tenths(row.predicted_c),
-                tenths(row.difference_k),
-            ]
-            for row in condition.readings
-        ),
-    )
+    if condition.readings:
+        page.gap()
+        page.heading("Readings beside the prediction (difference: prediction less reading)")
+        page.records(_READINGS, condition.readings)
 
 
 def _solver(page: Page, condition: ConditionFinding) -> None:
@@ -153,5 +151,5 @@ def _solver(page: Page, condition: ConditionFinding) -> None:
     page.paragraph(
         f"Solved: {counted(solver.unknowns, 'unknown temperature')} in "
         f"{counted(solver.iterations, 'step')}{back}; worst imbalance "
-        f"{solver.worst_imbalance_w:.1e} W ({page.clean(solver.worst_node)})."
+        f"{solver.worst_imbalance_w:.0e} W ({page.clean(solver.worst_node)})."
     )

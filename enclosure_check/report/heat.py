@@ -1,10 +1,22 @@
 """Where the heat goes: air, walls, balance, boards, parts, and a hand estimate beside it."""
 
-from collections.abc import Callable
-from typing import NamedTuple
-
-from enclosure_check.findings.results import ConditionFinding, HandEstimate, WallFinding
-from enclosure_check.report.layout import LEAST_W, Cell, Column, Page, digits, tenths, watts
+from enclosure_check.findings.results import (
+    ConditionFinding,
+    HandEstimate,
+    PartHeat,
+    WallFinding,
+)
+from enclosure_check.report.layout import (
+    LEAST_W,
+    Cell,
+    Column,
+    Page,
+    Shown,
+    digits,
+    right,
+    tenths,
+    watts,
+)
 from enclosure_check.report.limits import WORDS
 
 # Parts whose heat is followed.
@@ -37,67 +49,64 @@ def _air(page: Page, condition: ConditionFinding) -> None:
 
 # Walls ------------------------------------------------------------------------------------
 
+_FACES = {
+    "open_air": "open air",
+    "against_surface": "surface",
+    "standing_on": "stands on",
+    "bolted_to": "bolted to",
+    "insulated": "insulated",
+}
 
-class _WallColumn(NamedTuple):
-    column: Column
-    cell: Callable[[WallFinding], str | Cell]
-    wanted: Callable[[WallFinding], bool] = lambda _: True
-    """The column is left out where no wall wants it."""
 
-
-def _right(title: str) -> Column:
-    return Column(title, right=True)
+def _touch(wall: WallFinding) -> str | Cell:
+    if wall.touch_margin_k is None or wall.touch_verdict is None:
+        return "-"
+    return Cell(f"{tenths(wall.touch_margin_k)} {WORDS[wall.touch_verdict]}", wall.touch_verdict)
 
 
 _WALLS = (
-    _WallColumn(Column("Wall"), lambda wall: wall.name),
-    _WallColumn(Column("Faces", yields=True), lambda wall: wall.mounting.replace("_", " ")),
-    _WallColumn(_right("Out C"), lambda wall: tenths(wall.outside_c)),
-    _WallColumn(
-        _right("Max C"),
+    Shown[WallFinding](Column("Wall"), lambda wall: wall.name),
+    Shown[WallFinding](
+        Column("Faces", yields=True),
+        lambda wall: _FACES.get(wall.mounting, wall.mounting.replace("_", " ")),
+    ),
+    Shown[WallFinding](right("Out C"), lambda wall: tenths(wall.outside_c)),
+    Shown[WallFinding](
+        right("Max C"),
         lambda wall: tenths(wall.outside_max_c),
         lambda wall: wall.outside_max_c - wall.outside_c >= _SAME_K,
     ),
-    _WallColumn(_right("In C"), lambda wall: tenths(wall.inside_c)),
-    _WallColumn(_right("Conv. W"), lambda wall: watts(wall.convection_w)),
-    _WallColumn(_right("Rad. W"), lambda wall: watts(wall.radiation_w)),
-    _WallColumn(
-        _right("Vents W"),
+    Shown[WallFinding](right("In C"), lambda wall: tenths(wall.inside_c)),
+    Shown[WallFinding](right("Conv. W"), lambda wall: watts(wall.convection_w)),
+    Shown[WallFinding](right("Rad. W"), lambda wall: watts(wall.radiation_w)),
+    Shown[WallFinding](
+        right("Open. W"),
         lambda wall: watts(wall.openings_w),
         lambda wall: abs(wall.openings_w) >= LEAST_W,
     ),
-    _WallColumn(_right("Mount W"), lambda wall: watts(wall.mounting_w)),
-    _WallColumn(_right("Sun W"), lambda wall: watts(wall.sun_w)),
-    _WallColumn(
-        _right("Touch K"),
-        lambda wall: "-" if wall.touch_margin_k is None else tenths(wall.touch_margin_k),
-        lambda wall: wall.touch_margin_k is not None,
+    Shown[WallFinding](
+        right("Mount W"),
+        lambda wall: watts(wall.mounting_w),
+        lambda wall: abs(wall.mounting_w) >= LEAST_W,
     ),
-    _WallColumn(
-        Column("Touch"),
-        lambda wall: (
-            "-"
-            if wall.touch_verdict is None
-            else Cell(WORDS[wall.touch_verdict], wall.touch_verdict)
-        ),
-        lambda wall: wall.touch_verdict is not None,
+    Shown[WallFinding](
+        right("Sun W"),
+        lambda wall: watts(wall.sun_w),
+        lambda wall: abs(wall.sun_w) >= LEAST_W,
     ),
+    Shown[WallFinding](right("Touch K"), _touch, lambda wall: wall.touch_verdict is not None),
 )
 
 
 def _walls(page: Page, condition: ConditionFinding) -> None:
     page.gap()
-    touch = any(wall.touch_margin_k is not None for wall in condition.walls)
-    allowed = "; touch K: margin to the highest touch temperature" if touch else ""
+    touch = any(wall.touch_verdict is not None for wall in condition.walls)
     page.paragraph(
-        f"Walls (W: heat that leaves there, negative where it enters; sun absorbed{allowed})",
+        "Walls (W: heat that leaves there, negative where it enters, and sun absorbed"
+        + ("; touch: margin to the highest temperature allowed)" if touch else ")"),
         style="bold",
     )
-    shown = [each for each in _WALLS if any(each.wanted(wall) for wall in condition.walls)]
-    page.table(
-        [each.column for each in shown],
-        ([each.cell(wall) for each in shown] for wall in condition.walls),
-    )
+    page.records(_WALLS, condition.walls)
 
 
 # Balance ----------------------------------------------------------------------------------
@@ -112,22 +121,26 @@ def _balance(page: Page, condition: ConditionFinding) -> None:
         "mounting": balance.mounting_w,
     }
     into = {"parts and boards": balance.generated_w, "sun": balance.sun_w}
-    into |= {f"by {name}": -heat for name, heat in either_way.items() if heat < 0}
-    out = {name: heat for name, heat in either_way.items() if heat > 0}
+    into |= {f"by {name}": -heat for name, heat in either_way.items() if heat < -LEAST_W}
+    out = {
+        name: heat
+        for name, heat in either_way.items()
+        if heat > LEAST_W or (abs(heat) <= LEAST_W and name in ("convection", "radiation"))
+    }
     page.gap()
     if sum(into.values()) < LEAST_W:
         page.paragraph("Heat balance: no heat is put in and none passes.")
         return
-    page.paragraph(f"Heat in:  {_shares(into)}", rest="          ")
-    page.paragraph(f"Heat out: {_shares(out)}", rest="          ")
+    page.paragraph(_shares(into), first="Heat in:  ", rest="          ")
+    page.paragraph(_shares(out), first="Heat out: ", rest="          ")
 
 
 def _shares(heats: dict[str, float]) -> str:
+    """Give terms with their share of the sum."""
     total = sum(heats.values())
     terms = [
-        f"{name} {watts(heat)} W ({100 * heat / total:.0f} %)"
+        f"{name} {watts(heat)}" + (f" ({100 * heat / total:.0f} %)" if heat > LEAST_W else "")
         for name, heat in heats.items()
-        if heat >= LEAST_W
     ]
     return f"{watts(total)} W = {' + '.join(terms)}"
 
@@ -146,20 +159,29 @@ def _boards(page: Page, condition: ConditionFinding) -> None:
 
 
 _HEAT = (
-    Column("Part", yields=True),
-    _right("Power W"),
-    _right("Junct. C"),
-    _right("Case C"),
-    _right("Board C"),
-    _right("Mount W"),
-    _right("Pad W"),
-    _right("Air W"),
-    _right("Rad. W"),
+    Shown[PartHeat](Column("Part", yields=True), lambda part: part.name),
+    Shown[PartHeat](right("Power W"), lambda part: watts(part.power_w)),
+    Shown[PartHeat](right("Junction C"), lambda part: tenths(part.junction_c)),
+    Shown[PartHeat](right("Case C"), lambda part: tenths(part.case_c)),
+    Shown[PartHeat](
+        right("Board C"),
+        lambda part: "-" if part.board_c is None else tenths(part.board_c),
+        lambda part: part.board_c is not None,
+    ),
+    Shown[PartHeat](right("Mount W"), lambda part: watts(part.to_mount_w)),
+    Shown[PartHeat](
+        right("Pad W"),
+        lambda part: watts(part.to_pad_w),
+        lambda part: abs(part.to_pad_w) >= LEAST_W,
+    ),
+    Shown[PartHeat](right("Air W"), lambda part: watts(part.to_air_w)),
+    Shown[PartHeat](right("Rad. W"), lambda part: watts(part.to_radiation_w)),
 )
 
 
 def _parts(page: Page, condition: ConditionFinding) -> None:
-    if not condition.part_heat:
+    rows = condition.part_heat
+    if not any(_gives_or_takes(row) for row in rows):
         return
     page.gap()
     page.paragraph(
@@ -167,26 +189,17 @@ def _parts(page: Page, condition: ConditionFinding) -> None:
         "where the part takes heat up)",
         style="bold",
     )
-    page.table(
-        _HEAT,
-        (
-            [
-                page.clean(row.name),
-                watts(row.power_w),
-                tenths(row.junction_c),
-                tenths(row.case_c),
-                "-" if row.board_c is None else tenths(row.board_c),
-                watts(row.to_mount_w),
-                watts(row.to_pad_w),
-                watts(row.to_air_w),
-                watts(row.to_radiation_w),
-            ]
-            for row in condition.part_heat[:MOST_HEAT_ROWS]
-        ),
-    )
-    hidden = len(condition.part_heat) - MOST_HEAT_ROWS
-    if hidden > 0:
-        page.paragraph(f"  and {hidden} cooler")
+    page.records(_HEAT, rows[:MOST_HEAT_ROWS])
+    if len(rows) > MOST_HEAT_ROWS:
+        page.paragraph(f"and {len(rows) - MOST_HEAT_ROWS} more, none hotter", first="  ", rest="  ")
+
+
+def _gives_or_takes(row: PartHeat) -> bool:
+    heats = (row.power_w, row.to_mount_w, row.to_pad_w, row.to_air_w, row.to_radiation_w)
+    return any(abs(heat) >= LEAST_W for heat in heats)
+
+
+# Hand estimate ----------------------------------------------------------------------------
 
 
 def hand_words(hand: HandEstimate) -> str:

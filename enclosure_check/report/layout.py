@@ -1,16 +1,19 @@
 """Lines, tables and numbers of a text report; knows nothing of what they are about."""
 
-from collections.abc import Iterable, Sequence
-from typing import NamedTuple
+from collections.abc import Callable, Iterable, Sequence
+from typing import Generic, NamedTuple, TypeVar
 
 from enclosure_check.report.options import WriterOptions
 
 GAP = 2
-# A column that gives way when a table is too wide keeps this many cells. [-]
+INDENT = 2
+# A column that yields keeps this many cells, and this many where even the gaps have gone.
 NARROWEST = 6
+LAST_RESORT = 2
 ELLIPSIS = "..."
-# Heat below this is shown as none. [W]
+# Heat below this is shown as none, and below the other to one digit only. [W]
 LEAST_W = 1e-6
+SMALL_W = 1e-3
 
 # SGR parameters of ECMA-48 ("ANSI escape codes").
 STYLES = {"bold": "1", "pass": "32", "marginal": "33;1", "fail": "31;1"}
@@ -31,6 +34,23 @@ class Cell(NamedTuple):
 
     text: str
     style: str
+
+
+Record = TypeVar("Record")
+
+
+class Shown(NamedTuple, Generic[Record]):
+    """A column of a table of records, and what it says of each."""
+
+    column: Column
+    cell: Callable[[Record], str | Cell]
+    wanted: Callable[[Record], bool] = lambda _: True
+    """Whether a record gives reason to show the column."""
+
+
+def right(title: str) -> Column:
+    """Give a column of numbers."""
+    return Column(title, right=True)
 
 
 class Page:
@@ -75,47 +95,71 @@ class Page:
 
     def table(self, columns: Sequence[Column], rows: Iterable[Sequence[str | Cell]]) -> None:
         """Put in a table; columns that yield are cut until it fits."""
-        cells = [[_as_cell(value) for value in row] for row in rows]
+        cells = [[self._cell(value) for value in row] for row in rows]
         widths = [
             max(cells_of(text) for text in (column.title, *(row[place].text for row in cells)))
             for place, column in enumerate(columns)
         ]
-        _narrow(widths, columns, self.options.width - 2)
+        indent, gap = _fitted(widths, columns, self.options.width)
         titles = [Cell(column.title, "bold") for column in columns]
         for row in (titles, *cells):
-            self.lines.append(self._row(columns, widths, row))
+            self.lines.append(self._row(columns, widths, row, " " * indent, " " * gap))
 
-    def _row(self, columns: Sequence[Column], widths: Sequence[int], row: Sequence[Cell]) -> str:
-        parts, pending = [], "  "
+    def records(self, shown: Sequence[Shown[Record]], records: Sequence[Record]) -> None:
+        """Put in a table of records, without the columns no record gives reason to show."""
+        kept = [each for each in shown if any(each.wanted(record) for record in records)]
+        self.table(
+            [each.column for each in kept],
+            ([each.cell(record) for each in kept] for record in records),
+        )
+
+    def _cell(self, value: str | Cell) -> Cell:
+        text, style = value if isinstance(value, Cell) else (value, "")
+        return Cell(self.clean(text), style)
+
+    def _row(
+        self,
+        columns: Sequence[Column],
+        widths: Sequence[int],
+        row: Sequence[Cell],
+        indent: str,
+        gap: str,
+    ) -> str:
+        parts, pending = [], indent
         for column, width, (text, style) in zip(columns, widths, row, strict=True):
             shown = cut(text, width)
             space = " " * (width - cells_of(shown))
             before, after = (space, "") if column.right else ("", space)
-            if shown:
-                parts.append(pending + before + self.painted(shown, style))
-                pending = after + " " * GAP
-            else:
-                pending += " " * (width + GAP)
-        return "".join(parts)
+            parts.append(pending + before + self.painted(shown, style))
+            pending = after + gap
+        return "".join(parts).rstrip()
 
 
-def _as_cell(value: str | Cell) -> Cell:
-    return value if isinstance(value, Cell) else Cell(value, "")
+def _fitted(widths: list[int], columns: Sequence[Column], room: int) -> tuple[int, int]:
+    """Narrow columns until they fit; give the indent and the gap that go with them."""
+    for indent, gap, narrowest in (
+        (INDENT, GAP, NARROWEST),
+        (INDENT, 1, NARROWEST),
+        (0, 1, LAST_RESORT),
+    ):
+        spaces = indent + gap * (len(widths) - 1)
+        _narrow(widths, columns, room - spaces, narrowest)
+        if sum(widths) + spaces <= room:
+            break
+    return indent, gap
 
 
-def _narrow(widths: list[int], columns: Sequence[Column], room: int) -> None:
+def _narrow(widths: list[int], columns: Sequence[Column], room: int, narrowest: int) -> None:
     """Take cells off the widest of the columns that yield until all fits in ``room``."""
-    over = sum(widths) + GAP * (len(widths) - 1) - room
-    while over > 0:
+    for _ in range(sum(widths) - room):
         giving = [
             place
             for place, column in enumerate(columns)
-            if column.yields and widths[place] > NARROWEST
+            if column.yields and widths[place] > narrowest
         ]
         if not giving:
             return
         widths[max(giving, key=widths.__getitem__)] -= 1
-        over -= 1
 
 
 # Text -------------------------------------------------------------------------------------
@@ -209,8 +253,10 @@ def digits(value: float) -> str:
 
 
 def watts(value: float) -> str:
-    """Give heat in W to three digits; none below a millionth."""
-    return "0" if abs(value) < LEAST_W else digits(value)
+    """Give heat in W: to three digits, to one below a milliwatt, none below a microwatt."""
+    if abs(value) < LEAST_W:
+        return "0"
+    return digits(value) if abs(value) >= SMALL_W else f"{value:.0e}"
 
 
 def counted(number: int, word: str) -> str:

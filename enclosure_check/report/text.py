@@ -4,7 +4,16 @@ from collections.abc import Sequence
 
 from enclosure_check.findings.results import ConditionFinding, Report
 from enclosure_check.report.condition import write_condition
-from enclosure_check.report.layout import Cell, Column, Page, digits, listed, tenths
+from enclosure_check.report.layout import (
+    Cell,
+    Column,
+    Page,
+    Shown,
+    digits,
+    listed,
+    right,
+    tenths,
+)
 from enclosure_check.report.limits import WORDS, Held, limits_of, worst_first
 from enclosure_check.report.options import WriterOptions
 
@@ -29,10 +38,8 @@ def write_text(report: Report, options: WriterOptions) -> str:
         page.bullets(page.clean(line) for line in shared)
     page.gap()
     page.paragraph(f"Caution: {report.caution}")
-    page.paragraph(
-        f"enclosure-check {report.version}; document SHA-256 {report.digest[:16]}; open air and "
-        "inside air still, steady state."
-    )
+    page.paragraph(f"enclosure-check {report.version}; the document's SHA-256:")
+    page.paragraph(report.digest)
     return page.text()
 
 
@@ -94,19 +101,35 @@ def _worst(conditions: Sequence[ConditionFinding]) -> tuple[ConditionFinding, He
 
 
 _SUMMARY = (
-    Column("Condition", yields=True),
-    Column("Verdict"),
-    Column("Margin K", right=True),
-    Column("Smallest at", yields=True),
-    Column("Air C", right=True),
-    Column("Up to C", right=True),
-    Column("Power to %", right=True),
+    Shown[ConditionFinding](Column("Condition", yields=True), lambda each: each.name),
+    Shown[ConditionFinding](
+        Column("Verdict"), lambda each: Cell(WORDS[each.verdict], each.verdict)
+    ),
+    Shown[ConditionFinding](right("Margin K"), lambda each: _smallest(each)[0]),
+    Shown[ConditionFinding](Column("Smallest at", yields=True), lambda each: _smallest(each)[1]),
+    Shown[ConditionFinding](right("Air C"), lambda each: tenths(each.surrounding_air_c)),
+    Shown[ConditionFinding](
+        right("Up to C"),
+        lambda each: (
+            "-" if each.headroom.highest_air_c is None else tenths(each.headroom.highest_air_c)
+        ),
+    ),
+    Shown[ConditionFinding](
+        right("Power to %"),
+        lambda each: "-" if each.headroom.power_pct is None else digits(each.headroom.power_pct),
+    ),
 )
+
+
+def _smallest(condition: ConditionFinding) -> tuple[str, str]:
+    """Give the smallest margin of a condition and where it is."""
+    held = limits_of(condition)
+    return (tenths(held[0].margin_k), held[0].label) if held else ("-", "no limit stated")
 
 
 def _summary(page: Page, conditions: Sequence[ConditionFinding]) -> None:
     page.gap()
-    page.table(_SUMMARY, (_summary_row(page, condition) for condition in conditions))
+    page.records(_SUMMARY, conditions)
     page.paragraph(
         "Up to: surrounding air, all surroundings rising together, at which a highest limit is "
         "met. Power to: percent of the power here at which one is met. Each alone, with the "
@@ -114,17 +137,3 @@ def _summary(page: Page, conditions: Sequence[ConditionFinding]) -> None:
         first="  ",
         rest="  ",
     )
-
-
-def _summary_row(page: Page, condition: ConditionFinding) -> list[str | Cell]:
-    held = limits_of(condition)
-    room = condition.headroom
-    return [
-        page.clean(condition.name),
-        Cell(WORDS[condition.verdict], condition.verdict),
-        tenths(held[0].margin_k) if held else "-",
-        page.clean(held[0].label) if held else "no limit stated",
-        tenths(condition.surrounding_air_c),
-        "-" if room.highest_air_c is None else tenths(room.highest_air_c),
-        "-" if room.power_pct is None else digits(room.power_pct),
-    ]

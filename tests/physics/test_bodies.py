@@ -79,6 +79,7 @@ def test_two_laws_for_a_cube_agree():
     root = np.sqrt(6.0)
     ours = cuboid_nusselt(ra * (root / length) ** 3, 0.71, 0.985) / root
     np.testing.assert_allclose(ours, theirs, rtol=0.10)
+    assert sparrow_stretton(0.0, 0.71) == 5.748  # the equation's own limit
 
 
 def test_broadcasting():

@@ -69,6 +69,17 @@ def test_heat_flow_rises_with_the_difference_without_jumps(key):
     assert LAWS[key](1e8, PR) > 3 * LAWS[key](1e5, PR)
 
 
+def test_table_holds_the_laws_themselves():
+    ra = np.array([1e5, 1e8])
+    np.testing.assert_array_equal(LAWS["lloyd_moran_hot_up"](ra, PR), plates.hot_side_up(ra))
+    np.testing.assert_array_equal(
+        LAWS["raithby_hollands_hot_down"](ra, PR), plates.hot_side_down(ra)
+    )
+    np.testing.assert_array_equal(LAWS["mcadams_hot_down"](ra, PR), plates.mcadams_down(ra))
+    cube = bodies.cuboid_nusselt(ra, PR, 0.98483)
+    np.testing.assert_allclose(LAWS["yovanovich_cuboid"](ra, PR), cube, rtol=1e-4)
+
+
 def test_conduction_floors_do_not_disturb_the_range_of_the_laws():
     from_the_range = np.logspace(4, 9, 50)
     np.testing.assert_allclose(

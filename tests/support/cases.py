@@ -32,7 +32,11 @@ def box(**changes: Any) -> Data:
     document: Data = {
         "title": "A box",
         "defaults": {
-            "wall": {"material": "aluminium_5052", "thickness_mm": 2, "finish_outside": "grey_paint"}
+            "wall": {
+                "material": "aluminium_5052",
+                "thickness_mm": 2,
+                "finish_outside": "grey_paint",
+            }
         },
         "box": {"width_mm": 200, "height_mm": 150, "depth_mm": 100},
         "surroundings": {"air_c": 25},

@@ -348,7 +348,9 @@ def mirrored(document: Data, axis: int) -> Data:
 
     image = dict(document)
     image["walls"] = keys(document.get("walls", {}))
-    lean, roll = (document["box"].get("tilt", {}).get(key, 0) for key in ("lean_back_deg", "roll_right_deg"))
+    lean, roll = (
+        document["box"].get("tilt", {}).get(key, 0) for key in ("lean_back_deg", "roll_right_deg")
+    )
     # Up is (-sin roll, -sin lean cos roll, cos lean cos roll): turn one component round.
     lean, roll = [(lean, -roll), (-lean, roll), (180 - lean, roll)][axis]
     lean = (lean + 180) % 360 - 180

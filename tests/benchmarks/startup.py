@@ -1,0 +1,65 @@
+"""Time a whole `check` process against a process that only imports the libraries.
+
+Run it as ``python tests/benchmarks/startup.py [REPETITIONS]``. The two are run in turn, so that
+whatever else the machine does falls on both; medians are compared.
+"""
+
+import resource
+import statistics
+import subprocess
+import sys
+import time
+from pathlib import Path
+
+from samples import by_size
+
+LEAST_REPETITIONS = 11
+BARE = "import numpy, pydantic, yaml, rich.console"
+ROOT = Path(__file__).parent.parent.parent
+
+
+def program() -> list[str]:
+    """Give the command as it was installed, or what an installed one runs."""
+    script = Path(sys.executable).with_name("enclosure-check")
+    run = "import sys; from enclosure_check.cli import main; sys.exit(main())"
+    return [str(script)] if script.exists() else [sys.executable, "-c", run]
+
+
+def timed(command: list[str]) -> tuple[float, float]:
+    """Run a process; give its wall time and its processor time [s]."""
+    before = resource.getrusage(resource.RUSAGE_CHILDREN)
+    start = time.perf_counter()
+    ended = subprocess.run(command, cwd=ROOT, stdout=subprocess.DEVNULL, check=False)
+    wall = time.perf_counter() - start
+    after = resource.getrusage(resource.RUSAGE_CHILDREN)
+    if ended.returncode not in (0, 1):
+        raise SystemExit(f"{command} ended with {ended.returncode}")
+    return wall, after.ru_utime - before.ru_utime + after.ru_stime - before.ru_stime
+
+
+def main() -> None:
+    repetitions = int(sys.argv[1]) if len(sys.argv) > 1 else 2 * LEAST_REPETITIONS + 1
+    repetitions = max(repetitions, LEAST_REPETITIONS)
+    sample = by_size()[0]
+    commands = {
+        "bare imports": [sys.executable, "-c", BARE],
+        "check": [*program(), "check", str(sample)],
+    }
+    times: dict[str, list[tuple[float, float]]] = {name: [] for name in commands}
+    for command in commands.values():
+        timed(command)
+    for _ in range(repetitions):
+        for name, command in commands.items():
+            times[name].append(timed(command))
+    print(f"{sample.name}, {repetitions} repetitions in turn, medians:")
+    medians = {}
+    for name, pairs in times.items():
+        wall, used = (statistics.median(values) for values in zip(*pairs, strict=True))
+        medians[name] = wall, used
+        print(f"  {name:13s} {wall * 1e3:6.1f} ms wall, {used * 1e3:6.1f} ms processor")
+    ratios = [medians["check"][kind] / medians["bare imports"][kind] for kind in (0, 1)]
+    print(f"  ratio         {ratios[0]:6.2f}    wall, {ratios[1]:6.2f}    processor")
+
+
+if __name__ == "__main__":
+    main()
