@@ -78,6 +78,18 @@ class WallDefaults(Strict):
     )
 
 
+class Cable(Strict):
+    """Conductors that pass through a wall."""
+
+    count: int = Field(1, ge=1, le=10_000, description="How many alike conductors.")
+    conductor_mm2: float = Field(
+        gt=0, le=1_000, description="Section of the copper of one conductor. [mm2]"
+    )
+    outer_mm: LengthMm = Field(description="Diameter over the insulation of one conductor. [mm]")
+    inside_mm: LengthMm = Field(description="Length of it inside the box. [mm]")
+    current_a: float = Field(0.0, ge=0, le=10_000, description="Current in each conductor. [A]")
+
+
 class Wall(WallDefaults):
     """One of the six walls; what it leaves out comes from `defaults.wall`."""
 
@@ -85,12 +97,14 @@ class Wall(WallDefaults):
         "openings": "openings and vent flow are not computed in this version; the box must be "
         "sealed",
         "fins": "fins are not computed in this version",
-        "cables": "cables through a wall are not computed in this version",
         "neighbour": "a neighbouring box is not computed in this version; describe it with "
         "`mounting: {kind: against_surface}` when it is close",
     }
     mounting: Mounting = Field(
         default_factory=Mounting, description="What the outside of this wall faces."
+    )
+    cables: dict[Name, Cable] = Field(
+        default_factory=dict, description="Conductors through this wall, by name."
     )
     touch_max_c: TemperatureC | None = Field(
         None,

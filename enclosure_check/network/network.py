@@ -42,6 +42,11 @@ class Sources:
         """Whether each power grows with temperature, shape (s, 1)."""
         return (self.slope > 0) | (self.doublings > 0)
 
+    @cached_property
+    def doubles(self) -> bool:
+        """Whether any power grows exponentially."""
+        return bool(np.any(self.doublings > 0))
+
     def held(self, rise: FloatArray, reference_k: FloatArray) -> "Sources":
         """Give the same sources, those that grow held at what they put in at given rises (s, v)."""
         return replace(
@@ -248,6 +253,8 @@ class Network:
         )
         own = self.sources.heat_by_rise(rise[self.sources.node], self.reference_k)
         values = np.concatenate((links, -links, -own))
+        if rise.shape[1] == 1:
+            return self._matrix(values[:, 0])[None]
         return np.stack([self._matrix(values[:, v]) for v in range(rise.shape[1])])
 
     def first_guess(self) -> FloatArray:

@@ -113,6 +113,8 @@ LEAST_HEAT_W = 1e-4
 # Regularisation of a step that did not help: the first try, its growth and the way back to none.
 _FIRST_MU, _MU_GROWTH, _MU_DECAY, _LEAST_MU = 1e-3, 8.0, 0.1, 1e-6
 _LARGEST_MU = 1e9
+# Rounding that may let a node seem colder than its surroundings. [K]
+COLDER_K = 1e-6
 # The linear guess is not believed beyond this. [K]
 _FARTHEST_GUESS_K = 1_000.0
 # How often growing power is held and let go before no steady state is believed in.
@@ -139,11 +141,11 @@ def solve_steady(
         Also when a variant did not converge: its ``outcome`` says so.
     """
     options = options or SolveOptions()
-    if not network.sources.growing.any():
-        return _newton(network, _guess(network) if start is None else start, options)
-    if start is not None:
-        solution = _newton(network, start, options)
-        if solution.converged:
+    # A power that grows in proportion has one stable state at most, wherever it is come from: heat
+    # leaves at least in proportion to the rise. One that doubles may have several.
+    if start is not None or not network.sources.doubles:
+        solution = _newton(network, _guess(network) if start is None else start, options)
+        if solution.converged or not network.sources.growing.any():
             return solution
     return _from_below(network, options)
 
@@ -313,7 +315,7 @@ def _outcomes(
     too_hot: BoolArray,
 ) -> tuple[Outcome, ...]:
     grows = bool(network.sources.growing.any())
-    stable = _stable(network, rise) if grows else np.ones(len(ended), dtype=bool)
+    stable = _stable(network, rise) if grows and ended.any() else np.ones(len(ended), dtype=bool)
     outcomes = []
     for done, stuck, hot, steady in zip(ended, stalled, too_hot, stable, strict=True):
         if done and steady:
@@ -330,16 +332,21 @@ def _outcomes(
 
 
 def _stable(network: Network, rise: FloatArray) -> BoolArray:
-    """Whether a little heat put in anywhere would warm every node, not cool any.
+    """Whether a state is one that a box comes to and stays in, shape (v,).
 
-    The Jacobian of a stable balance is an M-matrix, whose inverse has no negative entry; where
-    power grows faster with temperature than heat leaves, it is not. Shape (v,).
+    No node of it is colder than the coldest of the surroundings: past the runaway of a power that
+    grows in proportion, the balance has only such a state. Where power doubles, a little heat put
+    in anywhere must also warm every node and cool none: the Jacobian of a stable balance is an
+    M-matrix, whose inverse has no negative entry.
     """
-    unknown = network.unknown
+    coldest = network.fixed_rise.min(axis=0)
+    stable = rise.min(axis=0) >= coldest - COLDER_K
+    if not network.sources.doubles or not stable.any():
+        return np.asarray(stable)
     jacobian = network.jacobian(rise)
-    everywhere = np.ones((jacobian.shape[0], len(unknown), 1))
+    everywhere = np.ones((*jacobian.shape[:2], 1))
     try:
         response = np.linalg.solve(jacobian, everywhere)[:, :, 0]
     except np.linalg.LinAlgError:
         return np.zeros(jacobian.shape[0], dtype=bool)
-    return np.asarray((response > 0).all(axis=1))
+    return np.asarray(stable & (response > 0).all(axis=1))
