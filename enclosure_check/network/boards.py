@@ -39,22 +39,29 @@ def _build_board(case: Case, board: BoardCase, site: Site) -> None:
     size = metres_3(board.size_mm)
     first, second = (axis for axis in range(3) if axis != board.axis)
     options = site.options
-    counts = cell_counts(size[first], size[second], options.board_cells, options.least_per_side)
+    counts = cell_counts(size[first], size[second], options.board_cells)
     sheet = np.full((2, *counts), board_conductivity(board) * size[board.axis])
     grid = PlateGrid((first, second), metres_3(board.low_mm), size, counts, sheet)
     plate = site.plate(f"board {board.name}", grid)
     site.grids[board.name], site.boards[board.name] = grid, plate
     site.conduct_along(plate.cells, grid, 1.0, LinkLabel(owner, "along"))
+    site.patches.add_obstacle(metres_3(board.low_mm), size)
     half_rim = _half_rim(grid, size[board.axis])
     for side in wall_pair(board.axis):
         face = site.plane_face(size, board.axis, SIGN[side])
         site.board_faces[board.name, side] = face
         bare = bare_board(case, board.name, side, grid) + half_rim
         convection = LinkLabel(owner, "convection_inside")
+        at = grid.low[board.axis] + (size[board.axis] if SIGN[side] > 0 else 0.0)
+        patch = site.patches.add_face(board.name, side, grid, board.axis, SIGN[side], at)
         builder.plate_film(plate.cells, plate.mean, site.air, bare, face, convection)
         site.surfaces.append(
             InsideSurface(
-                plate.cells, bare, board.finish.emissivity, LinkLabel(owner, "radiation_inside")
+                plate.cells,
+                patch,
+                bare,
+                board.finish.emissivity,
+                LinkLabel(owner, "radiation_inside"),
             )
         )
     power = board.other_power_w / plate.cells.size

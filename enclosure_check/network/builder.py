@@ -10,9 +10,11 @@ from numpy.typing import ArrayLike
 from enclosure_check.network.films import BodyFilm, BoxFilm, PlateFilm
 from enclosure_check.network.links import (
     Conduction,
+    FloatArray,
     IntArray,
     LinkKind,
     LinkLabel,
+    PatchExchange,
     Radiation,
 )
 from enclosure_check.network.network import Network, Places, Sources
@@ -110,7 +112,8 @@ class NetworkBuilder:
 
     def __post_init__(self) -> None:
         self._conduction = Blocks((*_ENDS, "x", "y"), ("conductance",))
-        self._radiation = Blocks(_ENDS, Radiation.PARAMETERS)
+        self._radiation = Blocks((*_ENDS, "x", "y"), Radiation.PARAMETERS)
+        self._exchange = Blocks((*_ENDS, "c", "d"), PatchExchange.PARAMETERS)
         self._plates = FilmBlocks(PlateFilm.PARAMETERS[2:])
         self._bodies = FilmBlocks(BodyFilm.PARAMETERS[2:])
         self._boxes: list[LinkKind] = []
@@ -182,7 +185,7 @@ class NetworkBuilder:
     def radiate(
         self,
         a: ArrayLike,
-        b: int,
+        b: ArrayLike,
         area: ArrayLike,
         exchange_area: ArrayLike,
         emissivity: float,
@@ -191,9 +194,31 @@ class NetworkBuilder:
     ) -> None:
         """Join nodes by radiation; areas [m2]."""
         if share > 0:
-            a, row = np.ravel(a), self._label(label)
+            a, b, row = np.ravel(a), np.ravel(b), self._label(label)
             values = (np.ravel(area), np.ravel(exchange_area), share, emissivity)
-            self._radiation.add(a.size, (a, b, row), values)
+            self._radiation.add(a.size, (a, b, row, a, b), values)
+
+    def mean_emission(
+        self, label: str, cells: IntArray, area: FloatArray, emissivity: FloatArray
+    ) -> int:
+        """Give a node that keeps the mean emission of cells, which is no heat."""
+        node = self.node(label)
+        row = self._label(LinkLabel(label, "mean"))
+        values = (area, area, 1.0, emissivity)
+        self._radiation.add(cells.size, (node, self.nowhere, row, node, cells), values)
+        return node
+
+    def exchange(
+        self,
+        irradiation: tuple[IntArray, IntArray],
+        emission: tuple[IntArray, IntArray],
+        exchange_area: FloatArray,
+        emissivity: tuple[FloatArray, FloatArray],
+        label: LinkLabel,
+    ) -> None:
+        """Join patches by their irradiation and emission nodes, pair by pair; areas [m2]."""
+        numbers = (*irradiation, self._label(label), *emission)
+        self._exchange.add(exchange_area.size, numbers, (exchange_area, *emissivity))
 
     def plate_film(
         self,
@@ -267,6 +292,7 @@ class NetworkBuilder:
         made: list[tuple[Any, Blocks | FilmBlocks, Mapping[str, Any]]] = [
             (Conduction, self._conduction, {}),
             (Radiation, self._radiation, {}),
+            (PatchExchange, self._exchange, {}),
             (PlateFilm, self._plates, in_air),
             (BodyFilm, self._bodies, in_air),
         ]

@@ -16,11 +16,10 @@ SPREADING_FILM_W_PER_M2K = 20.0
 
 @dataclass(frozen=True)
 class GridOptions:
-    """How finely plates are divided: cells per plate, near enough, and at least so many a side."""
+    """How finely plates are divided: cells per plate, near enough."""
 
     board_cells: int = 144
-    wall_cells: int = 9
-    least_per_side: int = 3
+    wall_cells: int = 16
 
 
 @dataclass(frozen=True, eq=False)
@@ -156,7 +155,7 @@ def _eigenvalues(count: int) -> FloatArray:
     return np.asarray(4.0 * np.sin(0.5 * np.pi * np.arange(count) / count) ** 2)
 
 
-def cell_counts(length: float, width: float, cells: int, least: int) -> tuple[int, int]:
-    """Divide a rectangle into about so many cells, as square as can be."""
+def cell_counts(length: float, width: float, cells: int) -> tuple[int, int]:
+    """Divide a rectangle into about so many cells, as square as can be, an even number a side."""
     edge = (length * width / cells) ** 0.5
-    return max(round(length / edge), least), max(round(width / edge), least)
+    return max(2 * round(length / edge / 2), 2), max(2 * round(width / edge / 2), 2)

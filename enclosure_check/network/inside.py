@@ -1,29 +1,62 @@
-"""Builds the radiation inside: every surface exchanges with all others over one mean node."""
+"""Builds the radiation inside: grey exchange with reflections between patches.
+
+Two nodes for each patch: its irradiation H, and the mean emission E of what lies on it. What lies
+on a patch gives ``e A (sigma T^4 - H)`` to H; patches exchange their radiosities
+``(1 - e) H + e E`` over the exchange areas of their view factors.
+"""
 
 import numpy as np
 
-from enclosure_check.network.links import LinkLabel
+from enclosure_check.network.links import FloatArray, LinkLabel
 from enclosure_check.network.site import Site
-from enclosure_check.physics.radiation import mean_radiant_exchange_areas
+
+# Exchange areas below this share of their patches are left out. [-]
+LEAST_SHARE = 1e-9
+# Weight that keeps the mean emission of a patch of mirrors defined; it sends nothing out. [-]
+_MIRROR = 1e-9
 
 
 def build_inside_radiation(site: Site) -> None:
-    """Join every inside surface to the mean radiant node of the cavity."""
-    surfaces = [surface for surface in site.surfaces if surface.area.sum() > 0]
-    areas = np.array([float(surface.area.sum()) for surface in surfaces])
-    for surface, area, exchange in zip(
-        surfaces, areas, mean_radiant_exchange_areas(areas), strict=True
-    ):
-        bare = surface.area > 0
-        site.builder.radiate(
-            surface.cells[bare],
-            site.radiant_inside,
-            surface.area[bare],
-            surface.area[bare] * (exchange / area),
-            surface.emissivity,
-            surface.label,
-        )
-    if all(surface.emissivity == 0 for surface in surfaces):
-        # Nothing radiates: the mean node rests at air temperature, and no heat passes.
-        label = LinkLabel("inside", "no_radiation")
-        site.builder.conduct(site.radiant_inside, site.air, 1.0, label)
+    """Join every inside surface to its patch, and the patches among each other."""
+    builder, count = site.builder, site.patches.count
+    exchange = site.patches.exchange()
+    area = exchange.sum(axis=1)
+    # What stands proud of a patch sees no more than through the patch's own outline.
+    on_patch = np.zeros(count)
+    for surface in site.surfaces:
+        np.add.at(on_patch, np.ravel(surface.patch), np.ravel(surface.area))
+    outline = np.minimum(1.0, area / np.maximum(on_patch, 1e-300))
+    emitting = np.zeros(count)
+    cells: list[list[FloatArray]] = [[] for _ in range(count)]
+    irradiation = builder.nodes("irradiation of patch", (count,))
+    for surface in site.surfaces:
+        bare = np.ravel(surface.area) > 0
+        nodes, patch = np.ravel(surface.cells)[bare], np.ravel(surface.patch)[bare]
+        seen = np.ravel(surface.area)[bare] * outline[patch]
+        builder.radiate(nodes, irradiation[patch], seen, seen, surface.emissivity, surface.label)
+        np.add.at(emitting, patch, surface.emissivity * seen)
+        weight = np.full(nodes.size, max(surface.emissivity, _MIRROR))
+        for index in np.unique(patch):
+            here = patch == index
+            cells[index].append(np.stack((nodes[here], seen[here], weight[here])))
+    emission = irradiation.copy()
+    for index, found in enumerate(cells):
+        if found:
+            nodes, seen, weight = np.concatenate(found, axis=1)
+            label = f"emission of patch {index + 1}"
+            emission[index] = builder.mean_emission(label, nodes.astype(np.intp), seen, weight)
+    mean = emitting / area
+    first, second = np.nonzero(np.triu(exchange > LEAST_SHARE * area.min(), 1))
+    builder.exchange(
+        (irradiation[first], irradiation[second]),
+        (emission[first], emission[second]),
+        exchange[first, second],
+        (mean[first], mean[second]),
+        LinkLabel("inside", "radiation"),
+    )
+    # Between perfect mirrors no irradiation is determined; a trace of one holds them at rest.
+    builder.conduct(irradiation, site.air, TRACE_W_PER_K, LinkLabel("inside", "trace"))
+
+
+# Far below what any check can tell; see above. [W/K]
+TRACE_W_PER_K = 1e-12

@@ -166,12 +166,14 @@ class Conduction(Links):
 
 @dataclass(frozen=True, eq=False)
 class Radiation(Links):
-    """Grey-diffuse radiation: ``s C sigma (T_a^4 - T_b^4)``, C the surface and space in series.
+    """Grey-diffuse radiation: ``s C sigma (T_x^4 - T_y^4)``, C the surface and space in series.
 
     ``C = 1 / (1/X + (1 - e) / (e A))`` with the exchange area X of the space and the share s of
-    it that ``b`` takes.
+    it that ``b`` takes; x and y are the ends themselves unless it keeps a mean (see `Conduction`).
     """
 
+    x: IntArray
+    y: IntArray
     area: FloatArray
     exchange_area: FloatArray
     share: FloatArray
@@ -179,9 +181,14 @@ class Radiation(Links):
 
     PARAMETERS: ClassVar[tuple[str, ...]] = ("area", "exchange_area", "share", "emissivity")
 
+    @property
+    def stencil(self) -> IntArray:
+        """Nodes each link depends on, shape (2, m)."""
+        return np.stack((self.x, self.y))
+
     def heat(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
         """Heat rate from ``a`` to ``b`` [W], shape (m, v)."""
-        heat: FloatArray = self._conductance() * _fourth_power_difference(rise, reference_k)
+        heat: FloatArray = self._conductance() * fourth_power_difference(rise, reference_k)
         return heat
 
     def heat_by_rise(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
@@ -202,7 +209,7 @@ class Radiation(Links):
             return super().heat_by_parameter(rise, reference_k, name)
         slope = grey_exchange_by_emissivity(self.area, self.exchange_area, self.emissivity)
         by_emissivity: FloatArray = STEFAN_BOLTZMANN * self.share * slope
-        by_emissivity = by_emissivity * _fourth_power_difference(rise, reference_k)
+        by_emissivity = by_emissivity * fourth_power_difference(rise, reference_k)
         return by_emissivity
 
     def _conductance(self) -> FloatArray:
@@ -211,8 +218,55 @@ class Radiation(Links):
         return conductance
 
 
-def _fourth_power_difference(rise: FloatArray, reference_k: FloatArray) -> FloatArray:
-    """``T_a^4 - T_b^4``, factored so that equal temperatures give exactly zero."""
+@dataclass(frozen=True, eq=False)
+class PatchExchange(Links):
+    """Radiosity exchanged between two patches: ``X sigma (J_a - J_b)``, X the exchange area.
+
+    ``a`` and ``b`` are the irradiation nodes of the patches, ``c`` and ``d`` their emission nodes:
+    a patch sends out ``J = (1 - e) T_irradiation^4 + e T_emission^4`` with its mean emissivity e.
+    """
+
+    c: IntArray
+    d: IntArray
+    exchange_area: FloatArray
+    emissivity_a: FloatArray
+    emissivity_b: FloatArray
+
+    PARAMETERS: ClassVar[tuple[str, ...]] = ("exchange_area", "emissivity_a", "emissivity_b")
+
+    @property
+    def stencil(self) -> IntArray:
+        """Nodes each link depends on, shape (4, m)."""
+        return np.stack((self.a, self.b, self.c, self.d))
+
+    def heat(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
+        """Heat rate from ``a`` to ``b`` [W], shape (m, v)."""
+        # Counted from the fourth power of the irradiation at b, so that equal rises give zero.
+        by_a = fourth_power_difference(rise[[0, 1]], reference_k)
+        by_c = fourth_power_difference(rise[[2, 1]], reference_k)
+        by_d = fourth_power_difference(rise[[3, 1]], reference_k)
+        sent: FloatArray = (1 - self.emissivity_a) * by_a + self.emissivity_a * by_c
+        sent = sent - self.emissivity_b * by_d
+        return STEFAN_BOLTZMANN * self.exchange_area * sent
+
+    def heat_by_rise(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
+        """Derivative of `heat` by each rise [W/K], shape (4, m, v)."""
+        absolute = rise + reference_k
+        slope: FloatArray = absolute * absolute * absolute * self._factors()
+        return slope
+
+    def nominal(self, reference_k: FloatArray) -> FloatArray:
+        """Factors at a nominal rise [W/K], shape (4, m, 1)."""
+        slope: FloatArray = self._factors()[:, :, :1] * (reference_k + NOMINAL_RISE_K) ** 3
+        return slope
+
+    def _factors(self) -> FloatArray:
+        a, b = self.emissivity_a, self.emissivity_b
+        return 4.0 * STEFAN_BOLTZMANN * self.exchange_area * np.stack((1 - a, b - 1, a, -b))
+
+
+def fourth_power_difference(rise: FloatArray, reference_k: FloatArray) -> FloatArray:
+    """``T_0^4 - T_1^4``, factored so that equal temperatures give exactly zero."""
     a, b = rise[0] + reference_k, rise[1] + reference_k
     difference: FloatArray = (rise[0] - rise[1]) * (a + b) * (a * a + b * b)
     return difference

@@ -85,10 +85,13 @@ def _join_air(part: PartCase, case: int, site: Site) -> None:
     convection = LinkLabel(owner, "convection_inside")
     if part.place == "air":
         free = whole
+        patch = site.patches.add_body(metres_3(part.low_mm), size)
         gravity = float(cuboid_gravity_function_tilted(size, site.up))
         builder.body_film(case, site.air, free, whole, gravity, convection)
     elif part.place == "wall":
         free = whole - footprint(part)
+        wall = OPPOSITE[part.side]
+        patch = site.patches.under(wall, wall, metres_3(part.centre_mm))
         mirrored = list(size)
         mirrored[AXIS[part.side]] *= 2
         gravity = float(cuboid_gravity_function_tilted(mirrored, site.up))
@@ -98,11 +101,13 @@ def _join_air(part: PartCase, case: int, site: Site) -> None:
         if part.pad is not None:
             free -= part.pad.area_mm2 * 1e-6
             _join_pad(part, part.pad, case, site)
+        patch = site.patches.under(part.host, part.side, metres_3(part.centre_mm))
         face = site.board_faces[part.host, part.side]
         builder.plate_film(case, case, site.air, free, face, convection)
     site.surfaces.append(
         InsideSurface(
             np.array([case]),
+            np.array([patch]),
             np.array([free]),
             part.finish.emissivity,
             LinkLabel(owner, "radiation_inside"),

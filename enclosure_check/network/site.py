@@ -10,6 +10,7 @@ from enclosure_check.network.builder import NetworkBuilder, PlaneFace
 from enclosure_check.network.grid import GridOptions, PlateGrid
 from enclosure_check.network.links import FloatArray, IntArray, LinkLabel
 from enclosure_check.network.network import PartNodes, PlateNodes
+from enclosure_check.network.patches import Patches
 from enclosure_check.network.units import kelvin, metres_3
 from enclosure_check.physics.air import air, pressure_at_altitude
 from enclosure_check.physics.plates import fall_length
@@ -18,9 +19,10 @@ from enclosure_check.physics.radiation import sky_temperature_clear
 
 @dataclass(frozen=True, eq=False)
 class InsideSurface:
-    """A surface that radiates inside the box: its cells and their bare areas [m2]."""
+    """A surface that radiates inside the box: its cells, their patches and bare areas [m2]."""
 
     cells: IntArray
+    patch: IntArray
     area: FloatArray
     emissivity: float
     label: LinkLabel
@@ -45,9 +47,9 @@ class Site:
     radiant: int
     sky: int | None
     air: int
-    radiant_inside: int
     air_conductivity: float
     surfaces: list[InsideSurface] = field(default_factory=list)
+    patches: Patches = field(default_factory=Patches)
     grids: dict[str, PlateGrid] = field(default_factory=dict)
     wall_outside: dict[str, PlateNodes] = field(default_factory=dict)
     wall_inside: dict[str, PlateNodes] = field(default_factory=dict)
@@ -76,7 +78,6 @@ class Site:
             radiant=builder.node("radiant surroundings", kelvin(around.radiant_c)),
             sky=None if sky_k is None else builder.node("sky", sky_k),
             air=builder.node("inside air"),
-            radiant_inside=builder.node("inside radiant mean"),
             air_conductivity=float(air(air_k, pressure).conductivity),
         )
 

@@ -45,7 +45,7 @@ def _build_wall(case: Case, name: WallName, inside: Vector, outside: Vector, sit
     owner = f"wall:{name}"
     thickness = metres(wall.thickness_mm)
     options = site.options
-    counts = cell_counts(inside[first], inside[second], options.wall_cells, options.least_per_side)
+    counts = cell_counts(inside[first], inside[second], options.wall_cells)
     sheet = wall.material.in_plane_conductivity_w_per_mk * thickness
     grid = PlateGrid((first, second), (0.0, 0.0, 0.0), inside, counts, np.full((2, *counts), sheet))
     outer = site.plate(f"{name} wall outside", grid)
@@ -62,12 +62,18 @@ def _build_wall(case: Case, name: WallName, inside: Vector, outside: Vector, sit
     _build_outside(wall, outer, outside_area, site)
     bare = bare_wall(case, name, grid)
     face = site.plane_face(inside, axis, -SIGN[name])
+    at = 0.0 if SIGN[name] < 0 else inside[axis]
+    patch = site.patches.add_face(name, name, grid, axis, -SIGN[name], at)
     builder.plate_film(
         inner.cells, inner.mean, site.air, bare, face, LinkLabel(owner, "convection_inside")
     )
     site.surfaces.append(
         InsideSurface(
-            inner.cells, bare, wall.finish_inside.emissivity, LinkLabel(owner, "radiation_inside")
+            inner.cells,
+            patch,
+            bare,
+            wall.finish_inside.emissivity,
+            LinkLabel(owner, "radiation_inside"),
         )
     )
 

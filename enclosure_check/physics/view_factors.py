@@ -10,7 +10,6 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass
-from functools import cache
 from typing import NamedTuple
 
 import numpy as np
@@ -24,6 +23,9 @@ BoolArray = npt.NDArray[np.bool_]
 #: Rays of a pair that an obstacle may come between: with a small view factor, with a large one.
 RAYS_SMALL, RAYS_LARGE = 128, 512
 _LARGE_VIEW = 0.05
+#: Multipliers of the lattices of so many rays: the least of those that minimise Korobov's error
+#: P2 in four dimensions.
+KOROBOV_MULTIPLIER = {128: 21, 512: 115}
 #: Rays traced at once: bounds the memory and keeps the arrays in the cache.
 RAYS_AT_ONCE = 8192
 #: Pairs of patches looked at together, for the same reason.
@@ -213,8 +215,7 @@ def _relative(square: FloatArray) -> FloatArray:
 
 
 def _sum_corners(terms: FloatArray) -> FloatArray:
-    total: FloatArray = terms.sum(axis=(-2, -1)) / (2.0 * np.pi)
-    return np.maximum(total, 0.0)
+    return np.asarray(np.maximum(terms.sum(axis=(-2, -1)) / (2.0 * np.pi), 0.0))
 
 
 class _Pairs(NamedTuple):
@@ -288,41 +289,17 @@ def _perpendicular_exchange(ends: FloatArray) -> FloatArray:
     return perpendicular_rectangles(one[..., 0], one[..., 1], two[..., 0], two[..., 2])
 
 
-def _parallel_hull_meets(ends: FloatArray, boxes: FloatArray) -> BoolArray:
-    """Whether boxes reach into the outline of the hull, whose sides run straight, (k, m)."""
-    share = np.clip(boxes[..., 2] / ends[:, None, 1, :1, 2], 0.0, 1.0)[..., None]
-    start, span = ends[:, None, None, 0, :, :2], (ends[:, 1] - ends[:, 0])[:, None, None, :, :2]
-    sides = start + span * share[..., None]
-    low, high = sides[..., 0, :].min(axis=2), sides[..., 1, :].max(axis=2)
-    meets = (boxes[..., 0, :2] < high) & (boxes[..., 1, :2] > low)
-    return np.asarray(meets.all(axis=-1))
+def _lattice(rays: int) -> FloatArray:
+    """Korobov lattice in four dimensions, shifted, shape (4, rays).
 
-
-def _perpendicular_hull_meets(ends: FloatArray, boxes: FloatArray) -> BoolArray:
-    """Whether boxes reach between the lines that join the near and the far edges, (k, m)."""
-    (x_near, x_far), (y_near, y_far) = ends[:, 0, :, 1].T, ends[:, 1, :, 2].T
-    (x_low, y_low), (x_high, y_high) = (np.maximum(boxes[..., i, 1:], 0.0).T for i in range(2))
-    below_far = x_low * y_far + y_low * x_far < x_far * y_far
-    above_near = x_high * y_near + y_high * x_near >= x_near * y_near
-    return np.asarray((below_far & above_near).T)
-
-
-@cache
-def _hammersley(count: int) -> FloatArray:
-    """Hammersley points in four dimensions, shape (4, count), all inside 0 to 1.
-
-    J. M. Hammersley, "Monte Carlo methods for solving multivariable problems", Ann. New York
-    Acad. Sci. 86 (1960) 844-874 (from memory); radical inverses in the bases 2, 3 and 5.
+    N. M. Korobov (1959), see I. H. Sloan, S. Joe, Lattice Methods for Multiple Integration, 1994
+    (from memory). The shift by roots of primes keeps the points off the ends and off each other's
+    lines.
     """
-    points = np.zeros((4, count))
-    points[0] = (np.arange(count) + 0.5) / count
-    for row, base in zip(points[1:], (2, 3, 5), strict=True):
-        rest, digit = np.arange(1, count + 1), 1.0 / base
-        while rest.any():
-            row += digit * (rest % base)
-            rest, digit = rest // base, digit / base
-    points.setflags(write=False)
-    return points
+    powers = [pow(KOROBOV_MULTIPLIER[rays], k, rays) for k in range(4)]
+    shift = np.sqrt([2.0, 3.0, 5.0, 7.0])
+    points = np.outer(powers, np.arange(rays)) / rays + shift[:, None]
+    return np.asarray(points % 1.0)
 
 
 def _points_along(
@@ -389,19 +366,18 @@ class _Kind(NamedTuple):
     """What parallel and perpendicular pairs do differently."""
 
     exchange: Callable[[FloatArray], FloatArray]
-    hull_meets: Callable[[FloatArray, FloatArray], BoolArray]
     rays: Callable[[FloatArray, FloatArray], _Rays]
 
 
-_PARALLEL = _Kind(_parallel_exchange, _parallel_hull_meets, _parallel_rays)
-_PERPENDICULAR = _Kind(_perpendicular_exchange, _perpendicular_hull_meets, _perpendicular_rays)
+_PARALLEL = _Kind(_parallel_exchange, _parallel_rays)
+_PERPENDICULAR = _Kind(_perpendicular_exchange, _perpendicular_rays)
 
 
-def _may_obstruct(kind: _Kind, ends: FloatArray, boxes: FloatArray, rounding: float) -> BoolArray:
-    """Boxes whose inside may meet the convex hull of a pair, shape (k, m)."""
+def _may_obstruct(ends: FloatArray, boxes: FloatArray, rounding: float) -> BoolArray:
+    """Boxes whose inside meets the bounding box of what a pair sees of each other, (k, m)."""
     low, high = ends.min(axis=(1, 2))[:, None], ends.max(axis=(1, 2))[:, None]
     meets = (boxes[:, :, 0] < high - rounding) & (boxes[:, :, 1] > low + rounding)
-    return np.asarray(meets.all(axis=2) & kind.hull_meets(ends, boxes))
+    return np.asarray(meets.all(axis=2))
 
 
 def _visible_share(
@@ -413,7 +389,7 @@ def _visible_share(
     scenes", SIGGRAPH 1986, from memory). One that leaves or reaches a box at its own end is not
     cut by it.
     """
-    points = _hammersley(rays)
+    points = _lattice(rays)
     share = np.empty(ends.shape[0])
     step = max(1, RAYS_AT_ONCE // rays)
     for begin in range(0, share.size, step):
@@ -449,7 +425,7 @@ def exposed_areas(patches: Rectangles, obstacles: Boxes) -> FloatArray:
         stands in its plane.
     """
     rest = patches.area
-    if obstacles.low.shape[0] == 0:
+    if rest.size == 0 or obstacles.low.shape[0] == 0:
         return rest
     low, high = (x[:, patches.axis].T for x in (obstacles.low, obstacles.high))
     position = patches.position[:, None]
@@ -484,9 +460,10 @@ def visible_exchange_areas(patches: Rectangles, obstacles: Boxes) -> FloatArray:
 
     Notes
     -----
-    Error of the counted ones as a share of the smaller area, against 16384 rays in boxes with up
-    to three boards: root mean square 0.002, largest 0.006 (numerical experiment made for this
-    project). The rays of a pair have no symmetry: mirrored pairs differ by as much.
+    Error of the counted ones as a share of the smaller area: root mean square 0.0006, 0.0024 with
+    one patch to a face; largest 0.007. Against 16384 rays of other points, in boxes with up to
+    three boards or twelve bodies (numerical experiment made for this project). The rays of a pair
+    have no symmetry, so mirrored pairs differ by as much.
     """
     exchange = np.zeros((patches.axis.size, patches.axis.size))
     area = patches.area
@@ -501,7 +478,7 @@ def visible_exchange_areas(patches: Rectangles, obstacles: Boxes) -> FloatArray:
             pairs = all_pairs.take(slice(begin, begin + PAIRS_AT_ONCE))
             value = kind.exchange(pairs.ends)
             boxes = pairs.turned(obstacle_corners)
-            candidates = _may_obstruct(kind, pairs.ends, boxes, rounding)
+            candidates = _may_obstruct(pairs.ends, boxes, rounding)
             uncertain = candidates.any(axis=1)
             view = value / np.minimum(area[pairs.first], area[pairs.second])
             for chosen, rays in (

@@ -1,0 +1,129 @@
+"""Patches: the coarse pieces that the radiation inside a box is reckoned on.
+
+Walls and boards are divided into blocks of cells, bodies in the air count whole. Everything that
+lies on a patch (its cells, the parts standing on it) takes the same irradiation.
+"""
+
+from dataclasses import dataclass, field
+from functools import lru_cache
+
+import numpy as np
+
+from enclosure_check.description.frames import Vector
+from enclosure_check.network.grid import PlateGrid
+from enclosure_check.network.links import FloatArray, IntArray
+from enclosure_check.physics.view_factors import Boxes, Rectangles, exchange_areas
+
+# Blocks along each axis of a wall or board: fewer where it has fewer cells.
+BLOCKS = 2
+
+_Rectangle = tuple[int, int, float, tuple[float, float], tuple[float, float]]
+
+
+@dataclass
+class Patches:
+    """Rectangles by patch, and what stands between them; all in the box frame [m]."""
+
+    _rectangles: list[_Rectangle] = field(default_factory=list)
+    _patch_of: list[int] = field(default_factory=list)
+    _obstacles: list[tuple[Vector, Vector]] = field(default_factory=list)
+    _faces: dict[tuple[str, str], IntArray] = field(default_factory=dict)
+    _grids: dict[tuple[str, str], PlateGrid] = field(default_factory=dict)
+    count: int = 0
+
+    def add_face(
+        self, name: str, side: str, grid: PlateGrid, axis: int, sign: int, at: float
+    ) -> IntArray:
+        """Divide a face of a wall or board; gives the patch of each of its cells.
+
+        Parameters
+        ----------
+        name, side
+            The wall or board, and the side of it that this face is.
+        grid
+            Its cells.
+        axis, sign
+            Direction of the normal that points into the air.
+        at
+            Position of the face along its axis [m].
+        """
+        bounds = [_blocks(count) for count in grid.counts]
+        of_cell = np.zeros(grid.counts, dtype=np.intp)
+        for first in range(len(bounds[0]) - 1):
+            for second in range(len(bounds[1]) - 1):
+                rows = slice(bounds[0][first], bounds[0][first + 1])
+                columns = slice(bounds[1][second], bounds[1][second + 1])
+                of_cell[rows, columns] = self.count
+                low = (grid.edges[0][rows.start], grid.edges[1][columns.start])
+                high = (grid.edges[0][rows.stop], grid.edges[1][columns.stop])
+                self._add(axis, sign, at, low, high)
+                self.count += 1
+        self._faces[name, side], self._grids[name, side] = of_cell, grid
+        return of_cell
+
+    def add_body(self, low: Vector, size: Vector) -> int:
+        """Add a body in the air, all its faces one patch, which also stands in the way."""
+        high = tuple(a + b for a, b in zip(low, size, strict=True))
+        for axis in range(3):
+            first, second = (other for other in range(3) if other != axis)
+            for sign, at in ((-1, low[axis]), (1, high[axis])):
+                corners = (low[first], low[second]), (high[first], high[second])
+                self._add(axis, sign, at, *corners)
+        self.count += 1
+        self.add_obstacle(low, size)
+        return self.count - 1
+
+    def add_obstacle(self, low: Vector, size: Vector) -> None:
+        """Add something that hides surfaces from each other."""
+        x, y, z = (a + b for a, b in zip(low, size, strict=True))
+        self._obstacles.append((low, (x, y, z)))
+
+    def under(self, name: str, side: str, point: Vector) -> int:
+        """Give the patch of a face that a point lies over."""
+        of_cell, grid = self._faces[name, side], self._grids[name, side]
+        place = [
+            int(np.clip(np.searchsorted(edges, point[axis]) - 1, 0, count - 1))
+            for axis, edges, count in zip(grid.axes, grid.edges, grid.counts, strict=True)
+        ]
+        return int(of_cell[place[0], place[1]])
+
+    def exchange(self) -> FloatArray:
+        """Give the exchange areas between patches [m2], symmetric, rows summing to their areas."""
+        between = _exchange(tuple(self._rectangles), tuple(self._obstacles))
+        total = np.zeros((self.count, self.count))
+        patch = np.array(self._patch_of)
+        np.add.at(total, (patch[:, None], patch[None, :]), between)
+        return total
+
+    def _add(
+        self,
+        axis: int,
+        sign: int,
+        at: float,
+        low: tuple[float, float],
+        high: tuple[float, float],
+    ) -> None:
+        corners = (float(low[0]), float(low[1])), (float(high[0]), float(high[1]))
+        self._rectangles.append((axis, sign, float(at), *corners))
+        self._patch_of.append(self.count)
+
+
+def _blocks(count: int) -> list[int]:
+    """Bounds of as many blocks of cells as divide a row evenly, so that mirrored boxes match."""
+    blocks = max(blocks for blocks in range(1, BLOCKS + 1) if count % blocks == 0)
+    return [count * index // blocks for index in range(blocks + 1)]
+
+
+@lru_cache(maxsize=32)
+def _exchange(
+    rectangles: tuple[_Rectangle, ...], obstacles: tuple[tuple[Vector, Vector], ...]
+) -> FloatArray:
+    """Exchange areas of rectangles; kept, as the same come again under every condition."""
+    axis, sign, at, low, high = (np.array(column) for column in zip(*rectangles, strict=True))
+    return exchange_areas(
+        Rectangles(axis, sign, at.astype(float), low, high),
+        Boxes(
+            np.array([box[0] for box in obstacles], dtype=float).reshape(-1, 3),
+            np.array([box[1] for box in obstacles], dtype=float).reshape(-1, 3),
+        ),
+    )
