@@ -40,6 +40,18 @@ class MountingCase:
 
 
 @dataclass(frozen=True)
+class CableCase:
+    """Alike conductors through a wall."""
+
+    name: str
+    count: int
+    conductor_mm2: float
+    outer_mm: float
+    inside_mm: float
+    current_a: float
+
+
+@dataclass(frozen=True)
 class WallCase:
     """A wall with its defaults filled in."""
 
@@ -51,6 +63,7 @@ class WallCase:
     mounting: MountingCase
     touch_max_c: float | None
     sun_w_per_m2: float
+    cables: tuple[CableCase, ...] = ()
 
 
 @dataclass(frozen=True)
@@ -60,6 +73,73 @@ class CopperCase:
     name: str
     thickness_um: float
     coverage_pct: float
+
+
+@dataclass(frozen=True)
+class ZoneCase:
+    """A rectangle of a board with other copper; as thick as the board, in the box frame."""
+
+    name: str
+    copper: tuple[CopperCase, ...]
+    conductivity_in_plane_w_per_mk: float | None
+    low_mm: Vector
+    size_mm: Vector
+
+
+@dataclass(frozen=True)
+class StandOffCase:
+    """A column from a board to a wall.
+
+    ``length_mm`` is the clear distance between the two, ``section_mm2`` what conducts of the
+    column; ``resistance_k_per_w`` stands instead of both where it is stated. ``low_mm`` and
+    ``size_mm`` are its foot, a square of the area of its outline, nothing along its length.
+    """
+
+    name: str
+    wall: WallName
+    length_mm: float
+    section_mm2: float
+    conductivity_w_per_mk: float | None
+    resistance_k_per_w: float | None
+    contact_k_per_w: float
+    low_mm: Vector
+    size_mm: Vector
+
+
+@dataclass(frozen=True)
+class EdgeClampCase:
+    """A clamped piece of a board's edge; ``low_mm`` and ``size_mm`` are that piece of its rim."""
+
+    wall: WallName
+    conductance_w_per_mk: float
+    low_mm: Vector
+    size_mm: Vector
+
+
+@dataclass(frozen=True)
+class FillerCase:
+    """What fills the space between a side of a board and the wall; its body in the box frame."""
+
+    name: str
+    side: WallName
+    distance_mm: float
+    conductivity_w_per_mk: float
+    contact_mm2k_per_w: float
+    low_mm: Vector
+    size_mm: Vector
+
+
+@dataclass(frozen=True)
+class ShieldCanCase:
+    """A metal can over parts of a board's side; its body in the box frame."""
+
+    name: str
+    side: WallName
+    height_mm: float
+    finish: Finish
+    frame_conductance_w_per_mk: float
+    low_mm: Vector
+    size_mm: Vector
 
 
 @dataclass(frozen=True)
@@ -75,6 +155,11 @@ class BoardCase:
     conductivity_in_plane_w_per_mk: float | None
     finish: Finish
     other_power_w: float
+    zones: tuple[ZoneCase, ...] = ()
+    stand_offs: tuple[StandOffCase, ...] = ()
+    edge_clamps: tuple[EdgeClampCase, ...] = ()
+    fillers: tuple[FillerCase, ...] = ()
+    shield_cans: tuple[ShieldCanCase, ...] = ()
 
     @property
     def high_mm(self) -> Vector:

@@ -11,6 +11,7 @@ from enclosure_check.description.resolve_box import (
     resolve_walls,
     up_vector,
 )
+from enclosure_check.description.resolve_features import check_covered
 from enclosure_check.description.resolve_part import PartResolver
 
 
@@ -33,6 +34,7 @@ def resolve(document: Document, condition: str, option: str | None = None) -> Ca
         remarks.finish()
     boards = resolve_boards(document, inside, rows, remarks)
     parts = PartResolver(document, inside, walls, boards, rows, remarks).resolve()
+    check_covered(boards, parts, remarks)
     readings = _readings(document, condition, remarks)
     remarks.finish()
     requirements = document.requirements

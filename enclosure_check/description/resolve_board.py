@@ -4,11 +4,12 @@ from collections.abc import Iterable, Mapping
 
 from enclosure_check.description.base import WallName
 from enclosure_check.description.board import Board
-from enclosure_check.description.case import BoardCase, CopperCase
+from enclosure_check.description.case import BoardCase
 from enclosure_check.description.document import Document
 from enclosure_check.description.frames import AXIS, Vector, wall_pair
 from enclosure_check.description.remarks import ROUNDING_MM, Path, Remarks
 from enclosure_check.description.resolve_box import Rows, reserved_names
+from enclosure_check.description.resolve_features import resolve_copper, with_features
 
 BOARD_THICKNESS_MM = 1.6
 LAMINATE = "fr4"
@@ -54,25 +55,15 @@ def _resolve_board(
     sizes[axis] = thickness
     size = (sizes[0], sizes[1], sizes[2])
     low = place_between_walls(size, board.from_walls_mm, inside, path, remarks)
-    copper = tuple(
-        CopperCase(layer, row.thickness_um, row.coverage_pct) for layer, row in board.copper.items()
-    )
-    copper_mm = sum(layer.thickness_um for layer in copper) / 1000
-    if copper_mm >= thickness:
-        remarks.error((*path, "copper"), f"{copper_mm:g} mm of copper in a {thickness:g} mm board")
-    if board.conductivity_in_plane_w_per_mk is not None and copper:
-        remarks.error(
-            (*path, "conductivity_in_plane_w_per_mk"),
-            "given together with `copper`; give one of them",
-        )
-    elif board.conductivity_in_plane_w_per_mk is None and not copper:
+    copper = resolve_copper(board, thickness, path, remarks)
+    if board.conductivity_in_plane_w_per_mk is None and not copper:
         remarks.assume("no copper layers given: the board is bare laminate", name)
     by_mode = board.other_power_by_mode_w
     check_mode_names(by_mode, document, (*path, "other_power_by_mode_w"), remarks)
     power = mode_power(board.other_power_w, by_mode, document)
     if laminate is None or finish is None or low is None:
         return None
-    return BoardCase(
+    bare = BoardCase(
         name,
         axis,
         low,
@@ -83,6 +74,7 @@ def _resolve_board(
         finish,
         power,
     )
+    return with_features(bare, board, inside, rows, remarks)
 
 
 def place_between_walls(

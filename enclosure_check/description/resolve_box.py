@@ -4,8 +4,9 @@ import math
 from collections.abc import Mapping
 
 from enclosure_check.description.base import AIR, WALL_NAMES, WallName
-from enclosure_check.description.box import Mounting, Tilt
+from enclosure_check.description.box import Mounting, Tilt, Wall
 from enclosure_check.description.case import (
+    CableCase,
     Finish,
     Material,
     MountingCase,
@@ -21,6 +22,8 @@ from enclosure_check.library.rows import load_finishes, load_materials
 FLUSH_GAP_MM = 0.1
 # Above this a gap convects and exchanges with the air at its edges. [mm]
 LARGEST_CLOSED_GAP_MM = 5.0
+# Share by which a rounded diameter may fall short of a bare conductor. [-]
+CONDUCTOR_ROUNDING = 0.01
 # Emissivity of the surface behind a wall-mounted box: painted or papered walls, wood, concrete.
 SURFACE_EMISSIVITY = 0.9
 
@@ -148,10 +151,30 @@ def _resolve_wall(
     touch = written.touch_max_c if written is not None else None
     if touch is None and mounting.kind == "open_air":
         touch = document.requirements.touch_max_c
+    cables = _resolve_cables(name, written, remarks) if written is not None else ()
     if missing or material is None or outside is None or inside is None:
         return None
     assert isinstance(thickness, float | int)
-    return WallCase(name, material, thickness, outside, inside, mounting, touch, sun)
+    return WallCase(name, material, thickness, outside, inside, mounting, touch, sun, cables)
+
+
+def _resolve_cables(name: WallName, wall: Wall, remarks: Remarks) -> tuple[CableCase, ...]:
+    for cable, row in wall.cables.items():
+        room = math.pi / 4 * row.outer_mm**2
+        if row.conductor_mm2 > room * (1 + CONDUCTOR_ROUNDING):
+            remarks.error(
+                ("walls", name, "cables", cable, "conductor_mm2"),
+                f"given {row.conductor_mm2:g}; a diameter of {row.outer_mm:g} mm has room for "
+                f"{room:.3g} mm2",
+            )
+        remarks.assume(
+            "cables: copper, no insulation, their surface exchanges heat as 10 K over the air",
+            f"{name}/{cable}",
+        )
+    return tuple(
+        CableCase(cable, row.count, row.conductor_mm2, row.outer_mm, row.inside_mm, row.current_a)
+        for cable, row in wall.cables.items()
+    )
 
 
 # Which keys each kind of mounting takes beside `kind`.

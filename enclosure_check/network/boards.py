@@ -1,10 +1,13 @@
 """Builds the boards: one layer of cells each, with the films of both sides."""
 
+from dataclasses import replace
+
 import numpy as np
 
-from enclosure_check.description.case import BoardCase, Case
+from enclosure_check.description.case import BoardCase, Case, ZoneCase
 from enclosure_check.description.frames import SIGN, wall_pair
 from enclosure_check.network.covering import bare_board
+from enclosure_check.network.features import painted
 from enclosure_check.network.grid import PlateGrid, cell_counts
 from enclosure_check.network.links import FloatArray, LinkLabel
 from enclosure_check.network.site import InsideSurface, Site
@@ -21,17 +24,28 @@ def build_boards(case: Case, site: Site) -> None:
         _build_board(case, board, site)
 
 
-def board_conductivity(board: BoardCase) -> float:
-    """Give the effective in-plane conductivity of a board [W/mK]."""
-    if board.conductivity_in_plane_w_per_mk is not None:
-        return board.conductivity_in_plane_w_per_mk
+def board_conductivity(board: BoardCase, zone: ZoneCase | None = None) -> float:
+    """Give the effective in-plane conductivity of a board, or of a zone of it [W/mK]."""
+    given = board if zone is None else zone
+    if given.conductivity_in_plane_w_per_mk is not None:
+        return given.conductivity_in_plane_w_per_mk
     laminate = board.laminate.in_plane_conductivity_w_per_mk
-    copper = [layer.thickness_um * 1e-6 for layer in board.copper]
-    coverage = [layer.coverage_pct / 100 for layer in board.copper]
+    copper = [layer.thickness_um * 1e-6 for layer in given.copper]
+    coverage = [layer.coverage_pct / 100 for layer in given.copper]
     thickness = [*copper, metres(board.size_mm[board.axis]) - sum(copper)]
     conductivity = [*([COPPER_W_PER_MK] * len(copper)), laminate]
     layered = effective_conductivity(thickness, conductivity, [*coverage, 1.0], laminate)
     return float(layered.in_plane)
+
+
+def _sheet(board: BoardCase, grid: PlateGrid) -> FloatArray:
+    """Give the sheet conductance of each cell of a board, its zones laid over it [W/K]."""
+    thickness = metres(board.size_mm[board.axis])
+    zones = [
+        (metres_3(zone.low_mm), metres_3(zone.size_mm), board_conductivity(board, zone) * thickness)
+        for zone in board.zones
+    ]
+    return painted(grid, board_conductivity(board) * thickness, zones)
 
 
 def _build_board(case: Case, board: BoardCase, site: Site) -> None:
@@ -42,6 +56,9 @@ def _build_board(case: Case, board: BoardCase, site: Site) -> None:
     counts = cell_counts(size[first], size[second], options.board_cells)
     sheet = np.full((2, *counts), board_conductivity(board) * size[board.axis])
     grid = PlateGrid((first, second), metres_3(board.low_mm), size, counts, sheet)
+    if board.zones:
+        zoned = _sheet(board, grid)
+        grid = replace(grid, sheet=np.stack((zoned, zoned)))
     plate = site.plate(f"board {board.name}", grid)
     site.grids[board.name], site.boards[board.name] = grid, plate
     site.conduct_along(plate.cells, grid, 1.0, LinkLabel(owner, "along"))
@@ -54,7 +71,18 @@ def _build_board(case: Case, board: BoardCase, site: Site) -> None:
         convection = LinkLabel(owner, "convection_inside")
         at = grid.low[board.axis] + (size[board.axis] if SIGN[side] > 0 else 0.0)
         patch = site.patches.add_face(board.name, side, grid, board.axis, SIGN[side], at)
-        builder.plate_film(plate.cells, plate.mean, site.air, bare, face, convection)
+        site.air_site.add_plate(
+            plate,
+            grid,
+            board.axis,
+            SIGN[side],
+            at,
+            bare - half_rim,
+            face,
+            builder.label(convection),
+            is_board=True,
+            size=size,
+        )
         site.surfaces.append(
             InsideSurface(
                 plate.cells,
@@ -64,6 +92,8 @@ def _build_board(case: Case, board: BoardCase, site: Site) -> None:
                 LinkLabel(owner, "radiation_inside"),
             )
         )
+    rim = builder.label(LinkLabel(owner, "convection_inside"))
+    site.air_site.add_rim(plate, grid, board.axis, size, 2 * half_rim, rim)
     power = board.other_power_w / plate.cells.size
     builder.heat(plate.cells, power, LinkLabel(owner, "power"))
 

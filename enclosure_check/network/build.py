@@ -1,9 +1,14 @@
 """From a case to its network: sets up the surroundings and the air, then runs the builders."""
 
+import numpy as np
+
 from enclosure_check.description.case import Case
 from enclosure_check.network.boards import build_boards
+from enclosure_check.network.cables import build_cables
+from enclosure_check.network.features import build_features
 from enclosure_check.network.grid import GridOptions
 from enclosure_check.network.inside import build_inside_radiation
+from enclosure_check.network.links import LinkLabel
 from enclosure_check.network.network import Network, Places
 from enclosure_check.network.parts import build_parts
 from enclosure_check.network.site import Site
@@ -15,15 +20,29 @@ def build_network(case: Case, options: GridOptions | None = None) -> Network:
     site = Site.of(case, options or GridOptions())
     build_walls(case, site)
     build_boards(case, site)
-    build_parts(case, site)
+    covers = build_features(case, site)
+    build_parts(case, site, covers)
+    build_cables(case, site)
     build_inside_radiation(site)
+    build_inside_air(site)
     return site.builder.finish(
         Places(
             ambient=site.ambient,
             air=site.air,
+            air_nodes=site.air_nodes,
+            air_heights=np.linspace(0.0, site.air_site.height, len(site.air_nodes)),
             wall_outside=site.wall_outside,
             wall_inside=site.wall_inside,
             boards=site.boards,
             parts=site.parts,
         )
+    )
+
+
+def build_inside_air(site: Site) -> None:
+    """Join every film inside to the air, and the air to itself."""
+    builder = site.builder
+    labels = {role: builder.label(LinkLabel("inside", role)) for role in ("lift", "mixing")}
+    builder.add(
+        site.air_site.build(site.air_nodes, builder.reference_k, builder.pressure_pa, labels)
     )

@@ -1,13 +1,13 @@
 """Collects nodes and links while the small builders run, then makes the network of them."""
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass, field
 from typing import Any
 
 import numpy as np
 from numpy.typing import ArrayLike
 
-from enclosure_check.network.films import BodyFilm, BoxFilm, PlateFilm
+from enclosure_check.network.films import BoxFilm
 from enclosure_check.network.links import (
     Conduction,
     FloatArray,
@@ -71,35 +71,6 @@ class Blocks:
 _ENDS = ("a", "b", "label")
 
 
-class FilmBlocks:
-    """Films of one kind: cells in blocks, and one row per surface."""
-
-    def __init__(self, values: Sequence[str]) -> None:
-        self.cells = Blocks((*_ENDS, "surface"), ("area",))
-        self.surfaces = Blocks(("mean", "air"), values)
-
-    def add(
-        self,
-        length: int,
-        cells: ArrayLike,
-        air: ArrayLike,
-        label: int,
-        area: ArrayLike,
-        nodes: tuple[int, int],
-        values: Sequence[float],
-    ) -> None:
-        """Add one surface with so many cells."""
-        self.cells.add(length, (cells, air, label, self.surfaces.count), (area,))
-        self.surfaces.add(1, nodes, values)
-
-    def columns(self) -> dict[str, Any]:
-        """Give every column by name."""
-        rows = self.surfaces.columns()
-        nodes = np.stack((rows.pop("mean"), rows.pop("air")))
-        factor = np.ones((nodes.shape[1], 1))
-        return {**self.cells.columns(), **rows, "nodes": nodes, "factor": factor}
-
-
 @dataclass
 class NetworkBuilder:
     """Nodes and links being collected; temperatures in kelvin, all else in SI."""
@@ -114,9 +85,7 @@ class NetworkBuilder:
         self._conduction = Blocks((*_ENDS, "x", "y"), ("conductance",))
         self._radiation = Blocks((*_ENDS, "x", "y"), Radiation.PARAMETERS)
         self._exchange = Blocks((*_ENDS, "c", "d"), PatchExchange.PARAMETERS)
-        self._plates = FilmBlocks(PlateFilm.PARAMETERS[2:])
-        self._bodies = FilmBlocks(BodyFilm.PARAMETERS[2:])
-        self._boxes: list[LinkKind] = []
+        self._made: list[LinkKind] = []
         self._sources = Blocks(("node", "label"), ("power", "stated_at_k", "slope", "doublings"))
         self.nowhere = self.node("no place", self.reference_k)
 
@@ -139,7 +108,7 @@ class NetworkBuilder:
     def mean(self, label: str, cells: IntArray, weights: ArrayLike) -> int:
         """Give a node that keeps the weighted mean of cells, which is no heat."""
         node = self.node(label)
-        row = self._label(LinkLabel(label, "mean"))
+        row = self.label(LinkLabel(label, "mean"))
         share = np.ravel(weights) / np.sum(weights)
         flat = cells.ravel()
         self._conduction.add(flat.size, (node, self.nowhere, row, node, flat), (share,))
@@ -151,7 +120,7 @@ class NetworkBuilder:
         """Join nodes by conductances [W/K], one by one where arrays are given."""
         a, b, conductance = np.ravel(a), np.ravel(b), np.ravel(conductance)
         length = max(a.size, b.size)
-        self._conduction.add(length, (a, b, self._label(label), a, b), (conductance,))
+        self._conduction.add(length, (a, b, self.label(label), a, b), (conductance,))
 
     def resist(self, a: int, b: int, resistance: float, label: LinkLabel) -> None:
         """Join two nodes by a resistance [K/W]; one of nothing by the least there is."""
@@ -180,7 +149,7 @@ class NetworkBuilder:
         negative (see `PlateGrid.sub_cell`) but not nothing.
         """
         flow, flat = np.ravel(shares) / resistance, cells.ravel()
-        self._conduction.add(flat.size, (a, flat, self._label(label), a, mean), (flow,))
+        self._conduction.add(flat.size, (a, flat, self.label(label), a, mean), (flow,))
 
     def radiate(
         self,
@@ -194,7 +163,7 @@ class NetworkBuilder:
     ) -> None:
         """Join nodes by radiation; areas [m2]."""
         if share > 0:
-            a, b, row = np.ravel(a), np.ravel(b), self._label(label)
+            a, b, row = np.ravel(a), np.ravel(b), self.label(label)
             values = (np.ravel(area), np.ravel(exchange_area), share, emissivity)
             self._radiation.add(a.size, (a, b, row, a, b), values)
 
@@ -203,7 +172,7 @@ class NetworkBuilder:
     ) -> int:
         """Give a node that keeps the mean emission of cells, which is no heat."""
         node = self.node(label)
-        row = self._label(LinkLabel(label, "mean"))
+        row = self.label(LinkLabel(label, "mean"))
         values = (area, area, 1.0, emissivity)
         self._radiation.add(cells.size, (node, self.nowhere, row, node, cells), values)
         return node
@@ -217,36 +186,12 @@ class NetworkBuilder:
         label: LinkLabel,
     ) -> None:
         """Join patches by their irradiation and emission nodes, pair by pair; areas [m2]."""
-        numbers = (*irradiation, self._label(label), *emission)
+        numbers = (*irradiation, self.label(label), *emission)
         self._exchange.add(exchange_area.size, numbers, (exchange_area, *emissivity))
 
-    def plate_film(
-        self,
-        cells: ArrayLike,
-        mean: int,
-        air: int,
-        area: ArrayLike,
-        face: PlaneFace,
-        label: LinkLabel,
-    ) -> None:
-        """Join a plane face to air; ``area`` of its cells [m2] is what they convect with."""
-        values = (face.fall_length, face.area_perimeter_length, face.up_cosine)
-        cells = np.ravel(cells)
-        row, nodes = self._label(label), (mean, air)
-        self._plates.add(cells.size, cells, air, row, np.ravel(area), nodes, values)
-
-    def body_film(
-        self,
-        a: int,
-        air: int,
-        area: float,
-        body_area: float,
-        gravity_function: float,
-        label: LinkLabel,
-    ) -> None:
-        """Join a small body to air; areas [m2]."""
-        values = (body_area, gravity_function)
-        self._bodies.add(1, a, air, self._label(label), area, (a, air), values)
+    def add(self, kind: LinkKind) -> None:
+        """Add links of a kind of their own."""
+        self._made.append(kind)
 
     def box_film(
         self,
@@ -260,9 +205,9 @@ class NetworkBuilder:
         blocks = Blocks((*_ENDS, "surface"), ("area",))
         for index, (face, label) in enumerate(zip(cells, labels, strict=True)):
             area = geometry.area[index] / face.size
-            blocks.add(face.size, (face.ravel(), air, self._label(label), index), (area,))
+            blocks.add(face.size, (face.ravel(), air, self.label(label), index), (area,))
         nodes = np.repeat(np.array([*means, air])[:, None], 6, axis=1)
-        self._boxes.append(
+        self.add(
             BoxFilm(
                 **blocks.columns(),
                 nodes=nodes,
@@ -283,24 +228,21 @@ class NetworkBuilder:
     ) -> None:
         """Put heat [W] into nodes, growing with their temperature if so said [1/K]."""
         if np.any(power):
-            node, row = np.ravel(node), self._label(label)
+            node, row = np.ravel(node), self.label(label)
             self._sources.add(node.size, (node, row), (power, stated_at_k, slope, doublings))
 
     def finish(self, places: Places) -> Network:
         """Make the network."""
-        in_air: dict[str, Any] = {"pressure_pa": self.pressure_pa}
-        made: list[tuple[Any, Blocks | FilmBlocks, Mapping[str, Any]]] = [
-            (Conduction, self._conduction, {}),
-            (Radiation, self._radiation, {}),
-            (PatchExchange, self._exchange, {}),
-            (PlateFilm, self._plates, in_air),
-            (BodyFilm, self._bodies, in_air),
+        made: list[tuple[Any, Blocks]] = [
+            (Conduction, self._conduction),
+            (Radiation, self._radiation),
+            (PatchExchange, self._exchange),
         ]
         kinds: list[LinkKind] = []
-        for kind, blocks, more in made:
+        for kind, blocks in made:
             columns = blocks.columns()
             if columns["a"].size:
-                kinds.append(kind(**columns, **more))
+                kinds.append(kind(**columns))
         fixed = np.array([value is not None for value in self._fixed_k])
         rise = [0.0 if value is None else value - self.reference_k for value in self._fixed_k]
         return Network(
@@ -310,10 +252,11 @@ class NetworkBuilder:
             fixed_rise=np.array(rise)[:, None],
             nowhere=self.nowhere,
             labels=tuple(self._labels),
-            kinds=(*kinds, *self._boxes),
+            kinds=(*kinds, *self._made),
             sources=Sources(**self._sources.columns()),
             places=places,
         )
 
-    def _label(self, label: LinkLabel) -> int:
+    def label(self, label: LinkLabel) -> int:
+        """Give the number of a label."""
         return self._labels.setdefault(label, len(self._labels))

@@ -122,7 +122,7 @@ class Films(Links):
         indirect = by_node[:, self.surface] * (self.area * (rise[0] - rise[1]))
         return np.concatenate((np.stack((direct, -direct)), indirect))
 
-    def nominal(self, reference_k: FloatArray) -> FloatArray:
+    def factors(self, reference_k: FloatArray) -> FloatArray:
         """Factors at a nominal rise [W/K], shape (2 + n, m, 1)."""
         n, s = self.nodes.shape
         rise = np.full((n, s, 1), NOMINAL_RISE_K)

@@ -55,7 +55,7 @@ def build_inside_radiation(site: Site) -> None:
         LinkLabel("inside", "radiation"),
     )
     # Between perfect mirrors no irradiation is determined; a trace of one holds them at rest.
-    builder.conduct(irradiation, site.air, TRACE_W_PER_K, LinkLabel("inside", "trace"))
+    builder.conduct(irradiation, site.air_nodes[0], TRACE_W_PER_K, LinkLabel("inside", "trace"))
 
 
 # Far below what any check can tell; see above. [W/K]

@@ -6,6 +6,7 @@ kind, each depending on ``k`` nodes, ``v`` variants computed at once on the trai
 """
 
 from dataclasses import dataclass, replace
+from functools import cached_property
 from typing import Any, ClassVar, NamedTuple, Protocol, Self
 
 import numpy as np
@@ -51,34 +52,46 @@ class LinkKind(Protocol):
         """Number of each link's label in the network's table, shape (m,)."""
 
     @property
-    def stencil(self) -> IntArray:
-        """Nodes each link depends on, shape (k, m)."""
+    def pattern(self) -> tuple[IntArray, IntArray]:
+        """Link and node of every derivative, shapes (d,)."""
 
-    def heat(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
+    def evaluate(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
         """Heat rate from ``a`` to ``b`` [W], shape (m, v).
 
         Parameters
         ----------
         rise
-            Rises of the stencil's nodes [K], shape (k, m, v).
+            Rises of all nodes [K], shape (n, v).
         reference_k
             Temperature the rises count from [K], shape (v,).
         """
 
-    def heat_by_rise(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
-        """Derivative of `heat` by each rise of the stencil [W/K], shape (k, m, v)."""
+    def slopes(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
+        """Derivatives of `evaluate` in the order of `pattern` [W/K], shape (d, v)."""
 
     def nominal(self, reference_k: FloatArray) -> FloatArray:
-        """Factors of a linear link that behaves so at a nominal rise [W/K], shape (k, m, 1)."""
+        """Factors of a linear link that behaves so at a nominal rise [W/K], shape (d, 1)."""
 
-    def heat_by_parameter(self, rise: FloatArray, reference_k: FloatArray, name: str) -> FloatArray:
-        """Derivative of `heat` by the link's own value of a parameter, shape (m, v)."""
+    def weighted_by_parameter(
+        self, rise: FloatArray, reference_k: FloatArray, weight: FloatArray, name: str
+    ) -> FloatArray:
+        """Derivative of the weighted sum of heat rates by each value of a parameter, shape (p,).
 
-    def parameter_of(self, name: str) -> IntArray:
-        """Which value of a parameter is each link's own, shape (m,)."""
+        Parameters
+        ----------
+        rise, reference_k
+            As `evaluate`, of one variant.
+        weight
+            Weight of each link, shape (m,).
+        name
+            One of ``PARAMETERS``.
+        """
 
     def with_parameter(self, name: str, value: FloatArray) -> Self:
         """Give the same links with other values of a parameter, shape (p, 1) or (p, v)."""
+
+    def stirred(self, share: float) -> Self:
+        """Give the links with the inside air stirred by a share of what its films carry."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -96,8 +109,43 @@ class Links:
         """Nodes each link depends on, shape (k, m)."""
         return np.stack((self.a, self.b))
 
+    @cached_property
+    def pattern(self) -> tuple[IntArray, IntArray]:
+        """Link and node of every derivative, shapes (k m,)."""
+        stencil = self.stencil
+        link = np.broadcast_to(np.arange(stencil.shape[1]), stencil.shape)
+        return link.ravel(), stencil.ravel()
+
+    def evaluate(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
+        """Heat rate from ``a`` to ``b`` [W] from the rises of all nodes (n, v), shape (m, v)."""
+        return self.heat(rise[self.stencil], reference_k)
+
+    def slopes(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
+        """Derivatives of `evaluate` in the order of `pattern` [W/K], shape (k m, v)."""
+        slopes = self.heat_by_rise(rise[self.stencil], reference_k)
+        return slopes.reshape(-1, rise.shape[1])
+
+    def nominal(self, reference_k: FloatArray) -> FloatArray:
+        """Factors of a linear link that behaves so at a nominal rise [W/K], shape (k m, 1)."""
+        return self.factors(reference_k).reshape(-1, 1)
+
+    def weighted_by_parameter(
+        self, rise: FloatArray, reference_k: FloatArray, weight: FloatArray, name: str
+    ) -> FloatArray:
+        """Derivative of the weighted sum of heat rates by each value of a parameter, shape (p,)."""
+        slopes = self.heat_by_parameter(rise[self.stencil], reference_k, name)[:, 0]
+        return np.asarray(np.bincount(self.parameter_of(name), weight * slopes), dtype=np.float64)
+
     def heat(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
-        """Heat rate from ``a`` to ``b`` [W], shape (m, v)."""
+        """Heat rate from ``a`` to ``b`` [W] from the rises of the stencil (k, m, v), (m, v)."""
+        raise NotImplementedError
+
+    def heat_by_rise(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
+        """Derivative of `heat` by each rise of the stencil [W/K], shape (k, m, v)."""
+        raise NotImplementedError
+
+    def factors(self, reference_k: FloatArray) -> FloatArray:
+        """Factors of the stencil's rises at a nominal rise [W/K], shape (k, m, 1)."""
         raise NotImplementedError
 
     def heat_by_parameter(self, rise: FloatArray, reference_k: FloatArray, name: str) -> FloatArray:
@@ -108,6 +156,10 @@ class Links:
         change = moved.heat(rise, reference_k) - self.heat(rise, reference_k)
         slope: FloatArray = change / step[self.parameter_of(name)]
         return slope
+
+    def stirred(self, share: float) -> Self:
+        """Give the links with the inside air stirred: the same, where no air is in them."""
+        return self
 
     def parameter_of(self, name: str) -> IntArray:
         """Which value of a parameter is each link's own: its own one, unless said otherwise."""
@@ -151,7 +203,7 @@ class Conduction(Links):
         g = np.broadcast_to(self.conductance, rise.shape[1:])
         return np.stack((g, -g))
 
-    def nominal(self, reference_k: FloatArray) -> FloatArray:
+    def factors(self, reference_k: FloatArray) -> FloatArray:
         """Factors of the link itself [W/K], shape (2, m, 1)."""
         g = self.conductance[:, :1]
         return np.stack((g, -g))
@@ -198,7 +250,7 @@ class Radiation(Links):
         slope[1] *= -1.0
         return slope
 
-    def nominal(self, reference_k: FloatArray) -> FloatArray:
+    def factors(self, reference_k: FloatArray) -> FloatArray:
         """Factors at a nominal rise [W/K], shape (2, m, 1)."""
         slope = 4.0 * self._conductance()[:, :1] * (reference_k + NOMINAL_RISE_K) ** 3
         return np.stack((slope, -slope))
@@ -255,7 +307,7 @@ class PatchExchange(Links):
         slope: FloatArray = absolute * absolute * absolute * self._factors()
         return slope
 
-    def nominal(self, reference_k: FloatArray) -> FloatArray:
+    def factors(self, reference_k: FloatArray) -> FloatArray:
         """Factors at a nominal rise [W/K], shape (4, m, 1)."""
         slope: FloatArray = self._factors()[:, :, :1] * (reference_k + NOMINAL_RISE_K) ** 3
         return slope

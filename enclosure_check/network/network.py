@@ -113,6 +113,11 @@ class Places:
 
     ambient: int
     air: int
+    """Mean of the inside air."""
+    air_nodes: IntArray
+    """From the bottom up."""
+    air_heights: FloatArray
+    """Of the air nodes over the lowest point of the inside [m]."""
     wall_outside: dict[str, PlateNodes]
     wall_inside: dict[str, PlateNodes]
     boards: dict[str, PlateNodes]
@@ -169,10 +174,6 @@ class Network:
         return len(self.node_labels)
 
     @cached_property
-    def _stencils(self) -> tuple[IntArray, ...]:
-        return tuple(kind.stencil for kind in self.kinds)
-
-    @cached_property
     def _ends(self) -> tuple[IntArray, IntArray]:
         """Nodes the heat of all links leaves and enters, kinds one after the other."""
         return (
@@ -194,15 +195,15 @@ class Network:
         Derivatives of or by nodes of given temperature go to one place past its end.
         """
         u, positions = len(self.unknown), self._positions
-        columns = [positions[stencil] for stencil in self._stencils]
+        patterns = [kind.pattern for kind in self.kinds]
+        columns = [positions[node] for _, node in patterns]
         rows = [
-            np.broadcast_to(positions[end], column.shape)
+            positions[end[link]]
             for ends in ("a", "b")
-            for kind, column in zip(self.kinds, columns, strict=True)
+            for kind, (link, _) in zip(self.kinds, patterns, strict=True)
             for end in (getattr(kind, ends),)
         ]
-        row = np.concatenate([entry.ravel() for entry in rows])
-        column = np.concatenate([entry.ravel() for entry in columns] * 2)
+        row, column = np.concatenate(rows), np.concatenate(columns * 2)
         flat = np.where((row >= 0) & (column >= 0), row * u + column, u * u)
         own = positions[self.sources.node]
         return np.concatenate((flat, np.where(own >= 0, own * (u + 1), u * u)))
@@ -226,12 +227,7 @@ class Network:
 
     def heat(self, rise: FloatArray) -> FloatArray:
         """Heat through every link from its ``a`` to its ``b`` [W], shape (links, v)."""
-        return np.concatenate(
-            [
-                kind.heat(rise[stencil], self.reference_k)
-                for kind, stencil in zip(self.kinds, self._stencils, strict=True)
-            ]
-        )
+        return np.concatenate([kind.evaluate(rise, self.reference_k) for kind in self.kinds])
 
     def imbalance(self, rise: FloatArray, heat: FloatArray | None = None) -> FloatArray:
         """Heat leaving each node through links less heat put in [W], shape (n, v)."""
@@ -245,12 +241,7 @@ class Network:
 
     def jacobian(self, rise: FloatArray) -> FloatArray:
         """Derivative of the unknown nodes' `imbalance` by their rises [W/K], shape (v, u, u)."""
-        links = np.concatenate(
-            [
-                kind.heat_by_rise(rise[stencil], self.reference_k).reshape(-1, rise.shape[1])
-                for kind, stencil in zip(self.kinds, self._stencils, strict=True)
-            ]
-        )
+        links = np.concatenate([kind.slopes(rise, self.reference_k) for kind in self.kinds])
         own = self.sources.heat_by_rise(rise[self.sources.node], self.reference_k)
         values = np.concatenate((links, -links, -own))
         if rise.shape[1] == 1:
@@ -260,18 +251,22 @@ class Network:
     def first_guess(self) -> FloatArray:
         """Rises of the linear network whose links behave as at a nominal rise [K], shape (u, v)."""
         factors = [kind.nominal(self.reference_k[:1]) for kind in self.kinds]
-        links = np.concatenate([factor.ravel() for factor in factors])
+        links = np.concatenate(factors)[:, 0]
         own = np.zeros(len(self.sources.node))
         matrix = self._matrix(np.concatenate((links, -links, own)))
         pulled = np.concatenate(
             [
-                np.sum(factor * self.fixed_rise[stencil], axis=0)
-                for factor, stencil in zip(factors, self._stencils, strict=True)
+                _summed(kind.pattern[0], factor * self.fixed_rise[kind.pattern[1]], len(kind.a))
+                for kind, factor in zip(self.kinds, factors, strict=True)
             ]
         )
         cold = replace(self.sources, slope=np.zeros(1), doublings=np.zeros(1))
         right = -replace(self, sources=cold).imbalance(self.fixed_rise, pulled)[self.unknown]
         return np.asarray(np.linalg.solve(matrix, right), dtype=np.float64)
+
+    def stirred(self, share: float) -> "Network":
+        """Give the network with its inside air stirred, close to one body of air at 3 or more."""
+        return replace(self, kinds=tuple(kind.stirred(share) for kind in self.kinds))
 
     def _matrix(self, values: FloatArray) -> FloatArray:
         """Add derivatives up at their places: shape (u, u)."""
@@ -281,10 +276,14 @@ class Network:
 
     def _sum_at(self, node: IntArray, values: FloatArray) -> FloatArray:
         """Add values (e, v) up at their nodes (e,): shape (n, v)."""
-        v = values.shape[1]
-        if v == 1:
-            one = np.bincount(node, values[:, 0], self.size)
-            return np.asarray(one, dtype=np.float64)[:, None]
-        flat = (node[:, None] * v + np.arange(v)).ravel()
-        total = np.bincount(flat, values.ravel(), self.size * v)
-        return np.asarray(total, dtype=np.float64).reshape(self.size, v)
+        return _summed(node, values, self.size)
+
+
+def _summed(index: IntArray, values: FloatArray, size: int) -> FloatArray:
+    """Add values (e, v) up at their indices (e,): shape (size, v)."""
+    v = values.shape[1]
+    if v == 1:
+        return np.asarray(np.bincount(index, values[:, 0], size), dtype=np.float64)[:, None]
+    flat = (index[:, None] * v + np.arange(v)).ravel()
+    total = np.bincount(flat, values.ravel(), size * v)
+    return np.asarray(total, dtype=np.float64).reshape(size, v)

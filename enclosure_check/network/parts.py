@@ -3,7 +3,8 @@
 import numpy as np
 
 from enclosure_check.description.case import Case, PadCase, PartCase
-from enclosure_check.description.frames import AXIS, OPPOSITE
+from enclosure_check.description.frames import AXIS, OPPOSITE, SIGN
+from enclosure_check.network.features import Covers
 from enclosure_check.network.links import LinkLabel
 from enclosure_check.network.network import PartNodes
 from enclosure_check.network.site import InsideSurface, Site, Spot, footprint
@@ -15,13 +16,13 @@ from enclosure_check.physics.bodies import cuboid_gravity_function_tilted
 BODY_STAND_OFF = 1e-4
 
 
-def build_parts(case: Case, site: Site) -> None:
-    """Add the nodes of every part and join them."""
+def build_parts(case: Case, site: Site, covers: Covers) -> None:
+    """Add the nodes of every part and join them, to what lies over them too."""
     for part in case.parts.values():
-        _build_part(part, site)
+        _build_part(part, site, covers)
 
 
-def _build_part(part: PartCase, site: Site) -> None:
+def _build_part(part: PartCase, site: Site, covers: Covers) -> None:
     builder, owner = site.builder, f"part:{part.name}"
     junction = builder.node(f"{part.name} junction")
     doubling = part.power_doubling_k
@@ -44,12 +45,13 @@ def _build_part(part: PartCase, site: Site) -> None:
         board = _join_board(part, junction, site)
     elif part.place == "wall":
         _join_wall(part, junction, site)
-    _join_air(part, case, site)
+    _join_air(part, case, site, covers)
+    under = covers.can_over(part)
     site.parts[part.name] = PartNodes(
         junction,
         case,
         None if board is None else board.node,
-        site.air,
+        site.air_at(metres_3(part.centre_mm), f"air at {part.name}") if under is None else under[1],
         0.0 if board is None else board.peak_k_per_w,
     )
 
@@ -77,8 +79,8 @@ def _join_wall(part: PartCase, junction: int, site: Site) -> None:
     site.builder.resist(junction, spot.node, resistance, LinkLabel(owner, "to_wall"))
 
 
-def _join_air(part: PartCase, case: int, site: Site) -> None:
-    """Join a part's free surface to the air, to radiation, and through its pad to a wall."""
+def _join_air(part: PartCase, case: int, site: Site, covers: Covers) -> None:
+    """Join a part's free surface to the air and to radiation, the rest to what covers it."""
     builder, owner = site.builder, f"part:{part.name}"
     size = metres_3(part.size_mm)
     whole = 2 * (size[0] * size[1] + size[1] * size[2] + size[2] * size[0])
@@ -87,7 +89,9 @@ def _join_air(part: PartCase, case: int, site: Site) -> None:
         free = whole
         patch = site.patches.add_body(metres_3(part.low_mm), size)
         gravity = float(cuboid_gravity_function_tilted(size, site.up))
-        builder.body_film(case, site.air, free, whole, gravity, convection)
+        face = site.plane_face(size, 2, 1)
+        low = metres_3(part.low_mm)
+        site.convect_body(case, free, low, size, face, convection, (whole, gravity))
     elif part.place == "wall":
         free = whole - footprint(part)
         wall = OPPOSITE[part.side]
@@ -95,15 +99,26 @@ def _join_air(part: PartCase, case: int, site: Site) -> None:
         mirrored = list(size)
         mirrored[AXIS[part.side]] *= 2
         gravity = float(cuboid_gravity_function_tilted(mirrored, site.up))
-        builder.body_film(case, site.air, free, 2 * free, gravity, convection)
+        face, low = site.plane_face(size, AXIS[part.side], SIGN[part.side]), metres_3(part.low_mm)
+        surface = site.convect_body(case, free, low, size, face, convection, (2 * free, gravity))
+        top = footprint(part)
+        site.add_top(surface, case, top, AXIS[part.side], SIGN[part.side], low, size)
     else:
         free = whole - footprint(part)
         if part.pad is not None:
             free -= part.pad.area_mm2 * 1e-6
             _join_pad(part, part.pad, case, site)
+        left = covers.join(part, case)
+        free *= left
+        if free == 0.0:
+            return
         patch = site.patches.under(part.host, part.side, metres_3(part.centre_mm))
         face = site.board_faces[part.host, part.side]
-        builder.plate_film(case, case, site.air, free, face, convection)
+        low = metres_3(part.low_mm)
+        surface = site.convect_body(case, free, low, size, face, convection)
+        if part.pad is None:
+            top = left * footprint(part)
+            site.add_top(surface, case, top, AXIS[part.side], SIGN[part.side], low, size)
     site.surfaces.append(
         InsideSurface(
             np.array([case]),

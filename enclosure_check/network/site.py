@@ -6,6 +6,7 @@ import numpy as np
 
 from enclosure_check.description.case import Case, PartCase
 from enclosure_check.description.frames import AXIS, Vector
+from enclosure_check.network.air import AIR_NODES, AirSite, Film, Top
 from enclosure_check.network.builder import NetworkBuilder, PlaneFace
 from enclosure_check.network.grid import GridOptions, PlateGrid
 from enclosure_check.network.links import FloatArray, IntArray, LinkLabel
@@ -47,6 +48,9 @@ class Site:
     radiant: int
     sky: int | None
     air: int
+    """Mean of the inside air; heat goes to and from its nodes."""
+    air_nodes: IntArray
+    air_site: AirSite
     air_conductivity: float
     surfaces: list[InsideSurface] = field(default_factory=list)
     patches: Patches = field(default_factory=Patches)
@@ -70,6 +74,8 @@ class Site:
             "overcast": air_k,
             "given": None if around.sky_c is None else kelvin(around.sky_c),
         }[around.sky]
+        inside = metres_3(case.inside_mm)
+        air_nodes = builder.nodes("inside air", (AIR_NODES,))
         return cls(
             builder=builder,
             options=options,
@@ -77,7 +83,9 @@ class Site:
             ambient=builder.node("surrounding air", air_k),
             radiant=builder.node("radiant surroundings", kelvin(around.radiant_c)),
             sky=None if sky_k is None else builder.node("sky", sky_k),
-            air=builder.node("inside air"),
+            air=builder.mean("inside air, mean", air_nodes, AIR_SHARES),
+            air_nodes=air_nodes,
+            air_site=AirSite(case.up, inside),
             air_conductivity=float(air(air_k, pressure).conductivity),
         )
 
@@ -96,6 +104,76 @@ class Site:
         cells = self.builder.nodes(label, grid.counts)
         mean = self.builder.mean(f"{label}, mean", cells, np.ones(cells.size))
         return PlateNodes(cells, mean)
+
+    def warm_air(self, power: float, label: LinkLabel, **growth: float) -> None:
+        """Put heat [W] into the inside air at all heights alike."""
+        self.builder.heat(self.air_nodes, power * AIR_SHARES, label, **growth)
+
+    def conduct_from_air(self, node: int, conductance: float, label: LinkLabel) -> None:
+        """Join the inside air at all heights alike to a node by a conductance [W/K]."""
+        self.builder.conduct(self.air_nodes, node, conductance * AIR_SHARES, label)
+
+    def air_at(self, point: Vector, label: str) -> int:
+        """Give a node that keeps the temperature of the inside air at a point of the box frame."""
+        share = self.air_site.share(self.air_site.heights(np.array([point])))[0]
+        near = share > 0
+        return self.builder.mean(label, self.air_nodes[near], share[near])
+
+    def convect_body(
+        self,
+        node: int,
+        area: float,
+        low: Vector,
+        size: Vector,
+        face: PlaneFace,
+        label: LinkLabel,
+        body: tuple[float, float] | None = None,
+    ) -> int:
+        """Add the film of a part or can of one temperature; gives its number.
+
+        Parameters
+        ----------
+        node
+            Its node.
+        area
+            What convects [m2].
+        low, size
+            Its extent in the box frame [m].
+        face
+            Of the surface it stands on, whose plate law it takes; its own for the others.
+        label
+            Whose it is.
+        body
+            Area of the body with its mirror images [m2] and gravity function, where it follows
+            the cuboid law.
+        """
+        x, y, z = (start + extent / 2 for start, extent in zip(low, size, strict=True))
+        high = tuple(start + extent for start, extent in zip(low, size, strict=True))
+        return self.air_site.add(
+            Film(
+                node,
+                self.builder.label(label),
+                np.array([node]),
+                np.array([[x, y, z]]),
+                np.array([area]),
+                low,
+                (high[0], high[1], high[2]),
+                face,
+                body=body,
+                stream_length=float(np.cbrt(np.prod(size))),
+            )
+        )
+
+    def add_top(
+        self, surface: int, node: int, area: float, axis: int, sign: int, low: Vector, size: Vector
+    ) -> None:
+        """Let the top of a part or can look at what lies across the air from it."""
+        if area <= 0:
+            return
+        x, y, z = (start + extent / 2 for start, extent in zip(low, size, strict=True))
+        at = low[axis] + (size[axis] if sign > 0 else 0.0)
+        length = self.air_site.films[surface].face.fall_length
+        self.air_site.tops.append(Top(surface, node, area, axis, sign, at, (x, y, z), length))
 
     def conduct_along(
         self, cells: IntArray, grid: PlateGrid, share: float, label: LinkLabel
@@ -142,6 +220,9 @@ class Site:
         return Spot(node, peak)
 
 
+# Shares of the air nodes in the mean of a profile that is linear between them. [-]
+AIR_SHARES = np.full(AIR_NODES, 1.0 / (AIR_NODES - 1))
+AIR_SHARES[[0, -1]] *= 0.5
 # A spreading term this small is told from none by nobody. [K/W]
 LEAST_SPREADING = 1e-5
 

@@ -64,8 +64,17 @@ def _build_wall(case: Case, name: WallName, inside: Vector, outside: Vector, sit
     face = site.plane_face(inside, axis, -SIGN[name])
     at = 0.0 if SIGN[name] < 0 else inside[axis]
     patch = site.patches.add_face(name, name, grid, axis, -SIGN[name], at)
-    builder.plate_film(
-        inner.cells, inner.mean, site.air, bare, face, LinkLabel(owner, "convection_inside")
+    site.air_site.add_plate(
+        inner,
+        grid,
+        axis,
+        -SIGN[name],
+        at,
+        bare,
+        face,
+        builder.label(LinkLabel(owner, "convection_inside")),
+        is_board=False,
+        size=inside,
     )
     site.surfaces.append(
         InsideSurface(
@@ -129,7 +138,7 @@ def _join_corner(one: WallName, other: WallName, site: Site) -> None:
     conductance = shared[touching] / (half[0] / sheets[0] + half[1] / sheets[1])
     for faces in (site.wall_outside, site.wall_inside):
         rows = [
-            _edge_cells(faces[wall].cells, grid, AXIS[beyond], SIGN[beyond])
+            edge_cells(faces[wall].cells, grid, AXIS[beyond], SIGN[beyond])
             for wall, grid, beyond in (
                 (one, grids[0], other),
                 (other, grids[1], one),
@@ -138,7 +147,7 @@ def _join_corner(one: WallName, other: WallName, site: Site) -> None:
         site.builder.conduct(rows[0][touching[0]], rows[1][touching[1]], conductance, label)
 
 
-def _edge_cells(cells: IntArray, grid: PlateGrid, axis: int, sign: int) -> IntArray:
+def edge_cells(cells: IntArray, grid: PlateGrid, axis: int, sign: int) -> IntArray:
     """Give the row of cells along the edge that lies at one end of an axis."""
     along = np.moveaxis(cells, grid.axes.index(axis), 0)
     return np.asarray(along[0 if sign < 0 else -1])

@@ -395,7 +395,7 @@ def _visible_share(
     for begin in range(0, share.size, step):
         part = slice(begin, begin + step)
         start, along, weight = kind.rays(ends[part], points)
-        inverse = 1.0 / np.where(along == 0.0, _TINY, along)
+        inverse = 1.0 / np.where(np.abs(along) < _TINY, _TINY, along)
         cut = np.zeros(weight.shape, dtype=np.bool_)
         for box in np.flatnonzero(candidates[part].any(axis=0)):
             k = np.flatnonzero(candidates[part, box])
@@ -558,6 +558,9 @@ def consistent_exchange_areas(exchange: ArrayLike, area: ArrayLike) -> FloatArra
 
 def exchange_areas(patches: Rectangles, obstacles: Boxes) -> FloatArray:
     """Consistent exchange areas between all patches of a closed space.
+
+    For grey exchange take the row sums as the radiating areas: they are less than ``patches.area``
+    where something stands on a patch.
 
     Parameters
     ----------

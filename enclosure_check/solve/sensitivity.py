@@ -4,7 +4,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from enclosure_check.network.links import FloatArray, IntArray
+from enclosure_check.network.links import FloatArray
 from enclosure_check.network.network import Network
 from enclosure_check.solve.steady import Solution
 
@@ -57,23 +57,15 @@ def sensitivities(network: Network, solution: Solution, node: int) -> Sensitivit
     by_node = np.zeros(network.size)
     by_parameter = []
     for kind in network.kinds:
-        ends = rise[kind.stencil]
         between = weight[kind.a] - weight[kind.b]
-        slopes = kind.heat_by_rise(ends, reference)[:, :, 0]
-        np.add.at(by_node, kind.stencil, -between * slopes)
+        link, at = kind.pattern
+        np.add.at(by_node, at, -between[link] * kind.slopes(rise, reference)[:, 0])
         by_parameter.append(
             {
-                name: _summed(
-                    kind.parameter_of(name),
-                    -between * kind.heat_by_parameter(ends, reference, name)[:, 0],
-                )
+                name: -kind.weighted_by_parameter(rise, reference, between, name)
                 for name in kind.PARAMETERS
             }
         )
     by_fixed = np.where(network.fixed, by_node, 0.0)
     return Sensitivities(weight[sources.node] * unit, by_fixed, tuple(by_parameter))
 
-
-def _summed(index: IntArray, values: FloatArray) -> FloatArray:
-    """Add the links' derivatives up by the parameter they share."""
-    return np.asarray(np.bincount(index, values), dtype=np.float64)

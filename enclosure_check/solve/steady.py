@@ -117,6 +117,9 @@ _LARGEST_MU = 1e9
 COLDER_K = 1e-6
 # The linear guess is not believed beyond this. [K]
 _FARTHEST_GUESS_K = 1_000.0
+# Stirring of the inside air on the way to an answer that Newton does not find at once, over what
+# its films carry.
+_STIRRINGS = (3.0, 0.3, 0.1, 0.03, 0.01, 0.003, 0.001)
 # How often growing power is held and let go before no steady state is believed in.
 _MOST_HOLDS = 60
 
@@ -145,9 +148,20 @@ def solve_steady(
     # leaves at least in proportion to the rise. One that doubles may have several.
     if start is not None or not network.sources.doubles:
         solution = _newton(network, _guess(network) if start is None else start, options)
+        if not solution.converged and not network.sources.growing.any():
+            solution = solution.improved(_stirred(network, options))
         if solution.converged or not network.sources.growing.any():
             return solution
     return _from_below(network, options)
+
+
+def _stirred(network: Network, options: SolveOptions) -> Solution:
+    """Come to the steady state from that of a box whose air is stirred, less and less."""
+    x = _guess(network)
+    for share in _STIRRINGS:
+        solution = _newton(network.stirred(share), x, options)
+        x = solution.rise[network.unknown]
+    return _newton(network, x, options)
 
 
 def _guess(network: Network) -> FloatArray:
