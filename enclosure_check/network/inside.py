@@ -10,6 +10,8 @@ import numpy as np
 from enclosure_check.network.links import FloatArray, LinkLabel
 from enclosure_check.network.site import Site
 
+# A patch that is hidden altogether takes no part. [m2]
+LEAST_AREA = 1e-12
 # Exchange areas below this share of their patches are left out. [-]
 LEAST_SHARE = 1e-9
 # Weight that keeps the mean emission of a patch of mirrors defined; it sends nothing out. [-]
@@ -26,11 +28,12 @@ def build_inside_radiation(site: Site) -> None:
     for surface in site.surfaces:
         np.add.at(on_patch, np.ravel(surface.patch), np.ravel(surface.area))
     outline = np.minimum(1.0, area / np.maximum(on_patch, 1e-300))
+    sees = area > LEAST_AREA
     emitting = np.zeros(count)
     cells: list[list[FloatArray]] = [[] for _ in range(count)]
     irradiation = builder.nodes("irradiation of patch", (count,))
     for surface in site.surfaces:
-        bare = np.ravel(surface.area) > 0
+        bare = (np.ravel(surface.area) > 0) & sees[np.ravel(surface.patch)]
         nodes, patch = np.ravel(surface.cells)[bare], np.ravel(surface.patch)[bare]
         seen = np.ravel(surface.area)[bare] * outline[patch]
         builder.radiate(nodes, irradiation[patch], seen, seen, surface.emissivity, surface.label)
@@ -45,7 +48,7 @@ def build_inside_radiation(site: Site) -> None:
             nodes, seen, weight = np.concatenate(found, axis=1)
             label = f"emission of patch {index + 1}"
             emission[index] = builder.mean_emission(label, nodes.astype(np.intp), seen, weight)
-    mean = emitting / area
+    mean = emitting / np.where(sees, area, 1.0)
     first, second = np.nonzero(np.triu(exchange > LEAST_SHARE * area.min(), 1))
     builder.exchange(
         (irradiation[first], irradiation[second]),

@@ -115,6 +115,8 @@ _FIRST_MU, _MU_GROWTH, _MU_DECAY, _LEAST_MU = 1e-3, 8.0, 0.1, 1e-6
 _LARGEST_MU = 1e9
 # Rounding that may let a node seem colder than its surroundings. [K]
 COLDER_K = 1e-6
+# Parts of a step that are tried one after the other.
+_PARTS = (1.0, 0.5, 0.25, 0.1)
 # The linear guess is not believed beyond this. [K]
 _FARTHEST_GUESS_K = 1_000.0
 # Stirring of the inside air on the way to an answer that Newton does not find at once, over what
@@ -147,12 +149,18 @@ def solve_steady(
     # A power that grows in proportion has one stable state at most, wherever it is come from: heat
     # leaves at least in proportion to the rise. One that doubles may have several.
     if start is not None or not network.sources.doubles:
-        solution = _newton(network, _guess(network) if start is None else start, options)
-        if not solution.converged and not network.sources.growing.any():
-            solution = solution.improved(_stirred(network, options))
+        solution = _reach(network, _guess(network) if start is None else start, options)
         if solution.converged or not network.sources.growing.any():
             return solution
     return _from_below(network, options)
+
+
+def _reach(network: Network, start: FloatArray, options: SolveOptions) -> Solution:
+    """Iterate from a start, and by way of stirred air where that does not do."""
+    solution = _newton(network, start, options)
+    if solution.converged:
+        return solution
+    return solution.improved(_stirred(network, options))
 
 
 def _stirred(network: Network, options: SolveOptions) -> Solution:
@@ -179,9 +187,9 @@ def _from_below(network: Network, options: SolveOptions) -> Solution:
     runs_away = np.ones(network.variants, dtype=bool)
     for _ in range(_MOST_HOLDS):
         held = replace(network, sources=sources.held(rise[sources.node], reference))
-        below = _newton(held, start, options)
+        below = _reach(held, start, options)
         rise, start = below.rise, below.rise[network.unknown]
-        trial = _newton(network, start, options).after(below)
+        trial = _reach(network, start, options).after(below)
         if best is None:
             # Power that is out of scale before it grows is another matter.
             best, runs_away = trial, below.each_converged
@@ -216,12 +224,18 @@ def _newton(network: Network, start: FloatArray, options: SolveOptions) -> Solut
         if not active.any():
             break
         step = _step(network, state, mu, options)
-        trial = State.of(network, x + np.where(active, step, 0.0))
-        better = active & (trial.merit < state.merit)
         steps += active
+        better = np.zeros(variants, dtype=bool)
+        for part in _PARTS:
+            trying = active & ~better
+            if not trying.any():
+                break
+            trial = State.of(network, x + np.where(trying, part * step, 0.0))
+            helps = trying & (trial.merit < state.merit)
+            x = np.where(helps, x + part * step, x)
+            state = state.replaced(trial, helps)
+            better |= helps
         fallbacks += active & ~better
-        x = np.where(better, x + step, x)
-        state = state.replaced(trial, better)
         lowered = mu * _MU_DECAY
         mu = np.where(better, np.where(lowered < _LEAST_MU, 0.0, lowered), mu)
         mu = np.where(active & ~better, np.maximum(mu * _MU_GROWTH, _FIRST_MU), mu)
@@ -349,18 +363,27 @@ def _stable(network: Network, rise: FloatArray) -> BoolArray:
     """Whether a state is one that a box comes to and stays in, shape (v,).
 
     No node of it is colder than the coldest of the surroundings: past the runaway of a power that
-    grows in proportion, the balance has only such a state. Where power doubles, a little heat put
-    in anywhere must also warm every node and cool none: the Jacobian of a stable balance is an
-    M-matrix, whose inverse has no negative entry.
+    grows in proportion, the balance has only such a state. Where power doubles, the loop of power
+    and temperature must also have a gain below one: the largest eigenvalue of dP/dT times the
+    rises that watts put into the growing nodes give there, the powers held.
     """
     coldest = network.fixed_rise.min(axis=0)
     stable = rise.min(axis=0) >= coldest - COLDER_K
-    if not network.sources.doubles or not stable.any():
+    sources = network.sources
+    if not sources.doubles or not stable.any():
         return np.asarray(stable)
-    jacobian = network.jacobian(rise)
-    everywhere = np.ones((*jacobian.shape[:2], 1))
-    try:
-        response = np.linalg.solve(jacobian, everywhere)[:, :, 0]
-    except np.linalg.LinAlgError:
-        return np.zeros(jacobian.shape[0], dtype=bool)
-    return np.asarray(stable & (response > 0).all(axis=1))
+    grows = np.flatnonzero(sources.growing[:, 0])
+    place = np.searchsorted(network.unknown, sources.node[grows])
+    slope = sources.heat_by_rise(rise[sources.node], network.reference_k)
+    held = replace(network, sources=sources.held(rise[sources.node], network.reference_k))
+    for v, jacobian in enumerate(held.jacobian(rise)):
+        watts = np.zeros((len(jacobian), len(grows)))
+        watts[place, np.arange(len(grows))] = 1.0
+        try:
+            response = np.linalg.solve(jacobian, watts)[place]
+        except np.linalg.LinAlgError:
+            stable[v] = False
+            continue
+        gain = np.linalg.eigvals(slope[grows, v][:, None] * response)
+        stable[v] &= bool(gain.real.max() < 1.0)
+    return np.asarray(stable)
