@@ -23,14 +23,16 @@ from enclosure_check.description.yaml_nodes import plain_value
 UNITS = (
     ("_mm", "mm", "length"),
     ("_um", "um", "thickness of copper"),
+    ("_mm2", "mm2", "section of a conductor"),
     ("_mm2k_per_w", "mm2K/W", "thermal resistance times area"),
     ("_m", "m", "altitude"),
     ("_c", "C", "temperature, degrees Celsius"),
     ("_k", "K", "temperature difference"),
     ("_w", "W", "power"),
+    ("_a", "A", "current"),
     ("_w_per_m2", "W/m2", "irradiance"),
     ("_w_per_m2k", "W/m2K", "contact conductance per area"),
-    ("_w_per_mk", "W/mK", "thermal conductivity"),
+    ("_w_per_mk", "W/mK", "thermal conductivity; conductance per metre of an edge"),
     ("_k_per_w", "K/W", "thermal resistance"),
     ("_pct", "%", "percentage"),
     ("_pct_per_k", "%/K", "change per kelvin"),
@@ -51,9 +53,11 @@ def document_page() -> str:
     str
         Markdown: the rules, then one table of keys per model, ending in a line feed.
     """
-    models = list(_models(Shape(Document), ""))
-    titles = dict(reversed(models))
-    keys = "\n".join(_section(model, path, titles) for model, path in models)
+    # A model that stands in several places is described at the first.
+    titles: dict[type[Strict], str] = {}
+    for model, path in _models(Shape(Document), ""):
+        titles.setdefault(model, path)
+    keys = "\n".join(_section(model, path, titles) for model, path in titles.items())
     return (
         f"{INTRODUCTION}\n{_units()}\n{YAML_RULES}\n{_yaml_values()}\n{CHANGES}\n"
         f"## Keys\n\n{keys}\n{TOGETHER}"

@@ -106,6 +106,17 @@ Checked after the keys themselves, with every option and condition applied:
   other two take nothing more. A gap left out or below 0.1 mm counts as 0.1 mm.
 - Boards lie inside the box. `copper` and `conductivity_in_plane_w_per_mk` exclude each other, and
   the copper is thinner than the board.
+- Zones, stand-offs, fillers and shield cans lie on their board. A zone has `copper` or
+  `conductivity_in_plane_w_per_mk` as a board has; with neither it is bare laminate.
+- A stand-off, filler or can belongs to a wall that the board lies parallel to, an edge clamp to one
+  of the other four. A stand-off has `diameter_mm` and `material`, its bore smaller, or
+  `resistance_k_per_w` alone, which counts as a foot of 5 mm. A clamp is no longer than its edge.
+- Fillers on one side of a board share no place, cans neither, and a filler none with a can. No
+  part on another face, no body in the air and no other board reaches into a filler. A part in a
+  filler has no pad.
+- A part lies wholly under a can or beside it. A can is no lower than the parts under it and fits
+  between board and wall. A part under a can has no pad. Its local air is as warm as the can.
+- Cables: the copper has room in the diameter.
 - Parts: sizes come from the part or its type. On a board: `side` and `at_mm`; on a wall: `at_mm`;
   in the air: `from_walls_mm` or the middle. Outlines stay on the board or wall, tops stay out of
   the wall they face. Overlapping outlines are a warning.

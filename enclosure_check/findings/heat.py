@@ -33,6 +33,7 @@ def _wall(solved: Solved, name: str) -> WallFinding:
         sun_w=solved.put_in(owner, "sun"),
         openings_w=0.0,
         mounting_w=solved.flow(owner, "mounting"),
+        cables_w=solved.flow(owner, "cable"),
         touch_max_c=wall.touch_max_c,
         touch_margin_k=touch,
         touch_verdict=None if touch is None else judge(touch, solved.case.margin_k or 0.0),
@@ -46,6 +47,7 @@ def heat_balance(solved: Solved, walls: tuple[WallFinding, ...]) -> HeatBalance:
     radiation = sum(wall.radiation_w for wall in walls)
     openings = sum(wall.openings_w for wall in walls)
     mounting = sum(wall.mounting_w for wall in walls)
+    cables = sum(wall.cables_w for wall in walls)
     return HeatBalance(
         generated,
         sun,
@@ -53,7 +55,8 @@ def heat_balance(solved: Solved, walls: tuple[WallFinding, ...]) -> HeatBalance:
         radiation,
         openings,
         mounting,
-        generated + sun - convection - radiation - openings - mounting,
+        cables,
+        generated + sun - convection - radiation - openings - mounting - cables,
     )
 
 

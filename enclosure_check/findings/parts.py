@@ -63,8 +63,8 @@ def part_heat(solved: Solved) -> tuple[PartHeat, ...]:
                 case_c=float(solved.temperature_c[nodes.case]),
                 board_c=None if nodes.board is None else float(solved.temperature_c[nodes.board]),
                 to_mount_w=solved.flow(owner, "to_board") + solved.flow(owner, "to_wall"),
-                to_pad_w=solved.flow(owner, "pad"),
-                to_air_w=solved.flow(owner, "convection_inside"),
+                to_pad_w=solved.flow(owner, "pad") + solved.flow(owner, "filler"),
+                to_air_w=solved.flow(owner, "convection_inside") + solved.flow(owner, "still_air"),
                 to_radiation_w=solved.flow(owner, "radiation_inside"),
             )
         )

@@ -106,7 +106,7 @@ def surface_name(label: LinkLabel) -> str:
     """Give a surface the way a reader says it."""
     kind, name = label.owner.split(":", 1)
     where = "outside" if label.role.endswith("outside") else "inside"
-    return f"{kind} {name}" if kind == "part" else f"{kind} {name} {where}"
+    return f"{kind} {name}" if kind in ("part", "can") else f"{kind} {name} {where}"
 
 
 def range_warnings(ranges: tuple[RangeFinding, ...]) -> list[str]:

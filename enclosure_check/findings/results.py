@@ -47,8 +47,10 @@ class PartHeat:
     case_c: Annotated[float, _about("Temperature of its outer surface. [C]")]
     board_c: Annotated[float | None, _about("Board under it; null off boards. [C]")]
     to_mount_w: Annotated[float, _about("To the board or wall it sits on. [W]")]
-    to_pad_w: Annotated[float, _about("Through its pad. [W]")]
-    to_air_w: Annotated[float, _about("To the air by convection. [W]")]
+    to_pad_w: Annotated[float, _about("Through its pad, or the filler over it. [W]")]
+    to_air_w: Annotated[
+        float, _about("To the air by convection; through still air to a can over it. [W]")
+    ]
     to_radiation_w: Annotated[float, _about("To other surfaces by radiation. [W]")]
 
 
@@ -100,6 +102,7 @@ class WallFinding:
     sun_w: Annotated[float, _about("Sun absorbed. [W]")]
     openings_w: Annotated[float, _about("Through openings in it. [W]")]
     mounting_w: Annotated[float, _about("To what it is mounted on. [W]")]
+    cables_w: Annotated[float, _about("Along cables through it, from air to air. [W]")]
     touch_max_c: Annotated[float | None, _about("Highest temperature allowed for touch. [C]")]
     touch_margin_k: Annotated[float | None, _about("Distance to it. [K]")]
     touch_verdict: Annotated[Verdict | None, _about("Whether it holds.")]
@@ -109,12 +112,15 @@ class WallFinding:
 class HeatBalance:
     """Heat in against heat out, for the whole box."""
 
-    generated_w: Annotated[float, _about("Power of all parts and boards. [W]")]
+    generated_w: Annotated[
+        float, _about("Power of all parts and boards, and loss of cables inside. [W]")
+    ]
     sun_w: Annotated[float, _about("Sun absorbed. [W]")]
     convection_w: Annotated[float, _about("Leaves by convection. [W]")]
     radiation_w: Annotated[float, _about("Leaves by radiation. [W]")]
     openings_w: Annotated[float, _about("Leaves through openings. [W]")]
     mounting_w: Annotated[float, _about("Leaves to what the box is mounted on. [W]")]
+    cables_w: Annotated[float, _about("Leaves along cables. [W]")]
     imbalance_w: Annotated[float, _about("In less out. [W]")]
 
 

@@ -1,6 +1,7 @@
 """Builds the air inside: its nodes along gravity, the films, gaps and streams of every surface."""
 
 from dataclasses import dataclass, field
+from typing import Any
 
 import numpy as np
 
@@ -285,7 +286,8 @@ class AirSite:
             )
         for top, face in tops:
             width = max(abs(face.at - top.at), 1e-5)
-            along = float(np.hypot(*(self.up[axis] for axis in face.grid.axes)))
+            first, second = face.grid.axes
+            along = float(np.hypot(self.up[first], self.up[second]))
             head = along + abs(self.up[top.axis]) * width / top.length
             rows.append(
                 (
@@ -298,12 +300,15 @@ class AirSite:
                     self.share(self.heights(np.array([top.centre])))[0],
                 )
             )
-        values = [np.array([row[k] for row in rows]) for k in range(2, 6)]
+        shapes = np.array([row[2:6] for row in rows], dtype=np.float64).reshape(-1, 4)
         around = np.array([row[6] for row in rows]).reshape(-1, AIR_NODES)
         return Pairs(
             np.array([row[0] for row in rows], dtype=np.intp),
             np.array([row[1] for row in rows], dtype=np.intp),
-            *(value[:, None] for value in values),
+            shapes[:, 0:1],
+            shapes[:, 1:2],
+            shapes[:, 2:3],
+            shapes[:, 3:4],
             closed=np.zeros((len(rows), 1)),
             air=around,
         )
@@ -334,9 +339,7 @@ class AirSite:
             self.share(heights.min() + (heights.max() - heights.min()) * middles).mean(axis=0)
         )
 
-    def _straight(
-        self, columns: list[Column], tops: list[tuple[Top, Face]]
-    ) -> dict[str, FloatArray | IntArray]:
+    def _straight(self, columns: list[Column], tops: list[tuple[Top, Face]]) -> dict[str, Any]:
         cell_a, cell_b, pair, area, label = [], [], [], [], []
         for number, column in enumerate(columns):
             one, other, shared = column.straight()
@@ -413,7 +416,7 @@ class _Entries:
         self.label.append(np.full(int(some.sum()), film.label))
         self.sides.append((surface, pair, second))
 
-    def columns(self) -> dict[str, FloatArray | IntArray]:
+    def columns(self) -> dict[str, Any]:
         """Give every column by name."""
         sides = np.array(self.sides, dtype=np.intp).reshape(-1, 3)
         return {

@@ -134,23 +134,6 @@ class NetworkBuilder:
         self.resist(a, node, resistance, link)
         return node
 
-    def spread(
-        self,
-        a: int,
-        cells: IntArray,
-        shares: ArrayLike,
-        mean: int,
-        resistance: float,
-        label: LinkLabel,
-    ) -> None:
-        """Join a node to cells that share its heat out by fixed shares.
-
-        The heat follows the difference to the cells' mean over ``resistance`` [K/W], which may be
-        negative (see `PlateGrid.sub_cell`) but not nothing.
-        """
-        flow, flat = np.ravel(shares) / resistance, cells.ravel()
-        self._conduction.add(flat.size, (a, flat, self.label(label), a, mean), (flow,))
-
     def radiate(
         self,
         a: ArrayLike,

@@ -38,7 +38,7 @@ def _build_cable(wall: WallCase, cable: CableCase, site: Site) -> None:
     builder = site.builder
     section, inside = cable.conductor_mm2 * 1e-6, metres(cable.inside_mm)
     film = cable_film(metres(cable.outer_mm), builder.reference_k, builder.pressure_pa)
-    each = cable_conductance(section, metres(cable.outer_mm), inside, film)
+    each = float(cable_conductance(section, metres(cable.outer_mm), inside, film))
     label = LinkLabel(f"wall:{wall.name}", "cable")
     site.conduct_from_air(site.ambient, cable.count * each, label)
     site.warm_air(

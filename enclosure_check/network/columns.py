@@ -87,9 +87,9 @@ class Column:
             )
             total += np.einsum("ac,bd->abcd", first, second)
         total *= self.lower.bare[:, :, None, None] * self.upper.bare[None, None]
-        total = total.reshape(self.lower.cells.size, self.upper.cells.size)
-        one, other = np.nonzero(total > 0)
-        return self.lower.cells.ravel()[one], self.upper.cells.ravel()[other], total[one, other]
+        areas = total.reshape(self.lower.cells.size, self.upper.cells.size)
+        one, other = np.nonzero(areas > 0)
+        return self.lower.cells.ravel()[one], self.upper.cells.ravel()[other], areas[one, other]
 
 
 def _common(a: FloatArray, b: FloatArray, low: float, high: float) -> FloatArray:

@@ -5,7 +5,7 @@ from typing import Protocol
 
 import numpy as np
 
-from enclosure_check.description.case import Case, PartCase
+from enclosure_check.description.case import Case, FillerCase, PartCase, ShieldCanCase
 from enclosure_check.description.frames import Vector
 from enclosure_check.network.grid import PlateGrid
 from enclosure_check.network.links import FloatArray
@@ -45,7 +45,9 @@ def bare_board(case: Case, board: str, side: str, grid: PlateGrid) -> FloatArray
     parts = list(parts_on(case, board, side))
     for part in parts:
         bare -= outline(grid, part)
-    for cover in (*case.boards[board].fillers, *case.boards[board].shield_cans):
+    covers: list[FillerCase | ShieldCanCase] = list(case.boards[board].fillers)
+    covers += case.boards[board].shield_cans
+    for cover in covers:
         if cover.side == side:
             bare -= between_parts(grid, cover, parts)
     return np.asarray(np.maximum(bare, 0.0))

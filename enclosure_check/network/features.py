@@ -102,8 +102,8 @@ class Covers:
         left = max(metres(filler.distance_mm - height), 0.0)
         resistance = _filler_resistance(filler, left) / _area(part, filler)
         wall = self.site.wall_inside[filler.side]
-        spot = self.site.spot(filler.side, wall, *shared(part, filler), owner, resistance)
-        self.site.builder.resist(node, spot.node, resistance, LinkLabel(owner, "filler"))
+        label = LinkLabel(owner, "filler")
+        self.site.spot(node, resistance, filler.side, wall, *shared(part, filler), label)
 
 
 # Share of a part that is told from none by nobody. [-]
@@ -177,9 +177,10 @@ def _build_stand_off(board: BoardCase, stand_off: StandOffCase, site: Site) -> N
     resistance = column + stand_off.contact_k_per_w
     foot = metres_3(stand_off.low_mm), metres_3(stand_off.size_mm)
     wall = stand_off.wall
-    on_board = site.spot(board.name, site.boards[board.name], *foot, owner, resistance / 2)
-    on_wall = site.spot(wall, site.wall_inside[wall], *foot, owner, resistance / 2)
-    site.builder.resist(on_board.node, on_wall.node, resistance, LinkLabel(owner, "stand_off"))
+    middle = site.builder.node(f"middle of {owner.split(':', 1)[1]}")
+    label = LinkLabel(owner, "stand_off")
+    site.spot(middle, resistance / 2, board.name, site.boards[board.name], *foot, label)
+    site.spot(middle, resistance / 2, wall, site.wall_inside[wall], *foot, label)
 
 
 def _build_edge_clamp(board: BoardCase, clamp: EdgeClampCase, site: Site) -> None:
@@ -328,4 +329,5 @@ def outline_lengths(grid: PlateGrid, low: Vector, size: Vector) -> FloatArray:
 
 def _on_cells(edges: FloatArray, start: float, end: float) -> FloatArray:
     """Length of an interval on each cell of a row [m]."""
-    return np.maximum(np.minimum(edges[1:], end) - np.maximum(edges[:-1], start), 0.0)
+    lengths = np.minimum(edges[1:], end) - np.maximum(edges[:-1], start)
+    return np.asarray(np.maximum(lengths, 0.0))

@@ -163,7 +163,7 @@ class InsideAir:
     @cached_property
     def a(self) -> IntArray:
         """Node the heat leaves, shape (m,)."""
-        lower, upper = self.air[:-1], self.air[1:]
+        lower = self.air[:-1]
         count = len(self.surfaces.node)
         return np.concatenate(
             (
@@ -179,7 +179,7 @@ class InsideAir:
     def b(self) -> IntArray:
         """Node the heat enters, shape (m,)."""
         low, _ = self._near
-        lower, upper = self.air[:-1], self.air[1:]
+        upper = self.air[1:]
         count = len(self.surfaces.node)
         return np.concatenate(
             (
@@ -522,7 +522,10 @@ class InsideAir:
     ) -> list[FloatArray]:
         """Derivatives of the lifts by cells, own means, facing means and air nodes."""
         n = len(self.air)
-        flip = (lambda x: x) if sign > 0 else (lambda x: x[:, ::-1])
+
+        def flip(values: FloatArray) -> FloatArray:
+            return values if sign > 0 else values[:, ::-1]
+
         hat = self.hat if sign > 0 else self.hat[:, ::-1]
         picked = np.stack(
             [self._by_surface @ (hat[:, j : j + 1] * active * sign * entering) for j in range(n)],
@@ -615,7 +618,7 @@ def _larger(half: FloatArray, film: FloatArray) -> FloatArray:
 
 
 def _march(picked: FloatArray, kept: FloatArray) -> FloatArray:
-    """Heat a stream carries from each node on: ``E_j = (E_(j-1) + Q_j) r_j``, shape (s, n - 1, c)."""
+    """Heat a stream carries from each node on: ``E_j = (E_(j-1) + Q_j) r_j``, (s, n - 1, c)."""
     carried = np.zeros((picked.shape[0], picked.shape[1] - 1, kept.shape[2]))
     stream: FloatArray = np.zeros((picked.shape[0], kept.shape[2]))
     for j in range(picked.shape[1] - 1):

@@ -64,9 +64,8 @@ def _join_board(part: PartCase, junction: int, site: Site) -> Spot:
     else:
         resistance = (part.theta_jc_bottom_k_per_w or 0.0) + _joint(part, site)
     low, size = metres_3(part.low_mm), metres_3(part.size_mm)
-    spot = site.spot(part.host, site.boards[part.host], low, size, owner, resistance)
-    site.builder.resist(junction, spot.node, resistance, LinkLabel(owner, "to_board"))
-    return spot
+    label = LinkLabel(owner, "to_board")
+    return site.spot(junction, resistance, part.host, site.boards[part.host], low, size, label)
 
 
 def _join_wall(part: PartCase, junction: int, site: Site) -> None:
@@ -75,14 +74,13 @@ def _join_wall(part: PartCase, junction: int, site: Site) -> None:
     joint = _pad_resistance(part.pad) if part.pad is not None else _joint(part, site)
     resistance = (part.theta_jc_bottom_k_per_w or 0.0) + joint
     low, size = metres_3(part.low_mm), metres_3(part.size_mm)
-    spot = site.spot(wall, site.wall_inside[wall], low, size, owner, resistance)
-    site.builder.resist(junction, spot.node, resistance, LinkLabel(owner, "to_wall"))
+    label = LinkLabel(owner, "to_wall")
+    site.spot(junction, resistance, wall, site.wall_inside[wall], low, size, label)
 
 
 def _join_air(part: PartCase, case: int, site: Site, covers: Covers) -> None:
     """Join a part's free surface to the air and to radiation, the rest to what covers it."""
-    builder, owner = site.builder, f"part:{part.name}"
-    size = metres_3(part.size_mm)
+    owner, size = f"part:{part.name}", metres_3(part.size_mm)
     whole = 2 * (size[0] * size[1] + size[1] * size[2] + size[2] * size[0])
     convection = LinkLabel(owner, "convection_inside")
     if part.place == "air":
@@ -134,8 +132,8 @@ def _join_pad(part: PartCase, pad: PadCase, case: int, site: Site) -> None:
     owner = f"part:{part.name}"
     resistance = _pad_resistance(pad)
     low, size = metres_3(pad.low_mm), metres_3(pad.size_mm)
-    spot = site.spot(pad.wall, site.wall_inside[pad.wall], low, size, owner, resistance)
-    site.builder.resist(case, spot.node, resistance, LinkLabel(owner, "pad"))
+    label = LinkLabel(owner, "pad")
+    site.spot(case, resistance, pad.wall, site.wall_inside[pad.wall], low, size, label)
 
 
 def _pad_resistance(pad: PadCase) -> float:

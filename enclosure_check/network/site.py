@@ -7,7 +7,7 @@ import numpy as np
 from enclosure_check.description.case import Case, PartCase
 from enclosure_check.description.frames import AXIS, Vector
 from enclosure_check.network.air import AIR_NODES, AirSite, Film, Top
-from enclosure_check.network.builder import NetworkBuilder, PlaneFace
+from enclosure_check.network.builder import LEAST_RESISTANCE, NetworkBuilder, PlaneFace
 from enclosure_check.network.grid import GridOptions, PlateGrid
 from enclosure_check.network.links import FloatArray, IntArray, LinkLabel
 from enclosure_check.network.network import PartNodes, PlateNodes
@@ -187,44 +187,60 @@ class Site:
             self.builder.conduct(nodes[:-1], nodes[1:], share * between * across / along, label)
 
     def spot(
-        self, host: str, plate: PlateNodes, low: Vector, size: Vector, owner: str, series: float
+        self,
+        node: int,
+        resistance: float,
+        host: str,
+        plate: PlateNodes,
+        low: Vector,
+        size: Vector,
+        label: LinkLabel,
     ) -> Spot:
-        """Join a source to the cells it covers; gives the node of the plate under it.
+        """Join a node to the cells under it by a resistance over an area of a plate.
+
+        Each cell takes its share of the area, with the resistance and what the cells do not
+        resolve of the spreading in series.
 
         Parameters
         ----------
+        node
+            Where the heat comes from.
+        resistance
+            From there to the plate [K/W].
         host
             Name of the wall or board.
         plate
-            The face of it that the source lies on.
+            The face of it.
         low, size
-            Extent of the source in the box frame [m].
-        owner
-            Whose link it is.
-        series
-            Resistance between the source and the plate [K/W]: where the cells tell too high a
-            temperature for a small source, as much is given back, but never more than this.
+            Extent of the area in the box frame [m].
+        label
+            Of the links.
+
+        Returns
+        -------
+        Spot
+            A node that keeps the plate's mean temperature under the area.
         """
         grid = self.grids[host]
         shares = grid.shares(low, size)
         hit = shares > 0
-        name = f"{host} under {owner.split(':', 1)[1]}"
-        mean = self.builder.mean(f"{name}, cells", plate.cells[hit], shares[hit])
+        cells, share = plate.cells[hit], shares[hit]
         added, peak = grid.sub_cell(low, size)
-        added = max(added, -0.9 * series)
-        if abs(added) < LEAST_SPREADING:
-            added = LEAST_SPREADING
-        node = self.builder.node(name)
-        label = LinkLabel(owner, "spreading")
-        self.builder.spread(node, plate.cells[hit], shares[hit], mean, added, label)
-        return Spot(node, peak)
+        # Where the cells tell too high a temperature for a source, that is given back, within what
+        # leaves a resistance.
+        total = max(resistance + added, LEAST_SHARE_LEFT * resistance, LEAST_RESISTANCE)
+        self.builder.conduct(node, cells, share / total, label)
+        beyond = (total - resistance) / total
+        name = f"{host} under {label.owner.split(':', 1)[1]}"
+        weights = np.append((1.0 - beyond) * share, beyond)
+        return Spot(self.builder.mean(name, np.append(cells, node), weights), peak)
 
 
+# What of a resistance is left at the least where a spreading term is taken off it. [-]
+LEAST_SHARE_LEFT = 0.1
 # Shares of the air nodes in the mean of a profile that is linear between them. [-]
 AIR_SHARES = np.full(AIR_NODES, 1.0 / (AIR_NODES - 1))
 AIR_SHARES[[0, -1]] *= 0.5
-# A spreading term this small is told from none by nobody. [K/W]
-LEAST_SPREADING = 1e-5
 
 
 def footprint(part: PartCase) -> float:

@@ -75,8 +75,8 @@ def corner_factor(
 ) -> FloatArray:
     """Share of a wall's film that its corners with other walls leave.
 
-    ``1 / ((1 + 1.46 k/(h a)) (1 + 1.46 k/(h b)))``: in the corner of two walls the two films are one;
-    an edge adds 0.54 thicknesses to the shape factor of a layer k/h thick where two separate
+    ``1 / ((1 + 1.46 k/(h a)) (1 + 1.46 k/(h b)))``: in the corner of two walls the two films are
+    one; an edge adds 0.54 thicknesses to the shape factor of a layer k/h thick where two separate
     layers would count a whole one each.
 
     Parameters
@@ -95,21 +95,23 @@ def corner_factor(
 
     References
     ----------
-    Edge of a layer: I. Langmuir, E. Q. Adams, G. S. Meikle, "Flow of heat through furnace walls: the
-    shape factor", Trans. American Electrochemical Society 24, 1913 (from memory). Its use for the
-    corner of two films is ours.
+    Edge of a layer: I. Langmuir, E. Q. Adams, G. S. Meikle, "Flow of heat through furnace walls:
+    the shape factor", Trans. American Electrochemical Society 24, 1913 (from memory). Its use for
+    the corner of two films is ours.
     """
-    thickness = CORNER * np.asarray(conductivity) / np.asarray(coefficient)
-    return np.asarray(1.0 / ((1.0 + thickness / edge_a) * (1.0 + thickness / edge_b)))
+    thickness = CORNER * np.asarray(conductivity) / np.asarray(coefficient, dtype=np.float64)
+    a, b = np.asarray(edge_a, dtype=np.float64), np.asarray(edge_b, dtype=np.float64)
+    return np.asarray(1.0 / ((1.0 + thickness / a) * (1.0 + thickness / b)))
 
 
 def closed_cavity(rayleigh: ArrayLike, aspect: ArrayLike, heated_below: ArrayLike) -> FloatArray:
     """Nusselt number straight across a gap with closed edges, at any tilt.
 
-    Upright: the largest of ``0.0605 Ra^(1/3)``, ``(1 + (0.104 Ra^0.293 / (1 + (6310/Ra)^1.36))^3)^(1/3)``
-    and ``0.242 (Ra/A)^0.272`` (ElSherbiny et al.). Heated below, to 60 degrees from level:
-    ``1 + 1.44 (1 - 1708/R)+ (1 - 1708 sin(1.8 t)^1.6 / R)+ + ((R/5830)^(1/3) - 1)+``, ``R = Ra cos t``
-    (Hollands et al.); linear between 60 and 90 degrees. Heated above: ``1 + (Nu_upright - 1) sin t``.
+    Upright: the largest of ``0.0605 Ra^(1/3)``,
+    ``(1 + (0.104 Ra^0.293 / (1 + (6310/Ra)^1.36))^3)^(1/3)`` and ``0.242 (Ra/A)^0.272`` (ElSherbiny
+    et al.). Heated below, to 60 degrees from level, with ``R = Ra cos t``:
+    ``1 + 1.44 (1 - 1708/R)+ (1 - 1708 sin(1.8 t)^1.6 / R)+ + ((R/5830)^(1/3) - 1)+`` (Hollands et
+    al.); linear between 60 and 90 degrees. Heated above: ``1 + (Nu_upright - 1) sin t``.
 
     Parameters
     ----------
@@ -188,7 +190,8 @@ def channel_share(
     parallel plates", Journal of Heat Transfer 106, 1984, 116-123.
     """
     w = np.asarray(width, dtype=np.float64)
-    elenbaas = np.asarray(per_volume) * drive * (w * w * w * w) / length * gravity
+    volume = w * w * w * (w / np.asarray(length, dtype=np.float64)) * np.asarray(gravity)
+    elenbaas = np.asarray(per_volume, dtype=np.float64) * np.asarray(drive) * volume
     ratio = CHANNEL_DEVELOPED / CHANNEL_PLATE
     return np.asarray(1.0 / np.sqrt(1.0 + ratio * np.maximum(elenbaas, 1e-12) ** -1.5))
 
@@ -242,8 +245,8 @@ def stream_retention(
     """
     excess = np.asarray(wall) - air_next
     excess = 0.5 * (excess + soft_abs(excess, DIFFERENCE_WIDTH_K))
-    d = MIXED_EXCESS * excess * decay + DIFFERENCE_WIDTH_K
-    s = np.asarray(step)
+    d = MIXED_EXCESS * excess * np.asarray(decay, dtype=np.float64) + DIFFERENCE_WIDTH_K
+    s = np.asarray(step, dtype=np.float64)
     s = 0.5 * (s + soft_abs(s, STEP_WIDTH_K))
     return np.asarray(d / (d + s))
 
@@ -271,5 +274,5 @@ def plume_decay(above: ArrayLike, length: ArrayLike, width: ArrayLike) -> FloatA
     memory). Their joining is ours; no case tests it.
     """
     y = np.maximum(np.asarray(above, dtype=np.float64), 0.0)
-    plane = (length / (length + y)) ** PLANE_DECAY
-    return np.asarray(plane * (width / (width + y)) ** ROUND_DECAY)
+    long, wide = np.asarray(length, dtype=np.float64), np.asarray(width, dtype=np.float64)
+    return np.asarray((long / (long + y)) ** PLANE_DECAY * (wide / (wide + y)) ** ROUND_DECAY)

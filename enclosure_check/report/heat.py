@@ -90,6 +90,11 @@ _WALLS = (
         lambda wall: abs(wall.mounting_w) >= LEAST_W,
     ),
     Shown[WallFinding](
+        right("Cable W"),
+        lambda wall: watts(wall.cables_w),
+        lambda wall: abs(wall.cables_w) >= LEAST_W,
+    ),
+    Shown[WallFinding](
         right("Sun W"),
         lambda wall: watts(wall.sun_w),
         lambda wall: abs(wall.sun_w) >= LEAST_W,
@@ -119,8 +124,11 @@ def _balance(page: Page, condition: ConditionFinding) -> None:
         "radiation": balance.radiation_w,
         "openings": balance.openings_w,
         "mounting": balance.mounting_w,
+        "cables": balance.cables_w,
     }
-    into = {"parts and boards": balance.generated_w, "sun": balance.sun_w}
+    cabled = any(wall.cables_w != 0 for wall in condition.walls)
+    made_by = "parts, boards and cables" if cabled else "parts and boards"
+    into = {made_by: balance.generated_w, "sun": balance.sun_w}
     into |= {f"by {name}": -heat for name, heat in either_way.items() if heat < -LEAST_W}
     out = {
         name: heat

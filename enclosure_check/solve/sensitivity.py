@@ -68,4 +68,3 @@ def sensitivities(network: Network, solution: Solution, node: int) -> Sensitivit
         )
     by_fixed = np.where(network.fixed, by_node, 0.0)
     return Sensitivities(weight[sources.node] * unit, by_fixed, tuple(by_parameter))
-

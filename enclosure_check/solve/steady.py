@@ -113,8 +113,6 @@ LEAST_HEAT_W = 1e-4
 # Regularisation of a step that did not help: the first try, its growth and the way back to none.
 _FIRST_MU, _MU_GROWTH, _MU_DECAY, _LEAST_MU = 1e-3, 8.0, 0.1, 1e-6
 _LARGEST_MU = 1e9
-# Rounding that may let a node seem colder than its surroundings. [K]
-COLDER_K = 1e-6
 # Parts of a step that are tried one after the other.
 _PARTS = (1.0, 0.5, 0.25, 0.1)
 # The linear guess is not believed beyond this. [K]
@@ -362,16 +360,15 @@ def _outcomes(
 def _stable(network: Network, rise: FloatArray) -> BoolArray:
     """Whether a state is one that a box comes to and stays in, shape (v,).
 
-    No node of it is colder than the coldest of the surroundings: past the runaway of a power that
-    grows in proportion, the balance has only such a state. Where power doubles, the loop of power
-    and temperature must also have a gain below one: the largest eigenvalue of dP/dT times the
-    rises that watts put into the growing nodes give there, the powers held.
+    Power that grows in proportion, and never turns negative, has no unstable state to end in.
+    Where power doubles, the loop of power and temperature must have a gain below one: the largest
+    eigenvalue of dP/dT times the rises that watts put into the growing nodes give there, the
+    powers held.
     """
-    coldest = network.fixed_rise.min(axis=0)
-    stable = rise.min(axis=0) >= coldest - COLDER_K
+    stable = np.ones(rise.shape[1], dtype=bool)
     sources = network.sources
-    if not sources.doubles or not stable.any():
-        return np.asarray(stable)
+    if not sources.doubles:
+        return stable
     grows = np.flatnonzero(sources.growing[:, 0])
     place = np.searchsorted(network.unknown, sources.node[grows])
     slope = sources.heat_by_rise(rise[sources.node], network.reference_k)
