@@ -9,7 +9,8 @@ from enclosure_check.findings.assess import assess
 from enclosure_check.findings.results import CAUTION, ConditionFinding, Report, worst
 from enclosure_check.findings.solved import Solved
 from enclosure_check.network.build import build_network
-from enclosure_check.solve.steady import Outcome, solve_steady
+from enclosure_check.solve.nearby import Known, solve_known
+from enclosure_check.solve.steady import Outcome
 
 
 class NotConvergedError(Exception):
@@ -35,7 +36,11 @@ def check(
         When a condition has no steady temperatures.
     """
     cases = document.cases(option=option, conditions=conditions)
-    found = tuple(check_case(case) for case in cases)
+    found: list[ConditionFinding] = []
+    known: Known | None = None
+    for case in cases:
+        solved, known = solve_case(case, known)
+        found.append(assess(solved))
     return Report(
         format=1,
         version=__version__,
@@ -44,18 +49,25 @@ def check(
         title=cases[0].title,
         verdict=worst([condition.verdict for condition in found]),
         margin_stated=any(case.margin_k is not None for case in cases),
-        conditions=found,
+        conditions=tuple(found),
         caution=CAUTION,
     )
 
 
-def check_case(case: Case) -> ConditionFinding:
-    """Build, solve and assess one case."""
+def solve_case(case: Case, known: Known | None = None) -> tuple[Solved, Known]:
+    """Build and solve one case, from a state known of a like one where there is one.
+
+    Raises
+    ------
+    NotConvergedError
+        When it has no steady temperatures.
+    """
     network = build_network(case)
-    solution = solve_steady(network)
+    known = solve_known(network, known)
+    solution = known.solution
     if not solution.converged:
         node = network.node_labels[int(solution.worst_node[0])]
         raise NotConvergedError(
             case.condition, node, float(solution.worst_imbalance_w[0]), solution.outcome[0]
         )
-    return assess(Solved(case, network, solution))
+    return Solved(case, network, solution, known.inverse), known

@@ -13,7 +13,7 @@ from enclosure_check.findings.results import Headroom, PartFinding, WallFinding
 from enclosure_check.findings.solved import Solved
 from enclosure_check.network.links import FloatArray, IntArray
 from enclosure_check.network.network import Network
-from enclosure_check.solve.nearby import inverse_jacobian, solve_nearby
+from enclosure_check.solve.nearby import Inverse, solve_nearby
 
 # The searches end when the smallest margin is met this closely. [K]
 CLOSE_K = 0.02
@@ -49,7 +49,7 @@ def headroom(
     reference = network.reference_k
     now = limits.margins(rise, reference)[:, 0] - wanted
     powered = solved.total_put_in("power") > 0
-    search = _Search(network, limits, wanted, rise[network.unknown])
+    search = _Search(network, limits, wanted, rise[network.unknown], solved.inverse)
     first_factor = _guess_factor(limits, rise, reference, wanted) if powered else 1.0
     shift, factor = search.run(float(now.min()), first_factor)
     air = None if shift is None else shift + solved.case.surroundings.air_c
@@ -106,12 +106,19 @@ def _guess_factor(
 class _Search:
     """The two searches: shift of the surroundings [K] and factor on the power."""
 
-    def __init__(self, network: Network, limits: _Limits, wanted: float, start: FloatArray) -> None:
+    def __init__(
+        self,
+        network: Network,
+        limits: _Limits,
+        wanted: float,
+        start: FloatArray,
+        inverse: Inverse,
+    ) -> None:
         self.network = network
         self.limits = limits
         self.wanted = wanted
         self.start = np.repeat(start, 2, axis=1)
-        self.inverse = inverse_jacobian(network, network.full_rise(start))
+        self.inverse = inverse
         self.limited_by: list[str | None] = [None, None]
         base = limits.margins(network.full_rise(start), network.reference_k)[:, 0]
         self.base = float(base.min()) - wanted

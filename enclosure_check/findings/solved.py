@@ -9,6 +9,7 @@ from enclosure_check.description.case import Case
 from enclosure_check.network.links import FloatArray
 from enclosure_check.network.network import Network
 from enclosure_check.network.units import celsius
+from enclosure_check.solve.nearby import Inverse
 from enclosure_check.solve.steady import Solution
 
 
@@ -19,6 +20,8 @@ class Solved:
     case: Case
     network: Network
     solution: Solution
+    inverse: Inverse
+    """Inverse Jacobian near the solution."""
 
     @cached_property
     def temperature_c(self) -> FloatArray:

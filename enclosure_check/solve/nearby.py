@@ -6,6 +6,9 @@ methods for solving nonlinear simultaneous equations", Mathematics of Computatio
 Variants that do not get there are left to Newton.
 """
 
+from dataclasses import dataclass, replace
+from functools import cached_property
+
 import numpy as np
 
 from enclosure_check.network.links import FloatArray
@@ -13,20 +16,69 @@ from enclosure_check.network.network import Network
 from enclosure_check.solve.steady import Solution, SolveOptions, State, solution_of, solve_steady
 
 # Steps after which, and growth of the imbalance at which, chords are given up for Newton.
-_MOST_CHORDS = 16
+_MOST_CHORDS = 24
+_FIRST_STEPS = 2
+# A known state serves where the heat put in differs by less than this factor.
+_LIKE_HEAT = 3.0
 _WORST_GROWTH = 4.0
 
 
-def inverse_jacobian(network: Network, rise: FloatArray) -> FloatArray:
-    """Give the inverse of the Jacobian at a state, of the first variant [K/W], shape (u, u)."""
-    return np.asarray(np.linalg.inv(network.jacobian(rise)[0]))
+class Inverse:
+    """Inverse Jacobian of a network's first variant near a state, inverted when first asked for."""
+
+    def __init__(self, network: Network, rise: FloatArray) -> None:
+        self._network, self._rise = network, rise
+
+    @cached_property
+    def matrix(self) -> FloatArray:
+        """The inverse [K/W], shape (u, u)."""
+        return np.asarray(np.linalg.inv(self._network.jacobian(self._rise)[0]))
+
+
+@dataclass(frozen=True, eq=False)
+class Known:
+    """A steady state that others of networks of the same shape are found from."""
+
+    network: Network
+    solution: Solution
+    inverse: Inverse
+
+    def serves(self, network: Network) -> bool:
+        """Whether a network has the same nodes and about the same heat put in."""
+        own = self.network
+        if own.node_labels != network.node_labels or not np.array_equal(own.fixed, network.fixed):
+            return False
+        put_in, before = (float(np.abs(each.sources.power).sum()) for each in (network, own))
+        return before / _LIKE_HEAT < put_in < before * _LIKE_HEAT
+
+
+def solve_known(network: Network, known: Known | None) -> Known:
+    """Find the steady state of one variant, from a known one where it serves.
+
+    Without one, two steps of Newton come near enough for an inverse Jacobian that does for the
+    rest, and for what is solved after.
+    """
+    if known is not None and known.serves(network):
+        start = known.solution.rise[network.unknown]
+        solution = solve_nearby(network, start, known.inverse)
+        return Known(network, solution, known.inverse)
+    options = SolveOptions(max_steps=_FIRST_STEPS, by_stirring=False)
+    near = solve_steady(network, options=options)
+    inverse = Inverse(network, near.rise)
+    if near.converged:
+        return Known(network, near, inverse)
+    x = near.rise[network.unknown]
+    if not np.isfinite(x).all():
+        x = np.zeros_like(x)
+    return Known(network, solve_nearby(network, x, inverse, taken=int(near.steps[0])), inverse)
 
 
 def solve_nearby(
     network: Network,
     start: FloatArray,
-    inverse: FloatArray,
+    inverse: Inverse,
     options: SolveOptions | None = None,
+    taken: int = 0,
 ) -> Solution:
     """Find the steady states of v variants near a state whose inverse Jacobian is known.
 
@@ -37,29 +89,33 @@ def solve_nearby(
     start
         Rises to start from [K], shape (u, v).
     inverse
-        Inverse Jacobian of the known state [K/W], shape (u, u).
+        Inverse Jacobian of the known state.
     options
         Tolerances and bounds.
+    taken
+        Steps taken before, to be counted.
     """
     options = options or SolveOptions()
     x = start.copy()
     variants = x.shape[1]
     state = State.of(network, x)
     done = state.balanced(options)
-    taken = np.zeros(variants, dtype=np.intp)
-    step = -(inverse @ state.residual)
+    steps = np.full(variants, taken, dtype=np.intp)
+    step: FloatArray | None = None
     history: list[tuple[FloatArray, FloatArray]] = []
-    for _ in range(_MOST_CHORDS):
+    for _ in range(_MOST_CHORDS + 1):
         if done.all():
-            return solution_of(network, state, done, taken)
+            return solution_of(network, state, done, steps)
+        if step is None:
+            step = -(inverse.matrix @ state.residual)
         move = np.where(done, 0.0, step)
         trial = State.of(network, x + move)
         if not np.all(trial.merit <= _WORST_GROWTH * state.merit + 1e-300):
             break
-        x, state, taken = x + move, trial, taken + ~done
+        x, state, steps = x + move, trial, steps + ~done
         done = state.balanced(options)
         # Broyden's update in the form that keeps only steps: s_{k+1} from s_0..s_k.
-        following = -(inverse @ state.residual)
+        following = -(inverse.matrix @ state.residual)
         for last, after in history:
             size = np.maximum(np.sum(last * last, axis=0), 1e-300)
             following = following + after * (np.sum(last * following, axis=0) / size)
@@ -67,4 +123,5 @@ def solve_nearby(
         following = following / np.maximum(1.0 - np.sum(move * following, axis=0) / size, 0.1)
         history.append((move, following))
         step = following
-    return solve_steady(network, start, options)
+    solution = solve_steady(network, start, options)
+    return replace(solution, steps=solution.steps + steps)

@@ -55,6 +55,8 @@ class SolveOptions:
     """Sum of all imbalances over the heat that flows."""
     largest_step_k: float = 150.0
     """A step moves no node further than this."""
+    by_stirring: bool = True
+    """Whether to go by way of stirred air where Newton does not get there at once."""
     hottest_rise_k: float = 5_000.0
     """No steady state is looked for beyond this rise."""
 
@@ -156,7 +158,7 @@ def solve_steady(
 def _reach(network: Network, start: FloatArray, options: SolveOptions) -> Solution:
     """Iterate from a start, and by way of stirred air where that does not do."""
     solution = _newton(network, start, options)
-    if solution.converged:
+    if solution.converged or not options.by_stirring:
         return solution
     return solution.improved(_stirred(network, options))
 
