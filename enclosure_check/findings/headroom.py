@@ -14,12 +14,15 @@ from enclosure_check.findings.solved import Solved
 from enclosure_check.network.links import FloatArray, IntArray
 from enclosure_check.network.network import Network
 from enclosure_check.solve.nearby import Inverse, solve_nearby
+from enclosure_check.solve.steady import SolveOptions
 
 # The searches end when the smallest margin is met this closely. [K]
 CLOSE_K = 0.02
 MOST_STEPS = 8
 # Power is not searched for beyond this multiple.
 LARGEST_FACTOR = 100.0
+# Balance of the states on the way: far closer than the searches end.
+_CLOSE = SolveOptions(node_tolerance=1e-6, overall_tolerance=1e-5)
 # Film laws and radiation make rises grow about so with power; only a first guess.
 _RISE_EXPONENT = 0.87
 
@@ -153,7 +156,7 @@ class _Search:
             fixed_rise=np.repeat(network.fixed_rise, 2, axis=1),
             sources=replace(network.sources, power=network.sources.power * scaled),
         )
-        solution = solve_nearby(pair, self.start, self.inverse)
+        solution = solve_nearby(pair, self.start, self.inverse, _CLOSE)
         if not solution.converged:
             return None
         self.start = solution.rise[network.unknown]

@@ -333,10 +333,8 @@ class InsideAir:
 
     def _pickups(self, entering: FloatArray) -> FloatArray:
         """Add film heat (e, c) up by surface and air node, shape (s, n, c)."""
-        return np.stack(
-            [self._by_surface @ (self.hat[:, j : j + 1] * entering) for j in range(len(self.air))],
-            axis=1,
-        )
+        spread = (self.hat[:, :, None] * entering[:, None]).reshape(len(self.cell), -1)
+        return (self._by_surface @ spread).reshape(-1, len(self.air), entering.shape[1])
 
     @cached_property
     def _surface_of_entry(self) -> IntArray:

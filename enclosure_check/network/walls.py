@@ -18,6 +18,11 @@ from enclosure_check.physics.box import box_geometry
 from enclosure_check.physics.radiation import sky_view_factor
 
 
+# A wall that conducts better than this through its thickness is taken as even across it: films of
+# 20 W/m2K leave a difference below 1 % of theirs.
+EVEN_WALL_W_PER_M2K = 2000.0
+
+
 def build_walls(case: Case, site: Site) -> None:
     """Add the cells of the walls, outside and inside, and everything that joins them."""
     inside, outside = metres_3(case.inside_mm), metres_3(case.outside_mm)
@@ -48,17 +53,17 @@ def _build_wall(case: Case, name: WallName, inside: Vector, outside: Vector, sit
     counts = cell_counts(inside[first], inside[second], options.wall_cells)
     sheet = wall.material.in_plane_conductivity_w_per_mk * thickness
     grid = PlateGrid((first, second), (0.0, 0.0, 0.0), inside, counts, np.full((2, *counts), sheet))
+    through = wall.material.conductivity_w_per_mk * math.sqrt(inside_area * outside_area)
     outer = site.plate(f"{name} wall outside", grid)
-    inner = site.plate(f"{name} wall inside", grid)
+    even = through / thickness / inside_area > EVEN_WALL_W_PER_M2K
+    inner = outer if even else site.plate(f"{name} wall inside", grid)
     site.grids[name] = grid
     site.wall_outside[name], site.wall_inside[name] = outer, inner
     for plate in (outer, inner):
         site.conduct_along(plate.cells, grid, 0.5, LinkLabel(owner, "along"))
-    count = inner.cells.size
-    through = wall.material.conductivity_w_per_mk * math.sqrt(inside_area * outside_area)
-    builder.conduct(
-        inner.cells, outer.cells, through / thickness / count, LinkLabel(owner, "through")
-    )
+    if not even:
+        each = through / thickness / inner.cells.size
+        builder.conduct(inner.cells, outer.cells, each, LinkLabel(owner, "through"))
     _build_outside(wall, outer, outside_area, site)
     bare = bare_wall(case, name, grid)
     face = site.plane_face(inside, axis, -SIGN[name])
