@@ -25,16 +25,17 @@ def range_findings(solved: Solved) -> tuple[RangeFinding, ...]:
         for index, label in enumerate(kind.labels):
             if isinstance(kind, BoxFilm) and not kind.geometry.open_faces[index]:
                 continue
-            rows.append(_row(audit, prandtl, index, label))
+            node = solved.network.node_labels[int(kind.a[index])]
+            rows.append(_row(audit, prandtl, index, surface_name(label, node)))
         if isinstance(kind, BoxFilm) and kind.geometry.open_faces.any():
             rows.append(_whole_box(kind, audit))
     return tuple(rows)
 
 
-def _row(audit: FilmAudit, prandtl: np.ndarray, index: int, label: LinkLabel) -> RangeFinding:
+def _row(audit: FilmAudit, prandtl: np.ndarray, index: int, surface: str) -> RangeFinding:
     at = (index, 0)
     return _finding(
-        surface=surface_name(label),
+        surface=surface,
         key=_LAWS[int(audit.law[at])],
         length=float(audit.length[at]),
         rise=float(audit.rise[at]),
@@ -100,9 +101,11 @@ def _finding(
     )
 
 
-def surface_name(label: LinkLabel) -> str:
-    """Give a surface the way a reader says it."""
+def surface_name(label: LinkLabel, node: str) -> str:
+    """Give a surface the way a reader says it, from its link and the label of its node."""
     kind, name = label.owner.split(":", 1)
+    if kind == "board":
+        return node
     where = "outside" if label.role.endswith("outside") else "inside"
     return f"{kind} {name}" if kind == "part" else f"{kind} {name} {where}"
 

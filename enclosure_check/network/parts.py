@@ -64,8 +64,10 @@ def _join_board(part: PartCase, junction: int, site: Site) -> int:
 def _join_wall(part: PartCase, junction: int, site: Site) -> None:
     """Join a part that sits on a wall to it."""
     owner, wall = f"part:{part.name}", facing_wall(part)
+    # What touches the wall: the pad where there is one.
+    foot = part if part.pad is None else part.pad
     spot = site.spot(
-        wall, site.wall_inside[wall], metres_3(part.low_mm), metres_3(part.size_mm), owner
+        wall, site.wall_inside[wall], metres_3(foot.low_mm), metres_3(foot.size_mm), owner
     )
     joint = _pad_resistance(part.pad) if part.pad is not None else _joint(part, site)
     resistance = (part.theta_jc_bottom_k_per_w or 0.0) + joint
