@@ -174,7 +174,9 @@ def _parser() -> argparse.ArgumentParser:
         epilog=f"{_EXAMPLES}\n{_CODES}",
     )
     parser.add_argument("--version", action="version", version=f"{PROGRAM} {__version__}")
-    commands = parser.add_subparsers(title="commands", metavar="COMMAND", required=True)
+    commands = parser.add_subparsers(
+        prog=PROGRAM, title="commands", metavar="COMMAND", required=True
+    )
     check = commands.add_parser(
         "check",
         help="check a document against its limits",

@@ -300,10 +300,22 @@ class PartResolver:
                 "theta_jb given: it is the whole path to the board, theta_jc_bottom left out", name
             )
         joint = thetas["bottom_contact_k_per_w"]
+        if place == "board" and to_board is not None and joint is not None:
+            self.remarks.assume(
+                "theta_jb given: it is the whole path to the board, bottom_contact left out", name
+            )
         if place == "board" and to_board is None and bottom is None and joint is None:
             self.remarks.assume("no path to the board given: 0.1 mm of air under the body", name)
         if place == "wall" and joint is None and not has_pad:
             self.remarks.assume("no joint to the wall given: 0.1 mm of air", name)
+        if place == "wall" and joint is not None and has_pad:
+            self.remarks.assume(
+                "pad given: it is the joint to the wall, bottom_contact left out", name
+            )
+        if place != "board" and to_board is not None:
+            self.remarks.assume("not on a board: theta_jb left out", name)
+        if place == "air" and (bottom is not None or joint is not None):
+            self.remarks.assume("air all round: theta_jc_bottom and bottom_contact left out", name)
 
     def _pad(
         self,

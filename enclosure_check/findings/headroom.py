@@ -1,10 +1,10 @@
 """How far the surroundings' temperature and the power can rise until a limit is met.
 
 Both searches run side by side as two variants of the network, by the secant method on the
-smallest margin; the rises of the check are the first guess.
+smallest margin; the rises of the check are the first guess. Where power that grows with temperature
+leaves no steady state, the search goes back towards the last one there was.
 """
 
-from collections.abc import Callable
 from dataclasses import dataclass, replace
 
 import numpy as np
@@ -12,13 +12,18 @@ import numpy as np
 from enclosure_check.findings.results import Headroom, PartFinding, WallFinding
 from enclosure_check.findings.solved import Solved
 from enclosure_check.network.links import FloatArray, IntArray
-from enclosure_check.network.network import Network
+from enclosure_check.network.network import BoolArray, Network
 from enclosure_check.solve.nearby import Inverse, solve_nearby
 from enclosure_check.solve.steady import SolveOptions
 
 # The searches end when the smallest margin is met this closely. [K]
 CLOSE_K = 0.02
-MOST_STEPS = 8
+# Or at the last steady state, found this closely. [K], [-]
+CLOSE_TO_RUNAWAY_K, CLOSE_TO_RUNAWAY_SHARE = 0.5, 0.01
+MOST_STEPS = 20
+RUNAWAY = "thermal runaway"
+# Colder air than this is no answer: it is the coldest a document may state. [C]
+COLDEST_AIR_C = -90.0
 # Power is not searched for beyond this multiple.
 LARGEST_FACTOR = 100.0
 # Balance of the states on the way: far closer than the searches end.
@@ -54,14 +59,15 @@ def headroom(
     powered = solved.total_put_in("power") > 0
     search = _Search(network, limits, wanted, rise[network.unknown], solved.inverse)
     first_factor = _guess_factor(limits, rise, reference, wanted) if powered else 1.0
-    shift, factor = search.run(float(now.min()), first_factor)
-    air = None if shift is None else shift + solved.case.surroundings.air_c
+    coldest = COLDEST_AIR_C - solved.case.surroundings.air_c
+    shift, factor = search.run(float(now.min()), coldest, first_factor)
+    air = None if shift.answer is None else shift.answer + solved.case.surroundings.air_c
     return Headroom(
         wanted_margin_k=wanted,
         highest_air_c=air,
-        air_limited_by=None if shift is None else search.limited_by[0],
-        power_pct=None if factor is None or not powered else factor * 100,
-        power_limited_by=None if factor is None or not powered else search.limited_by[1],
+        air_limited_by=shift.limited_by,
+        power_pct=None if factor.answer is None or not powered else factor.answer * 100,
+        power_limited_by=factor.limited_by if powered else None,
     )
 
 
@@ -122,29 +128,31 @@ class _Search:
         self.wanted = wanted
         self.start = np.repeat(start, 2, axis=1)
         self.inverse = inverse
-        self.limited_by: list[str | None] = [None, None]
-        base = limits.margins(network.full_rise(start), network.reference_k)[:, 0]
-        self.base = float(base.min()) - wanted
+        base = limits.margins(network.full_rise(start), network.reference_k)[:, 0] - wanted
+        self.base = float(base.min())
+        self.base_name = limits.names[int(base.argmin())]
 
-    def run(self, shift: float, factor: float) -> tuple[float | None, float | None]:
-        """Search both from their first guesses; None where no answer lies in reach."""
+    def run(self, shift: float, coldest: float, factor: float) -> tuple["_Track", "_Track"]:
+        """Search both from their first guesses; the shift not below the coldest there may be."""
+        at = self.base, self.base_name
         tracks = (
-            _Track(0.0, self.base, shift, lambda value: value),
-            _Track(1.0, self.base, factor, lambda value: min(max(value, 0.0), LARGEST_FACTOR)),
+            _Track(0.0, *at, shift, coldest, np.inf, CLOSE_TO_RUNAWAY_K),
+            _Track(1.0, *at, factor, 0.0, LARGEST_FACTOR, CLOSE_TO_RUNAWAY_SHARE),
         )
         for _ in range(MOST_STEPS):
             if all(track.done for track in tracks):
                 break
-            margins = self._margins(tracks[0].next, tracks[1].next)
-            if margins is None:
-                return None, None
-            for track, column in zip(tracks, margins.T, strict=True):
-                track.take(float(column.min()))
-            self.limited_by = [self.limits.names[index] for index in margins.argmin(axis=0)]
-        return tracks[0].answer, tracks[1].answer
+            margins, found = self._margins(tracks[0].next, tracks[1].next)
+            for index, track in enumerate(tracks):
+                least = int(margins[:, index].argmin())
+                if found[index]:
+                    track.take(float(margins[least, index]), self.limits.names[least])
+                else:
+                    track.go_back()
+        return tracks
 
-    def _margins(self, shift: float, factor: float) -> FloatArray | None:
-        """Margins over the wanted ones in both variants, shape (limits, 2)."""
+    def _margins(self, shift: float, factor: float) -> tuple[FloatArray, BoolArray]:
+        """Margins over the wanted ones by limit and variant, and which variants have any."""
         network = self.network
         is_power = np.array(
             [network.labels[label].role == "power" for label in network.sources.label], dtype=bool
@@ -157,39 +165,72 @@ class _Search:
             sources=replace(network.sources, power=network.sources.power * scaled),
         )
         solution = solve_nearby(pair, self.start, self.inverse, _CLOSE)
-        if not solution.converged:
-            return None
-        self.start = solution.rise[network.unknown]
-        return self.limits.margins(solution.rise, pair.reference_k) - self.wanted
+        found = solution.each_converged
+        self.start = np.where(found, solution.rise[network.unknown], self.start)
+        return self.limits.margins(solution.rise, pair.reference_k) - self.wanted, found
 
 
 class _Track:
     """One secant search for the zero of a margin that falls with its value."""
 
     def __init__(
-        self, value: float, margin: float, guess: float, clip: Callable[[float], float]
+        self,
+        value: float,
+        margin: float,
+        name: str,
+        guess: float,
+        low: float,
+        high: float,
+        close_to_runaway: float,
     ) -> None:
-        self._clip = clip
+        self._low, self._high, self._close = low, high, close_to_runaway
         self._last = (value, margin)
-        self.next = clip(guess)
-        self.answer: float | None = value if abs(margin) < CLOSE_K else None
-        self.done = self.answer is not None
+        self._runaway: float | None = None
+        """Least value known to have no steady state."""
+        self.answer: float | None = None
+        self.limited_by: str | None = None
+        self.done = False
+        self.next = min(max(guess, low), high)
+        if abs(margin) < CLOSE_K:
+            self._end(value, name)
 
-    def take(self, margin: float) -> None:
-        """Take the margin at `next` and move on."""
+    def _end(self, answer: float | None, limited_by: str | None) -> None:
+        self.answer, self.limited_by, self.done = answer, limited_by, True
+
+    def take(self, margin: float, name: str) -> None:
+        """Take the margin at `next`, of the limit named, and move on."""
         if self.done:
             return
         value, (last_value, last_margin) = self.next, self._last
         if abs(margin) < CLOSE_K:
-            self.answer, self.done = value, True
+            self._end(value, name)
             return
         slope = (margin - last_margin) / (value - last_value) if value != last_value else 0.0
         if slope >= 0:
-            self.done = True
+            self._end(None, None)
             return
         self._last = (value, margin)
-        moved = self._clip(value - margin / slope)
+        moved = min(max(value - margin / slope, self._low), self._high)
         if moved == value:
             # At the end of the range and the margin still not met: no answer in reach.
-            self.done = True
-        self.next = moved
+            self._end(None, None)
+        elif self._runaway is not None and moved >= self._runaway:
+            self._halve(self._runaway)
+        else:
+            self.next = moved
+
+    def go_back(self) -> None:
+        """Take it that there is no steady state at `next`, and move on."""
+        if not self.done:
+            self._runaway = self.next
+            self._halve(self.next)
+
+    def _halve(self, runaway: float) -> None:
+        """Go half the way from the last steady state to where there is none, or end there."""
+        value, margin = self._last
+        # A factor is found to a share of itself, a shift to so many kelvin.
+        scale = max(value, 1.0) if self._high < np.inf else 1.0
+        if runaway - value < self._close * scale:
+            self._end(value if margin > 0 else None, RUNAWAY if margin > 0 else None)
+        else:
+            self.next = 0.5 * (value + runaway)

@@ -2,10 +2,11 @@
 
 import numpy as np
 
+from enclosure_check.description.base import WALL_NAMES
 from enclosure_check.findings.results import RangeFinding
 from enclosure_check.findings.solved import Solved
-from enclosure_check.network.films import BoxFilm, FilmAudit, Films
-from enclosure_check.network.links import LinkLabel
+from enclosure_check.network.films import BoxFilm, FilmAudit
+from enclosure_check.network.inside_air import InsideAir
 from enclosure_check.physics.air import air, rayleigh_number
 from enclosure_check.physics.correlation import CORRELATIONS, PLATE_LAWS
 
@@ -19,32 +20,36 @@ def range_findings(solved: Solved) -> tuple[RangeFinding, ...]:
     rows: list[RangeFinding] = []
     rise, reference = solved.solution.rise, solved.network.reference_k
     for kind in solved.network.kinds:
-        if not isinstance(kind, Films):
-            continue
-        audit = kind.audit(rise[kind.nodes], reference)
-        prandtl = air(audit.film_temperature, kind.pressure_pa).prandtl
-        labels = kind.surface_value(kind.label)
-        for index, label in enumerate(labels.tolist()):
-            if isinstance(kind, BoxFilm) and not kind.geometry.open_faces[index]:
-                continue
-            rows.append(_row(audit, prandtl, index, solved.network.labels[label]))
-        if isinstance(kind, BoxFilm) and kind.geometry.open_faces.any():
-            rows.append(_whole_box(kind, audit))
+        if isinstance(kind, InsideAir):
+            audit = kind.audit(rise, reference)
+            rows += _films(audit, kind.pressure_pa, dict(enumerate(kind.surfaces.names)))
+        elif isinstance(kind, BoxFilm):
+            audit = kind.audit(rise[kind.nodes], reference)
+            faces = enumerate(zip(WALL_NAMES, kind.geometry.open_faces, strict=True))
+            names = {k: f"wall {wall} outside" for k, (wall, counts) in faces if counts}
+            rows += _films(audit, kind.pressure_pa, names)
+            if names:
+                rows.append(_whole_box(kind, audit))
     return tuple(rows)
 
 
-def _row(audit: FilmAudit, prandtl: np.ndarray, index: int, label: LinkLabel) -> RangeFinding:
-    at = (index, 0)
-    return _finding(
-        surface=surface_name(label),
-        key=_LAWS[int(audit.law[at])],
-        length=float(audit.length[at]),
-        rise=float(audit.rise[at]),
-        rayleigh=float(audit.rayleigh[at]),
-        prandtl=float(prandtl[at]),
-        nusselt=float(audit.nusselt[at]),
-        film=float(audit.coefficient[at]),
-    )
+def _films(audit: FilmAudit, pressure_pa: float, names: dict[int, str]) -> list[RangeFinding]:
+    """Give the films of the surfaces named."""
+    prandtl = air(audit.film_temperature, pressure_pa).prandtl
+    return [
+        _finding(
+            surface=name,
+            key=_LAWS[int(audit.law[at])],
+            length=float(audit.length[at]),
+            rise=float(audit.rise[at]),
+            rayleigh=float(audit.rayleigh[at]),
+            prandtl=float(prandtl[at]),
+            nusselt=float(audit.nusselt[at]),
+            film=float(audit.coefficient[at]),
+        )
+        for index, name in names.items()
+        for at in ((index, 0),)
+    ]
 
 
 def _whole_box(kind: BoxFilm, audit: FilmAudit) -> RangeFinding:
@@ -100,13 +105,6 @@ def _finding(
         inside_range=outside_by == 1.0,
         outside_by=outside_by,
     )
-
-
-def surface_name(label: LinkLabel) -> str:
-    """Give a surface the way a reader says it."""
-    kind, name = label.owner.split(":", 1)
-    where = "outside" if label.role.endswith("outside") else "inside"
-    return f"{kind} {name}" if kind in ("part", "can") else f"{kind} {name} {where}"
 
 
 def range_warnings(ranges: tuple[RangeFinding, ...]) -> list[str]:

@@ -60,4 +60,4 @@ class Solved:
 
     def total_put_in(self, role: str) -> float:
         """Heat put in under a role by all owners [W]."""
-        return sum(value for (_, own), value in self._sources.items() if own == role)
+        return sum((value for (_, own), value in self._sources.items() if own == role), 0.0)

@@ -32,6 +32,7 @@ class Film:
     """A surface that convects inside the box, as the builders hand it over."""
 
     node: int
+    name: str
     label: int
     cells: IntArray
     centres: FloatArray
@@ -112,6 +113,7 @@ class AirSite:
         at: float,
         area: FloatArray,
         face: PlaneFace,
+        name: str,
         label: int,
         *,
         is_board: bool,
@@ -130,6 +132,7 @@ class AirSite:
         number = self.add(
             Film(
                 plate.mean,
+                name,
                 label,
                 plate.cells.ravel(),
                 centres.reshape(-1, 3),
@@ -153,6 +156,7 @@ class AirSite:
         axis: int,
         size: Vector,
         area: FloatArray,
+        name: str,
         label: int,
     ) -> None:
         """Add the rim of a board: the narrow faces of the body that it is."""
@@ -168,6 +172,7 @@ class AirSite:
         self.add(
             Film(
                 plate.mean,
+                name,
                 label,
                 plate.cells[hit],
                 centres[hit],
@@ -236,7 +241,7 @@ class AirSite:
 
         return Surfaces(
             node=np.array([film.node for film in films], dtype=np.intp),
-            label=np.array([film.label for film in films], dtype=np.intp),
+            names=tuple(film.name for film in films),
             fall_length=column([face.fall_length for face in faces]),
             area_perimeter_length=column([face.area_perimeter_length for face in faces]),
             up_cosine=column([face.up_cosine for face in faces]),

@@ -79,6 +79,7 @@ def _build_board(case: Case, board: BoardCase, site: Site) -> None:
             at,
             bare - half_rim,
             face,
+            f"board {board.name}, {side} side",
             builder.label(convection),
             is_board=True,
             size=size,
@@ -93,7 +94,8 @@ def _build_board(case: Case, board: BoardCase, site: Site) -> None:
             )
         )
     rim = builder.label(LinkLabel(owner, "convection_inside"))
-    site.air_site.add_rim(plate, grid, board.axis, size, 2 * half_rim, rim)
+    name = f"board {board.name}, rim"
+    site.air_site.add_rim(plate, grid, board.axis, size, 2 * half_rim, name, rim)
     power = board.other_power_w / plate.cells.size
     builder.heat(plate.cells, power, LinkLabel(owner, "power"))
 

@@ -189,7 +189,7 @@ class NetworkBuilder:
         for index, (face, label) in enumerate(zip(cells, labels, strict=True)):
             area = geometry.area[index] / face.size
             blocks.add(face.size, (face.ravel(), air, self.label(label), index), (area,))
-        nodes = np.repeat(np.array([*means, air])[:, None], 6, axis=1)
+        nodes = np.array([*means, air], dtype=np.intp)
         self.add(
             BoxFilm(
                 **blocks.columns(),

@@ -39,7 +39,8 @@ class Surfaces:
 
     node: IntArray
     """Node of the surface's mean temperature, shape (s,)."""
-    label: IntArray
+    names: tuple[str, ...]
+    """What a reader calls each of them."""
     fall_length: FloatArray
     """[m], shape (s, 1), as all the following."""
     area_perimeter_length: FloatArray

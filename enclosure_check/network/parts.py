@@ -73,7 +73,9 @@ def _join_wall(part: PartCase, junction: int, site: Site) -> None:
     owner, wall = f"part:{part.name}", OPPOSITE[part.side]
     joint = _pad_resistance(part.pad) if part.pad is not None else _joint(part, site)
     resistance = (part.theta_jc_bottom_k_per_w or 0.0) + joint
-    low, size = metres_3(part.low_mm), metres_3(part.size_mm)
+    # What touches the wall: the pad where there is one.
+    foot = part if part.pad is None else part.pad
+    low, size = metres_3(foot.low_mm), metres_3(foot.size_mm)
     label = LinkLabel(owner, "to_wall")
     site.spot(junction, resistance, wall, site.wall_inside[wall], low, size, label)
 

@@ -152,6 +152,7 @@ class Site:
         return self.air_site.add(
             Film(
                 node,
+                label.owner.replace(":", " ", 1),
                 self.builder.label(label),
                 np.array([node]),
                 np.array([[x, y, z]]),

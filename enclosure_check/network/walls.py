@@ -17,7 +17,6 @@ from enclosure_check.network.units import kelvin, metres, metres_3
 from enclosure_check.physics.box import box_geometry
 from enclosure_check.physics.radiation import sky_view_factor
 
-
 # A wall that conducts better than this through its thickness is taken as even across it: films of
 # 20 W/m2K leave a difference below 1 % of theirs.
 EVEN_WALL_W_PER_M2K = 2000.0
@@ -77,6 +76,7 @@ def _build_wall(case: Case, name: WallName, inside: Vector, outside: Vector, sit
         at,
         bare,
         face,
+        f"wall {name} inside",
         builder.label(LinkLabel(owner, "convection_inside")),
         is_board=False,
         size=inside,

@@ -89,12 +89,6 @@ class Solution:
         """Whether each variant converged, shape (v,)."""
         return np.array([outcome is Outcome.CONVERGED for outcome in self.outcome])
 
-    def after(self, other: "Solution") -> "Solution":
-        """Count the steps of the solution this one started from as well."""
-        return replace(
-            self, steps=self.steps + other.steps, fallbacks=self.fallbacks + other.fallbacks
-        )
-
     def improved(self, later: "Solution") -> "Solution":
         """Give the variants that converged here, and the others as they are in a later solution."""
         keep = self.each_converged
@@ -102,8 +96,8 @@ class Solution:
         return Solution(
             rise=np.where(keep, self.rise, later.rise),
             outcome=tuple(one if kept else other for kept, one, other in both),
-            steps=np.where(keep, self.steps, self.steps + later.steps),
-            fallbacks=np.where(keep, self.fallbacks, self.fallbacks + later.fallbacks),
+            steps=np.where(keep, self.steps, later.steps),
+            fallbacks=np.where(keep, self.fallbacks, later.fallbacks),
             worst_imbalance_w=np.where(keep, self.worst_imbalance_w, later.worst_imbalance_w),
             worst_node=np.where(keep, self.worst_node, later.worst_node),
             heat_w=np.where(keep, self.heat_w, later.heat_w),
@@ -123,7 +117,7 @@ _FARTHEST_GUESS_K = 1_000.0
 # its films carry.
 _STIRRINGS = (3.0, 0.3, 0.1, 0.03, 0.01, 0.003, 0.001)
 # How often growing power is held and let go before no steady state is believed in.
-_MOST_HOLDS = 60
+_MOST_HOLDS = 64
 
 
 def solve_steady(
@@ -173,7 +167,11 @@ def _stirred(network: Network, options: SolveOptions) -> Solution:
 
 
 def _guess(network: Network) -> FloatArray:
-    return np.clip(network.first_guess(), -_FARTHEST_GUESS_K, _FARTHEST_GUESS_K)
+    try:
+        guess = network.first_guess()
+    except np.linalg.LinAlgError:
+        return np.zeros((len(network.unknown), network.variants))
+    return np.clip(guess, -_FARTHEST_GUESS_K, _FARTHEST_GUESS_K)
 
 
 def _from_below(network: Network, options: SolveOptions) -> Solution:
@@ -184,27 +182,33 @@ def _from_below(network: Network, options: SolveOptions) -> Solution:
     rise = np.broadcast_to(coldest, (network.size, network.variants))
     start = _guess(network)
     best: Solution | None = None
-    runs_away = np.ones(network.variants, dtype=bool)
-    for _ in range(_MOST_HOLDS):
+    runs_away = still = np.ones(network.variants, dtype=bool)
+    steps = np.zeros(network.variants, dtype=np.intp)
+    fallbacks = steps.copy()
+    for hold in range(_MOST_HOLDS + 1):
         held = replace(network, sources=sources.held(rise[sources.node], reference))
         below = _reach(held, start, options)
         rise, start = below.rise, below.rise[network.unknown]
-        trial = _reach(network, start, options).after(below)
-        if best is None:
-            # Power that is out of scale before it grows is another matter.
-            best, runs_away = trial, below.each_converged
-        else:
-            best = best.improved(trial)
-        if np.all(best.each_converged | ~below.each_converged):
+        tries = [below]
+        # Letting go costs more than holding on: it is tried after 0, 1, 2, 4, 8... further holds.
+        if not hold & (hold - 1):
+            trial = _reach(network, start, options)
+            tries.append(trial)
+            if best is None:
+                # Power that is out of scale before it grows is another matter.
+                best, runs_away = trial, below.each_converged
+            else:
+                best = best.improved(trial)
+        steps += sum(np.where(still, each.steps, 0) for each in tries)
+        fallbacks += sum(np.where(still, each.fallbacks, 0) for each in tries)
+        assert best is not None
+        still = ~best.each_converged
+        if not np.any(still & below.each_converged):
             break
     assert best is not None
-    each = zip(best.outcome, best.each_converged, runs_away, strict=True)
-    return replace(
-        best,
-        outcome=tuple(
-            Outcome.RUNAWAY if growth and not done else outcome for outcome, done, growth in each
-        ),
-    )
+    each = zip(best.outcome, still, runs_away, strict=True)
+    outcome = [Outcome.RUNAWAY if no and growth else own for own, no, growth in each]
+    return replace(best, outcome=tuple(outcome), steps=steps, fallbacks=fallbacks)
 
 
 def _newton(network: Network, start: FloatArray, options: SolveOptions) -> Solution:

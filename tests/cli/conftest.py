@@ -39,6 +39,13 @@ def environment(**changes: str) -> dict[str, str]:
     return {**kept, "PYTHONPATH": str(ROOT), "PYTHONIOENCODING": "utf-8", **changes}
 
 
+@pytest.fixture(autouse=True)
+def _plain_surroundings(monkeypatch: pytest.MonkeyPatch):
+    """In-process runs see nothing of the terminal the tests are run from."""
+    for name in _TAKEN_OUT:
+        monkeypatch.delenv(name, raising=False)
+
+
 @pytest.fixture
 def run(tmp_path: Path) -> Run:
     """Run the program with arguments; standard output is a pipe."""

@@ -159,9 +159,7 @@ def test_up_in_the_frame_of_the_box(lean, roll, expected):
 def test_up_is_what_two_turns_of_the_box_make_of_it(lean, roll):
     a, b = math.radians(lean), math.radians(roll)
     # Turns of the box in the room: the top towards the rear, then towards the right.
-    lean_back = np.array(
-        [[1, 0, 0], [0, math.cos(a), math.sin(a)], [0, -math.sin(a), math.cos(a)]]
-    )
+    lean_back = np.array([[1, 0, 0], [0, math.cos(a), math.sin(a)], [0, -math.sin(a), math.cos(a)]])
     roll_right = np.array(
         [[math.cos(b), 0, math.sin(b)], [0, 1, 0], [-math.sin(b), 0, math.cos(b)]]
     )

@@ -264,6 +264,43 @@ def test_two_paths_to_the_board_are_one():
     assert line not in assumptions(with_part(theta_jb_k_per_w=5))
 
 
+@pytest.mark.parametrize(
+    ("place", "given", "line"),
+    [
+        (
+            "main",
+            {"theta_jb_k_per_w": 5, "bottom_contact_k_per_w": 3},
+            "theta_jb given: it is the whole path to the board, bottom_contact left out (U1)",
+        ),
+        (
+            "back",
+            {"pad": {"thickness_mm": 1, "conductivity_w_per_mk": 2}, "bottom_contact_k_per_w": 3},
+            "pad given: it is the joint to the wall, bottom_contact left out (U1)",
+        ),
+        ("back", {"theta_jb_k_per_w": 5}, "not on a board: theta_jb left out (U1)"),
+        ("air", {"theta_jb_k_per_w": 5}, "not on a board: theta_jb left out (U1)"),
+        (
+            "air",
+            {"theta_jc_bottom_k_per_w": 5},
+            "air all round: theta_jc_bottom and bottom_contact left out (U1)",
+        ),
+        (
+            "air",
+            {"bottom_contact_k_per_w": 5},
+            "air all round: theta_jc_bottom and bottom_contact left out (U1)",
+        ),
+    ],
+)
+def test_what_is_stated_and_has_no_effect_is_told(place, given, line):
+    on = {"main": {}, "back": {"side": None}, "air": {"side": None, "at_mm": None}}[place]
+    assert line in assumptions(with_part(place=place, **on, **given))
+    for key in given:
+        if len(given) > 1:
+            alone = {other: value for other, value in given.items() if other != key}
+            assert line not in assumptions(with_part(place=place, **on, **alone))
+    assert line not in assumptions(with_part(place=place, **on))
+
+
 def test_part_on_a_wall_without_a_joint_has_air_under_it():
     on_wall = {"place": "bottom", "side": None}
     line = "no joint to the wall given: 0.1 mm of air (U1)"

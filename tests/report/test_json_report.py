@@ -107,6 +107,25 @@ def test_keys_are_those_of_the_records(report):
     compare(report, json.loads(written(report)))
 
 
+COUNTS = ("format", "unknowns", "iterations", "fallbacks")
+
+
+def test_what_is_measured_is_a_float_and_what_is_counted_an_integer(report):
+    def numbers(data):
+        if isinstance(data, dict):
+            for key, value in data.items():
+                if isinstance(value, int | float) and not isinstance(value, bool):
+                    yield key, value
+                yield from numbers(value)
+        elif isinstance(data, list):
+            for item in data:
+                yield from numbers(item)
+
+    found = list(numbers(json.loads(written(report))))
+    assert {key for key, _ in found} >= set(COUNTS)
+    assert not [key for key, value in found if isinstance(value, int) != (key in COUNTS)]
+
+
 def test_bytes_are_the_same_every_time(report):
     again = check(load_document(report.document))
     assert written(again) == written(report)

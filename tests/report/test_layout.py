@@ -158,6 +158,7 @@ def test_table_gives_up_gaps_before_it_is_too_wide(width):
     sheet = page(width=width)
     sheet.table(COLUMNS, [["x" * 60, "-123456.0", "MARGINAL"]])
     assert all(len(line) <= width for line in sheet.lines)
+    assert sheet.lines[0].startswith("  ") == (width == 28)
     assert all(word in sheet.text() for word in ("-123456.0", "MARGINAL"))
 
 

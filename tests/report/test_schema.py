@@ -127,6 +127,7 @@ def patched(**patch):
         {"parts": {"X1": {"limits": {"case": {"derating": {"allowed_pct": {"40": 80}}}}}}},
         {"walls": {"top": {"mounting": {"kind": "insulated"}}}, "mode": None},
         {"box": {"width_mm": 120}},
+        {"surroundings": {"altitude_m": None, "sky": None}, "requirements": None},
     ],
 )
 def test_patches_may_leave_out_and_take_away(patch):

@@ -334,6 +334,21 @@ class _Maker:
             owner["power_doubling_k"] = rng.uniform(least_k, 1000)
 
 
+def with_strong_growth(document: Data, rng: random.Random) -> Data:
+    """Let the power of half of the parts grow with temperature, enough to run away here and there."""
+    image = {**document, "parts": {name: {**row} for name, row in document["parts"].items()}}
+    for row in image["parts"].values():
+        if row.get("power_w") and rng.random() < 0.5:
+            for key in ("power_slope_pct_per_k", "power_doubling_k"):
+                row.pop(key, None)
+            row["power_at_c"] = rng.uniform(0, 150)
+            if rng.random() < 0.5:
+                row["power_slope_pct_per_k"] = rng.uniform(0, 3)
+            else:
+                row["power_doubling_k"] = rng.uniform(5, 60)
+    return image
+
+
 def mirrored(document: Data, axis: int) -> Data:
     """Give the mirror image of a document across one axis of the box (0 left and right, 1 front
     and back, 2 bottom and top).

@@ -1,0 +1,83 @@
+"""What a finding says of its case, of the solver, and what should be looked at."""
+
+import pytest
+from support.cases import NODE_SHARE, board, box, case_of, checked, part, patched, solved
+
+from enclosure_check.findings.assess import assess
+
+WARM = box(
+    boards={"main": board(other_power_w=4)},
+    parts={
+        "U1": part(power_w=2, limits={"case": {"max_c": 95}}),
+        "U2": part(at_mm=[20, 20], power_w=1),
+        "U3": part(at_mm=[90, 20]),
+    },
+)
+
+
+def warnings(document) -> list[str]:
+    """What is said beside the range audit."""
+    return [line for line in checked(document).warnings if "outside its range" not in line]
+
+
+def test_the_case_is_named():
+    document = patched(
+        WARM,
+        {"modes": {"low": {"power_pct": 50}}, "mode": "low", "surroundings": {"altitude_m": 800}},
+    )
+    finding = checked(document)
+    assert (finding.name, finding.option, finding.mode) == ("base", None, "low")
+    assert (finding.surrounding_air_c, finding.altitude_m) == (25, 800)
+    assert finding.assumptions == case_of(document).assumptions
+    assert finding.heat_balance.generated_w == pytest.approx(3.5, rel=1e-12)
+
+
+def test_the_solver_is_reported():
+    answer = solved(WARM)
+    found, solution = assess(answer).solver, answer.solution
+    assert found.unknowns == len(answer.network.unknown)
+    assert found.iterations == solution.steps[0] > 0
+    assert found.fallbacks == solution.fallbacks[0]
+    assert found.worst_imbalance_w == solution.worst_imbalance_w[0]
+    assert found.worst_imbalance_w < NODE_SHARE * solution.heat_w[0]
+    assert found.worst_node == answer.network.node_labels[solution.worst_node[0]]
+
+
+def test_parts_without_a_limit_are_named():
+    assert warnings(WARM) == ["no limit stated, so not judged: U2, U3"]
+    one = {"limits": {"junction": {"max_c": 100}}}
+    assert warnings(patched(WARM, {"parts": {"U2": one, "U3": one}})) == []
+
+
+def test_nothing_to_judge_at_all():
+    bare = patched(WARM, {"parts": {"U1": {"limits": None}}})
+    assert warnings(bare) == ["no limit is stated anywhere, so there is nothing to fail"]
+    assert checked(bare).verdict == "pass"
+    assert warnings(patched(bare, {"requirements": {"touch_max_c": 90}})) == []
+
+
+def test_confidence_is_not_computed_and_says_so():
+    (line,) = [
+        line
+        for line in warnings(patched(WARM, {"requirements": {"confidence_pct": 95}}))
+        if "confidence" in line
+    ]
+    assert line.startswith("requirements.confidence_pct: bands are not computed in this version")
+
+
+def test_warnings_of_the_document_come_with_their_field():
+    overlapping = patched(WARM, {"parts": {"U2": {"at_mm": [62, 50]}}})
+    assert "parts.U2: its outline overlaps that of U1" in warnings(overlapping)
+
+
+def test_laws_outside_their_range_are_warned_of():
+    lines = [line for line in checked(WARM).warnings if "outside its range" in line]
+    laws = {row.correlation for row in checked(WARM).ranges if not row.inside_range}
+    assert len(lines) == len(laws) > 0
+    # A large, warm box: its walls are inside the range of every law but the one for boxes.
+    big = box(
+        box={"width_mm": 600, "height_mm": 600, "depth_mm": 600},
+        boards={"main": board(length_mm=550, width_mm=550, other_power_w=150)},
+    )
+    outside = {row.correlation for row in checked(big).ranges if not row.inside_range}
+    assert outside <= {"box_shelter", "yovanovich_cuboid"}
