@@ -287,6 +287,6 @@ def test_temperature_of_the_sky(sky, expected_c):
 def test_thicker_air_at_altitude_is_thinner():
     high = network_of(box(surroundings={"altitude_m": 5000}))
     pressures = {kind.pressure_pa for kind in high.kinds if hasattr(kind, "pressure_pa")}
-    # ISO 2533:1975, table: 54 020 Pa at 5000 m of geopotential altitude.
+    # ISO 2533:1975, table: 54 020 Pa at 5000 m of geopotential altitude (from memory).
     assert len(pressures) == 1
     assert pressures.pop() == pytest.approx(54_020, rel=1e-3)
