@@ -168,7 +168,7 @@ def _resolve_cables(name: WallName, wall: Wall, remarks: Remarks) -> tuple[Cable
                 f"{room:.3g} mm2",
             )
         remarks.assume(
-            "cables: copper, no insulation, their surface exchanges heat as 10 K over the air",
+            "cables: copper, insulation without resistance, films as at 10 K over the air",
             f"{name}/{cable}",
         )
     return tuple(

@@ -126,7 +126,8 @@ class _Search:
         self.network = network
         self.limits = limits
         self.wanted = wanted
-        self.start = np.repeat(start, 2, axis=1)
+        # The last two states of either search, from which the next is foreseen.
+        self.states = [[(0.0, start[:, 0])], [(1.0, start[:, 0])]]
         self.inverse = inverse
         base = limits.margins(network.full_rise(start), network.reference_k)[:, 0] - wanted
         self.base = float(base.min())
@@ -164,10 +165,23 @@ class _Search:
             fixed_rise=np.repeat(network.fixed_rise, 2, axis=1),
             sources=replace(network.sources, power=network.sources.power * scaled),
         )
-        solution = solve_nearby(pair, self.start, self.inverse, _CLOSE)
+        values = (shift, factor)
+        start = np.stack([self._foreseen(k, value) for k, value in enumerate(values)], axis=1)
+        solution = solve_nearby(pair, start, self.inverse, _CLOSE)
         found = solution.each_converged
-        self.start = np.where(found, solution.rise[network.unknown], self.start)
+        for index, value in enumerate(values):
+            if found[index] and value != self.states[index][-1][0]:
+                state = value, solution.rise[network.unknown, index]
+                self.states[index] = [self.states[index][-1], state]
         return self.limits.margins(solution.rise, pair.reference_k) - self.wanted, found
+
+    def _foreseen(self, index: int, value: float) -> FloatArray:
+        """Rises of the unknown nodes to start from [K], on the line through the last states."""
+        last, x = self.states[index][-1]
+        if len(self.states[index]) == 2:
+            before, y = self.states[index][0]
+            return x + (x - y) * ((value - last) / (last - before))
+        return x * value**_RISE_EXPONENT if index == 1 else x
 
 
 class _Track:

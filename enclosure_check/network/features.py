@@ -4,8 +4,10 @@ Zones are part of a board's sheet conductance; stand-offs, edge clamps and fille
 walls; a can is a surface of its own over parts.
 """
 
-from collections.abc import Sequence
+import math
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import ArrayLike
@@ -30,8 +32,6 @@ from enclosure_check.network.walls import edge_cells
 # Least air gap between a part and the can over it; a part as high as its can touches it nowhere
 # well. (common practice, no source) [m]
 LEAST_CAN_GAP = 1e-4
-# Width of the line along which a can stands on its board: thin beside any cell. [m]
-_LINE = 2e-6
 
 
 def build_features(case: Case, site: Site) -> "Covers":
@@ -178,9 +178,11 @@ def _build_stand_off(board: BoardCase, stand_off: StandOffCase, site: Site) -> N
     foot = metres_3(stand_off.low_mm), metres_3(stand_off.size_mm)
     wall = stand_off.wall
     middle = site.builder.node(f"middle of {owner.split(':', 1)[1]}")
-    label = LinkLabel(owner, "stand_off")
-    site.spot(middle, resistance / 2, board.name, site.boards[board.name], *foot, label)
-    site.spot(middle, resistance / 2, wall, site.wall_inside[wall], *foot, label)
+    for host, plate, role in (
+        (board.name, site.boards[board.name], "to_board"),
+        (wall, site.wall_inside[wall], "to_wall"),
+    ):
+        site.spot(middle, resistance / 2, host, plate, *foot, LinkLabel(owner, role))
 
 
 def _build_edge_clamp(board: BoardCase, clamp: EdgeClampCase, site: Site) -> None:
@@ -270,14 +272,14 @@ def _build_can(board: BoardCase, can: ShieldCanCase, parts: Sequence[PartCase], 
     between = between_parts(grid, can, parts)
     between[between < _ROUNDING * grid.cell_area] = 0.0
     hit = between > 0
-    still = site.air_conductivity * between[hit] / metres(can.height_mm)
-    builder.conduct(cells[hit], node, still, LinkLabel(owner, "still_air"))
-    label = LinkLabel(owner, "radiation_under")
-    _radiate_to_can(site, can, node, cells[hit], between[hit], board.finish.emissivity, label)
-    length = outline_lengths(grid, low, size)
-    hit = length > 0
-    frame = can.frame_conductance_w_per_mk * length[hit]
-    builder.conduct(cells[hit], node, frame, LinkLabel(owner, "frame"))
+    if hit.any():
+        still = site.air_conductivity * between[hit] / metres(can.height_mm)
+        builder.conduct(cells[hit], node, still, LinkLabel(owner, "still_air"))
+        label = LinkLabel(owner, "radiation_under")
+        _radiate_to_can(site, can, node, cells[hit], between[hit], board.finish.emissivity, label)
+    pieces = list(outline_segments(grid, low, size))
+    frame = LinkLabel(owner, "frame")
+    join_pieces(site, board.name, pieces, node, can.frame_conductance_w_per_mk, frame)
     first, second = (size[axis] for axis in grid.axes)
     outside = first * second + 2.0 * (first + second) * metres(can.height_mm)
     face = site.board_faces[board.name, can.side]
@@ -313,18 +315,87 @@ def _radiate_to_can(
         site.builder.radiate(nodes, can_node, area, far, emissivity, label)
 
 
-def outline_lengths(grid: PlateGrid, low: Vector, size: Vector) -> FloatArray:
-    """Length of a rectangle's outline on each cell [m], shape ``counts``.
+class Segment(NamedTuple):
+    """A piece of a line on a plate, between two rows of cells: their places and its shares."""
 
-    A line that runs between two rows of cells counts half to each.
+    places: tuple[tuple[int, int], tuple[int, int]]
+    shares: tuple[float, float]
+    length: float
+    """[m]."""
+    held: float
+    """What the plate holds between the two cells and the piece, times its length [K m/W]."""
+
+
+def line_segments(
+    grid: PlateGrid, across: int, at: float, start: float, end: float
+) -> Iterator[Segment]:
+    """Cut a line along a plate into pieces, one per cell that it runs along.
+
+    Its heat is shared out by the distances to the rows of cells on both sides, so that it is met
+    where it lies. Over the mean of the two so weighted a long line is warmer by
+    ``s f (1 - f) / (k t)`` per watt and metre, exactly, at the share f of their distance s.
+    Beyond the last row it is fed from one side alone, over its distance.
+
+    Parameters
+    ----------
+    grid
+        The cells.
+    across
+        Which of the plate's axes the line is across.
+    at
+        Its place along that axis [m].
+    start, end
+        Where it begins and ends along the other [m]; all in the box frame.
     """
-    along, lines = [], []
-    for axis, edges in zip(grid.axes, grid.edges, strict=True):
-        start, end = low[axis], low[axis] + size[axis]
-        along.append(_on_cells(edges, start, end))
-        each = [_on_cells(edges, at - _LINE / 2, at + _LINE / 2) for at in (start, end)]
-        lines.append(sum(line / line.sum() for line in each))
-    return np.outer(lines[0], along[1]) + np.outer(along[0], lines[1])
+    lengths = _on_cells(grid.edges[1 - across], start, end)
+    sheet = np.moveaxis(grid.sheet[across], across, 0)
+    centres, step = grid.centres[across], grid.steps[across]
+    place = (at - float(centres[0])) / step
+    first = min(max(math.floor(place), 0), centres.size - 2)
+    share = min(max(place - first, 0.0), 1.0)
+    beyond = max(first - place, place - first - 1.0, 0.0)
+    for cell in np.flatnonzero(lengths > 0).tolist():
+        kt = (1.0 - share) * sheet[first, cell] + share * sheet[first + 1, cell]
+        one, other = (first, cell), (first + 1, cell)
+        yield Segment(
+            (one, other) if across == 0 else (one[::-1], other[::-1]),
+            (1.0 - share, share),
+            float(lengths[cell]),
+            step * (share * (1.0 - share) + beyond) / float(kt),
+        )
+
+
+def outline_segments(grid: PlateGrid, low: Vector, size: Vector) -> Iterator[Segment]:
+    """Cut the four lines of a rectangle's outline into pieces; see `line_segments`."""
+    first, second = grid.axes
+    for across, axis, along in ((0, first, second), (1, second, first)):
+        for at in (low[axis], low[axis] + size[axis]):
+            yield from line_segments(grid, across, at, low[along], low[along] + size[along])
+
+
+def join_pieces(
+    site: Site, board: str, pieces: Sequence[Segment], node: int, per_metre: float, label: LinkLabel
+) -> None:
+    """Join a node to a board along pieces of a line by a conductance per metre [W/(m K)].
+
+    A piece follows the mean ``w_1 T_1 + w_2 T_2`` of its two cells, over ``1/g = 1/per_metre +
+    held``. Written out, ``g (w_1 T_1 + w_2 T_2 - T)^2`` is that of conductances ``w_1 g`` and
+    ``w_2 g`` to the node and of ``-w_1 w_2 g`` between the cells: part of what the board conducts
+    between them goes by the line instead. It is never more than what the board conducts.
+    """
+    cells = site.boards[board].cells
+    first, second = (
+        np.array([cells[piece.places[end]] for piece in pieces], dtype=np.intp) for end in (0, 1)
+    )
+    one, other = (np.array([piece.shares[end] for piece in pieces]) for end in (0, 1))
+    length, held = (
+        np.array([getattr(piece, name) for piece in pieces]) for name in ("length", "held")
+    )
+    each = length / (1.0 / per_metre + held)
+    builder = site.builder
+    builder.conduct(first, node, one * each, label)
+    builder.conduct(second, node, other * each, label)
+    builder.conduct(first, second, -one * other * each, LinkLabel(f"board:{board}", "along"))
 
 
 def _on_cells(edges: FloatArray, start: float, end: float) -> FloatArray:

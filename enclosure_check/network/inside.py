@@ -39,7 +39,8 @@ def build_inside_radiation(site: Site) -> None:
         builder.radiate(nodes, irradiation[patch], seen, seen, surface.emissivity, surface.label)
         np.add.at(emitting, patch, surface.emissivity * seen)
         weight = np.full(nodes.size, max(surface.emissivity, _MIRROR))
-        for index in np.unique(patch):
+        # Not by `numpy.unique`, which loads masked arrays.
+        for index in sorted(set(patch.tolist())):
             here = patch == index
             cells[index].append(np.stack((nodes[here], seen[here], weight[here])))
     emission = irradiation.copy()

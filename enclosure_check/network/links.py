@@ -314,7 +314,8 @@ class PatchExchange(Links):
 
     def _factors(self) -> FloatArray:
         a, b = self.emissivity_a, self.emissivity_b
-        return 4.0 * STEFAN_BOLTZMANN * self.exchange_area * np.stack((1 - a, b - 1, a, -b))
+        share = np.stack(np.broadcast_arrays(1 - a, b - 1, a, -b))
+        return 4.0 * STEFAN_BOLTZMANN * self.exchange_area * share
 
 
 def fourth_power_difference(rise: FloatArray, reference_k: FloatArray) -> FloatArray:

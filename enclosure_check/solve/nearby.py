@@ -13,7 +13,14 @@ import numpy as np
 
 from enclosure_check.network.links import FloatArray
 from enclosure_check.network.network import Network
-from enclosure_check.solve.steady import Solution, SolveOptions, State, solution_of, solve_steady
+from enclosure_check.solve.steady import (
+    Solution,
+    SolveOptions,
+    State,
+    approach,
+    solution_of,
+    solve_steady,
+)
 
 # Steps after which, and growth of the imbalance at which, chords are given up for Newton.
 _MOST_CHORDS = 24
@@ -62,8 +69,7 @@ def solve_known(network: Network, known: Known | None) -> Known:
         start = known.solution.rise[network.unknown]
         solution = solve_nearby(network, start, known.inverse)
         return Known(network, solution, known.inverse)
-    options = SolveOptions(max_steps=_FIRST_STEPS, by_stirring=False)
-    near = solve_steady(network, options=options)
+    near = approach(network, _FIRST_STEPS)
     inverse = Inverse(network, near.rise)
     if near.converged:
         return Known(network, near, inverse)

@@ -149,6 +149,17 @@ def solve_steady(
     return _from_below(network, options)
 
 
+def approach(network: Network, steps: int) -> Solution:
+    """Come near the steady state by a few steps from the linear guess; it need not converge.
+
+    Power that doubles may have several states: there the search from below says which to go to.
+    """
+    options = SolveOptions(max_steps=steps, by_stirring=False)
+    if network.sources.doubles:
+        return solve_steady(network, options=options)
+    return _newton(network, _guess(network), options)
+
+
 def _reach(network: Network, start: FloatArray, options: SolveOptions) -> Solution:
     """Iterate from a start, and by way of stirred air where that does not do."""
     solution = _newton(network, start, options)

@@ -165,7 +165,7 @@ def test_cables_of_a_wall():
     assert (supply.outer_mm, supply.inside_mm, supply.current_a) == (3, 150, 3)
     assert (bus.count, bus.current_a) == (1, 0)
     assert case.walls["right"].cables == ()
-    assert "10 K over the air (left/supply, left/bus)" in "\n".join(case.assumptions)
+    assert "as at 10 K over the air (left/supply, left/bus)" in "\n".join(case.assumptions)
 
 
 def test_a_bare_conductor_fills_its_diameter():

@@ -25,6 +25,8 @@ from enclosure_check.solve.steady import solve_steady
 WITHIN = 0.01
 ROUNDING = 1e-9
 REFERENCE_K = 298.15
+# Heat is put in by so much less, for the sake of large resistances. [-]
+HEAT = 1e-3
 
 
 class Plates:
@@ -49,17 +51,19 @@ class Plates:
         return nodes
 
     def heat(self, node, watts):
-        self.builder.heat(node, watts, LinkLabel("part:S", "power"))
+        self.builder.heat(node, HEAT * watts, LinkLabel("part:S", "power"))
 
     def heated(self, name, low, size, watts):
         """Put an even source on a plate; gives its spot."""
-        # Behind a large resistance: what the cells tell too warm may all be given back.
-        spot = self.spot(name, self.nodes[name], low, size, "part:S", 1e9)
-        self.heat(spot.node, watts)
+        # Behind a resistance so large that its heat is even over the area; see `HEAT`.
+        node = self.builder.node("source")
+        label = LinkLabel("part:S", "to_plate")
+        spot = self.spot(node, 1e6, name, self.nodes[name], low, size, label)
+        self.heat(node, watts)
         return spot
 
     def rise(self):
-        """Rises of all nodes [K]."""
+        """Rises of all nodes [K]; conduction is linear."""
         ambient = self.ambient
         places = Places(
             ambient=ambient,
@@ -73,7 +77,7 @@ class Plates:
         )
         solution = solve_steady(self.builder.finish(places))
         assert solution.converged
-        return solution.rise[:, 0]
+        return solution.rise[:, 0] / HEAT
 
 
 def default_counts(length, width):

@@ -18,17 +18,30 @@ AMBIENT_K = 298.15
 
 
 def started(ambient_k: float = AMBIENT_K) -> tuple[NetworkBuilder, int]:
-    """A builder with the ambient as its first node."""
+    """A builder, and the ambient."""
     builder = NetworkBuilder(ambient_k, 101_325.0)
     return builder, builder.node("ambient", ambient_k)
 
 
 def finished(builder: NetworkBuilder) -> Network:
-    return builder.finish(Places(0, 0, {}, {}, {}, {}))
+    """Make the network; no test of these asks for places."""
+    nothing = np.array([builder.nowhere])
+    return builder.finish(
+        Places(
+            ambient=builder.nowhere,
+            air=builder.nowhere,
+            air_nodes=nothing,
+            air_heights=np.zeros(1),
+            wall_outside={},
+            wall_inside={},
+            boards={},
+            parts={},
+        )
+    )
 
 
 def one_node(power: float, resistance: float = 1.0, **growth: float) -> Network:
-    """A node that heats itself, joined to the ambient by a resistance [K/W]."""
+    """A node that heats itself, joined to the ambient by a resistance [K/W]; it is the last one."""
     builder, ambient = started()
     node = builder.node("junction")
     builder.conduct(node, ambient, 1 / resistance, LABEL)
