@@ -14,7 +14,9 @@ from enclosure_check.description.base import (
     TemperatureC,
 )
 
-MountingKind = Literal["open_air", "against_surface", "standing_on", "bolted_to", "insulated"]
+MountingKind = Literal[
+    "open_air", "against_surface", "neighbour", "standing_on", "bolted_to", "insulated"
+]
 
 
 class Tilt(Strict):
@@ -43,15 +45,21 @@ class Box(Strict):
 class Mounting(Strict):
     """What the outside of a wall faces.
 
-    ``open_air``: free air. ``against_surface``: a surface at a small closed gap.
+    ``open_air``: free air. ``against_surface``: a surface across a gap. ``neighbour``: the wall of
+    another box across a gap, as warm as this one unless said otherwise.
     ``standing_on`` and ``bolted_to``: contact with a surface. ``insulated``: no heat passes.
     """
 
     kind: MountingKind = Field("open_air", description="What the outside of this wall faces.")
     gap_mm: DistanceMm | None = Field(
         None,
-        description="against_surface: distance to the surface, its edges closed; 0.1 when it lies "
-        "flush. Up to 5 mm in this version. [mm]",
+        description="against_surface, neighbour: distance to the surface; 0.1 when it lies flush. "
+        "[mm]",
+    )
+    edges: Literal["open", "closed"] | None = Field(
+        None,
+        description="against_surface, neighbour: whether air passes through the gap by its edges; "
+        "open when left out.",
     )
     contact_w_per_m2k: ContactWPerM2K | None = Field(
         None,
@@ -60,10 +68,14 @@ class Mounting(Strict):
     )
     surface_c: TemperatureC | None = Field(
         None,
-        description="Temperature of the surface; that of the surrounding air when left out. [C]",
+        description="Temperature of the surface; when left out that of the surrounding air, or for "
+        "a neighbour that of this wall. [C]",
     )
     surface_emissivity: float | None = Field(
-        None, ge=0, le=1, description="against_surface: emissivity of the surface; default 0.9."
+        None,
+        ge=0,
+        le=1,
+        description="against_surface, neighbour: emissivity of the surface; default 0.9.",
     )
 
 
@@ -97,8 +109,6 @@ class Wall(WallDefaults):
         "openings": "openings and vent flow are not computed in this version; the box must be "
         "sealed",
         "fins": "fins are not computed in this version",
-        "neighbour": "a neighbouring box is not computed in this version; describe it with "
-        "`mounting: {kind: against_surface}` when it is close",
     }
     mounting: Mounting = Field(
         default_factory=Mounting, description="What the outside of this wall faces."

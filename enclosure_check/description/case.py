@@ -34,8 +34,10 @@ class MountingCase:
 
     kind: MountingKind
     gap_mm: float
+    closed: bool
     contact_w_per_m2k: float
-    surface_c: float
+    surface_c: float | None
+    """None for a neighbour that is as warm as the wall."""
     surface_emissivity: float
 
 

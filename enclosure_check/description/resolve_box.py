@@ -20,8 +20,6 @@ from enclosure_check.library.rows import load_finishes, load_materials
 
 # A surface lying flush is never perfectly so. [mm] (common practice, no source)
 FLUSH_GAP_MM = 0.1
-# Above this a gap convects and exchanges with the air at its edges. [mm]
-LARGEST_CLOSED_GAP_MM = 5.0
 # Share by which a rounded diameter may fall short of a bare conductor. [-]
 CONDUCTOR_ROUNDING = 0.01
 # Emissivity of the surface behind a wall-mounted box: painted or papered walls, wood, concrete.
@@ -180,7 +178,8 @@ def _resolve_cables(name: WallName, wall: Wall, remarks: Remarks) -> tuple[Cable
 # Which keys each kind of mounting takes beside `kind`.
 _MOUNTING_KEYS: Mapping[str, tuple[str, ...]] = {
     "open_air": (),
-    "against_surface": ("gap_mm", "surface_c", "surface_emissivity"),
+    "against_surface": ("gap_mm", "edges", "surface_c", "surface_emissivity"),
+    "neighbour": ("gap_mm", "edges", "surface_c", "surface_emissivity"),
     "standing_on": ("contact_w_per_m2k", "surface_c"),
     "bolted_to": ("contact_w_per_m2k", "surface_c"),
     "insulated": (),
@@ -192,7 +191,7 @@ def _resolve_mounting(
 ) -> MountingCase:
     path: Path = ("walls", name, "mounting")
     takes = _MOUNTING_KEYS[mounting.kind]
-    for key in ("gap_mm", "contact_w_per_m2k", "surface_c", "surface_emissivity"):
+    for key in ("gap_mm", "edges", "contact_w_per_m2k", "surface_c", "surface_emissivity"):
         if getattr(mounting, key) is not None and key not in takes:
             allowed = ", ".join(takes) if takes else "nothing else"
             remarks.error(
@@ -202,33 +201,30 @@ def _resolve_mounting(
     contact = mounting.contact_w_per_m2k or 0.0
     surface = mounting.surface_c
     emissivity = mounting.surface_emissivity
-    if mounting.kind == "against_surface":
-        if gap > LARGEST_CLOSED_GAP_MM:
-            remarks.error(
-                (*path, "gap_mm"),
-                f"given {gap:g}; gaps over {LARGEST_CLOSED_GAP_MM:g} mm are not computed in this "
-                "version: use kind open_air for a wide gap, or insulated to be safe",
-            )
+    gapped = mounting.kind in ("against_surface", "neighbour")
+    if gapped:
         if mounting.gap_mm is None:
             remarks.assume(f"a surface lying flush leaves {FLUSH_GAP_MM:g} mm of air", name)
-        remarks.assume(
-            "heat crosses the gap to a mounting surface straight, none by its edges", name
-        )
+        if mounting.edges is None and mounting.gap_mm is not None:
+            remarks.assume("air passes by the edges of the gap to what is behind a wall", name)
         if emissivity is None:
-            remarks.assume(f"mounting surface: emissivity {SURFACE_EMISSIVITY:g}", name)
+            remarks.assume(f"surface behind a wall: emissivity {SURFACE_EMISSIVITY:g}", name)
     elif mounting.kind == "bolted_to" and not contact:
         remarks.error((*path, "contact_w_per_m2k"), "missing; kind bolted_to needs it")
     elif mounting.kind == "standing_on" and not contact:
         remarks.assume("no heat passes to what the box stands on: no contact given", name)
-    if "surface_c" in takes and surface is None:
+    if mounting.kind == "neighbour" and surface is None:
+        remarks.assume("neighbouring box is as warm as this one", name)
+    elif "surface_c" in takes and surface is None:
         surface = document.surroundings.air_c
-        if contact or mounting.kind == "against_surface":
+        if contact or gapped:
             remarks.assume("mounting surface is as warm as the surrounding air", name)
     return MountingCase(
         mounting.kind,
         gap,
+        mounting.edges == "closed",
         contact,
-        document.surroundings.air_c if surface is None else surface,
+        surface,
         SURFACE_EMISSIVITY if emissivity is None else emissivity,
     )
 

@@ -9,6 +9,7 @@ from enclosure_check.findings.results import (
     judge,
 )
 from enclosure_check.findings.solved import Solved
+from enclosure_check.network.units import millimetres
 
 
 def wall_findings(solved: Solved) -> tuple[WallFinding, ...]:
@@ -61,12 +62,13 @@ def heat_balance(solved: Solved, walls: tuple[WallFinding, ...]) -> HeatBalance:
 
 
 def air_finding(solved: Solved) -> AirFinding:
-    """Give the inside air: one body in this version, so the same from bottom to top."""
-    mean = float(solved.temperature_c[solved.network.places.air])
-    height = sum(
-        size * abs(up) for size, up in zip(solved.case.inside_mm, solved.case.up, strict=True)
+    """Give the inside air: its mean, and its nodes from the bottom up."""
+    places = solved.network.places
+    profile = tuple(
+        AirLayer(millimetres(float(height)), solved.at(int(node)))
+        for height, node in zip(places.air_heights, places.air_nodes, strict=True)
     )
-    return AirFinding(mean, mean, (AirLayer(0.0, mean), AirLayer(height, mean)))
+    return AirFinding(solved.at(places.air), profile[-1].air_c, profile)
 
 
 def openings_finding() -> OpeningsFinding:

@@ -1,5 +1,7 @@
 """Margins of parts against their limits, where their heat goes, and readings beside them."""
 
+from typing import Literal
+
 from enclosure_check.description.case import LimitCase, PartCase, ReadingCase
 from enclosure_check.findings.results import (
     BoardFinding,
@@ -71,16 +73,26 @@ def part_heat(solved: Solved) -> tuple[PartHeat, ...]:
     return tuple(sorted(rows, key=lambda row: -row.junction_c))
 
 
+# Where a board that lies across each axis of the box is looked at from.
+_SEEN_FROM: tuple[Literal["right", "front", "top"], ...] = ("right", "front", "top")
+
+
 def board_findings(solved: Solved) -> tuple[BoardFinding, ...]:
     """Give each board's mean, its hottest place and its map."""
     return tuple(_board(solved, name) for name in solved.case.boards)
 
 
 def _board(solved: Solved, name: str) -> BoardFinding:
-    places = solved.network.places
+    places, board = solved.network.places, solved.case.boards[name]
     plate = places.boards[name]
+    first, second = (axis for axis in range(3) if axis != board.axis)
     cells = solved.temperature_c[plate.cells]
     hottest, where = float(cells.max()), None
+    row, column = divmod(int(cells.argmax()), cells.shape[1])
+    at = (
+        board.size_mm[first] * (row + 0.5) / cells.shape[0],
+        board.size_mm[second] * (column + 0.5) / cells.shape[1],
+    )
     for part in solved.case.parts.values():
         nodes = places.parts[part.name]
         if part.host != name or nodes.board is None:
@@ -89,8 +101,17 @@ def _board(solved: Solved, name: str) -> BoardFinding:
         middle = solved.at(nodes.board) + entering * nodes.peak_k_per_w
         if middle > hottest:
             hottest, where = middle, part.name
-    rows = tuple(tuple(row) for row in cells.T[::-1].tolist())
-    return BoardFinding(name, solved.at(plate.mean), hottest, where, rows)
+            x, y = (part.centre_mm[axis] - board.low_mm[axis] for axis in (first, second))
+            at = (x, y)
+    return BoardFinding(
+        name=name,
+        mean_c=solved.at(plate.mean),
+        hottest_c=hottest,
+        hottest_at=where,
+        map_c=tuple(tuple(row) for row in cells.T[::-1].tolist()),
+        seen_from=_SEEN_FROM[board.axis],
+        hottest_at_mm=at,
+    )
 
 
 def reading_findings(solved: Solved) -> tuple[ReadingFinding, ...]:

@@ -108,7 +108,7 @@ def _finding(
 
 
 def range_warnings(ranges: tuple[RangeFinding, ...]) -> list[str]:
-    """Give one line per law used outside its range, naming the surfaces."""
+    """Give one line per law used outside its range: on how many surfaces, and the furthest one."""
     by_law: dict[str, list[RangeFinding]] = {}
     for row in ranges:
         if not row.inside_range:
@@ -117,10 +117,9 @@ def range_warnings(ranges: tuple[RangeFinding, ...]) -> list[str]:
     for key, rows in by_law.items():
         law = CORRELATIONS[key]
         worst = max(rows, key=lambda row: max(row.outside_by, 1 / max(row.outside_by, 1e-300)))
-        names = ", ".join(row.surface for row in rows[:4])
-        more = f" and {len(rows) - 4} more" if len(rows) > 4 else ""
+        used = sum(row.correlation == key for row in ranges)
         lines.append(
-            f"{law.name}: used outside its range Ra {law.valid_from:.3g} to {law.valid_to:.3g} on "
-            f"{names}{more}; furthest {worst.surface} at Ra {worst.rayleigh:.2g}"
+            f"{law.name}: outside its range (Ra {law.valid_from:.3g} to {law.valid_to:.3g}) on "
+            f"{len(rows)} of {used} surfaces, furthest {worst.surface} (Ra {worst.rayleigh:.2g})"
         )
     return lines

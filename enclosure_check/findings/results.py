@@ -4,6 +4,8 @@ Temperatures in Celsius, powers in W, lengths in mm: this is what people and oth
 The descriptions make up the JSON Schema of the report.
 """
 
+from __future__ import annotations
+
 from dataclasses import dataclass
 from typing import Annotated, Literal
 
@@ -60,7 +62,7 @@ class BoardFinding:
 
     name: Annotated[str, _about("Name of the board.")]
     mean_c: Annotated[float, _about("Mean. [C]")]
-    hottest_c: Annotated[float, _about("Hottest place, under one of its parts. [C]")]
+    hottest_c: Annotated[float, _about("Hottest place, often under the middle of a part. [C]")]
     hottest_at: Annotated[str | None, _about("The part there; null where there is none.")]
     map_c: Annotated[
         tuple[tuple[float, ...], ...],
@@ -68,6 +70,13 @@ class BoardFinding:
             "Temperatures of its cells, rows from the upper (or rear) edge down, each along the "
             "box's width (or depth), as seen from the front, the right or the top. [C]"
         ),
+    ]
+    seen_from: Annotated[
+        Literal["front", "right", "top"], _about("Where the map is looked at from.")
+    ]
+    hottest_at_mm: Annotated[
+        tuple[float, float],
+        _about("The hottest place, from the board's lower left corner so seen. [mm]"),
     ]
 
 
@@ -81,7 +90,7 @@ class AirLayer:
 
 @dataclass(frozen=True)
 class AirFinding:
-    """Inside air; in this version one well-mixed body of air."""
+    """Inside air: its mean and its profile along gravity, linear between the heights given."""
 
     mean_c: Annotated[float, _about("Mean. [C]")]
     top_c: Annotated[float, _about("At the highest point. [C]")]

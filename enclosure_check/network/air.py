@@ -1,9 +1,11 @@
 """Builds the air inside: its nodes along gravity, the films, gaps and streams of every surface."""
 
 from dataclasses import dataclass, field
+from functools import lru_cache
 from typing import Any
 
 import numpy as np
+from numpy.typing import ArrayLike
 
 from enclosure_check.description.frames import Vector
 from enclosure_check.network.builder import PlaneFace
@@ -284,7 +286,7 @@ class AirSite:
                     column.lower.surface,
                     column.upper.surface,
                     width,
-                    *self._channel(high - low, axis, width),
+                    *channel_shape(high - low, self.up, axis, width),
                     self.up[axis],
                     self._around(low, high, axis, middle[axis]),
                 )
@@ -317,15 +319,6 @@ class AirSite:
             closed=np.zeros((len(rows), 1)),
             air=around,
         )
-
-    def _channel(self, size: FloatArray, axis: int, width: float) -> tuple[float, float]:
-        """Length along the flow of a gap, and the share of gravity along it."""
-        first, second = (other for other in range(3) if other != axis)
-        a, b, g_a, g_b = size[first], size[second], abs(self.up[first]), abs(self.up[second])
-        along, across = float(np.hypot(g_a, g_b)), abs(self.up[axis])
-        upright = a * b / ((a * g_b + b * g_a) / along) if along > 1e-9 else 0.0
-        length = upright * along + a * b / (a + b) * across
-        return float(length), float(along + across * width / length)
 
     def _around(self, low: FloatArray, high: FloatArray, axis: int, at: float) -> FloatArray:
         """Mean shares of the air nodes around a gap, shape (n,)."""
@@ -436,13 +429,15 @@ class _Entries:
         }
 
 
+@lru_cache(maxsize=256)
 def board_shelter(
     size: Vector, up: Vector, axis: int, sign: int, face: PlaneFace
 ) -> tuple[float, float]:
     """Share of its plate law that a side of a free board keeps, warm and cold.
 
     A board is a body with air all round, whose sides shelter each other as those of a box do
-    outside (see `physics.box`), taken isothermal at a nominal rise.
+    outside (see `physics.box`), taken isothermal at a nominal rise. Kept, as the same come again
+    under every condition.
     """
     geometry = box_geometry(size, up, np.ones(6, dtype=bool))
     index = 2 * axis + (1 if sign > 0 else 0)
@@ -463,11 +458,13 @@ def board_shelter(
     return kept[0], kept[1]
 
 
+@lru_cache(maxsize=128)
 def rim_film(size: Vector, up: Vector, axis: int) -> tuple[float, float, float, float]:
     """Area and gravity function of a board as a body, and its rim's film over the body's mean.
 
     The two shares, warm and cold, come from the films of a box of the board's size with air all
-    round (see `physics.box`), taken isothermal at a nominal rise.
+    round (see `physics.box`), taken isothermal at a nominal rise. Kept as those of
+    `board_shelter`.
     """
     geometry = box_geometry(size, up, np.ones(6, dtype=bool))
     rim = np.array([index // 2 != axis for index in range(6)])
@@ -482,3 +479,18 @@ def rim_film(size: Vector, up: Vector, axis: int) -> tuple[float, float, float, 
         )
         shares.append(narrow / float(whole.coefficient))
     return geometry.body_area, geometry.gravity_function, shares[0], shares[1]
+
+
+def channel_shape(size: ArrayLike, up: Vector, axis: int, width: float) -> tuple[float, float]:
+    """Length along the flow of a gap across an axis [m], and the share of gravity along it.
+
+    An upright gap is as long as its fall; a level one half as wide as it is, with the gap's own
+    height for a head; in between they go over into each other with the tilt.
+    """
+    extent = np.asarray(size, dtype=np.float64)
+    first, second = (other for other in range(3) if other != axis)
+    a, b, g_a, g_b = extent[first], extent[second], abs(up[first]), abs(up[second])
+    along, across = float(np.hypot(g_a, g_b)), abs(up[axis])
+    upright = a * b / ((a * g_b + b * g_a) / along) if along > 1e-9 else 0.0
+    length = upright * along + a * b / (a + b) * across
+    return float(length), float(along + across * width / length)

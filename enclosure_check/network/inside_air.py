@@ -9,7 +9,7 @@ neighbouring air nodes mix.
 
 from dataclasses import dataclass, replace
 from functools import cached_property
-from typing import ClassVar, NamedTuple
+from typing import ClassVar
 
 import numpy as np
 
@@ -85,13 +85,6 @@ class Pairs:
     """1 with closed edges, 0 with open ones."""
     air: FloatArray
     """Shares of the air nodes in the air around the gap, shape (p, n)."""
-
-
-class _Films(NamedTuple):
-    """Films of the surfaces and what they were reckoned from, shape (s, c)."""
-
-    coefficient: FloatArray
-    audit: FilmAudit
 
 
 @dataclass(frozen=True, eq=False)
@@ -207,7 +200,7 @@ class InsideAir:
 
     # Laws --------------------------------------------------------------------------------
 
-    def _films(self, mean: FloatArray, layer: FloatArray, reference: FloatArray) -> _Films:
+    def _films(self, mean: FloatArray, layer: FloatArray, reference: FloatArray) -> FilmAudit:
         """Films of the surfaces from their means (s, c) and the air nodes (n, c)."""
         s = self.surfaces
         difference = mean[:, None] - s.samples @ layer
@@ -252,39 +245,7 @@ class InsideAir:
             kept = (s.warm_factor * warm + s.cold_factor * (1.0 - warm))[s.body]
             coefficient[s.body], ra[s.body], nu[s.body] = kept * body[0], body[1], kept * body[2]
             length[s.body], law[s.body] = body.length, BODY_LAW
-        return _Films(
-            self.factor * coefficient,
-            FilmAudit(signed, film_temperature, coefficient, ra, nu, length, law),
-        )
-
-    def _gaps(
-        self,
-        film_a: FloatArray,
-        film_b: FloatArray,
-        mean_a: FloatArray,
-        mean_b: FloatArray,
-        layer: FloatArray,
-        reference: FloatArray,
-    ) -> tuple[FloatArray, FloatArray]:
-        """Share of its film each face of a pair keeps, and what goes straight [W/m2K], (p, c)."""
-        p = self.pairs
-        around = p.air @ layer
-        properties = air(reference + 0.5 * (mean_a + mean_b), self.pressure_pa)
-        viscosity = properties.kinematic_viscosity
-        per_volume = GRAVITY * properties.expansion * properties.prandtl / (viscosity * viscosity)
-        drive = cavity.channel_drive(mean_a - around, mean_b - around)
-        share = cavity.channel_share(drive, per_volume, p.width, p.length, p.gravity)
-        share = share * (1.0 - p.closed)
-        across = mean_a - mean_b
-        rayleigh = per_volume * soft_abs(across, cavity.DIFFERENCE_WIDTH_K) * p.width**3
-        below = p.up_cosine * soft_sign(across, cavity.DIFFERENCE_WIDTH_K)
-        nusselt = cavity.closed_cavity(rayleigh, p.length / p.width, below)
-        conduction = properties.conductivity / p.width
-        enclosed = (1.0 - share) * 2.0 * conduction * nusselt
-        half = 2.0 * conduction
-        one, other = (enclosed + share * _larger(half, film) for film in (film_a, film_b))
-        passed = 1.0 - share * (film_a + film_b) / (one + other)
-        return share, np.asarray(passed * one * other / (one + other))
+        return FilmAudit(signed, film_temperature, coefficient, ra, nu, length, law)
 
     def _retained(self, mean: FloatArray, layer: FloatArray) -> tuple[FloatArray, FloatArray]:
         """Share of a stream carried from each air node on, up and down, shape (s, n - 1, c)."""
@@ -302,7 +263,7 @@ class InsideAir:
     def evaluate(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
         """Heat through every link [W], shape (m, v)."""
         mean, layer = rise[self.surfaces.node], rise[self.air]
-        film = self._films(mean, layer, reference_k).coefficient
+        film = self.factor * self._films(mean, layer, reference_k).coefficient
         keep, straight = self._pair_values(film, film, mean, mean, layer, reference_k)
         entering = self._side_films(film, keep, keep)[self.side] * self.area
         entering = entering * (rise[self.cell] - self.hat @ layer)
@@ -316,10 +277,23 @@ class InsideAir:
         mean_b: FloatArray,
         layer: FloatArray,
         reference: FloatArray,
-    ) -> tuple[FloatArray, FloatArray]:
-        first, second = self.pairs.first, self.pairs.second
-        return self._gaps(
-            film_a[first], film_b[second], mean_a[first], mean_b[second], layer, reference
+    ) -> cavity.GapExchange:
+        """Share of its film each face of a pair keeps, and what goes straight [W/m2K], (p, c)."""
+        p = self.pairs
+        one, other = mean_a[p.first], mean_b[p.second]
+        around = p.air @ layer
+        return cavity.gap_exchange(
+            film_a[p.first],
+            film_b[p.second],
+            one - around,
+            other - around,
+            reference + 0.5 * (one + other),
+            self.pressure_pa,
+            p.width,
+            p.length,
+            p.gravity,
+            p.up_cosine,
+            p.closed,
         )
 
     def _side_films(self, film: FloatArray, keep_a: FloatArray, keep_b: FloatArray) -> FloatArray:
@@ -334,8 +308,21 @@ class InsideAir:
 
     def _pickups(self, entering: FloatArray) -> FloatArray:
         """Add film heat (e, c) up by surface and air node, shape (s, n, c)."""
-        spread = (self.hat[:, :, None] * entering[:, None]).reshape(len(self.cell), -1)
-        return (self._by_surface @ spread).reshape(-1, len(self.air), entering.shape[1])
+        _, share = self._near
+        count, size = len(self.surfaces.node), len(self.air)
+        halves = np.concatenate((entering * (1.0 - share), entering * share))
+        sums = [
+            np.bincount(self._pickup_place, half, count * size).reshape(count, size)
+            for half in np.ascontiguousarray(halves.T)
+        ]
+        return np.stack(sums, axis=2)
+
+    @cached_property
+    def _pickup_place(self) -> IntArray:
+        """Flat place (surface, air node) of the shares of every entry, the lower nodes first."""
+        low, _ = self._near
+        first = self._surface_of_entry * len(self.air) + low
+        return np.concatenate((first, first + min(1, len(self.air) - 1)))
 
     @cached_property
     def _surface_of_entry(self) -> IntArray:
@@ -439,15 +426,19 @@ class InsideAir:
 
     def slopes(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
         """Derivatives of `evaluate` in the order of `pattern` [W/K], shape (d, v)."""
+        variants = rise.shape[1]
+        factors = np.broadcast_to(self.factor, (len(self.factor), variants)).T[:, :, None]
         return np.concatenate(
             [
-                self._slopes_of_one(rise[:, v : v + 1], reference_k[v : v + 1])
-                for v in range(rise.shape[1])
+                self._slopes_of_one(rise[:, v : v + 1], reference_k[v : v + 1], factor)
+                for v, factor in enumerate(factors)
             ],
             axis=1,
         )
 
-    def _slopes_of_one(self, rise: FloatArray, reference: FloatArray) -> FloatArray:
+    def _slopes_of_one(
+        self, rise: FloatArray, reference: FloatArray, factor: FloatArray
+    ) -> FloatArray:
         n = len(self.air)
         mean, layer = rise[self.surfaces.node], rise[self.air]
         # Columns: as it is, all means warmer, each air node warmer.
@@ -455,7 +446,7 @@ class InsideAir:
         warm_mean[:, 1] += DIFFERENCE_K
         warm_layer = np.repeat(layer, n + 2, axis=1)
         warm_layer[np.arange(n), np.arange(n) + 2] += DIFFERENCE_K
-        film = self._films(warm_mean, warm_layer, reference).coefficient
+        film = factor * self._films(warm_mean, warm_layer, reference).coefficient
         # The same for pairs, whose two faces warm one at a time: base, first, second, air nodes.
         pick_a = np.concatenate(([0, 1, 0], np.arange(2, n + 2)))
         pick_b = np.concatenate(([0, 0, 1], np.arange(2, n + 2)))
@@ -577,7 +568,7 @@ class InsideAir:
 
     def audit(self, rise: FloatArray, reference_k: FloatArray) -> FilmAudit:
         """Give the films of the surfaces with the groups of their laws, shape (s, v)."""
-        return self._films(rise[self.surfaces.node], rise[self.air], reference_k).audit
+        return self._films(rise[self.surfaces.node], rise[self.air], reference_k)
 
     def weighted_by_parameter(
         self, rise: FloatArray, reference_k: FloatArray, weight: FloatArray, name: str
@@ -607,13 +598,6 @@ class InsideAir:
             Conductance between neighbours over that of all films at a nominal coefficient [-].
         """
         return replace(self, stirring=share * NOMINAL_FILM * float(self.area.sum()))
-
-
-def _larger(half: FloatArray, film: FloatArray) -> FloatArray:
-    """Rounded larger of conduction across half a gap and a film."""
-    largest = np.maximum(half, film)
-    ratio = np.minimum(half, film) / largest
-    return np.asarray(largest * (1.0 + ratio**cavity.GAP_EXPONENT) ** (1.0 / cavity.GAP_EXPONENT))
 
 
 def _march(picked: FloatArray, kept: FloatArray) -> FloatArray:

@@ -315,7 +315,8 @@ class PatchExchange(Links):
     def _factors(self) -> FloatArray:
         a, b = self.emissivity_a, self.emissivity_b
         share = np.stack(np.broadcast_arrays(1 - a, b - 1, a, -b))
-        return 4.0 * STEFAN_BOLTZMANN * self.exchange_area * share
+        factors: FloatArray = 4.0 * STEFAN_BOLTZMANN * self.exchange_area * share
+        return factors
 
 
 def fourth_power_difference(rise: FloatArray, reference_k: FloatArray) -> FloatArray:

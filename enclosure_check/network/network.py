@@ -284,6 +284,5 @@ def _summed(index: IntArray, values: FloatArray, size: int) -> FloatArray:
     v = values.shape[1]
     if v == 1:
         return np.asarray(np.bincount(index, values[:, 0], size), dtype=np.float64)[:, None]
-    flat = (index[:, None] * v + np.arange(v)).ravel()
-    total = np.bincount(flat, values.ravel(), size * v)
-    return np.asarray(total, dtype=np.float64).reshape(size, v)
+    total = [np.bincount(index, column, size) for column in np.ascontiguousarray(values.T)]
+    return np.stack(total, axis=1)

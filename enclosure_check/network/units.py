@@ -1,4 +1,4 @@
-"""The one place where millimetres and degrees Celsius become metres and kelvin."""
+"""The one place where millimetres and degrees Celsius become metres and kelvin, and back."""
 
 from enclosure_check.description.frames import Vector
 
@@ -8,6 +8,11 @@ ZERO_CELSIUS_K = 273.15
 def metres(size_mm: float) -> float:
     """Convert a length from mm to m."""
     return size_mm * 1e-3
+
+
+def millimetres(size: float) -> float:
+    """Convert a length from m to mm."""
+    return size * 1e3
 
 
 def metres_3(size_mm: Vector) -> Vector:

@@ -8,10 +8,12 @@ import numpy as np
 from enclosure_check.description.base import WALL_NAMES, WallName
 from enclosure_check.description.case import Case, WallCase
 from enclosure_check.description.frames import AXIS, SIGN, Vector
+from enclosure_check.network.air import channel_shape
 from enclosure_check.network.covering import bare_wall
 from enclosure_check.network.grid import PlateGrid, cell_counts
 from enclosure_check.network.links import IntArray, LinkLabel
 from enclosure_check.network.network import PlateNodes
+from enclosure_check.network.outer_gap import OuterGap
 from enclosure_check.network.site import InsideSurface, Site
 from enclosure_check.network.units import kelvin, metres, metres_3
 from enclosure_check.physics.box import box_geometry
@@ -110,16 +112,51 @@ def _build_outside(wall: WallCase, outer: PlateNodes, area: float, site: Site) -
         return
     if mounting.kind == "insulated":
         return
-    surface = builder.node(f"surface behind the {wall.name} wall", kelvin(mounting.surface_c))
     label = LinkLabel(owner, "mounting")
-    if mounting.kind == "against_surface":
-        gap = site.air_conductivity * cell / metres(mounting.gap_mm)
-        builder.conduct(cells, surface, gap, label)
+    if mounting.kind in ("against_surface", "neighbour"):
+        _build_gap(wall, outer, area, site)
+    elif mounting.contact_w_per_m2k > 0 and mounting.surface_c is not None:
+        surface = builder.node(f"surface behind the {wall.name} wall", kelvin(mounting.surface_c))
+        builder.conduct(cells, surface, mounting.contact_w_per_m2k * cell, label)
+
+
+def _build_gap(wall: WallCase, outer: PlateNodes, area: float, site: Site) -> None:
+    """Join the outside of a wall to a surface across a gap, and to the air around the gap."""
+    builder, mounting = site.builder, wall.mounting
+    cells, cell = outer.cells.ravel(), area / outer.cells.size
+    if mounting.surface_c is None:
+        # A neighbour as warm as the wall: nothing passes to it.
+        surface = outer.mean
+    else:
+        surface = builder.node(f"surface behind the {wall.name} wall", kelvin(mounting.surface_c))
         # Two parallel surfaces: the far one's own resistance stands for the space between.
         far = mounting.surface_emissivity * cell
-        builder.radiate(cells, surface, cell, far, emissivity, label)
-    elif mounting.contact_w_per_m2k > 0:
-        builder.conduct(cells, surface, mounting.contact_w_per_m2k * cell, label)
+        label = LinkLabel(f"wall:{wall.name}", "mounting")
+        builder.radiate(cells, surface, cell, far, wall.finish_outside.emissivity, label)
+    axis, sign = AXIS[wall.name], SIGN[wall.name]
+    grid, width = site.grids[wall.name], metres(mounting.gap_mm)
+    face = site.plane_face(grid.size, axis, sign)
+    length, gravity = channel_shape(grid.size, site.up, axis, width)
+    owner = f"wall:{wall.name}"
+    rows = [builder.label(LinkLabel(owner, role)) for role in ("convection_outside", "mounting")]
+    ends = (site.ambient, surface)
+    builder.add(
+        OuterGap(
+            a=np.tile(cells, 2),
+            b=np.repeat(np.array(ends, dtype=np.intp), cells.size),
+            label=np.repeat(np.array(rows, dtype=np.intp), cells.size),
+            nodes=np.array([outer.mean, surface, site.ambient], dtype=np.intp),
+            area=np.full((2 * cells.size, 1), cell),
+            width=width,
+            length=length,
+            gravity=gravity,
+            closed=float(mounting.closed),
+            fall_length=face.fall_length,
+            area_perimeter_length=face.area_perimeter_length,
+            up_cosine=face.up_cosine,
+            pressure_pa=builder.pressure_pa,
+        )
+    )
 
 
 def _join_corner(one: WallName, other: WallName, site: Site) -> None:

@@ -10,11 +10,14 @@ totals within 8 %, shares of the walls within 0.08. The cases were seen while th
 
 from __future__ import annotations
 
+from typing import NamedTuple
+
 import numpy as np
 import numpy.typing as npt
 from numpy.typing import ArrayLike
 
-from enclosure_check.physics.smooth import soft_abs
+from enclosure_check.physics.air import GRAVITY, air
+from enclosure_check.physics.smooth import soft_abs, soft_sign
 
 FloatArray = npt.NDArray[np.float64]
 
@@ -215,6 +218,83 @@ def channel_drive(difference_a: ArrayLike, difference_b: ArrayLike) -> FloatArra
     a, b = np.asarray(difference_a, dtype=np.float64), np.asarray(difference_b, dtype=np.float64)
     mean = soft_abs(0.5 * (a + b), DIFFERENCE_WIDTH_K)
     return np.asarray(mean + OPPOSED_SHARE * soft_abs(0.5 * (a - b), DIFFERENCE_WIDTH_K))
+
+
+class GapExchange(NamedTuple):
+    """What two faces of a gap exchange; both fields have the broadcast shape of the inputs."""
+
+    share: FloatArray
+    """Share of its free film that either face keeps to the air outside [-]."""
+    straight: FloatArray
+    """What goes straight across per area and difference of the faces [W/(m2 K)]."""
+
+
+def gap_exchange(
+    film_a: FloatArray,
+    film_b: FloatArray,
+    difference_a: FloatArray,
+    difference_b: FloatArray,
+    film_temperature: FloatArray,
+    pressure: ArrayLike,
+    width: ArrayLike,
+    length: ArrayLike,
+    gravity: ArrayLike,
+    up_cosine: ArrayLike,
+    closed: ArrayLike,
+) -> GapExchange:
+    """Exchange of two facing faces with each other and with the air outside their gap.
+
+    Either face gives ``p h (T - T_air)`` to the air, p by `channel_share` (none with closed edges).
+    Straight across goes ``(1 - X) G_a G_b / (G_a + G_b)``, with
+    ``G = (1 - p) 2 k Nu / d + p max(2 k / d, h)`` (rounded), Nu by `closed_cavity`, and
+    ``X = p (h_a + h_b) / (G_a + G_b)`` what has gone to the air of it.
+
+    Parameters
+    ----------
+    film_a, film_b : ndarray
+        Free film coefficients of the faces [W/(m2 K)].
+    difference_a, difference_b : ndarray
+        Faces minus the air outside [K].
+    film_temperature : ndarray
+        Mean temperature of the faces [K].
+    pressure : array_like
+        Absolute pressure [Pa].
+    width, length, gravity : array_like
+        As `channel_share`.
+    up_cosine : array_like
+        Cosine between the normal of face a into the gap and up [-].
+    closed : array_like
+        1 with closed edges, 0 with open ones [-].
+
+    Returns
+    -------
+    GapExchange
+        Limiting cases: a narrow gap passes ``k / d`` straight and nothing to the air outside; a
+        wide one leaves two free films.
+    """
+    properties = air(film_temperature, pressure)
+    viscosity = properties.kinematic_viscosity
+    per_volume = GRAVITY * properties.expansion * properties.prandtl / (viscosity * viscosity)
+    drive = channel_drive(difference_a, difference_b)
+    share = channel_share(drive, per_volume, width, length, gravity)
+    share = share * (1.0 - np.asarray(closed, dtype=np.float64))
+    across = difference_a - difference_b
+    w = np.asarray(width, dtype=np.float64)
+    rayleigh = per_volume * soft_abs(across, DIFFERENCE_WIDTH_K) * (w * w * w)
+    below = np.asarray(up_cosine) * soft_sign(across, DIFFERENCE_WIDTH_K)
+    nusselt = closed_cavity(rayleigh, np.asarray(length, dtype=np.float64) / w, below)
+    half = 2.0 * properties.conductivity / w
+    enclosed = (1.0 - share) * half * nusselt
+    one, other = (enclosed + share * _larger(half, film) for film in (film_a, film_b))
+    passed = 1.0 - share * (film_a + film_b) / (one + other)
+    return GapExchange(share, np.asarray(passed * one * other / (one + other)))
+
+
+def _larger(half: FloatArray, film: FloatArray) -> FloatArray:
+    """Rounded larger of conduction across half a gap and a film."""
+    largest = np.maximum(half, film)
+    ratio = np.minimum(half, film) / largest
+    return np.asarray(largest * (1.0 + ratio**GAP_EXPONENT) ** (1.0 / GAP_EXPONENT))
 
 
 def stream_retention(

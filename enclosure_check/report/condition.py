@@ -1,5 +1,7 @@
 """The section of a text report on one condition."""
 
+from collections.abc import Sequence
+
 from enclosure_check.findings.results import ConditionFinding, PartFinding, ReadingFinding
 from enclosure_check.report.heat import write_heat
 from enclosure_check.report.layout import (
@@ -17,6 +19,8 @@ from enclosure_check.report.limits import WORDS
 
 # Limits shown in full; those that do not pass are shown in any case.
 MOST_LIMITS = 25
+# Both limits of a point, highest and lowest, are shown where both are closer than this. [K]
+BOTH_SHOWN_K = 15.0
 
 
 def write_condition(page: Page, condition: ConditionFinding, shared: tuple[str, ...]) -> None:
@@ -76,14 +80,31 @@ def _limits(page: Page, condition: ConditionFinding) -> None:
         page.paragraph("No part states a limit.")
         return
     page.heading("Parts against their limits (margin: distance to the limit, negative past it)")
-    shown = rows[: max(MOST_LIMITS, sum(row.verdict != "pass" for row in rows))]
+    near = nearer_limits(rows)
+    shown = near[: max(MOST_LIMITS, sum(row.verdict != "pass" for row in near))]
     page.records(_LIMITS, shown)
     notes = ["* from the part's derating curve"] if any(row.derated for row in shown) else []
-    if hidden := rows[len(shown) :]:
+    if hidden := near[len(shown) :]:
         least = tenths(hidden[0].margin_k)
         notes.append(f"and {len(hidden)} more with margins of {least} K and over")
+    if len(near) < len(rows):
+        notes.append(f"not shown: {counted(len(rows) - len(near), 'limit')} at the far side")
     for note in notes:
         page.paragraph(note, first="  ", rest="  ")
+
+
+def nearer_limits(rows: Sequence[PartFinding]) -> list[PartFinding]:
+    """Leave out, of a point's highest and lowest limit, the one that is far away and passes."""
+    nearest: dict[tuple[str, str], float] = {}
+    for row in rows:
+        point = row.name, row.limit_kind
+        nearest[point] = min(nearest.get(point, row.margin_k), row.margin_k)
+    return [
+        row
+        for row in rows
+        if row.verdict != "pass"
+        or row.margin_k <= max(nearest[row.name, row.limit_kind], BOTH_SHOWN_K)
+    ]
 
 
 # Headroom ---------------------------------------------------------------------------------

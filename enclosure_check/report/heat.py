@@ -1,6 +1,7 @@
 """Where the heat goes: air, walls, balance, boards, parts, and a hand estimate beside it."""
 
 from enclosure_check.findings.results import (
+    BoardFinding,
     ConditionFinding,
     HandEstimate,
     PartHeat,
@@ -18,6 +19,7 @@ from enclosure_check.report.layout import (
     watts,
 )
 from enclosure_check.report.limits import WORDS
+from enclosure_check.report.pictures import board_picture, profile_picture
 
 # Parts whose heat is followed.
 MOST_HEAT_ROWS = 5
@@ -44,7 +46,10 @@ def _air(page: Page, condition: ConditionFinding) -> None:
     else:
         beside = f"{tenths(abs(over))} K {'over' if over > 0 else 'under'} the surrounding air"
     top = "" if abs(air.top_c - air.mean_c) < _SAME_K else f", {tenths(air.top_c)} C at the top"
-    page.paragraph(f"Inside air: {tenths(air.mean_c)} C{top}, {beside}.")
+    page.gap()
+    page.paragraph(f"Inside air: mean {tenths(air.mean_c)} C, {beside}{top}.")
+    for line in profile_picture(air.profile):
+        page.line(line)
 
 
 # Walls ------------------------------------------------------------------------------------
@@ -158,12 +163,22 @@ def _shares(heats: dict[str, float]) -> str:
 
 def _boards(page: Page, condition: ConditionFinding) -> None:
     for board in condition.boards:
-        under = "" if board.hottest_at is None else f" under {page.clean(board.hottest_at)}"
-        page.paragraph(
-            f"Board {page.clean(board.name)}: mean {tenths(board.mean_c)} C, hottest "
-            f"{tenths(board.hottest_c)} C{under}.",
-            rest="  ",
+        page.gap()
+        page.paragraph(page.clean(_board_words(board)), rest="  ")
+        for line in board_picture(board):
+            page.line(line)
+
+
+def _board_words(board: BoardFinding) -> str:
+    under = "" if board.hottest_at is None else f" under {board.hottest_at}"
+    right, up = board.hottest_at_mm
+    hottest = ""
+    if board.hottest_c - board.mean_c >= _SAME_K:
+        hottest = (
+            f", hottest {tenths(board.hottest_c)} C{under}, {right:.0f} mm from the left and "
+            f"{up:.0f} mm from the lower edge"
         )
+    return f"Board {board.name}, seen from the {board.seen_from}: mean {tenths(board.mean_c)} C{hottest}."
 
 
 _HEAT = (

@@ -88,6 +88,10 @@ class Page:
         for line in wrapped(text, self.options.width, first, rest):
             self.lines.append(self.painted(line, style))
 
+    def line(self, text: str) -> None:
+        """Put in a line as it is, but for what would not fit."""
+        self.lines.append(cut(text, self.options.width).rstrip())
+
     def bullets(self, texts: Iterable[str]) -> None:
         """Put in one bullet per text."""
         for text in texts:

@@ -4,28 +4,16 @@ import math
 
 import numpy as np
 import pytest
-from support.cases import board, box, network_of, part, patched, solved, temperatures
+from support.cases import COARSE, board, box, network_of, part, patched, solved, temperatures
+from support.networks import AMBIENT_K, LABEL, finished, started
 
-from enclosure_check.network.builder import NetworkBuilder
-from enclosure_check.network.links import LinkLabel
-from enclosure_check.network.network import Network, Places
+from enclosure_check.network.network import Network
 from enclosure_check.physics.air import air
 from enclosure_check.physics.conduction import spreading_resistance
 from enclosure_check.physics.radiation import STEFAN_BOLTZMANN
 from enclosure_check.solve.steady import solve_steady
 
-AMBIENT_K = 300.0
-LABEL = LinkLabel("test", "test")
 MILLIONTH = 1e-6
-
-
-def finished(builder: NetworkBuilder) -> Network:
-    return builder.finish(Places(0, 0, {}, {}, {}, {}))
-
-
-def started() -> tuple[NetworkBuilder, int]:
-    builder = NetworkBuilder(AMBIENT_K, 101_325.0)
-    return builder, builder.node("ambient", AMBIENT_K)
 
 
 def rises(network: Network) -> np.ndarray:
@@ -51,7 +39,7 @@ def test_no_resistance_needs_no_node():
     builder.conduct(ambient, ambient, 0.0, LABEL)
     node = builder.node("alone")
     builder.conduct(node, ambient, 1.0, LABEL)
-    assert len(finished(builder).kinds[0].labels) == 1
+    assert len(finished(builder).kinds[0].a) == 2
 
 
 def test_guess_is_the_answer_of_a_linear_network():

@@ -5,9 +5,11 @@ from dataclasses import replace
 
 import numpy as np
 import pytest
-from support.cases import network_of, solved
+from support.cases import COARSE, network_of, solved
 from support.random_documents import random_document
 
+from enclosure_check.network.inside_air import InsideAir
+from enclosure_check.network.links import LinkKind
 from enclosure_check.network.network import Network, Sources
 from enclosure_check.solve.steady import solve_steady
 
@@ -16,7 +18,7 @@ SEEDS = (0, 5, 8, 29)
 
 @pytest.fixture(params=SEEDS, ids=lambda seed: f"seed {seed}")
 def network(request) -> Network:
-    return network_of(random_document(random.Random(request.param)))
+    return network_of(random_document(random.Random(request.param)), COARSE)
 
 
 def growing(network: Network) -> Network:
@@ -38,6 +40,15 @@ def state(network: Network, variants: int = 1) -> np.ndarray:
     return np.where(network.fixed[:, None], network.fixed_rise, rise)
 
 
+def variant(network: Network, index: int) -> Network:
+    """One variant of `copies`."""
+    return replace(
+        network,
+        reference_k=network.reference_k[index : index + 1],
+        fixed_rise=network.fixed_rise[:, index : index + 1],
+    )
+
+
 def copies(network: Network, variants: int) -> Network:
     return replace(
         network,
@@ -50,7 +61,7 @@ def test_imbalance_is_the_sum_over_links_and_sources(network):
     rise = state(network)
     expected = np.zeros(network.size)
     for kind in network.kinds:
-        heat = kind.heat(rise[kind.stencil], network.reference_k)[:, 0]
+        heat = kind.evaluate(rise, network.reference_k)[:, 0]
         for link, watts in enumerate(heat):
             expected[kind.a[link]] += watts
             expected[kind.b[link]] -= watts
@@ -77,17 +88,24 @@ def test_jacobian_against_differences_of_the_imbalance(network, variants):
     network = copies(growing(network), variants)
     rise = state(network, variants)
     found = network.jacobian(rise)
-    assert found.shape == (variants, network.size, network.size)
+    unknown = network.unknown
+    assert found.shape == (variants, len(unknown), len(unknown))
     step = 1e-3
-    for node in range(network.size):
-        moved = [rise.copy() for _ in range(4)]
-        for copy, shift in zip(moved, (2, 1, -1, -2), strict=True):
-            copy[node] += shift * step
-        two, one, less, least = (network.imbalance(copy) for copy in moved)
-        expected = (8 * (one - less) - (two - least)) / (12 * step)
-        scale = np.abs(expected).max(axis=0) + 1e-9
-        # Film laws are differenced one-sidedly over 1e-4 K: see the tests of the links.
-        assert (np.abs(found[:, :, node].T - expected) / scale).max() < 2e-4
+    for index in range(variants):
+        one = variant(network, index)
+        base = rise[:, index : index + 1]
+        for part in np.array_split(np.arange(len(unknown)), 4):
+            columns = np.arange(len(part))
+            moved = []
+            for shift in (2, 1, -1, -2):
+                many = np.repeat(base, len(part), axis=1)
+                many[unknown[part], columns] += shift * step
+                moved.append(copies(one, len(part)).imbalance(many)[unknown])
+            two, near, less, least = moved
+            expected = (8 * (near - less) - (two - least)) / (12 * step)
+            scale = np.abs(expected).max(axis=0) + 1e-9
+            # Film laws are differenced one-sidedly over 1e-4 K: see the tests of the links.
+            assert (np.abs(found[index][:, part] - expected) / scale).max() < 5e-4
 
 
 def test_several_variants_are_assembled_as_one_by_one(network):
@@ -124,10 +142,15 @@ def test_outgoing_links_end_at_given_temperatures(network):
     a = np.concatenate([kind.a for kind in network.kinds])
     b = np.concatenate([kind.b for kind in network.kinds])
     expected = {
-        index for index in range(len(a)) if network.fixed[a[index]] or network.fixed[b[index]]
+        index
+        for index in range(len(a))
+        if (network.fixed[a[index]] or network.fixed[b[index]]) and b[index] != network.nowhere
     }
     assert set(network.outgoing.tolist()) == expected
-    assert len(network.link_labels) == len(a)
+    assert len(network.link_label) == len(a)
+    # What ends nowhere keeps a mean; it is there, and nothing else ends at it.
+    roles = {network.labels[row].role for row in network.link_label[b == network.nowhere]}
+    assert roles == {"mean"}
 
 
 # Sources ------------------------------------------------------------------------------------
@@ -136,7 +159,7 @@ def test_outgoing_links_end_at_given_temperatures(network):
 def source(slope=0.0, doubling=None, stated_at_k=298.15, power=2.0) -> Sources:
     return Sources(
         node=np.array([0]),
-        labels=(),
+        label=np.zeros(1, dtype=np.intp),
         power=np.array([[power]]),
         stated_at_k=np.array([[stated_at_k]]),
         slope=np.array([[slope]]),
@@ -193,7 +216,7 @@ def test_slope_of_power(row, rise):
 def test_growing_power_is_held_and_the_rest_is_not():
     rows = Sources(
         node=np.arange(4),
-        labels=(),
+        label=np.zeros(4, dtype=np.intp),
         power=np.ones((4, 1)),
         stated_at_k=np.full((4, 1), 293.15),
         slope=np.array([[0.0], [0.01], [-0.01], [0.0]]),
@@ -206,25 +229,56 @@ def test_growing_power_is_held_and_the_rest_is_not():
     assert rows.heat(later, REFERENCE)[:, 0] == pytest.approx([1, 1.2, 0.8, 4])
 
 
+# Means --------------------------------------------------------------------------------------
+
+
+def test_means_are_the_means_of_their_cells():
+    answer = solved(random_document(random.Random(8)), COARSE)
+    places, rise = answer.network.places, answer.solution.rise[:, 0]
+    plates = [
+        plate
+        for group in (places.wall_outside, places.wall_inside, places.boards)
+        for plate in group.values()
+    ]
+    assert np.ptp(rise[places.boards["board 0"].cells]) > 0.01
+    for plate in plates:
+        assert rise[plate.mean] == pytest.approx(rise[plate.cells].mean(), abs=1e-6)
+    heights = places.air_heights
+    mean = np.trapezoid(rise[places.air_nodes], heights) / (heights[-1] - heights[0])
+    assert rise[places.air] == pytest.approx(mean, abs=1e-6)
+    for nodes in places.parts.values():
+        span = rise[places.air_nodes]
+        assert span.min() - 1e-6 <= rise[nodes.air] <= span.max() + 1e-6
+
+
 # Places -------------------------------------------------------------------------------------
 
 
+def relabelled(kind: LinkKind, place: np.ndarray) -> LinkKind:
+    """A kind with all its nodes renumbered."""
+    moved = {
+        name: place[getattr(kind, name)]
+        for name in ("a", "b", "x", "y", "c", "d", "cell", "cell_a", "cell_b", "air", "nodes")
+        if hasattr(kind, name) and not (isinstance(kind, InsideAir) and name in "ab")
+    }
+    if isinstance(kind, InsideAir):
+        moved["surfaces"] = replace(kind.surfaces, node=place[kind.surfaces.node])
+    return replace(kind, **moved)
+
+
 def test_renumbering_the_nodes_leaves_the_answer():
-    """Nodes and links in another order: the same temperatures by label."""
-    network = network_of(random_document(random.Random(8)))
+    """Nodes in another order: the same temperatures by label."""
+    network = network_of(random_document(random.Random(8)), COARSE)
     order = np.random.default_rng(3).permutation(network.size)
     place = np.argsort(order)
-
-    def moved(kind):
-        return replace(kind, a=place[kind.a], b=place[kind.b])
-
     sources = replace(network.sources, node=place[network.sources.node])
     shuffled = replace(
         network,
         node_labels=tuple(network.node_labels[index] for index in order),
         fixed=network.fixed[order],
         fixed_rise=network.fixed_rise[order],
-        kinds=tuple(moved(kind) for kind in network.kinds),
+        nowhere=int(place[network.nowhere]),
+        kinds=tuple(relabelled(kind, place) for kind in network.kinds),
         sources=sources,
     )
     one, other = solve_steady(network), solve_steady(shuffled)
@@ -234,14 +288,27 @@ def test_renumbering_the_nodes_leaves_the_answer():
     np.testing.assert_allclose(other.rise[place], one.rise, atol=1e-6, rtol=0)
 
 
-def test_one_body_of_air_and_every_surface_in_its_place():
-    answer = solved(random_document(random.Random(8)))
-    places, labels = answer.network.places, answer.network.node_labels
+def test_every_surface_is_in_its_place():
+    answer = solved(random_document(random.Random(8)), COARSE)
+    network, places = answer.network, answer.network.places
+    labels = network.node_labels
     assert labels[places.ambient] == "surrounding air"
-    assert labels[places.air] == "inside air"
+    assert labels[places.air] == "inside air, mean"
+    assert [labels[node] for node in places.air_nodes] == [
+        f"inside air, cell {index + 1}" for index in range(len(places.air_nodes))
+    ]
+    up, inside = np.array(answer.case.up), np.array(answer.case.inside_mm) / 1000
+    assert places.air_heights[0] == 0
+    assert places.air_heights[-1] == pytest.approx(np.abs(up) @ inside, rel=1e-12)
     for name in answer.case.walls:
-        assert labels[places.wall_outside[name]] == f"{name} wall outside"
-        assert labels[places.wall_inside[name]] == f"{name} wall inside"
+        outer, inner = places.wall_outside[name], places.wall_inside[name]
+        assert labels[outer.mean] == f"{name} wall outside, mean"
+        # One layer does for a wall that conducts well.
+        face = "outside" if inner is outer else "inside"
+        assert labels[inner.mean] == f"{name} wall {face}, mean"
+    for name, plate in places.boards.items():
+        assert labels[plate.mean] == f"board {name}, mean"
+        assert labels[plate.cells[0, 0]] == f"board {name}, cell 1"
     assert set(places.parts) == set(answer.case.parts)
-    assert {board for board, _ in places.board_sides} == set(answer.case.boards)
+    assert set(places.boards) == set(answer.case.boards)
     assert len(set(labels)) == len(labels)
