@@ -6,6 +6,7 @@ from functools import cached_property
 import numpy as np
 import numpy.typing as npt
 
+from enclosure_check.network.linear import Factor, dense, factorise
 from enclosure_check.network.links import FloatArray, IntArray, LinkKind, LinkLabel
 
 BoolArray = npt.NDArray[np.bool_]
@@ -189,12 +190,12 @@ class Network:
         return positions
 
     @cached_property
-    def _entries(self) -> IntArray:
-        """Flat place in the u x u matrix of every derivative, the leaving ends first.
+    def _entries(self) -> tuple[IntArray, IntArray]:
+        """Row and column of every derivative among the unknown nodes, the leaving ends first.
 
-        Derivatives of or by nodes of given temperature go to one place past its end.
+        Derivatives of or by nodes of given temperature have negative places. Shapes (d,).
         """
-        u, positions = len(self.unknown), self._positions
+        positions = self._positions
         patterns = [kind.pattern for kind in self.kinds]
         columns = [positions[node] for _, node in patterns]
         rows = [
@@ -203,10 +204,8 @@ class Network:
             for kind, (link, _) in zip(self.kinds, patterns, strict=True)
             for end in (getattr(kind, ends),)
         ]
-        row, column = np.concatenate(rows), np.concatenate(columns * 2)
-        flat = np.where((row >= 0) & (column >= 0), row * u + column, u * u)
         own = positions[self.sources.node]
-        return np.concatenate((flat, np.where(own >= 0, own * (u + 1), u * u)))
+        return np.concatenate([*rows, own]), np.concatenate([*columns, *columns, own])
 
     @cached_property
     def link_label(self) -> IntArray:
@@ -239,21 +238,27 @@ class Network:
             np.concatenate((a, b, sources.node)), np.concatenate((heat, -heat, -put_in))
         )
 
-    def jacobian(self, rise: FloatArray) -> FloatArray:
-        """Derivative of the unknown nodes' `imbalance` by their rises [W/K], shape (v, u, u)."""
+    def derivatives(self, rise: FloatArray) -> FloatArray:
+        """Derivatives at the places of `_entries`, which make up the Jacobian [W/K], (d, v)."""
         links = np.concatenate([kind.slopes(rise, self.reference_k) for kind in self.kinds])
         own = self.sources.heat_by_rise(rise[self.sources.node], self.reference_k)
-        values = np.concatenate((links, -links, -own))
-        if rise.shape[1] == 1:
-            return self._matrix(values[:, 0])[None]
-        return np.stack([self._matrix(values[:, v]) for v in range(rise.shape[1])])
+        return np.concatenate((links, -links, -own))
+
+    def jacobian(self, rise: FloatArray) -> FloatArray:
+        """Derivative of the unknown nodes' `imbalance` by their rises [W/K], shape (v, u, u)."""
+        values = self.derivatives(rise)
+        size = len(self.unknown)
+        return np.stack([dense(*self._entries, column, size) for column in values.T])
+
+    def factor(self, values: FloatArray, shift: float = 0.0) -> Factor:
+        """Factorise the Jacobian of one variant from its `derivatives`, shape (d,)."""
+        return factorise(*self._entries, values, len(self.unknown), shift)
 
     def first_guess(self) -> FloatArray:
         """Rises of the linear network whose links behave as at a nominal rise [K], shape (u, v)."""
         factors = [kind.nominal(self.reference_k[:1]) for kind in self.kinds]
         links = np.concatenate(factors)[:, 0]
         own = np.zeros(len(self.sources.node))
-        matrix = self._matrix(np.concatenate((links, -links, own)))
         pulled = np.concatenate(
             [
                 _summed(kind.pattern[0], factor * self.fixed_rise[kind.pattern[1]], len(kind.a))
@@ -262,17 +267,11 @@ class Network:
         )
         cold = replace(self.sources, slope=np.zeros(1), doublings=np.zeros(1))
         right = -replace(self, sources=cold).imbalance(self.fixed_rise, pulled)[self.unknown]
-        return np.asarray(np.linalg.solve(matrix, right), dtype=np.float64)
+        return self.factor(np.concatenate((links, -links, own))).solve(right)
 
     def stirred(self, share: float) -> "Network":
         """Give the network with its inside air stirred, close to one body of air at 3 or more."""
         return replace(self, kinds=tuple(kind.stirred(share) for kind in self.kinds))
-
-    def _matrix(self, values: FloatArray) -> FloatArray:
-        """Add derivatives up at their places: shape (u, u)."""
-        u = len(self.unknown)
-        flat = np.bincount(self._entries, values, u * u + 1)
-        return np.asarray(flat[: u * u], dtype=np.float64).reshape(u, u)
 
     def _sum_at(self, node: IntArray, values: FloatArray) -> FloatArray:
         """Add values (e, v) up at their nodes (e,): shape (n, v)."""

@@ -88,7 +88,7 @@ def _limits(page: Page, condition: ConditionFinding) -> None:
         least = tenths(hidden[0].margin_k)
         notes.append(f"and {len(hidden)} more with margins of {least} K and over")
     if len(near) < len(rows):
-        notes.append(f"not shown: {counted(len(rows) - len(near), 'limit')} at the far side")
+        notes.append(f"not shown: the farther limit of {counted(len(rows) - len(near), 'point')}")
     for note in notes:
         page.paragraph(note, first="  ", rest="  ")
 

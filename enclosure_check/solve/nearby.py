@@ -11,6 +11,7 @@ from functools import cached_property
 
 import numpy as np
 
+from enclosure_check.network.linear import DenseFactor, Factor
 from enclosure_check.network.links import FloatArray
 from enclosure_check.network.network import Network
 from enclosure_check.solve.steady import (
@@ -31,15 +32,29 @@ _WORST_GROWTH = 4.0
 
 
 class Inverse:
-    """Inverse Jacobian of a network's first variant near a state, inverted when first asked for."""
+    """Inverse Jacobian of a network's first variant near a state, made when first asked for.
+
+    Small ones are inverted outright, which later costs a product each time; large ones are
+    factorised.
+    """
 
     def __init__(self, network: Network, rise: FloatArray) -> None:
         self._network, self._rise = network, rise
 
     @cached_property
-    def matrix(self) -> FloatArray:
-        """The inverse [K/W], shape (u, u)."""
-        return np.asarray(np.linalg.inv(self._network.jacobian(self._rise)[0]))
+    def _factor(self) -> Factor:
+        return self._network.factor(self._network.derivatives(self._rise[:, :1])[:, 0])
+
+    @cached_property
+    def _matrix(self) -> FloatArray | None:
+        factor = self._factor
+        return np.asarray(np.linalg.inv(factor.matrix)) if isinstance(factor, DenseFactor) else None
+
+    def apply(self, right: FloatArray) -> FloatArray:
+        """Multiply by the inverse: shape (u, v)."""
+        if self._matrix is None:
+            return self._factor.solve(right)
+        return np.asarray(self._matrix @ right)
 
 
 @dataclass(frozen=True, eq=False)
@@ -113,15 +128,18 @@ def solve_nearby(
         if done.all():
             return solution_of(network, state, done, steps)
         if step is None:
-            step = -(inverse.matrix @ state.residual)
+            step = -inverse.apply(state.residual)
         move = np.where(done, 0.0, step)
+        if not np.all(np.abs(move) <= options.largest_step_k):
+            # As far off as Newton would not go in a step either, or not a number.
+            break
         trial = State.of(network, x + move)
         if not np.all(trial.merit <= _WORST_GROWTH * state.merit + 1e-300):
             break
         x, state, steps = x + move, trial, steps + ~done
         done = state.balanced(options)
         # Broyden's update in the form that keeps only steps: s_{k+1} from s_0..s_k.
-        following = -(inverse.matrix @ state.residual)
+        following = -inverse.apply(state.residual)
         for last, after in history:
             size = np.maximum(np.sum(last * last, axis=0), 1e-300)
             following = following + after * (np.sum(last * following, axis=0) / size)

@@ -47,11 +47,11 @@ def sensitivities(network: Network, solution: Solution, node: int) -> Sensitivit
     if len(place) != 1:
         raise ValueError(f"the temperature of {network.node_labels[node]!r} is given")
     rise, reference = solution.rise, network.reference_k
-    jacobian = network.jacobian(rise)[0]
-    target = np.zeros(len(unknown))
+    target = np.zeros((len(unknown), 1))
     target[place[0]] = 1.0
     weight = np.zeros(network.size)
-    weight[unknown] = np.linalg.solve(jacobian.T, target)
+    factor = network.factor(network.derivatives(rise)[:, 0])
+    weight[unknown] = factor.solve_transposed(target)[:, 0]
     sources = network.sources
     unit = sources.heat_by_power(rise[sources.node], reference)[:, 0]
     by_node = np.zeros(network.size)

@@ -10,6 +10,7 @@ gives lower temperatures again: from there Newton is tried, and where that does 
 stable state the power is held at the temperatures found, and so on until it does or none is left.
 """
 
+from contextlib import suppress
 from dataclasses import dataclass, replace
 from enum import Enum
 
@@ -336,15 +337,12 @@ def heat_that_flows(network: Network, rise: FloatArray, links: FloatArray) -> Fl
 
 
 def _step(network: Network, state: State, mu: FloatArray, options: SolveOptions) -> FloatArray:
-    unknown = network.unknown
-    jacobian = network.jacobian(state.rise)
-    diagonal = np.arange(len(unknown))
-    jacobian[:, diagonal, diagonal] += mu[:, None] * np.abs(jacobian[:, diagonal, diagonal])
-    right = -state.residual.T[:, :, None]
-    try:
-        step = np.linalg.solve(jacobian, right)[:, :, 0].T
-    except np.linalg.LinAlgError:
-        step = np.full((len(unknown), len(mu)), np.nan)
+    values = network.derivatives(state.rise)
+    step = np.full_like(state.residual, np.nan)
+    for v in range(step.shape[1]):
+        with suppress(np.linalg.LinAlgError):
+            factor = network.factor(values[:, v], float(mu[v]))
+            step[:, v] = factor.solve(-state.residual[:, v : v + 1])[:, 0]
     longest = np.max(np.abs(step), axis=0)
     step = step * np.minimum(1.0, options.largest_step_k / np.maximum(longest, 1e-300))
     return np.where(np.isfinite(step), step, 0.0)
@@ -390,11 +388,11 @@ def _stable(network: Network, rise: FloatArray) -> BoolArray:
     place = np.searchsorted(network.unknown, sources.node[grows])
     slope = sources.heat_by_rise(rise[sources.node], network.reference_k)
     held = replace(network, sources=sources.held(rise[sources.node], network.reference_k))
-    for v, jacobian in enumerate(held.jacobian(rise)):
-        watts = np.zeros((len(jacobian), len(grows)))
+    for v, values in enumerate(held.derivatives(rise).T):
+        watts = np.zeros((len(network.unknown), len(grows)))
         watts[place, np.arange(len(grows))] = 1.0
         try:
-            response = np.linalg.solve(jacobian, watts)[place]
+            response = held.factor(values).solve(watts)[place]
         except np.linalg.LinAlgError:
             stable[v] = False
             continue

@@ -86,7 +86,7 @@ def test_margins_are_limit_less_temperature():
         assert (row.limit_c, row.derated, row.band_k) == (limit, False, None)
         assert row.temperature_c == at[node]
         assert row.margin_k == limit - at[node]
-        assert row.local_air_c == at[answer.network.places.air]
+        assert row.local_air_c == at[nodes.air]
     cold = found["U1", "junction", "min"]
     assert cold.margin_k == at[nodes.junction] + 40
     temps = [at[node] for node in (nodes.junction, nodes.case, nodes.board, nodes.air)]
@@ -211,21 +211,55 @@ def test_pad_heat():
 
 def test_board_mean_and_hottest_place():
     answer = solved(WARM)
-    names = temperatures(answer)
     (row,) = assess(answer).boards
-    sides = [names["board main, front side"], names["board main, back side"]]
-    assert row.mean_c == pytest.approx(sum(sides) / 2, rel=1e-12)
-    assert row.hottest_c == answer.temperature_c[answer.network.places.parts["U1"].board]
-    assert row.hottest_at == "U1"
-    assert row.hottest_c > max(sides)
+    cells = answer.temperature_c[answer.network.places.boards["main"].cells]
+    assert row.mean_c == pytest.approx(cells.mean(), rel=1e-9)
+    nodes = answer.network.places.parts["U1"]
+    entering = answer.flow("part:U1", "to_board")
+    # The middle under the part is hotter than the mean under it.
+    assert nodes.peak_k_per_w > 0
+    assert row.hottest_c == pytest.approx(
+        answer.temperature_c[nodes.board] + nodes.peak_k_per_w * entering, rel=1e-12
+    )
+    assert (row.hottest_at, row.hottest_at_mm) == ("U1", pytest.approx((60, 50)))
+    assert row.hottest_c > cells.max()
 
 
-def test_board_without_parts_is_hottest_on_a_side():
+def test_board_without_parts_is_hottest_in_a_cell():
     answer = solved(patched(WARM, {"parts": {"U1": None}}))
     (row,) = assess(answer).boards
     assert row.hottest_at is None
-    names = temperatures(answer)
-    assert row.hottest_c == max(names["board main, front side"], names["board main, back side"])
+    cells = answer.temperature_c[answer.network.places.boards["main"].cells]
+    assert row.hottest_c == cells.max()
+    column, level = (int(at[0]) for at in (cells == cells.max()).nonzero())
+    columns, levels = cells.shape
+    # 120 mm wide and 100 mm high.
+    assert row.hottest_at_mm == pytest.approx(
+        (120 * (column + 0.5) / columns, 100 * (level + 0.5) / levels)
+    )
+    # Warm air rises: the board is warmer in its upper half.
+    assert row.hottest_at_mm[1] > 50
+
+
+@pytest.mark.parametrize(
+    ("parallel_to", "sides", "seen_from"),
+    [("back", (60, 20), "front"), ("left", (60, 20), "right"), ("bottom", (60, 20), "top")],
+)
+def test_map_of_a_board(parallel_to, sides, seen_from):
+    """A part near the right and lower edge, seen from the front, the right or the top."""
+    length, width = sides
+    side = {"back": "front", "left": "right", "bottom": "top"}[parallel_to]
+    made = box(
+        boards={"main": board(parallel_to=parallel_to, length_mm=80, width_mm=80)},
+        parts={"U1": part(side=side, at_mm=[length, width], power_w=1, theta_jb_k_per_w=2)},
+    )
+    (row,) = checked(made).boards
+    assert row.seen_from == seen_from
+    assert row.hottest_at_mm == pytest.approx((60, 20))
+    rows, columns = len(row.map_c), len(row.map_c[0])
+    hottest = max((value, i, j) for i, line in enumerate(row.map_c) for j, value in enumerate(line))
+    assert hottest[1] == pytest.approx(rows * 0.75, abs=1)
+    assert hottest[2] == pytest.approx(columns * 0.75, abs=1)
 
 
 def test_board_whose_parts_are_all_cooler_than_itself():
@@ -246,15 +280,16 @@ def test_readings_beside_the_prediction():
         "air_c": 41,
     }
     answer = solved(patched(WARM, {"measured": {"bench": run}}))
-    names, nodes = temperatures(answer), answer.network.places.parts["U1"]
+    places, names = answer.network.places, temperatures(answer)
+    nodes = places.parts["U1"]
     predicted = {
         ("U1", "junction"): answer.temperature_c[nodes.junction],
         ("U1", "case"): answer.temperature_c[nodes.case],
         ("U1", "board"): answer.temperature_c[nodes.board],
-        ("U1", "air"): names["inside air"],
-        ("top", "outside"): names["top wall outside"],
-        ("top", "inside"): names["top wall inside"],
-        ("air", "mean"): names["inside air"],
+        ("U1", "air"): names["air at U1"],
+        ("top", "outside"): answer.temperature_c[places.wall_outside["top"].mean],
+        ("top", "inside"): answer.temperature_c[places.wall_inside["top"].mean],
+        ("air", "mean"): names["inside air, mean"],
     }
     rows = assess(answer).readings
     assert {(row.name, row.point): row.predicted_c for row in rows} == predicted

@@ -16,8 +16,9 @@ from enclosure_check.network.films import DIFFERENCE_K, BoxFilm
 from enclosure_check.network.inside_air import InsideAir
 from enclosure_check.network.links import Conduction, LinkKind, PatchExchange, Radiation
 from enclosure_check.network.network import Network
+from enclosure_check.network.outer_gap import OuterGap
 
-KINDS = (Conduction, Radiation, PatchExchange, BoxFilm, InsideAir)
+KINDS = (Conduction, Radiation, PatchExchange, BoxFilm, OuterGap, InsideAir)
 # All of them tilted, with boards that face each other, so that every law has all its parts.
 SEEDS = (12, 19, 53)
 REFERENCE_K = np.array([253.15, 298.15, 340.15])
@@ -136,6 +137,7 @@ def test_every_parameter_is_reached():
         "Radiation": ("area", "exchange_area", "share", "emissivity"),
         "PatchExchange": ("exchange_area", "emissivity_a", "emissivity_b"),
         "BoxFilm": ("area", "factor"),
+        "OuterGap": ("area",),
         "InsideAir": ("factor",),
     }
 
@@ -159,8 +161,8 @@ def test_heat_goes_from_warm_to_cold(network, kind):
     assert heat.any()
     if isinstance(kind, Conduction | Radiation):
         difference = rise[kind.x] - rise[kind.y]
-    elif isinstance(kind, BoxFilm):
-        difference = rise[kind.a] - rise[kind.nodes[-1]]
+    elif isinstance(kind, BoxFilm | OuterGap):
+        difference = rise[kind.a] - rise[kind.b]
     elif isinstance(kind, PatchExchange):
         absolute = rise + REFERENCE_K
         sent = [

@@ -104,8 +104,9 @@ def test_jacobian_against_differences_of_the_imbalance(network, variants):
             two, near, less, least = moved
             expected = (8 * (near - less) - (two - least)) / (12 * step)
             scale = np.abs(expected).max(axis=0) + 1e-9
-            # Film laws are differenced one-sidedly over 1e-4 K: see the tests of the links.
-            assert (np.abs(found[index][:, part] - expected) / scale).max() < 5e-4
+            # Laws are differenced one-sidedly over 1e-4 K, the sharpest of them 100 times as wide: see
+            # the tests of the links, which reckon with their curvature.
+            assert (np.abs(found[index][:, part] - expected) / scale).max() < 2e-3
 
 
 def test_several_variants_are_assembled_as_one_by_one(network):
@@ -114,7 +115,9 @@ def test_several_variants_are_assembled_as_one_by_one(network):
     heat, balance = together.heat(rise), together.imbalance(rise)
     for index in range(3):
         one = rise[:, index : index + 1]
-        np.testing.assert_allclose(heat[:, index], network.heat(one)[:, 0], rtol=1e-13, atol=0)
+        alone = network.heat(one)[:, 0]
+        largest = np.abs(alone).max()
+        np.testing.assert_allclose(heat[:, index], alone, rtol=1e-12, atol=1e-15 * largest)
         np.testing.assert_allclose(
             balance[:, index],
             network.imbalance(one)[:, 0],

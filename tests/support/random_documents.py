@@ -151,13 +151,15 @@ class _Maker:
 
     def mounting(self, air_c: float) -> Data:
         rng = self.rng
-        kind = rng.choice(["against_surface", "standing_on", "bolted_to", "insulated"])
+        kind = rng.choice(["against_surface", "neighbour", "standing_on", "bolted_to", "insulated"])
         mounting: Data = {"kind": kind}
         if kind != "insulated" and self.chance(0.6):
             mounting["surface_c"] = air_c + rng.uniform(-20, 30)
-        if kind == "against_surface":
+        if kind in ("against_surface", "neighbour"):
             if self.chance(0.7):
-                mounting["gap_mm"] = rng.uniform(0, 5)
+                mounting["gap_mm"] = self.log(0.1, 80)
+            if self.chance(0.3):
+                mounting["edges"] = rng.choice(["open", "closed"])
             if self.chance(0.5):
                 mounting["surface_emissivity"] = rng.random()
         if kind == "bolted_to" or (kind == "standing_on" and self.chance(0.6)):
