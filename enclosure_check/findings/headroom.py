@@ -27,7 +27,10 @@ COLDEST_AIR_C = -90.0
 # Power is not searched for beyond this multiple.
 LARGEST_FACTOR = 100.0
 # Balance of the states on the way: far closer than the searches end.
-_CLOSE = SolveOptions(node_tolerance=1e-6, overall_tolerance=1e-5)
+# Where no state is found at once there mostly is none, and the search goes back.
+_CLOSE = SolveOptions(
+    max_steps=50, node_tolerance=1e-6, overall_tolerance=1e-5, by_stirring=False, most_holds=1
+)
 # Film laws and radiation make rises grow about so with power; only a first guess.
 _RISE_EXPONENT = 0.87
 

@@ -117,9 +117,11 @@ def range_warnings(ranges: tuple[RangeFinding, ...]) -> list[str]:
     for key, rows in by_law.items():
         law = CORRELATIONS[key]
         worst = max(rows, key=lambda row: max(row.outside_by, 1 / max(row.outside_by, 1e-300)))
-        used = sum(row.correlation == key for row in ranges)
+        where = f"{worst.surface} (Ra {worst.rayleigh:.2g})"
+        if len(rows) > 1:
+            where = f"{len(rows)} surfaces, furthest {where}"
         lines.append(
             f"{law.name}: outside its range (Ra {law.valid_from:.3g} to {law.valid_to:.3g}) on "
-            f"{len(rows)} of {used} surfaces, furthest {worst.surface} (Ra {worst.rayleigh:.2g})"
+            f"{where}"
         )
     return lines

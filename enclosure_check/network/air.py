@@ -1,32 +1,28 @@
 """Builds the air inside: its nodes along gravity, the films, gaps and streams of every surface."""
 
 from dataclasses import dataclass, field
-from functools import lru_cache
 from typing import Any
 
 import numpy as np
 from numpy.typing import ArrayLike
 
 from enclosure_check.description.frames import Vector
+from enclosure_check.network.air_records import Pairs, Surfaces
+from enclosure_check.network.board_films import board_shelter, rim_film
 from enclosure_check.network.builder import PlaneFace
 from enclosure_check.network.columns import Column, Face, facing_at, find_columns
 from enclosure_check.network.grid import PlateGrid
-from enclosure_check.network.inside_air import InsideAir, Pairs, Surfaces
+from enclosure_check.network.inside_air import InsideAir
 from enclosure_check.network.links import FloatArray, IntArray
 from enclosure_check.network.network import PlateNodes
 from enclosure_check.physics.air import air
-from enclosure_check.physics.bodies import cuboid_film
-from enclosure_check.physics.box import box_film, box_geometry
 from enclosure_check.physics.cavity import plume_decay
-from enclosure_check.physics.plates import inclined_plate
 
 # Air nodes along gravity. Enough for the profile that the numerical experiments show; more change
 # their totals by less than 4 %.
 AIR_NODES = 8
 # Heights on a surface at which its mean film looks at the air.
 SAMPLES = 6
-# Rise at which the shelter of a board by its own sides is taken. [K]
-SHELTER_RISE_K = 10.0
 
 
 @dataclass(frozen=True, eq=False)
@@ -427,58 +423,6 @@ class _Entries:
             "side_pair": sides[:, 1],
             "side_second": sides[:, 2],
         }
-
-
-@lru_cache(maxsize=256)
-def board_shelter(
-    size: Vector, up: Vector, axis: int, sign: int, face: PlaneFace
-) -> tuple[float, float]:
-    """Share of its plate law that a side of a free board keeps, warm and cold.
-
-    A board is a body with air all round, whose sides shelter each other as those of a box do
-    outside (see `physics.box`), taken isothermal at a nominal rise. Kept, as the same come again
-    under every condition.
-    """
-    geometry = box_geometry(size, up, np.ones(6, dtype=bool))
-    index = 2 * axis + (1 if sign > 0 else 0)
-    kept = []
-    for warm in (1.0, -1.0):
-        air_k = 305.0
-        faces = np.full(6, air_k + warm * SHELTER_RISE_K)
-        whole = box_film(faces, air_k, 101325.0, geometry).coefficient[index]
-        alone = inclined_plate(
-            warm * SHELTER_RISE_K,
-            air_k + 0.5 * warm * SHELTER_RISE_K,
-            101325.0,
-            face.fall_length,
-            face.area_perimeter_length,
-            face.up_cosine,
-        ).coefficient
-        kept.append(float(whole / alone))
-    return kept[0], kept[1]
-
-
-@lru_cache(maxsize=128)
-def rim_film(size: Vector, up: Vector, axis: int) -> tuple[float, float, float, float]:
-    """Area and gravity function of a board as a body, and its rim's film over the body's mean.
-
-    The two shares, warm and cold, come from the films of a box of the board's size with air all
-    round (see `physics.box`), taken isothermal at a nominal rise. Kept as those of
-    `board_shelter`.
-    """
-    geometry = box_geometry(size, up, np.ones(6, dtype=bool))
-    rim = np.array([index // 2 != axis for index in range(6)])
-    shares = []
-    for warm in (1.0, -1.0):
-        air_k = 305.0
-        rise = warm * SHELTER_RISE_K
-        film = box_film(np.full(6, air_k + rise), air_k, 101325.0, geometry).coefficient
-        narrow = float(np.sum((film * geometry.area)[rim]) / np.sum(geometry.area[rim]))
-        whole = cuboid_film(
-            rise, air_k + 0.5 * rise, 101325.0, geometry.body_area, geometry.gravity_function
-        )
-        shares.append(narrow / float(whole.coefficient))
-    return geometry.body_area, geometry.gravity_function, shares[0], shares[1]
 
 
 def channel_shape(size: ArrayLike, up: Vector, axis: int, width: float) -> tuple[float, float]:

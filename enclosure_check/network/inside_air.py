@@ -13,6 +13,7 @@ from typing import ClassVar
 
 import numpy as np
 
+from enclosure_check.network.air_records import Pairs, Surfaces
 from enclosure_check.network.films import DIFFERENCE_K, FilmAudit
 from enclosure_check.network.links import (
     DIFFERENCE_SHARE,
@@ -20,6 +21,7 @@ from enclosure_check.network.links import (
     FloatArray,
     IntArray,
 )
+from enclosure_check.network.streams import march, passing
 from enclosure_check.physics import cavity
 from enclosure_check.physics.air import GRAVITY, air
 from enclosure_check.physics.bodies import cuboid_film
@@ -31,60 +33,6 @@ NOMINAL_FILM = 5.0
 # Stirring of the first guess, over the sum of all films: close to one body of air.
 NOMINAL_STIRRING = 3.0
 BODY_LAW = 3
-
-
-@dataclass(frozen=True, eq=False)
-class Surfaces:
-    """Films: what their laws need; s surfaces, n air nodes, k heights sampled on each."""
-
-    node: IntArray
-    """Node of the surface's mean temperature, shape (s,)."""
-    names: tuple[str, ...]
-    """What a reader calls each of them."""
-    fall_length: FloatArray
-    """[m], shape (s, 1), as all the following."""
-    area_perimeter_length: FloatArray
-    up_cosine: FloatArray
-    stratified: FloatArray
-    """1 where the film is strengthened in stratified air, 0 for parts."""
-    warm_factor: FloatArray
-    """Share of its law that a warm face keeps: the shelter of a board by its own sides."""
-    cold_factor: FloatArray
-    edge_a: FloatArray
-    """Edges in corners [m], infinite without."""
-    edge_b: FloatArray
-    body: IntArray
-    """Surfaces that follow the cuboid law, shape (b,)."""
-    body_area: FloatArray
-    """[m2], shape (b, 1)."""
-    gravity_function: FloatArray
-    """[-], shape (b, 1)."""
-    samples: FloatArray
-    """Shares of the air nodes in the air at sampled heights, shape (s, k, n)."""
-    over_height: FloatArray
-    """Shares of the air at the top less those at the bottom, shape (s, n)."""
-    decay_up: FloatArray
-    """What is left of the excess of its rising stream at each air node, shape (s, n)."""
-    decay_down: FloatArray
-    """The same of its falling stream."""
-
-
-@dataclass(frozen=True, eq=False)
-class Pairs:
-    """Facing faces, p of them: the first and the second surface, and the air between."""
-
-    first: IntArray
-    second: IntArray
-    width: FloatArray
-    """[m], shape (p, 1), as all the following."""
-    length: FloatArray
-    gravity: FloatArray
-    up_cosine: FloatArray
-    """Of the first face."""
-    closed: FloatArray
-    """1 with closed edges, 0 with open ones."""
-    air: FloatArray
-    """Shares of the air nodes in the air around the gap, shape (p, n)."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -346,8 +294,8 @@ class InsideAir:
         _, share = self._near
         across = straight[self.pair] * self.straight_area * (rise[self.cell_a] - rise[self.cell_b])
         up, down = self._retained(mean, layer)
-        lifted = _march(self._pickups(np.maximum(entering, 0.0)), up)
-        fallen = _march(self._pickups(np.maximum(-entering, 0.0))[:, ::-1], down[:, ::-1])[:, ::-1]
+        lifted = march(self._pickups(np.maximum(entering, 0.0)), up)
+        fallen = march(self._pickups(np.maximum(-entering, 0.0))[:, ::-1], down[:, ::-1])[:, ::-1]
         c = rise.shape[1]
         return np.concatenate(
             (
@@ -522,9 +470,9 @@ class InsideAir:
             axis=1,
         )
         kept = flip(keep)
-        lifts = _march(np.repeat(picked, keep.shape[2], axis=2), kept)
+        lifts = march(np.repeat(picked, keep.shape[2], axis=2), kept)
         # What a watt picked up at node i gives at each lift j: products of what is kept.
-        passed = _passing(kept[:, :, 0])
+        passed = passing(kept[:, :, 0])
         per_entry = np.einsum("ei,eij->ej", hat, passed[self._surface_of_entry])
         per_entry = per_entry * active * sign
         by_cell = per_entry * by[:, :1]
@@ -598,22 +546,3 @@ class InsideAir:
             Conductance between neighbours over that of all films at a nominal coefficient [-].
         """
         return replace(self, stirring=share * NOMINAL_FILM * float(self.area.sum()))
-
-
-def _march(picked: FloatArray, kept: FloatArray) -> FloatArray:
-    """Heat a stream carries from each node on: ``E_j = (E_(j-1) + Q_j) r_j``, (s, n - 1, c)."""
-    carried = np.zeros((picked.shape[0], picked.shape[1] - 1, kept.shape[2]))
-    stream: FloatArray = np.zeros((picked.shape[0], kept.shape[2]))
-    for j in range(picked.shape[1] - 1):
-        stream = (stream + picked[:, j]) * kept[:, j]
-        carried[:, j] = stream
-    return carried
-
-
-def _passing(kept: FloatArray) -> FloatArray:
-    """What a watt picked up at node i makes each lift j carry, shape (s, n, n - 1)."""
-    count, steps = kept.shape
-    passed = np.zeros((count, steps + 1, steps))
-    for i in range(steps):
-        passed[:, i, i:] = np.cumprod(kept[:, i:], axis=1)
-    return passed

@@ -270,7 +270,7 @@ class Network:
         return self.factor(np.concatenate((links, -links, own))).solve(right)
 
     def stirred(self, share: float) -> "Network":
-        """Give the network with its inside air stirred, close to one body of air at 3 or more."""
+        """Give the network with its inside air stirred: even within a percent from about 1000."""
         return replace(self, kinds=tuple(kind.stirred(share) for kind in self.kinds))
 
     def _sum_at(self, node: IntArray, values: FloatArray) -> FloatArray:

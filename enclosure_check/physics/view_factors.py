@@ -9,12 +9,30 @@ closure error is then spread over all entries.
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
 from typing import NamedTuple
 
 import numpy as np
 import numpy.typing as npt
-from numpy.typing import ArrayLike
+
+from enclosure_check.physics.rectangles import (
+    OTHER_AXES,
+    Boxes,
+    Rectangles,
+    parallel_rectangles,
+    perpendicular_rectangles,
+)
+from enclosure_check.physics.view_closure import consistent_exchange_areas
+
+__all__ = [
+    "Boxes",
+    "Rectangles",
+    "consistent_exchange_areas",
+    "exchange_areas",
+    "exposed_areas",
+    "parallel_rectangles",
+    "perpendicular_rectangles",
+    "visible_exchange_areas",
+]
 
 FloatArray = npt.NDArray[np.float64]
 IntArray = npt.NDArray[np.intp]
@@ -30,192 +48,10 @@ KOROBOV_MULTIPLIER = {128: 21, 512: 115}
 RAYS_AT_ONCE = 8192
 #: Pairs of patches looked at together, for the same reason.
 PAIRS_AT_ONCE = 4096
-#: Row sums of the consistent exchange areas, relative to the area [-].
-CLOSURE = 1e-13
 # Lengths below this share of the extent of all patches are rounding, as are shares of a ray.
 _ROUNDING = 1e-9
-# Most correction steps; a space that closes takes two or three.
-_CORRECTIONS = 60
-# Smallest factor of one correction step on an entry: keeps entries above zero.
-_LEAST_FACTOR = 0.2
-# Added to the scaled matrix of the correction, whose lowest eigenvalue is 0 for two groups of
-# patches that see only each other.
-_RIDGE = 1e-10
 # Stands for zero in the direction of a ray.
 _TINY = 1e-300
-# Signs of the corner sums over the ends low-low, low-high, high-low, high-high.
-_CORNER_SIGN = np.array([1.0, -1.0, -1.0, 1.0])
-_OTHER_AXES = np.array([[1, 2], [0, 2], [0, 1]])
-
-
-@dataclass(frozen=True, eq=False)
-class Rectangles:
-    """Flat patches parallel to the planes of one frame."""
-
-    axis: IntArray
-    """Axis of the normal, 0 to 2, shape (n,)."""
-    sign: FloatArray
-    """Sign of the normal that points into the air, -1 or 1, shape (n,)."""
-    position: FloatArray
-    """Coordinate along the axis of the normal [m], shape (n,)."""
-    low: FloatArray
-    """Lower ends along the two other axes in rising order [m], shape (n, 2)."""
-    high: FloatArray
-    """Upper ends along the two other axes in rising order [m], shape (n, 2)."""
-
-    def __post_init__(self) -> None:
-        n = self.axis.size
-        flat = self.axis.shape == self.sign.shape == self.position.shape == (n,)
-        if not flat or self.low.shape != (n, 2) or self.high.shape != (n, 2):
-            raise ValueError(
-                "fields of Rectangles have the shapes (n,), (n,), (n,), (n, 2), (n, 2)"
-            )
-        if not np.isin(self.axis, (0, 1, 2)).all() or not np.isin(self.sign, (-1, 1)).all():
-            raise ValueError("axis of a rectangle is 0, 1 or 2, its sign -1 or 1")
-        if not (np.isfinite(self.position).all() and _ordered(self.low, self.high)):
-            raise ValueError("rectangles need finite coordinates with low <= high")
-
-    @property
-    def area(self) -> FloatArray:
-        """Areas [m2], shape (n,)."""
-        return np.asarray(np.prod(self.high - self.low, axis=1))
-
-    @property
-    def corners(self) -> FloatArray:
-        """Lowest and highest corner in all three coordinates [m], shape (n, 2, 3)."""
-        corners = np.empty((self.axis.size, 2, 3))
-        ends = np.stack((self.low, self.high), axis=1)
-        np.put_along_axis(corners, _OTHER_AXES[self.axis][:, None, :], ends, axis=2)
-        np.put_along_axis(corners, self.axis[:, None, None], self.position[:, None, None], axis=2)
-        return corners
-
-
-@dataclass(frozen=True, eq=False)
-class Boxes:
-    """Opaque cuboids parallel to the frame; one without thickness is an opaque sheet."""
-
-    low: FloatArray
-    """Lowest corners [m], shape (m, 3)."""
-    high: FloatArray
-    """Highest corners [m], shape (m, 3)."""
-
-    def __post_init__(self) -> None:
-        if self.low.ndim != 2 or self.low.shape[1] != 3 or self.high.shape != self.low.shape:
-            raise ValueError("low and high of Boxes have the shape (m, 3)")
-        if not _ordered(self.low, self.high):
-            raise ValueError("boxes need finite coordinates with low <= high")
-
-
-def _ordered(low: FloatArray, high: FloatArray) -> bool:
-    return bool(np.isfinite(low).all() and np.isfinite(high).all() and (low <= high).all())
-
-
-def parallel_rectangles(
-    low_1: ArrayLike, high_1: ArrayLike, low_2: ArrayLike, high_2: ArrayLike, distance: ArrayLike
-) -> FloatArray:
-    """Exchange area of two parallel rectangles that face each other, sides parallel.
-
-    With ``u`` the differences of the ends along the first axis, ``v`` along the second and ``z``
-    the distance, the sum over the sixteen pairs of corners, with alternating sign, of::
-
-        1/(2 pi) [ v w atan(v/w) + u t atan(u/t) - z**2/2 ln(u**2 + v**2 + z**2) ]
-        w = sqrt(u**2 + z**2),  t = sqrt(v**2 + z**2)
-
-    Parameters
-    ----------
-    low_1, high_1, low_2, high_2 : array_like, shape (..., 2)
-        Ends of the rectangles along the two axes of their planes [m], low <= high.
-    distance : array_like, shape (...)
-        Distance of the planes [m], not negative.
-
-    Returns
-    -------
-    ndarray, shape (...)
-        Exchange area ``A_1 F_12`` [m2]: the overlapping area at distance zero, zero where a
-        rectangle has no area.
-
-    Notes
-    -----
-    Exact. Rounding leaves some 1e-15 times the square of the largest difference [m2].
-
-    References
-    ----------
-    J. R. Ehlert, T. F. Smith, "View factors for perpendicular and parallel rectangular plates",
-    J. Thermophys. Heat Transfer 7 (1993) 173-175 (from memory); J. R. Howell, A Catalog of
-    Radiation Heat Transfer Configuration Factors, C-13 (from memory).
-    """
-    u = _corner_differences(low_1, high_1, low_2, high_2, 0)[..., :, None]
-    v = _corner_differences(low_1, high_1, low_2, high_2, 1)[..., None, :]
-    z2 = np.square(np.asarray(distance, dtype=np.float64))[..., None, None]
-    w, t = np.sqrt(u * u + z2), np.sqrt(v * v + z2)
-    square = u * u + t * t
-    terms = v * w * np.arctan2(v, w) + u * t * np.arctan2(u, t)
-    terms = terms - 0.5 * z2 * np.log(_relative(square))
-    return _sum_corners(terms * (_CORNER_SIGN[:, None] * _CORNER_SIGN))
-
-
-def perpendicular_rectangles(
-    along_1: ArrayLike, away_1: ArrayLike, along_2: ArrayLike, away_2: ArrayLike
-) -> FloatArray:
-    """Exchange area of two rectangles at right angles, sides parallel to the line of their planes.
-
-    With ``v`` the differences of the ends along the line in which the two planes meet, and ``x``
-    and ``y`` the distances of the ends from it, the sum over the sixteen combinations, with
-    alternating sign, of::
-
-        1/(2 pi) [ v w atan(v/w) - (w**2 - v**2)/4 ln(w**2 + v**2) ],  w = sqrt(x**2 + y**2)
-
-    Parameters
-    ----------
-    along_1, along_2 : array_like, shape (..., 2)
-        Low and high end of each rectangle along the line where the planes meet [m].
-    away_1, away_2 : array_like, shape (..., 2)
-        Low and high end of each rectangle away from that line, counted to the side that the other
-        one faces [m]; what lies on the negative side is not seen and cut off.
-
-    Returns
-    -------
-    ndarray, shape (...)
-        Exchange area ``A_1 F_12`` [m2]; zero where nothing is left of a rectangle.
-
-    Notes
-    -----
-    Exact. Rounding leaves some 1e-15 times the square of the largest distance [m2].
-
-    References
-    ----------
-    As `parallel_rectangles`; D. C. Hamilton, W. R. Morgan, NACA TN 2836 (1952) (from memory);
-    Howell's catalogue C-15 and, with a common edge, C-14 (from memory).
-    """
-    one, two = (np.asarray(x, dtype=np.float64) for x in (along_1, along_2))
-    v = _corner_differences(one[..., :1], one[..., 1:], two[..., :1], two[..., 1:], 0)
-    v = v[..., None, :]
-    x, y = (np.maximum(np.asarray(a, dtype=np.float64), 0.0) for a in (away_1, away_2))
-    w2 = (np.square(x)[..., :, None] + np.square(y)[..., None, :]).reshape(
-        *np.broadcast_shapes(x.shape[:-1], y.shape[:-1]), 4, 1
-    )
-    w = np.sqrt(w2)
-    v2 = v * v
-    terms = v * w * np.arctan2(v, w) - 0.25 * (w2 - v2) * np.log(_relative(w2 + v2))
-    return _sum_corners(terms * (_CORNER_SIGN[:, None] * _CORNER_SIGN))
-
-
-def _corner_differences(
-    low_1: ArrayLike, high_1: ArrayLike, low_2: ArrayLike, high_2: ArrayLike, axis: int
-) -> FloatArray:
-    """Differences low-low, low-high, high-low, high-high along one axis, shape (..., 4)."""
-    ends = [np.asarray(x, dtype=np.float64)[..., axis] for x in (low_1, high_1, low_2, high_2)]
-    return np.stack([a - b for a in ends[:2] for b in ends[2:]], axis=-1)
-
-
-def _relative(square: FloatArray) -> FloatArray:
-    """Squares over the largest of their pair, one where they are zero: log(0) comes times zero."""
-    largest = square.max(axis=(-2, -1), keepdims=True)
-    return np.asarray(np.where(square > 0.0, square, 1.0) / np.where(largest > 0.0, largest, 1.0))
-
-
-def _sum_corners(terms: FloatArray) -> FloatArray:
-    return np.asarray(np.maximum(terms.sum(axis=(-2, -1)) / (2.0 * np.pi), 0.0))
 
 
 class _Pairs(NamedTuple):
@@ -259,7 +95,7 @@ def _facing_pairs(patches: Rectangles) -> _Pairs:
     first, second = np.triu_indices(patches.axis.size, 1)
     parallel = patches.axis[first] == patches.axis[second]
     k, other = ~parallel, second[patches.axis[first] != patches.axis[second]]
-    axes = np.column_stack((_OTHER_AXES[patches.axis[first]], patches.axis[first]))
+    axes = np.column_stack((OTHER_AXES[patches.axis[first]], patches.axis[first]))
     axes[k, 0], axes[k, 1] = 3 - axes[k, 2] - patches.axis[other], patches.axis[other]
     flip, origin = np.ones(axes.shape), np.zeros(axes.shape)
     flip[:, 2], origin[:, 2] = patches.sign[first], patches.position[first]
@@ -435,7 +271,7 @@ def exposed_areas(patches: Rectangles, obstacles: Boxes) -> FloatArray:
     covers = (above > rounding) & (below > -rounding)
     footprint = np.ones(covers.shape)
     for k in range(2):
-        axis = _OTHER_AXES[patches.axis, k]
+        axis = OTHER_AXES[patches.axis, k]
         upper = np.minimum(patches.high[:, k, None], obstacles.high[:, axis].T)
         lower = np.maximum(patches.low[:, k, None], obstacles.low[:, axis].T)
         footprint *= np.maximum(upper - lower, 0.0)
@@ -490,70 +326,6 @@ def visible_exchange_areas(patches: Rectangles, obstacles: Boxes) -> FloatArray:
                 )
             exchange[pairs.first, pairs.second] = value
     return exchange + exchange.T
-
-
-def consistent_exchange_areas(exchange: ArrayLike, area: ArrayLike) -> FloatArray:
-    """Exchange areas with exact closure and reciprocity, from inexact ones.
-
-    Of all symmetric corrections that make row i sum to ``A_i``, the one with the least sum of
-    squares over the entries corrected: ``x_ij (1 + l_i + l_j)``, where the multipliers l solve
-    ``(D + X) l = A - D`` with D the row sums. Shortened where it would turn an entry negative, and
-    repeated until the rows close.
-
-    Parameters
-    ----------
-    exchange : array_like, shape (n, n)
-        Exchange areas [m2], not negative; the mean with the transpose is taken.
-    area : array_like, shape (n,)
-        Areas that the rows shall sum to [m2].
-
-    Returns
-    -------
-    ndarray, shape (n, n)
-        Exactly symmetric, not negative; rows sum to the area within 1e-12 of it. Zeros stay zero,
-        so a row of zeros stays one.
-
-    Raises
-    ------
-    ValueError
-        If no correction closes the rows: the patches do not enclose a space.
-
-    References
-    ----------
-    J. van Leersum, "A method for determining a consistent set of radiation view factors from a set
-    generated by a nonexact method", Int. J. Heat Fluid Flow 10 (1989) 83-85, for the aim and the
-    repetition; M. E. Larsen, J. R. Howell, "Least-squares smoothing of direct-exchange areas in
-    zonal analysis", J. Heat Transfer 108 (1986) 239-242, for the multipliers (both from memory;
-    the weights are chosen here).
-    """
-    x = np.asarray(exchange, dtype=np.float64)
-    x = 0.5 * (x + x.T)
-    seen = x.sum(axis=1) > 0.0
-    target = np.asarray(area, dtype=np.float64)[seen]
-    x = x[np.ix_(seen, seen)]
-    linked = x > 0.0
-    if not (target > 0.0).all():
-        raise ValueError("a patch without area has exchange areas above zero")
-    scale = 1.0 / np.sqrt(target)
-    for _ in range(_CORRECTIONS):
-        missing = target - x.sum(axis=1)
-        if (np.abs(missing) <= CLOSURE * target).all():
-            break
-        matrix = scale[:, None] * x * scale
-        matrix[np.diag_indices_from(matrix)] += x.sum(axis=1) / target + _RIDGE
-        multiplier = scale * np.linalg.solve(matrix, scale * missing)
-        change = multiplier[:, None] + multiplier
-        least = float(np.min(change, where=linked, initial=0.0))
-        x = x * (1.0 + change * min(1.0, (_LEAST_FACTOR - 1.0) / min(least, -1e-9)))
-    else:
-        worst = float(np.max(np.abs(target - x.sum(axis=1)) / target))
-        raise ValueError(
-            f"exchange areas do not close: a row misses {worst:.1%} of its area; "
-            "the patches do not enclose a space"
-        )
-    closed = np.zeros((seen.size, seen.size))
-    closed[np.ix_(seen, seen)] = x
-    return closed
 
 
 def exchange_areas(patches: Rectangles, obstacles: Boxes) -> FloatArray:

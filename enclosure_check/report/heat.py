@@ -178,7 +178,8 @@ def _board_words(board: BoardFinding) -> str:
             f", hottest {tenths(board.hottest_c)} C{under}, {right:.0f} mm from the left and "
             f"{up:.0f} mm from the lower edge"
         )
-    return f"Board {board.name}, seen from the {board.seen_from}: mean {tenths(board.mean_c)} C{hottest}."
+    mean = f"Board {board.name}, seen from the {board.seen_from}: mean {tenths(board.mean_c)} C"
+    return f"{mean}{hottest}."
 
 
 _HEAT = (

@@ -7,7 +7,9 @@ from enclosure_check.report.options import WriterOptions
 
 GAP = 2
 INDENT = 2
-# A column that yields keeps this many cells, and this many where even the gaps have gone.
+# A column that yields keeps this many cells while gaps can yield in its place, then so many, and
+# these few where even the gaps have gone.
+LEGIBLE = 12
 NARROWEST = 6
 LAST_RESORT = 2
 ELLIPSIS = "..."
@@ -142,6 +144,8 @@ class Page:
 def _fitted(widths: list[int], columns: Sequence[Column], room: int) -> tuple[int, int]:
     """Narrow columns until they fit; give the indent and the gap that go with them."""
     for indent, gap, narrowest in (
+        (INDENT, GAP, LEGIBLE),
+        (INDENT, 1, LEGIBLE),
         (INDENT, GAP, NARROWEST),
         (INDENT, 1, NARROWEST),
         (0, 1, LAST_RESORT),

@@ -58,6 +58,8 @@ class SolveOptions:
     """A step moves no node further than this."""
     by_stirring: bool = True
     """Whether to go by way of stirred air where Newton does not get there at once."""
+    most_holds: int = 64
+    """How often growing power is held and let go before no steady state is believed in."""
     hottest_rise_k: float = 5_000.0
     """No steady state is looked for beyond this rise."""
 
@@ -91,14 +93,17 @@ class Solution:
         return np.array([outcome is Outcome.CONVERGED for outcome in self.outcome])
 
     def improved(self, later: "Solution") -> "Solution":
-        """Give the variants that converged here, and the others as they are in a later solution."""
+        """Give the variants that converged here, and the others as they are in a later solution.
+
+        The steps of the others are those of both.
+        """
         keep = self.each_converged
         both = zip(keep, self.outcome, later.outcome, strict=True)
         return Solution(
             rise=np.where(keep, self.rise, later.rise),
             outcome=tuple(one if kept else other for kept, one, other in both),
-            steps=np.where(keep, self.steps, later.steps),
-            fallbacks=np.where(keep, self.fallbacks, later.fallbacks),
+            steps=self.steps + np.where(keep, 0, later.steps),
+            fallbacks=self.fallbacks + np.where(keep, 0, later.fallbacks),
             worst_imbalance_w=np.where(keep, self.worst_imbalance_w, later.worst_imbalance_w),
             worst_node=np.where(keep, self.worst_node, later.worst_node),
             heat_w=np.where(keep, self.heat_w, later.heat_w),
@@ -117,8 +122,6 @@ _FARTHEST_GUESS_K = 1_000.0
 # Stirring of the inside air on the way to an answer that Newton does not find at once, over what
 # its films carry.
 _STIRRINGS = (3.0, 0.3, 0.1, 0.03, 0.01, 0.003, 0.001)
-# How often growing power is held and let go before no steady state is believed in.
-_MOST_HOLDS = 64
 
 
 def solve_steady(
@@ -172,10 +175,14 @@ def _reach(network: Network, start: FloatArray, options: SolveOptions) -> Soluti
 def _stirred(network: Network, options: SolveOptions) -> Solution:
     """Come to the steady state from that of a box whose air is stirred, less and less."""
     x = _guess(network)
+    steps = fallbacks = np.zeros(network.variants, dtype=np.intp)
     for share in _STIRRINGS:
         solution = _newton(network.stirred(share), x, options)
-        x = solution.rise[network.unknown]
-    return _newton(network, x, options)
+        # One that ran away is no better a start than the guess was.
+        x = np.clip(solution.rise[network.unknown], -_FARTHEST_GUESS_K, _FARTHEST_GUESS_K)
+        steps, fallbacks = steps + solution.steps, fallbacks + solution.fallbacks
+    solution = _newton(network, x, options)
+    return replace(solution, steps=steps + solution.steps, fallbacks=fallbacks + solution.fallbacks)
 
 
 def _guess(network: Network) -> FloatArray:
@@ -197,14 +204,15 @@ def _from_below(network: Network, options: SolveOptions) -> Solution:
     runs_away = still = np.ones(network.variants, dtype=bool)
     steps = np.zeros(network.variants, dtype=np.intp)
     fallbacks = steps.copy()
-    for hold in range(_MOST_HOLDS + 1):
+    for hold in range(options.most_holds + 1):
         held = replace(network, sources=sources.held(rise[sources.node], reference))
         below = _reach(held, start, options)
         rise, start = below.rise, below.rise[network.unknown]
         tries = [below]
         # Letting go costs more than holding on: it is tried after 0, 1, 2, 4, 8... further holds.
         if not hold & (hold - 1):
-            trial = _reach(network, start, options)
+            # The air is near its state already: no way by stirring, which is long without a state.
+            trial = _newton(network, start, options)
             tries.append(trial)
             if best is None:
                 # Power that is out of scale before it grows is another matter.
@@ -220,7 +228,19 @@ def _from_below(network: Network, options: SolveOptions) -> Solution:
     assert best is not None
     each = zip(best.outcome, still, runs_away, strict=True)
     outcome = [Outcome.RUNAWAY if no and growth else own for own, no, growth in each]
-    return replace(best, outcome=tuple(outcome), steps=steps, fallbacks=fallbacks)
+    # Named is the growing power that puts in most, not where the iteration happened to end.
+    grown = np.where(sources.growing, sources.heat(rise[sources.node], reference), -np.inf)
+    culprit = sources.node[np.argmax(grown, axis=0)]
+    unmet = np.abs(network.imbalance(best.rise))[culprit, np.arange(network.variants)]
+    named = still & runs_away
+    return replace(
+        best,
+        outcome=tuple(outcome),
+        steps=steps,
+        fallbacks=fallbacks,
+        worst_node=np.where(named, culprit, best.worst_node),
+        worst_imbalance_w=np.where(named, unmet, best.worst_imbalance_w),
+    )
 
 
 def _newton(network: Network, start: FloatArray, options: SolveOptions) -> Solution:

@@ -48,7 +48,13 @@ def span(low, high, unit=""):
 
 
 def test_register_of_laws_is_complete(method):
-    names = {"rayleigh": "Ra ", "temperature": "T ", "none": ""}
+    names = {
+        "rayleigh": "Ra ",
+        "elenbaas": "El ",
+        "stratification": "S ",
+        "temperature": "T ",
+        "none": "",
+    }
     expected = [
         [
             f"`{law.key}`",

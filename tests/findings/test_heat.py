@@ -137,7 +137,9 @@ def test_heat_runs_round_the_corners_to_cooler_walls():
     assert rows["right"].outside_c > rows["bottom"].outside_c + 1
     assert flow > 0.1
     # All that runs from wall to wall: the corners of the cooled bottom carry its heat to it.
-    into = flow + sum(answer.flow(f"corner:{n}-bottom", "corner") for n in ("left", "front", "back"))
+    into = flow + sum(
+        answer.flow(f"corner:{n}-bottom", "corner") for n in ("left", "front", "back")
+    )
     assert into < rows["bottom"].mounting_w
 
 

@@ -39,6 +39,13 @@ def test_required_keys():
         "yovanovich_cuboid",
         "box_shelter",
         "carroll_mrt",
+        "chen_eichhorn_stratified",
+        "elsherbiny_vertical_gap",
+        "hollands_heated_below",
+        "bar_cohen_rohsenow_channel",
+        "streams_in_layers",
+        "films_in_corners",
+        "view_factors",
         "swinbank_sky",
     } <= set(CORRELATIONS)
     assert set(LAWS) <= set(CORRELATIONS)

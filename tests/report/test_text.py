@@ -15,7 +15,12 @@ from enclosure_check.findings.results import (
     PartFinding,
     Report,
 )
-from enclosure_check.report.condition import MOST_LIMITS, headroom_words
+from enclosure_check.report.condition import (
+    BOTH_SHOWN_K,
+    MOST_LIMITS,
+    headroom_words,
+    nearer_limits,
+)
 from enclosure_check.report.heat import MOST_HEAT_ROWS, hand_words
 from enclosure_check.report.layout import cells_of
 from enclosure_check.report.limits import limits_of, worst_first
@@ -72,12 +77,43 @@ def test_every_part_limit_is_shown_or_counted(sample):
     text = written(sample)
     for condition in sample.conditions:
         section = text[text.index(f"\n{condition.name}: ") :]
-        hidden = len(condition.parts) - MOST_LIMITS
-        rows = [f"{part.limit_kind} {part.limit_side}" for part in condition.parts[:MOST_LIMITS]]
+        near = nearer_limits(condition.parts)
+        hidden = len(near) - MOST_LIMITS
+        rows = [f"{part.limit_kind} {part.limit_side}" for part in near[:MOST_LIMITS]]
         lines = section[section.index("Parts against") :].splitlines()[2 : 2 + len(rows)]
         assert [re.split(r"  +", line.strip())[1] for line in lines] == rows
         if hidden > 0:
             assert f"and {hidden} more with margins of" in section
+        # Every point that has a limit keeps one, the nearer.
+        points = {(part.name, part.limit_kind) for part in condition.parts}
+        assert {(part.name, part.limit_kind) for part in near} == points
+        left_out = len(condition.parts) - len(near)
+        assert f"not shown: the farther limit of {left_out} point" in section
+
+
+def two_sided(high: float, low: float, verdicts=("pass", "pass")) -> tuple[PartFinding, ...]:
+    rows = part(high, verdicts[0]), part(low, verdicts[1], side="min")
+    return tuple(sorted(rows, key=lambda row: row.margin_k))
+
+
+@pytest.mark.parametrize(
+    ("high", "low", "verdicts", "sides"),
+    [
+        (10.0, 90.0, ("pass", "pass"), ["max"]),
+        (90.0, 10.0, ("pass", "pass"), ["min"]),
+        (BOTH_SHOWN_K, 3.0, ("pass", "pass"), ["min", "max"]),
+        (BOTH_SHOWN_K + 0.1, 3.0, ("pass", "pass"), ["min"]),
+        (40.0, 60.0, ("pass", "pass"), ["max"]),
+        # What does not pass is shown however far.
+        (20.0, 30.0, ("marginal", "marginal"), ["max", "min"]),
+        (-3.0, 200.0, ("fail", "pass"), ["max"]),
+    ],
+)
+def test_the_farther_of_two_limits_is_left_out(small, high, low, verdicts, sides):
+    rows = two_sided(high, low, verdicts)
+    assert [row.limit_side for row in nearer_limits(rows)] == sides
+    text = written(with_condition(small, parts=rows))
+    assert ("not shown: the farther limit of 1 point\n" in text) == (len(sides) == 1)
 
 
 def test_sections_come_worst_first(sample):
@@ -309,8 +345,8 @@ def test_hottest_parts_only(sample):
 
 
 def test_board_without_parts(small):
-    boards = (BoardFinding("main", 40.0, 41.0, None),)
-    assert "Board main: mean 40.0 C, hottest 41.0 C." in written(
+    boards = (BoardFinding("main", 40.0, 41.0, None, ((40.0, 41.0),), "front", (30.0, 10.0)),)
+    assert "Board main, seen from the front: mean 40.0 C, hottest 41.0 C, 30 mm" in written(
         with_condition(small, boards=boards)
     )
 
@@ -359,7 +395,9 @@ def test_no_user_text_reaches_the_terminal_unescaped(small):
                 mode=NASTY,
                 parts=(row,),
                 part_heat=(replace(first.part_heat[0], name=NASTY),),
-                boards=(BoardFinding(NASTY, 40.0, 41.0, NASTY),),
+                boards=(
+                    BoardFinding(NASTY, 40.0, 41.0, NASTY, ((40.0, 41.0),), "top", (3.0, 1.0)),
+                ),
                 headroom=replace(first.headroom, air_limited_by=NASTY, power_limited_by=NASTY),
                 solver=replace(first.solver, worst_node=NASTY),
                 warnings=(NASTY,),

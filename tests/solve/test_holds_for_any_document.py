@@ -13,6 +13,7 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 from support.cases import (
+    COARSE,
     Data,
     board,
     box,

@@ -14,7 +14,7 @@ from dataclasses import replace
 import numpy as np
 import pytest
 from scipy.special import lambertw
-from support.cases import board, box, network_of, part, patched
+from support.cases import COARSE, board, box, network_of, part, patched
 from support.networks import AMBIENT_K, LABEL, POWER, finished, one_node, started, together
 from support.random_documents import random_document, with_strong_growth
 
@@ -39,7 +39,7 @@ def test_below_the_threshold_the_lower_state_is_found(share, doubling, resistanc
     expected = -lambertw(-share / math.e).real / growth
     # Near the threshold the balance is flat: an imbalance of 1e-9 of the heat moves the rise by
     # 1e-9 / sqrt(1 - share) of it and its curvature by no more.
-    assert solution.rise[1, 0] == pytest.approx(expected, rel=1e-6)
+    assert solution.rise[-1, 0] == pytest.approx(expected, rel=1e-6)
 
 
 @pytest.mark.parametrize("stated_at_k", [AMBIENT_K - 60, AMBIENT_K, AMBIENT_K + 150])
@@ -64,7 +64,7 @@ def test_power_along_a_line_below_its_threshold(gain, stated_at_k):
     flat = 1 + slope * (AMBIENT_K - stated_at_k)
     # A line that starts below nothing puts in nothing.
     expected = max(power * resistance * flat, 0) / (1 - gain)
-    assert solution.rise[1, 0] == pytest.approx(expected, rel=1e-6)
+    assert solution.rise[-1, 0] == pytest.approx(expected, rel=1e-6)
 
 
 @pytest.mark.parametrize("gain", [1.01, 1.5, 20.0])
@@ -78,7 +78,7 @@ def test_power_that_falls_with_temperature_never_runs_away():
     network = one_node(10.0, 5.0, slope=-0.01)
     solution = solve_steady(network)
     assert solution.outcome == (Outcome.CONVERGED,)
-    assert solution.rise[1, 0] == pytest.approx(50 / 1.5, rel=1e-9)
+    assert solution.rise[-1, 0] == pytest.approx(50 / 1.5, rel=1e-9)
 
 
 def test_a_growing_power_out_of_scale_before_it_grows_is_not_runaway():
@@ -94,7 +94,7 @@ def test_from_a_hot_start_the_lower_state_is_found():
     for start in (upper, upper + 1, upper + 30):
         solution = solve_steady(network, np.array([[start]]))
         assert solution.outcome == (Outcome.CONVERGED,)
-        assert solution.rise[1, 0] == pytest.approx(lower, rel=1e-6)
+        assert solution.rise[-1, 0] == pytest.approx(lower, rel=1e-6)
 
 
 def test_two_nodes_of_which_one_grows():
@@ -123,7 +123,7 @@ def test_variants_that_run_away_beside_others_that_do_not():
         assert solution.outcome[index] is alone.outcome[0]
         assert (alone.outcome[0] is Outcome.CONVERGED) == (shares[index] < 1)
         if shares[index] < 1:
-            assert solution.rise[1, index] == pytest.approx(alone.rise[1, 0], rel=1e-9)
+            assert solution.rise[-1, index] == pytest.approx(alone.rise[-1, 0], rel=1e-9)
 
 
 # In a box -----------------------------------------------------------------------------------
@@ -135,7 +135,7 @@ LEAKY = box(
 
 
 def leaky(power: float):
-    return network_of(patched(LEAKY, {"parts": {"U1": {"power_w": power}}}))
+    return network_of(patched(LEAKY, {"parts": {"U1": {"power_w": power}}}), COARSE)
 
 
 def test_leakage_stated_hot_is_no_runaway_in_a_cold_box():
@@ -209,7 +209,7 @@ def climbed(network) -> np.ndarray | None:
 )
 def test_the_lowest_state_of_any_box_is_found_and_nothing_else_is_runaway(seed):
     rng = random.Random(seed)
-    network = network_of(with_strong_growth(random_document(rng), rng))
+    network = network_of(with_strong_growth(random_document(rng), rng), COARSE)
     solution = solve_steady(network)
     expected = climbed(network)
     if expected is None:

@@ -4,7 +4,7 @@ from dataclasses import replace
 
 import numpy as np
 import pytest
-from support.cases import board, box, network_of, part, patched
+from support.cases import COARSE, board, box, network_of, part, patched
 from support.networks import together
 
 from enclosure_check.network.network import Network
@@ -19,6 +19,7 @@ DOCUMENT = box(
     walls={
         "bottom": {"mounting": {"kind": "bolted_to", "contact_w_per_m2k": 50, "surface_c": 30}},
         "left": {"material": "pc_abs"},
+        "back": {"mounting": {"kind": "against_surface", "gap_mm": 12, "surface_c": 15}},
     },
     boards={"main": board(other_power_w=3)},
     parts={
@@ -44,7 +45,7 @@ TIGHT = SolveOptions(node_tolerance=1e-10)
 
 @pytest.fixture(scope="module")
 def network() -> Network:
-    return network_of(DOCUMENT)
+    return network_of(DOCUMENT, COARSE)
 
 
 @pytest.fixture(scope="module")
@@ -60,7 +61,7 @@ def node(request, network) -> int:
     return {
         "junction of U1": places.parts["U1"].junction,
         "inside air": places.air,
-        "wall outside": places.wall_outside["top"],
+        "wall outside": int(places.wall_outside["top"].cells[0, 1]),
     }[request.param]
 
 
@@ -82,11 +83,11 @@ def assert_close(found: np.ndarray, expected: np.ndarray) -> None:
 def kinds() -> list[tuple[int, str]]:
     found = [
         (index, name)
-        for index, kind in enumerate(network_of(DOCUMENT).kinds)
+        for index, kind in enumerate(network_of(DOCUMENT, COARSE).kinds)
         for name in kind.PARAMETERS
     ]
-    # Conduction 1, radiation 4, plates 5, bodies 4, the box 1.
-    assert len(found) == 15
+    # Conduction 1, radiation 4, patches 3, a gap outside 1, the box 2, the inside air 1.
+    assert len(found) == 12
     return found
 
 
@@ -94,11 +95,9 @@ def kinds() -> list[tuple[int, str]]:
 def test_by_every_parameter_of_every_link(network, solution, node, index, name):
     kind = network.kinds[index]
     own = getattr(kind, name)
-    # Every sixth link of a kind and its last ones stand for all; of the box all six.
+    # Every sixth of a kind's values and its last one stand for all.
     links = sorted({*range(0, len(own), max(len(own) // 6, 1)), len(own) - 1})
-    # A cosine may be nothing; all else is more.
-    least = 0.1 if name == "up_cosine" else 0.0
-    steps = SHARE * np.maximum(np.abs(own[links, 0]), least)
+    steps = SHARE * np.abs(own[links, 0])
     variants = []
     for link, step in zip(links, steps, strict=True):
         for sign in (1, -1):
@@ -110,7 +109,7 @@ def test_by_every_parameter_of_every_link(network, solution, node, index, name):
     at = solved_again(network, variants, solution.rise[network.unknown], node)
     expected = (at[0::2] - at[1::2]) / (2 * steps)
     found = sensitivities(network, solution, node).by_parameter[index][name]
-    assert found.shape == (len(kind.labels),)
+    assert found.shape == (len(own),)
     assert_close(found[links], expected)
 
 
@@ -132,7 +131,7 @@ def test_by_every_source(network, solution, node):
 
 def test_by_every_given_temperature(network, solution, node):
     fixed = np.flatnonzero(network.fixed)
-    assert len(fixed) == 4
+    assert len(fixed) == 6
     step = 0.05
     variants = []
     for place in fixed:
