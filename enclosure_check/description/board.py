@@ -140,7 +140,7 @@ class ShieldCan(Strict):
 
 
 class Board(BoardDefaults):
-    """A flat board, parallel to a pair of walls, one plate of even temperature on each side."""
+    """A flat board, parallel to a pair of walls; even through its thickness."""
 
     description: Text | None = Field(None, description="Free text.")
     parallel_to: WallName = Field(

@@ -106,7 +106,7 @@ class Document(Strict):
     """A box, what is in it and what is around it."""
 
     NOT_YET: ClassVar[dict[str, str]] = {
-        "stirred": "the inside air is one well-mixed node in this version, so it is always stirred",
+        "stirred": "air stirred by a fan is not computed in this version",
     }
     format: Annotated[Literal[1], NotBoolean] = Field(
         1, description="Version of this document format."

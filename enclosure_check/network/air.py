@@ -220,11 +220,11 @@ class AirSite:
 
     def _surfaces(self) -> Surfaces:
         films = self.films
-        ends = [self._ends(film) for film in films]
+        bottoms, tops = self._ends()
         nodes = np.linspace(0.0, self.height, AIR_NODES)
         middles = (np.arange(SAMPLES) + 0.5) / SAMPLES
-        samples = np.stack([self.share(low + (high - low) * middles) for low, high in ends])
-        tops, bottoms = (np.array([end[k] for end in ends]) for k in (1, 0))
+        sampled = bottoms[:, None] + (tops - bottoms)[:, None] * middles
+        samples = self.share(sampled.ravel()).reshape(len(films), SAMPLES, AIR_NODES)
         faces = [film.face for film in films]
         lengths = np.array([film.stream_length or film.face.fall_length for film in films])
         widths = np.sqrt([float(film.area.sum()) for film in films])
@@ -257,18 +257,13 @@ class AirSite:
             decay_down=decay(bottoms[:, None] - nodes[None]),
         )
 
-    def _ends(self, film: Film) -> tuple[float, float]:
-        """Lowest and highest height of a film [m]."""
-        corners = np.array(
-            [
-                [x, y, z]
-                for x in (film.low[0], film.high[0])
-                for y in (film.low[1], film.high[1])
-                for z in (film.low[2], film.high[2])
-            ]
-        )
-        heights = self.heights(corners)
-        return float(heights.min()), float(heights.max())
+    def _ends(self) -> tuple[FloatArray, FloatArray]:
+        """Lowest and highest height of every film [m], shapes (s,)."""
+        up = np.asarray(self.up)
+        # Of a cuboid, the corner that is lowest along each axis by itself is the lowest of all.
+        along = np.array([(film.low, film.high) for film in self.films]) * up
+        lowest, highest = along.min(axis=1).sum(axis=1), along.max(axis=1).sum(axis=1)
+        return lowest - self.bottom, highest - self.bottom
 
     def _pairs(self, columns: list[Column], tops: list[tuple[Top, Face]]) -> Pairs:
         rows: list[tuple[int, int, float, float, float, float, FloatArray]] = []
@@ -374,6 +369,9 @@ class _Entries:
     def __init__(self, site: AirSite) -> None:
         self.site = site
         self.left = [film.area.copy() for film in site.films]
+        centres = np.concatenate([film.centres for film in site.films])
+        ends = np.cumsum([len(film.centres) for film in site.films])[:-1]
+        self.shares = np.split(site.share(site.heights(centres)), ends)
         self.cell: list[IntArray] = []
         self.side: list[IntArray] = []
         self.area: list[FloatArray] = []
@@ -406,7 +404,7 @@ class _Entries:
         self.cell.append(film.cells[some])
         self.side.append(np.full(int(some.sum()), len(self.sides)))
         self.area.append(area[some])
-        self.hat.append(self.site.share(self.site.heights(film.centres[some])))
+        self.hat.append(self.shares[surface][some])
         self.label.append(np.full(int(some.sum()), film.label))
         self.sides.append((surface, pair, second))
 

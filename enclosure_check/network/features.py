@@ -4,10 +4,9 @@ Zones are part of a board's sheet conductance; stand-offs, edge clamps and fille
 walls; a can is a surface of its own over parts.
 """
 
-import math
-from collections.abc import Iterator, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass
-from typing import NamedTuple
+from itertools import pairwise
 
 import numpy as np
 from numpy.typing import ArrayLike
@@ -24,6 +23,7 @@ from enclosure_check.description.case import (
 from enclosure_check.description.frames import AXIS, SIGN, Vector
 from enclosure_check.network.covering import between_parts, parts_on, shared
 from enclosure_check.network.grid import PlateGrid
+from enclosure_check.network.lines import join_pieces, line_segments, outline_segments
 from enclosure_check.network.links import FloatArray, LinkLabel
 from enclosure_check.network.site import InsideSurface, Site, footprint
 from enclosure_check.network.units import metres, metres_3
@@ -186,10 +186,10 @@ def _build_stand_off(board: BoardCase, stand_off: StandOffCase, site: Site) -> N
 
 
 def _build_edge_clamp(board: BoardCase, clamp: EdgeClampCase, site: Site) -> None:
-    """Join the cells along an edge of a board to the wall cells they face.
+    """Join the cells along an edge of a board to the wall along the line they face.
 
-    In series, per metre of edge: half a cell of the board, the clamp, and what a strip as wide as
-    the board is thick adds to the cells of the wall (see `PlateGrid.sub_cell`).
+    In series, per metre of edge: half a cell of the board, the clamp, and what the wall holds
+    between its cells and a line (see `line_segments`).
     """
     wall, axis = clamp.wall, AXIS[clamp.wall]
     grid, wall_grid = site.grids[board.name], site.grids[wall]
@@ -198,20 +198,25 @@ def _build_edge_clamp(board: BoardCase, clamp: EdgeClampCase, site: Site) -> Non
     across = grid.axes.index(axis)
     sheet = np.moveaxis(grid.sheet[across], across, 0)[0 if SIGN[wall] < 0 else -1]
     series = 1.0 / clamp.conductance_w_per_mk + grid.steps[across] / 2 / sheet
-    added = wall_grid.sub_cell(low, size)[0] * size[edge]
-    series = series + np.maximum(added, -0.9 * series)
     rim = edge_cells(site.boards[board.name].cells, grid, axis, SIGN[wall])
-    # Along the edge by overlap; across it by the share of the board's thickness on each row.
-    lengths = _shared_lengths(grid, wall_grid, edge, low, size)
-    rows = np.moveaxis(wall_grid.shares(low, size), wall_grid.axes.index(edge), 0).sum(axis=0)
-    face = np.moveaxis(site.wall_inside[wall].cells, wall_grid.axes.index(edge), 0)
-    conductance = lengths[:, :, None] * rows / series[:, None, None]
-    cell, place, row = np.nonzero(conductance)
-    site.builder.conduct(
-        rim[cell],
-        face[place, row],
-        conductance[cell, place, row],
-        LinkLabel(f"board:{board.name}", "edge_clamp"),
+    # A piece for every cell of the edge and every cell of the wall that it faces.
+    middle = low[board.axis] + size[board.axis] / 2
+    facing = wall_grid.axes.index(board.axis)
+    pieces, places = [], []
+    for place, (start, end) in enumerate(pairwise(grid.edges[grid.axes.index(edge)].tolist())):
+        inside = max(start, low[edge]), min(end, low[edge] + size[edge])
+        for piece in line_segments(wall_grid, facing, middle, *inside):
+            pieces.append(piece)
+            places.append(place)
+    join_pieces(
+        site.builder,
+        site.wall_inside[wall].cells,
+        pieces,
+        rim[places],
+        1.0 / series[places],
+        (LinkLabel(f"board:{board.name}", "edge_clamp"), LinkLabel(f"wall:{wall}", "along")),
+        # The inside of a wall has half of its sheet conductance.
+        share=0.5,
     )
 
 
@@ -278,8 +283,8 @@ def _build_can(board: BoardCase, can: ShieldCanCase, parts: Sequence[PartCase], 
         label = LinkLabel(owner, "radiation_under")
         _radiate_to_can(site, can, node, cells[hit], between[hit], board.finish.emissivity, label)
     pieces = list(outline_segments(grid, low, size))
-    frame = LinkLabel(owner, "frame")
-    join_pieces(site, board.name, pieces, node, can.frame_conductance_w_per_mk, frame)
+    labels = LinkLabel(owner, "frame"), LinkLabel(f"board:{board.name}", "along")
+    join_pieces(builder, cells, pieces, node, can.frame_conductance_w_per_mk, labels)
     first, second = (size[axis] for axis in grid.axes)
     outside = first * second + 2.0 * (first + second) * metres(can.height_mm)
     face = site.board_faces[board.name, can.side]
@@ -313,92 +318,3 @@ def _radiate_to_can(
     if can.finish.emissivity > 0 and emissivity > 0:
         far = can.finish.emissivity * np.asarray(area)
         site.builder.radiate(nodes, can_node, area, far, emissivity, label)
-
-
-class Segment(NamedTuple):
-    """A piece of a line on a plate, between two rows of cells: their places and its shares."""
-
-    places: tuple[tuple[int, int], tuple[int, int]]
-    shares: tuple[float, float]
-    length: float
-    """[m]."""
-    held: float
-    """What the plate holds between the two cells and the piece, times its length [K m/W]."""
-
-
-def line_segments(
-    grid: PlateGrid, across: int, at: float, start: float, end: float
-) -> Iterator[Segment]:
-    """Cut a line along a plate into pieces, one per cell that it runs along.
-
-    Its heat is shared out by the distances to the rows of cells on both sides, so that it is met
-    where it lies. Over the mean of the two so weighted a long line is warmer by
-    ``s f (1 - f) / (k t)`` per watt and metre, exactly, at the share f of their distance s.
-    Beyond the last row it is fed from one side alone, over its distance.
-
-    Parameters
-    ----------
-    grid
-        The cells.
-    across
-        Which of the plate's axes the line is across.
-    at
-        Its place along that axis [m].
-    start, end
-        Where it begins and ends along the other [m]; all in the box frame.
-    """
-    lengths = _on_cells(grid.edges[1 - across], start, end)
-    sheet = np.moveaxis(grid.sheet[across], across, 0)
-    centres, step = grid.centres[across], grid.steps[across]
-    place = (at - float(centres[0])) / step
-    first = min(max(math.floor(place), 0), centres.size - 2)
-    share = min(max(place - first, 0.0), 1.0)
-    beyond = max(first - place, place - first - 1.0, 0.0)
-    for cell in np.flatnonzero(lengths > 0).tolist():
-        kt = (1.0 - share) * sheet[first, cell] + share * sheet[first + 1, cell]
-        one, other = (first, cell), (first + 1, cell)
-        yield Segment(
-            (one, other) if across == 0 else (one[::-1], other[::-1]),
-            (1.0 - share, share),
-            float(lengths[cell]),
-            step * (share * (1.0 - share) + beyond) / float(kt),
-        )
-
-
-def outline_segments(grid: PlateGrid, low: Vector, size: Vector) -> Iterator[Segment]:
-    """Cut the four lines of a rectangle's outline into pieces; see `line_segments`."""
-    first, second = grid.axes
-    for across, axis, along in ((0, first, second), (1, second, first)):
-        for at in (low[axis], low[axis] + size[axis]):
-            yield from line_segments(grid, across, at, low[along], low[along] + size[along])
-
-
-def join_pieces(
-    site: Site, board: str, pieces: Sequence[Segment], node: int, per_metre: float, label: LinkLabel
-) -> None:
-    """Join a node to a board along pieces of a line by a conductance per metre [W/(m K)].
-
-    A piece follows the mean ``w_1 T_1 + w_2 T_2`` of its two cells, over ``1/g = 1/per_metre +
-    held``. Written out, ``g (w_1 T_1 + w_2 T_2 - T)^2`` is that of conductances ``w_1 g`` and
-    ``w_2 g`` to the node and of ``-w_1 w_2 g`` between the cells: part of what the board conducts
-    between them goes by the line instead. It is never more than what the board conducts.
-    """
-    cells = site.boards[board].cells
-    first, second = (
-        np.array([cells[piece.places[end]] for piece in pieces], dtype=np.intp) for end in (0, 1)
-    )
-    one, other = (np.array([piece.shares[end] for piece in pieces]) for end in (0, 1))
-    length, held = (
-        np.array([getattr(piece, name) for piece in pieces]) for name in ("length", "held")
-    )
-    each = length / (1.0 / per_metre + held)
-    builder = site.builder
-    builder.conduct(first, node, one * each, label)
-    builder.conduct(second, node, other * each, label)
-    builder.conduct(first, second, -one * other * each, LinkLabel(f"board:{board}", "along"))
-
-
-def _on_cells(edges: FloatArray, start: float, end: float) -> FloatArray:
-    """Length of an interval on each cell of a row [m]."""
-    lengths = np.minimum(edges[1:], end) - np.maximum(edges[:-1], start)
-    return np.asarray(np.maximum(lengths, 0.0))

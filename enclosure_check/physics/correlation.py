@@ -254,9 +254,9 @@ _ROWS = (
         prandtl_to=0.72,
         accuracy_pct=8.0,
         accuracy_basis=_SEALED_BOXES,
-        reference="form made for this project; 0.39 from the similarity solution of S. Ostrach, "
-        "1953, An analysis of laminar free-convection flow and heat transfer about a flat plate "
-        "parallel to the direction of the generating body force, NACA Report 1111",
+        reference="S. Ostrach, 1953, An analysis of laminar free-convection flow and heat transfer "
+        "about a flat plate parallel to the direction of the generating body force, NACA Report "
+        "1111, for the 0.39; form made for this project",
     ),
     Correlation(
         key="films_in_corners",
@@ -270,9 +270,9 @@ _ROWS = (
         prandtl_to=math.inf,
         accuracy_pct=8.0,
         accuracy_basis=_SEALED_BOXES,
-        reference="form made for this project; shape factor of an edge from I. Langmuir, "
-        "E. Q. Adams, G. S. Meikle, 1913, Flow of heat through furnace walls: the shape factor, "
-        "Trans. American Electrochemical Society 24 (from memory)",
+        reference="I. Langmuir, E. Q. Adams, G. S. Meikle, 1913, Flow of heat through furnace "
+        "walls: the shape factor, Trans. American Electrochemical Society 24 (from memory), for "
+        "the edge of a layer; form made for this project",
     ),
     Correlation(
         key="view_factors",

@@ -1,7 +1,7 @@
-"""Time a whole `check` process against a process that only imports the libraries.
+"""Time whole `check` processes, one per sample, against one that only imports the libraries.
 
-Run it as ``python tests/benchmarks/startup.py [REPETITIONS]``. The two are run in turn, so that
-whatever else the machine does falls on both; medians are compared. Both find their bytecode
+Run it as ``python tests/benchmarks/startup.py [REPETITIONS]``. All are run in turn, so that
+whatever else the machine does falls on both; medians are compared. All find their bytecode
 compiled, as an installed package has it; it is kept in a folder of its own.
 """
 
@@ -47,11 +47,8 @@ def timed(command: list[str], bytecode: str) -> tuple[float, float]:
 def main() -> None:
     repetitions = int(sys.argv[1]) if len(sys.argv) > 1 else 2 * LEAST_REPETITIONS + 1
     repetitions = max(repetitions, LEAST_REPETITIONS)
-    sample = by_size()[0]
-    commands = {
-        "bare imports": [sys.executable, "-c", BARE],
-        "check": [*program(), "check", str(sample)],
-    }
+    commands = {"bare imports": [sys.executable, "-c", BARE]}
+    commands |= {path.stem: [*program(), "check", str(path)] for path in by_size()}
     times: dict[str, list[tuple[float, float]]] = {name: [] for name in commands}
     with tempfile.TemporaryDirectory() as bytecode:
         for command in commands.values():
@@ -59,14 +56,17 @@ def main() -> None:
         for _ in range(repetitions):
             for name, command in commands.items():
                 times[name].append(timed(command, bytecode))
-    print(f"{sample.name}, {repetitions} repetitions in turn, medians:")
-    medians = {}
-    for name, pairs in times.items():
-        wall, used = (statistics.median(values) for values in zip(*pairs, strict=True))
-        medians[name] = wall, used
-        print(f"  {name:13s} {wall * 1e3:6.1f} ms wall, {used * 1e3:6.1f} ms processor")
-    ratios = [medians["check"][kind] / medians["bare imports"][kind] for kind in (0, 1)]
-    print(f"  ratio         {ratios[0]:6.2f}    wall, {ratios[1]:6.2f}    processor")
+    print(f"{repetitions} repetitions in turn, medians; times the bare imports in brackets:")
+    medians = {
+        name: [statistics.median(values) for values in zip(*pairs, strict=True)]
+        for name, pairs in times.items()
+    }
+    bare = medians["bare imports"]
+    for name, (wall, used) in medians.items():
+        print(
+            f"  {name:20s} {wall * 1e3:6.1f} ms wall ({wall / bare[0]:.2f}), "
+            f"{used * 1e3:6.1f} ms processor ({used / bare[1]:.2f})"
+        )
 
 
 if __name__ == "__main__":

@@ -1,7 +1,5 @@
 """Fillers and shield cans: what they carry, and what they cover."""
 
-from types import SimpleNamespace
-
 import numpy as np
 import pytest
 from support.cases import case_of, part, patched
@@ -12,21 +10,16 @@ from support.features import (
     board_grid,
     boxed,
     conductance,
-    flat_grid,
     links,
     node,
     rises,
 )
 
 from enclosure_check.findings.parts import part_heat
-from enclosure_check.network.builder import NetworkBuilder
 from enclosure_check.network.covering import bare_board, bare_wall, between_parts, parts_on
-from enclosure_check.network.features import join_pieces, line_segments, outline_segments
 from enclosure_check.network.grid import PlateGrid
 from enclosure_check.network.links import LinkLabel
-from enclosure_check.network.site import Site
 from enclosure_check.physics.air import air
-from enclosure_check.solve.steady import solve_steady
 
 SIGMA = 5.670374419e-8
 ZERO_C = 273.15
@@ -96,6 +89,14 @@ def test_filler_takes_its_area_off_the_films_of_both_faces():
     assert under.sum() == pytest.approx(0.06 * 0.1 - 0.014 * 0.01)
 
 
+def test_cover_that_cuts_cells_leaves_their_rest_bare():
+    """18 x 14 mm around a part of 14 x 10 mm, on cells of 10 x 10 mm: 252 mm2 are covered."""
+    row = {**FILLER, "at_mm": [60, 50], "length_mm": 18, "width_mm": 14}
+    case = case_of(boxed(fillers={"a": row}))
+    bare = bare_board(case, "main", "front", board_grid())
+    assert bare.sum() == pytest.approx(0.012 - 252e-6)
+
+
 def test_part_in_a_filler_gives_its_heat_through_the_rest_of_it():
     """14 x 10 x 2 mm in 10 mm of filler: 8 mm are left over its top; no film, no radiation."""
     solved = answer(boxed(fillers={"a": {**FILLER, "contact_mm2k_per_w": 50}}))
@@ -156,48 +157,6 @@ def can_of(**changes):
     return {"shield_cans": {"c": {**CAN, **changes}}}
 
 
-def test_outline_of_a_rectangle_in_pieces():
-    """Cells of 10 mm: lines at x 13 and 60, at y 21 and 38.3 mm."""
-    grid = flat_grid((12, 6), kt=0.02)
-    pieces = list(outline_segments(grid, (0.013, 0.021, 0.0), (0.047, 0.0173, 0.0)))
-    assert sum(piece.length for piece in pieces) == pytest.approx(2 * (0.047 + 0.0173))
-    first = next(piece for piece in pieces if piece.places == ((0, 2), (1, 2)))
-    # At x = 13 mm, 8 of the 10 mm between the first two rows; from y = 21 to 30 mm.
-    assert first.length == pytest.approx(0.009)
-    assert first.shares == pytest.approx((0.2, 0.8))
-    assert first.held == pytest.approx(0.01 * 0.8 * 0.2 / 0.02)
-    (upper,) = (piece for piece in pieces if piece.places == ((3, 3), (3, 4)))
-    assert upper.length == pytest.approx(0.01)
-    assert upper.shares == pytest.approx((1 - 0.33, 0.33))
-
-
-def test_outline_along_the_edges_is_fed_from_inside():
-    pieces = list(outline_segments(flat_grid((12, 6), kt=0.02), (0, 0, 0), (0.12, 0.06, 0)))
-    assert sum(piece.length for piece in pieces) == pytest.approx(0.36)
-    for piece in pieces:
-        assert sorted(piece.shares) == pytest.approx([0, 1])
-        assert piece.held == pytest.approx(0.005 / 0.02)
-
-
-@pytest.mark.parametrize("at", [0.0, 0.003, 0.031, 0.035, 0.0417, 0.0551, 0.12])
-@pytest.mark.parametrize("per_metre", [0.1, 20.0, 1e4])
-def test_line_is_met_where_it_lies(at, per_metre):
-    """1 W from the first row of a plate to a line across it: a slab so long, and the joint."""
-    kt, width, counts = 0.02, 0.06, (12, 6)
-    grid = flat_grid(counts, kt=kt)
-    builder = NetworkBuilder(300.0, 101325.0)
-    cold, cells = builder.node("cold", 300.0), builder.nodes("plate", counts)
-    label = LinkLabel("plate:p", "along")
-    Site.conduct_along(SimpleNamespace(builder=builder), cells, grid, 1.0, label)
-    site = SimpleNamespace(builder=builder, boards={"p": SimpleNamespace(cells=cells)})
-    pieces = list(line_segments(grid, 0, at, 0.0, width))
-    join_pieces(site, "p", pieces, cold, per_metre, LinkLabel("can:p/c", "frame"))
-    builder.heat(cells[0], 1.0 / counts[1], LinkLabel("plate:p", "power"))
-    rise = solve_steady(builder.finish(places=None)).rise[cells[0], 0]
-    exact = abs(at - 0.005) / (kt * width) + 1 / (per_metre * width)
-    np.testing.assert_allclose(rise, exact, rtol=1e-6)
-
-
 def test_what_enters_a_can_leaves_it():
     solved = answer(boxed(**can_of()))
     enters = [
@@ -205,7 +164,7 @@ def test_what_enters_a_can_leaves_it():
         solved.flow("part:U1", "radiation_inside"),
         solved.flow(OWNER, "still_air"),
         solved.flow(OWNER, "radiation_under"),
-        solved.flow(OWNER, "frame"),
+        -solved.flow(OWNER, "frame"),  # from the can to the board
     ]
     leaves = [solved.flow(OWNER, "convection_inside"), solved.flow(OWNER, "radiation_inside")]
     assert sum(enters) == pytest.approx(sum(leaves), rel=1e-6)
@@ -249,7 +208,7 @@ def test_frame_is_its_conductance_along_the_outline():
 
 def test_tight_frame_makes_the_can_as_warm_as_the_board_along_it():
     solved = answer(boxed(**can_of(frame_conductance_w_per_mk=10_000)))
-    cells, _, g = links(solved, OWNER, "frame")
+    _, cells, g = links(solved, OWNER, "frame")
     along = float(np.sum(solved.temperature_c[cells] * g) / g.sum())
     assert node(solved, "c can on main") == pytest.approx(along, abs=1.0)
 

@@ -113,10 +113,16 @@ def test_clamp_between_two_rows_of_wall_cells_serves_both_alike():
     assert rows[0] == rows[3] == 0.0
 
 
-@pytest.mark.parametrize("material", ["aluminium_5052", "pc_abs"])
-def test_halving_the_cells_hardly_moves_what_a_clamp_carries(material):
-    walls = {"left": {"material": material}}
-    document = boxed(edge_clamps={"left": {"conductance_w_per_mk": 100}}, walls=walls)
+@pytest.mark.parametrize("depth", [12.5, 24.2, 40])
+@pytest.mark.parametrize(
+    ("material", "per_metre"), [("aluminium_5052", 100), ("pc_abs", 100), ("pc_abs", 10_000)]
+)
+def test_halving_the_cells_hardly_moves_what_a_clamp_carries(material, per_metre, depth):
+    """On the middle of a row of wall cells, on the edge of one, and between; a copper-clad board."""
+    clamp = {"left": {"conductance_w_per_mk": per_metre}}
+    document = boxed(edge_clamps=clamp, walls={"left": {"material": material}})
+    row = {"conductivity_in_plane_w_per_mk": 200, "copper": None, "from_walls_mm": {"front": depth}}
+    document = patched(document, {"boards": {"main": row}})
     flows = [
         answer(document, options).flow("board:main", "edge_clamp") for options in (None, HALVED)
     ]

@@ -22,17 +22,19 @@ from support.cases import (
     part,
     patched,
     solved,
-    temperatures,
 )
 from support.random_documents import mirrored, random_document
 
 from enclosure_check.description.base import WALL_NAMES
 from enclosure_check.description.frames import wall_pair
 from enclosure_check.findings.heat import heat_balance, wall_findings
+from enclosure_check.findings.solved import Solved
+from enclosure_check.network.network import Network
 from enclosure_check.solve.steady import solve_steady
 
 seeds = st.integers(0, 2**32 - 1)
-often = settings(max_examples=60, deadline=None, derandomize=True, database=None)
+often = settings(max_examples=6, deadline=None, derandomize=True, database=None)
+rarely = settings(often, max_examples=3)
 
 # What the solver may leave: 1e-9 of the heat, over no less than a few milliwatts per kelvin.
 SOLVED_K = 1e-5
@@ -45,7 +47,7 @@ def document(seed: int) -> Data:
 @often
 @given(seeds)
 def test_the_balance_of_the_whole_box_closes(seed):
-    answer = solved(document(seed))
+    answer = solved(document(seed), COARSE)
     balance = heat_balance(answer, wall_findings(answer))
     flows = float(answer.solution.heat_w[0])
     # What the criterion allows: a millionth of the heat that flows.
@@ -56,25 +58,48 @@ def test_the_balance_of_the_whole_box_closes(seed):
 
 @often
 @given(seeds, st.sampled_from([1.01, 1.3, 3.0]))
-def test_more_watts_never_cool_anything(seed, factor):
-    network = network_of(document(seed))
+def test_more_watts_warm_their_own_part_and_leave_the_box(seed, factor):
+    """Elsewhere they may cool: a hotter stream lifts its heat past a layer of air."""
+    network = network_of(document(seed), COARSE)
     sources = network.sources
-    if not len(sources.node):
+    junctions = {nodes.junction for nodes in network.places.parts.values()}
+    own = [row for row, node in enumerate(sources.node) if node in junctions]
+    if not own:
         return
-    which = random.Random(seed).randrange(len(sources.node))
+    which = random.Random(seed).choice(own)
     power = sources.power.copy()
     power[which] *= factor
-    more = solve_steady(replace(network, sources=replace(sources, power=power)))
-    less = solve_steady(network)
+    hotter = replace(network, sources=replace(sources, power=power))
+    less, more = solve_steady(network), solve_steady(hotter)
     assert less.converged
     if more.converged:
-        assert (more.rise - less.rise).min() >= -SOLVED_K
-        assert more.rise[sources.node[which], 0] > less.rise[sources.node[which], 0]
+        node = sources.node[which]
+        assert more.rise[node, 0] > less.rise[node, 0]
+        extra = heat_put_in(hotter, more.rise) - heat_put_in(network, less.rise)
+        gone = heat_gone_out(hotter, more.rise) - heat_gone_out(network, less.rise)
+        assert extra > 0
+        # A millionth of the heat that flows may be left, of each.
+        assert gone == pytest.approx(extra, abs=2e-6 * max(float(more.heat_w[0]), 1e-4))
+
+
+def heat_put_in(network: Network, rise: np.ndarray) -> float:
+    return float(network.sources.heat(rise[network.sources.node], network.reference_k).sum())
+
+
+def heat_gone_out(network: Network, rise: np.ndarray) -> float:
+    """What enters nodes of given temperature, by every kind of link [W]."""
+    total = 0.0
+    for kind in network.kinds:
+        heat = kind.evaluate(rise, network.reference_k)[:, 0]
+        real = kind.b != network.nowhere
+        total += heat[network.fixed[kind.b] & real].sum() - heat[network.fixed[kind.a]].sum()
+    return float(total)
 
 
 @often
 @given(seeds, st.floats(0.5, 15))
-def test_warmer_surroundings_cool_nothing(seed, shift):
+def test_warmer_surroundings_warm_the_box_and_its_parts(seed, shift):
+    """All surroundings as much; a layer of air here or there need not follow."""
     cool = document(seed)
     warm = patched(cool, {})
     around = warm["surroundings"]
@@ -84,13 +109,17 @@ def test_warmer_surroundings_cool_nothing(seed, shift):
     for wall in warm["walls"].values():
         if "surface_c" in wall.get("mounting", {}):
             wall["mounting"]["surface_c"] += shift
-    network = network_of(warm)
+    network = network_of(warm, COARSE)
     solution = solve_steady(network)
     if solution.converged:
-        before = solved(cool)
+        before = solved(cool, COARSE)
         after = solution.rise + network.reference_k
-        gain = after - before.solution.rise - before.network.reference_k
-        assert gain.min() >= -SOLVED_K
+        gain = (after - before.solution.rise - before.network.reference_k)[:, 0]
+        places = network.places
+        surfaces = [*places.wall_outside.values(), *places.wall_inside.values()]
+        nodes = [plate.mean for plate in [*surfaces, *places.boards.values()]]
+        nodes += [part.junction for part in places.parts.values()]
+        assert gain[nodes].min() > 0
 
 
 def without_sources(seed: int) -> Data:
@@ -109,12 +138,12 @@ def without_sources(seed: int) -> Data:
 @often
 @given(seeds)
 def test_nothing_on_and_nothing_around_leaves_everything_at_ambient(seed):
-    answer = solved(without_sources(seed))
-    assert np.abs(answer.solution.rise).max() <= 1e-9
+    answer = solved(without_sources(seed), COARSE)
+    assert np.abs(answer.solution.rise).max() == 0
     assert np.abs(answer.heat_w).max() == 0
 
 
-@often
+@rarely
 @given(seeds)
 def test_an_outside_that_does_not_emit_does_not_radiate(seed):
     made = document(seed)
@@ -123,12 +152,12 @@ def test_an_outside_that_does_not_emit_does_not_radiate(seed):
     made["defaults"]["wall"]["finish_outside"] = "mirror"
     for wall in made["walls"].values():
         wall["finish_outside"] = "mirror"
-    answer = solved(made)
+    answer = solved(made, COARSE)
     for name in WALL_NAMES:
         assert answer.flow(f"wall:{name}", "radiation_outside") == 0
 
 
-@often
+@rarely
 @given(seeds)
 def test_a_little_emissivity_radiates_a_little(seed):
     """Radiation outside goes to nothing with the emissivity and does not jump there."""
@@ -141,7 +170,7 @@ def test_a_little_emissivity_radiates_a_little(seed):
             made["walls"][name]["finish_inside"] = "grey_paint"
         for row in made["parts"].values():
             row.pop("finish", None)
-        found.append(solved(made).solution.rise)
+        found.append(solved(made, COARSE).solution.rise)
     # Rises up to some hundred kelvin, by a millionth of the radiation.
     assert np.abs(found[0] - found[1]).max() < 0.01
 
@@ -158,13 +187,49 @@ def swapped(names: dict[str, float], axis: int) -> dict[str, float]:
     }
 
 
+def by_name(answer: Solved) -> dict[str, float]:
+    """Temperatures of walls, boards, parts and the air by name; of plates their mean [C]."""
+    places = answer.network.places
+    nodes = {"air": places.air}
+    for face, plates in (("outside", places.wall_outside), ("inside", places.wall_inside)):
+        nodes |= {f"{name} {face}": plate.mean for name, plate in plates.items()}
+    nodes |= {f"board {name}": plate.mean for name, plate in places.boards.items()}
+    for name, own in places.parts.items():
+        nodes |= {f"junction {name}": own.junction, f"case {name}": own.case}
+    return {name: answer.at(node) for name, node in nodes.items()}
+
+
+def dark(made: Data) -> Data:
+    """Nothing radiates inside; rays round what stands between surfaces fall as the axes lie."""
+    image = patched(made, {"finishes": {"mirror": {"emissivity": 0}}})
+    image["defaults"]["wall"]["finish_inside"] = "mirror"
+    image["defaults"]["board"] = {"finish": "mirror"}
+    for wall in image["walls"].values():
+        wall["finish_inside"] = "mirror"
+    for row in image["parts"].values():
+        row["finish"] = "mirror"
+    return image
+
+
 @pytest.mark.parametrize("axis", [0, 1, 2], ids=["left-right", "front-back", "bottom-top"])
-@often
+@rarely
 @given(seed=seeds)
 def test_the_mirror_image_of_a_box_has_the_mirror_image_of_its_temperatures(axis, seed):
-    made = document(seed)
-    found, image = temperatures(solved(made)), temperatures(solved(mirrored(made, axis)))
+    made = dark(document(seed))
+    found = by_name(solved(made, COARSE))
+    image = by_name(solved(mirrored(made, axis), COARSE))
     assert swapped(image, axis) == pytest.approx(found, rel=0, abs=SOLVED_K)
+
+
+@pytest.mark.parametrize("axis", [0, 1, 2], ids=["left-right", "front-back", "bottom-top"])
+def test_with_radiation_inside_the_mirror_image_is_as_near_as_rays(axis):
+    made = document(2)
+    found = by_name(solved(made, COARSE))
+    image = swapped(by_name(solved(mirrored(made, axis), COARSE)), axis)
+    assert image.keys() == found.keys()
+    hottest = max(found.values()) - made["surroundings"]["air_c"]
+    assert hottest > 100
+    assert max(abs(image[name] - value) for name, value in found.items()) < 0.003 * hottest
 
 
 @pytest.mark.parametrize("axis", [0, 1, 2])
@@ -188,14 +253,14 @@ def symmetric(**changes) -> Data:
 
 
 def test_a_symmetric_box_has_a_symmetric_answer():
-    names = temperatures(solved(symmetric()))
-    for one, other in (("left", "right"), ("front", "back")):
-        for face in ("inside", "outside"):
-            assert names[f"{one} wall {face}"] == pytest.approx(
-                names[f"{other} wall {face}"], abs=SOLVED_K
-            )
-    assert names["left wall outside"] != pytest.approx(names["front wall outside"], abs=0.01)
-    assert names["top wall outside"] != pytest.approx(names["bottom wall outside"], abs=0.01)
+    # By rays round the board 0.03 K apart, without radiation inside exactly alike.
+    for made, near in ((symmetric(), 0.1), (dark({"walls": {}, **symmetric()}), SOLVED_K)):
+        names = by_name(solved(made))
+        for one, other in (("left", "right"), ("front", "back")):
+            for face in ("inside", "outside"):
+                assert names[f"{one} {face}"] == pytest.approx(names[f"{other} {face}"], abs=near)
+        assert names["left outside"] != pytest.approx(names["front outside"], abs=0.2)
+        assert names["top outside"] != pytest.approx(names["bottom outside"], abs=0.2)
 
 
 CUBE = {
@@ -225,17 +290,19 @@ TURNS = {
 
 @pytest.mark.parametrize("turn", TURNS, ids=str)
 def test_a_cube_gives_the_same_numbers_on_whichever_face_it_stands(turn):
-    upright = temperatures(solved(CUBE))
+    upright = by_name(solved(CUBE, COARSE))
     tilt = {"lean_back_deg": turn[0], "roll_right_deg": turn[1]}
-    turned = temperatures(solved(patched(CUBE, {"box": {"tilt": tilt}})))
-    assert upright["top wall outside"] - upright["bottom wall outside"] > 0.1
+    turned = by_name(solved(patched(CUBE, {"box": {"tilt": tilt}}), COARSE))
+    assert upright["top outside"] - upright["bottom outside"] > 0.1
+    # The body in the middle stands in the way of rays, which fall as the axes lie.
+    near = 0.01
     for name in WALL_NAMES:
         stands_for = TURNS[turn].get(name, name)
         for face in ("inside", "outside"):
-            expected = upright[f"{name} wall {face}"]
-            assert turned[f"{stands_for} wall {face}"] == pytest.approx(expected, abs=SOLVED_K)
-    assert turned["B1 junction"] == pytest.approx(upright["B1 junction"], abs=SOLVED_K)
-    assert turned["inside air"] == pytest.approx(upright["inside air"], abs=SOLVED_K)
+            expected = upright[f"{name} {face}"]
+            assert turned[f"{stands_for} {face}"] == pytest.approx(expected, abs=near)
+    assert turned["junction B1"] == pytest.approx(upright["junction B1"], abs=near)
+    assert turned["air"] == pytest.approx(upright["air"], abs=near)
 
 
 @pytest.mark.parametrize(
@@ -256,7 +323,10 @@ def test_a_cold_box_is_a_warm_one_upside_down(mounted, lean, roll):
                 "walls": {mounted: {"mounting": mounting}},
             },
         )
-        return solved(made).solution.rise[:, 0]
+        answer = solved(made, COARSE)
+        plates = answer.network.places.wall_outside.values()
+        cells = np.concatenate([plate.cells.ravel() for plate in plates])
+        return answer.solution.rise[[*cells, answer.network.places.air], 0]
 
     warm = rises(20.5, lean, roll)
     # Up is (-sin roll, -sin lean cos roll, cos lean cos roll); this turns it round.
@@ -282,16 +352,19 @@ def reordered(made: Data, order: Callable[[list[str]], list[str]]) -> Data:
     return image
 
 
-@often
+@rarely
 @given(seeds)
 def test_the_order_of_a_document_does_not_matter(seed):
     made = document(seed)
-    found = temperatures(solved(made))
-    shuffled = temperatures(solved(reordered(made, lambda names: names[::-1])))
-    assert shuffled == pytest.approx(found, rel=0, abs=SOLVED_K)
+    # The order of rays and of what they meet shows in the fifth digit.
+    hottest = max(by_name(solved(made, COARSE)).values()) - made["surroundings"]["air_c"]
+    for each, near in ((dark(made), SOLVED_K), (made, SOLVED_K + 3e-5 * abs(hottest))):
+        found = by_name(solved(each, COARSE))
+        shuffled = by_name(solved(reordered(each, lambda names: names[::-1]), COARSE))
+        assert shuffled == pytest.approx(found, rel=0, abs=near)
 
 
-@often
+@rarely
 @given(seeds)
 def test_names_do_not_matter(seed):
     made = document(seed)
@@ -303,7 +376,7 @@ def test_names_do_not_matter(seed):
         parts[name]: {**row, "place": boards.get(row["place"], row["place"])}
         for name, row in made["parts"].items()
     }
-    found, renamed = solved(made), solved(image)
+    found, renamed = solved(made, COARSE), solved(image, COARSE)
     for name, other in parts.items():
         for point in ("junction", "case"):
             node = getattr(found.network.places.parts[name], point)

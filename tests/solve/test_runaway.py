@@ -178,11 +178,11 @@ HOTTEST_K = 2_000.0
 def climbed(network) -> np.ndarray | None:
     """The lowest steady state, found slowly: power held at ever higher temperatures, from cold.
 
-    Each state lies below every steady one, as more power cools nothing; so where this ends is the
-    lowest there is, and where it climbs past all bounds there is none below them.
+    As far as more power cools nothing each state lies below every steady one; so where this ends is
+    the lowest there is, and where it climbs past all bounds there is none below them.
     """
     sources = network.sources
-    rise = np.full((network.size, 1), -60.0)
+    rise, start = np.full((network.size, 1), -60.0), None
     for _ in range(400):
         power = sources.heat(rise[sources.node], network.reference_k)
         # Power that falls with temperature is left to do so.
@@ -193,20 +193,18 @@ def climbed(network) -> np.ndarray | None:
             slope=np.where(growing, 0.0, sources.slope),
             doublings=np.where(growing, 0.0, sources.doublings),
         )
-        solution = solve_steady(replace(network, sources=held))
+        solution = solve_steady(replace(network, sources=held), start)
         if not solution.converged or solution.rise.max() > HOTTEST_K:
             return None
         if np.abs(solution.rise - rise).max() < 1e-7:
             return solution.rise
-        rise = solution.rise
+        rise, start = solution.rise, solution.rise[network.unknown]
     raise AssertionError("neither climbs away nor comes to rest")
 
 
-# Some that a plain Newton iteration takes for runaway and that are none, one that it answers with
-# a higher state than the lowest, and some that do run away.
-@pytest.mark.parametrize(
-    "seed", [24, 29, 119, 217, 226, 235, 269, 280, 304, 8, 20, 36, 64, 92, 282, 5, 7, 13]
-)
+# Some that a plain Newton iteration takes for runaway, or does not get to, and that are none; some
+# that are plain; and one that does run away.
+@pytest.mark.parametrize("seed", [7, 18, 24, 0, 20])
 def test_the_lowest_state_of_any_box_is_found_and_nothing_else_is_runaway(seed):
     rng = random.Random(seed)
     network = network_of(with_strong_growth(random_document(rng), rng), COARSE)

@@ -39,7 +39,8 @@ DOCUMENT = box(
 SHARE = 1e-3
 # The differences' own error, and what is left of it where a sensitivity is next to nothing beside
 # the largest of its kind: the solver's share over a change of a thousandth.
-TOLERANCE, ROUNDING = 2e-4, 1e-6
+# Films are differenced one-sidedly, which leaves a hundred-thousandth of the largest.
+TOLERANCE, ROUNDING = 2e-4, 1e-5
 TIGHT = SolveOptions(node_tolerance=1e-10)
 
 
@@ -97,6 +98,8 @@ def test_by_every_parameter_of_every_link(network, solution, node, index, name):
     own = getattr(kind, name)
     # Every sixth of a kind's values and its last one stand for all.
     links = sorted({*range(0, len(own), max(len(own) // 6, 1)), len(own) - 1})
+    # What is too small for a difference to show: the trace that holds mirrors at rest.
+    links = [link for link in links if abs(own[link, 0]) > 1e-9]
     steps = SHARE * np.abs(own[links, 0])
     variants = []
     for link, step in zip(links, steps, strict=True):
@@ -169,6 +172,8 @@ def test_a_given_temperature_has_no_sensitivities(network, solution):
 
 
 def test_several_variants_have_none(network):
-    pair = together([network, network_of(patched(DOCUMENT, {"surroundings": {"air_c": 30}}))])
+    pair = together(
+        [network, network_of(patched(DOCUMENT, {"surroundings": {"air_c": 30}}), COARSE)]
+    )
     with pytest.raises(ValueError, match="one variant"):
         sensitivities(pair, solve_steady(pair), network.places.air)

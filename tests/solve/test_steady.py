@@ -29,6 +29,7 @@ from enclosure_check.solve.steady import (
     LEAST_HEAT_W,
     Outcome,
     SolveOptions,
+    _stirred,
     heat_that_flows,
     solve_steady,
 )
@@ -114,12 +115,40 @@ def test_a_start_is_not_written_to():
 
 def test_far_starts_fall_back_rather_than_over():
     """From 1,000 K off, steps have to be shortened or taken back; the answer is found."""
-    network = network_of(WARM)
+    network = network_of(WARM, COARSE)
     start = np.full((len(network.unknown), 1), 1000.0)
     start[::2] = -200.0
     found = solve_steady(network, start)
     assert found.converged
     assert found.steps[0] > solve_steady(network).steps[0]
+
+
+def test_stirred_air_is_on_the_way_to_an_answer_and_not_in_it():
+    """Where a first Newton fails the air is stirred less and less; the balance is the box's own."""
+    network = network_of(WARM, COARSE)
+    direct, by_way = solve_steady(network), _stirred(network, SolveOptions())
+    assert by_way.converged
+    np.testing.assert_allclose(by_way.rise, direct.rise, rtol=0, atol=1e-4)
+    # Every stage counts among the steps.
+    assert by_way.steps[0] > direct.steps[0]
+    # And stirred to the full the air is all but one body of it.
+    rises = {
+        share: np.ptp(solve_steady(network.stirred(share)).rise[network.places.air_nodes])
+        for share in (0.0, 0.03, 3.0)
+    }
+    assert np.ptp(direct.rise[network.places.air_nodes]) == pytest.approx(rises[0.0], abs=1e-6)
+    assert rises[3.0] < 0.1 * rises[0.0]
+    assert rises[3.0] < rises[0.03] < rises[0.0]
+
+
+def test_steps_of_a_first_try_count_when_another_way_is_taken():
+    network = network_of(WARM, COARSE)
+    few = solve_steady(network, options=SolveOptions(max_steps=2, by_stirring=False))
+    later = solve_steady(network)
+    both = few.improved(later)
+    assert both.converged
+    assert both.steps[0] == few.steps[0] + later.steps[0]
+    assert later.improved(few).steps[0] == later.steps[0]
 
 
 # Not converged ------------------------------------------------------------------------------
@@ -153,7 +182,7 @@ def test_a_balance_that_rounding_cannot_meet_stalls_and_names_the_node():
 
 def test_heat_that_cannot_leave_names_the_hottest_node():
     document = patched(WARM, {"parts": {"U1": {"power_w": 3000, "theta_jc_top_k_per_w": 50}}})
-    network = network_of(document)
+    network = network_of(document, COARSE)
     solution = solve_steady(network)
     assert solution.outcome == (Outcome.TOO_HOT,)
     assert network.node_labels[solution.worst_node[0]] == "U1 junction"
@@ -168,7 +197,7 @@ def test_absurd_power_ends_without_a_warning(power, kind):
         if kind == "board"
         else {"parts": {"U1": {"power_w": power, "bottom_contact_k_per_w": 1e5}}}
     )
-    solution = solve_steady(network_of(patched(WARM, changes)))
+    solution = solve_steady(network_of(patched(WARM, changes), COARSE))
     assert solution.outcome[0] in (Outcome.CONVERGED, Outcome.TOO_HOT)
 
 

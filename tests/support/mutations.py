@@ -277,7 +277,7 @@ def _misfits(document: Any) -> Iterator[Mutation]:
         ("walls.left.mounting.gap_mm", 1),
         ("walls.top.mounting.contact_w_per_m2k", 100),
         ("walls.bottom.mounting.gap_mm", 1),
-        ("walls.back.mounting.gap_mm", 30),
+        ("walls.back.mounting.contact_w_per_m2k", 30),
         ("measured.first_run.condition", "midnight"),
         ("measured.first_run.parts.U9", {"case": 50}),
         ("conditions.noon.options", {}),
