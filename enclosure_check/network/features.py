@@ -142,7 +142,9 @@ def painted(
     breaks, middles, widths, cells = [], [], [], []
     for axis, edges in zip(grid.axes, grid.edges, strict=True):
         ends = [end for low, size, _ in rectangles for end in (low[axis], low[axis] + size[axis])]
-        along = np.unique(np.concatenate((edges, np.clip(ends, edges[0], edges[-1]))))
+        # Not by `numpy.unique`, which loads masked arrays.
+        clipped = np.clip(ends, edges[0], edges[-1])
+        along = np.array(sorted({*edges.tolist(), *clipped.tolist()}))
         breaks.append(along)
         middles.append(0.5 * (along[1:] + along[:-1]))
         widths.append(np.diff(along))

@@ -12,7 +12,7 @@ import numpy as np
 from enclosure_check.network.links import FloatArray, IntArray
 
 # Unknowns up to which dense factorisation is used; below, importing a sparse library costs more.
-DENSE_UP_TO = 800
+DENSE_UP_TO = 1200
 # A node with more derivatives in its row and column than this belongs to the border.
 BORDER_DEGREE = 120
 

@@ -21,7 +21,7 @@ SAMPLE = "sample_boards/wall_sensor_hub.yaml"
 @pytest.fixture(scope="module")
 def network():
     case = load_document(SAMPLE).cases()[0]
-    return build_network(case, GridOptions(board_cells=600))
+    return build_network(case, GridOptions(board_cells=1000))
 
 
 @pytest.fixture(scope="module")

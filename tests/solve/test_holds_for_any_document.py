@@ -10,7 +10,7 @@ from dataclasses import replace
 
 import numpy as np
 import pytest
-from hypothesis import given, settings
+from hypothesis import Phase, given, settings
 from hypothesis import strategies as st
 from support.cases import (
     COARSE,
@@ -33,7 +33,14 @@ from enclosure_check.network.network import Network
 from enclosure_check.solve.steady import solve_steady
 
 seeds = st.integers(0, 2**32 - 1)
-often = settings(max_examples=6, deadline=None, derandomize=True, database=None)
+# A number is as good as another: there is nothing to make smaller in one that fails.
+often = settings(
+    max_examples=6,
+    deadline=None,
+    derandomize=True,
+    database=None,
+    phases=(Phase.generate,),
+)
 rarely = settings(often, max_examples=3)
 
 # What the solver may leave: 1e-9 of the heat, over no less than a few milliwatts per kelvin.
@@ -254,12 +261,12 @@ def symmetric(**changes) -> Data:
 
 def test_a_symmetric_box_has_a_symmetric_answer():
     # By rays round the board 0.03 K apart, without radiation inside exactly alike.
-    for made, near in ((symmetric(), 0.1), (dark({"walls": {}, **symmetric()}), SOLVED_K)):
+    for made, near in ((symmetric(), 0.05), (dark({"walls": {}, **symmetric()}), SOLVED_K)):
         names = by_name(solved(made))
         for one, other in (("left", "right"), ("front", "back")):
             for face in ("inside", "outside"):
                 assert names[f"{one} {face}"] == pytest.approx(names[f"{other} {face}"], abs=near)
-        assert names["left outside"] != pytest.approx(names["front outside"], abs=0.2)
+        assert names["left outside"] != pytest.approx(names["front outside"], abs=0.05)
         assert names["top outside"] != pytest.approx(names["bottom outside"], abs=0.2)
 
 
