@@ -94,11 +94,29 @@ def test_a_surface_lying_flush():
     assert (made.surface_c, made.surface_emissivity) == (25, 0.9)
     for line in (
         "a surface lying flush leaves 0.1 mm of air (back)",
-        "mounting surface: emissivity 0.9 (back)",
+        "surface behind a wall: emissivity 0.9 (back)",
         "mounting surface is as warm as the surrounding air (back)",
-        "heat crosses the gap to a mounting surface straight, none by its edges (back)",
     ):
         assert line in case.assumptions
+
+
+def test_edges_of_a_gap():
+    case = case_of(mounted(kind="against_surface", gap_mm=4))
+    assert not case.walls["back"].mounting.closed
+    line = "air passes by the edges of the gap to what is behind a wall (back)"
+    assert line in case.assumptions
+    for edges in ("open", "closed"):
+        case = case_of(mounted(kind="against_surface", gap_mm=4, edges=edges))
+        assert case.walls["back"].mounting.closed is (edges == "closed")
+        assert line not in case.assumptions
+
+
+def test_a_neighbour_is_as_warm_as_the_wall_unless_said_otherwise():
+    case = case_of(mounted(kind="neighbour", gap_mm=10))
+    assert case.walls["back"].mounting.surface_c is None
+    assert "neighbouring box is as warm as this one (back)" in case.assumptions
+    case = case_of(mounted(kind="neighbour", gap_mm=10, surface_c=50))
+    assert case.walls["back"].mounting.surface_c == 50
 
 
 def test_no_gap_is_smaller_than_one_lying_flush():

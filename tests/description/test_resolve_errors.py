@@ -88,13 +88,15 @@ def test_no_wall_in_open_air():
 
 _VALUES = {
     "gap_mm": 2,
+    "edges": "closed",
     "contact_w_per_m2k": 300,
     "surface_c": 20,
     "surface_emissivity": 0.5,
 }
 _TAKES = {
     "open_air": (),
-    "against_surface": ("gap_mm", "surface_c", "surface_emissivity"),
+    "against_surface": ("gap_mm", "edges", "surface_c", "surface_emissivity"),
+    "neighbour": ("gap_mm", "edges", "surface_c", "surface_emissivity"),
     "standing_on": ("contact_w_per_m2k", "surface_c"),
     "bolted_to": ("contact_w_per_m2k", "surface_c"),
     "insulated": (),
@@ -119,13 +121,6 @@ def test_bolted_to_needs_its_contact():
     path, message = only(mounted(kind="bolted_to"))
     assert path == "walls.back.mounting.contact_w_per_m2k"
     assert message == "missing; kind bolted_to needs it"
-
-
-def test_gap_too_wide_to_be_computed():
-    assert errors_of(mounted(kind="against_surface", gap_mm=5)) == {}
-    path, message = only(mounted(kind="against_surface", gap_mm=5.1))
-    assert path == "walls.back.mounting.gap_mm"
-    assert message.startswith("given 5.1; gaps over 5 mm are not computed")
 
 
 # Surroundings and modes ---------------------------------------------------------------------

@@ -125,8 +125,8 @@ def test_the_whole_line():
         ("finishes: {f: {emissivity: 2}}\n", "given 2, allowed: a number from 0 to 1"),
         (
             "walls: {top: {mounting: {kind: bolted}}}\n",
-            "given 'bolted' (text), allowed: open_air, against_surface, standing_on, bolted_to or "
-            "insulated; did you mean 'bolted_to'?",
+            "given 'bolted' (text), allowed: open_air, against_surface, neighbour, standing_on, "
+            "bolted_to or insulated; did you mean 'bolted_to'?",
         ),
         (
             "parts: {U1: {place: b, rotation_deg: 45}}\n",

@@ -63,7 +63,7 @@ def test_the_balance_of_the_whole_box_closes(seed):
     assert put_in == pytest.approx(sum(answer._sources.values()), rel=1e-12)
 
 
-@often
+@rarely
 @given(seeds, st.sampled_from([1.01, 1.3, 3.0]))
 def test_more_watts_warm_their_own_part_and_leave_the_box(seed, factor):
     """Elsewhere they may cool: a hotter stream lifts its heat past a layer of air."""
@@ -266,7 +266,7 @@ def test_a_symmetric_box_has_a_symmetric_answer():
         for one, other in (("left", "right"), ("front", "back")):
             for face in ("inside", "outside"):
                 assert names[f"{one} {face}"] == pytest.approx(names[f"{other} {face}"], abs=near)
-        assert names["left outside"] != pytest.approx(names["front outside"], abs=0.05)
+        assert names["left outside"] != pytest.approx(names["front outside"], abs=near)
         assert names["top outside"] != pytest.approx(names["bottom outside"], abs=0.2)
 
 
