@@ -7,7 +7,6 @@ import sys
 from collections.abc import Iterator, Sequence
 from contextlib import contextmanager
 from enum import IntEnum
-from types import ModuleType
 from typing import TYPE_CHECKING, Any, NoReturn
 
 from enclosure_check import __version__
@@ -321,15 +320,10 @@ def _quick_start(whole_process: bool) -> Iterator[None]:
 
     The cyclic garbage collector would mostly look at modules as they load, and again as the
     process ends. Matrices here are small: threads for linear algebra take longer to start than
-    they save. Validation uses no plug-ins of other packages; the module that would look for them
-    reads in much of the standard library first, so an empty one stands in for it.
+    they save. Validation uses no plug-ins of other packages.
     """
     os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")
     os.environ.setdefault("PYDANTIC_DISABLE_PLUGINS", "__all__")
-    if whole_process and os.environ["PYDANTIC_DISABLE_PLUGINS"] == "__all__":
-        loader = ModuleType("pydantic.plugin._loader")
-        loader.get_plugins = tuple  # type: ignore[attr-defined]
-        sys.modules.setdefault(loader.__name__, loader)
     enabled = gc.isenabled()
     gc.disable()
     try:
