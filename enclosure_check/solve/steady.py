@@ -278,6 +278,8 @@ def _newton(network: Network, start: FloatArray, options: SolveOptions) -> Solut
         ended |= better & state.balanced(options)
         stalled |= active & (mu > _LARGEST_MU)
         too_hot |= active & (np.max(np.abs(x), axis=0) > options.hottest_rise_k)
+    # Stuck far beyond any sense is too hot as well: laws there change their minds at every step.
+    too_hot |= stalled & (np.max(np.abs(x), axis=0) > _FARTHEST_GUESS_K)
     rise = network.full_rise(x)
     residual = np.abs(state.residual)
     # Where a temperature is past all bounds, it names the culprit better than the imbalance does.

@@ -17,19 +17,22 @@ from enclosure_check.solve.steady import solve_steady
 COUNT = 60
 # How many are looked through for what they contain.
 SEEN = 150
-# Of 7,000 documents none took more than 9; twice that is a solver that has got worse.
-MOST_STEPS = 18
+# A few Newton steps do, but for those that are come to by way of stirred air: eight stages more.
+MOST_STEPS, MOST_BY_STIRRING, BY_STIRRING_OF_TEN = 18, 90, 2
 
 
 @pytest.mark.parametrize("first", range(0, COUNT, 10))
 def test_every_one_converges_and_balances(first):
+    long = 0
     for seed in range(first, first + 10):
         case = case_of(random_document(random.Random(seed)))
         network = build_network(case)
         solution = solve_steady(network)
         assert solution.converged, (seed, solution.outcome)
-        assert solution.steps[0] <= MOST_STEPS, seed
+        assert solution.steps[0] <= MOST_BY_STIRRING, seed
+        long += int(solution.steps[0] > MOST_STEPS)
         assert_balanced(solved_as(case, network, solution))
+    assert long <= BY_STIRRING_OF_TEN
 
 
 def documents() -> list[Document]:
