@@ -63,6 +63,7 @@ def test_they_reach_everything_they_are_meant_to():
     assert {wall.mounting.kind for each in found for wall in each.walls.values()} == {
         "open_air",
         "against_surface",
+        "neighbour",
         "standing_on",
         "bolted_to",
         "insulated",
