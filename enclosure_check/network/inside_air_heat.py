@@ -24,7 +24,7 @@ from enclosure_check.physics import cavity
 from enclosure_check.physics.air import GRAVITY, air
 from enclosure_check.physics.bodies import cuboid_film
 from enclosure_check.physics.plates import inclined_parts, plate_audit
-from enclosure_check.physics.smooth import soft_abs, soft_sign
+from enclosure_check.physics.smooth import soft_abs
 
 BODY_LAW = 3
 
@@ -150,9 +150,14 @@ class InsideAirHeat:
         signed = difference.mean(axis=1)
         film_temperature = reference + mean - 0.5 * signed
         properties = air(film_temperature, self.pressure_pa)
-        sign = soft_sign(signed, cavity.DIFFERENCE_WIDTH_K)
+        # Films run along the face with the size of the difference, across it with its mean.
         _, upright, level, ra_v, ra_h = inclined_parts(
-            size * sign, properties, s.fall_length, s.area_perimeter_length, s.up_cosine
+            size,
+            properties,
+            s.fall_length,
+            s.area_perimeter_length,
+            s.up_cosine,
+            level_rise=signed,
         )
         stratification = np.maximum(s.over_height @ layer, 0.0) / size
         boost = cavity.stratified_factor(s.stratified * stratification)
@@ -160,7 +165,7 @@ class InsideAirHeat:
         largest = np.maximum(upright, level)
         ratio = (np.minimum(upright, level) / largest) ** 2
         film = largest * (1.0 + ratio**5) ** 0.1
-        warm = 0.5 + 0.5 * sign
+        warm = 0.5 + 0.5 * signed / size
         film = film * (s.warm_factor * warm + s.cold_factor * (1.0 - warm))
         film = film * cavity.corner_factor(film, properties.conductivity, s.edge_a, s.edge_b)
         audit = plate_audit(

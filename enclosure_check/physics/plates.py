@@ -291,6 +291,7 @@ def inclined_parts(
     up_cosine: ArrayLike,
     *,
     laminar: bool = False,
+    level_rise: FloatArray | None = None,
 ) -> tuple[FloatArray, FloatArray, FloatArray, FloatArray, FloatArray]:
     """Film coefficient of a plane face, and the pieces it was blended from.
 
@@ -306,6 +307,10 @@ def inclined_parts(
         As `inclined_plate`.
     laminar : bool
         Use the laminar laws only.
+    level_rise : ndarray, optional
+        Difference for the horizontal law [K], where it is another: in stratified air a face may
+        be as much warmer at its foot as colder at its head, and drive films up and down but
+        stand level in the mean.
 
     Returns
     -------
@@ -320,7 +325,7 @@ def inclined_parts(
     span = np.asarray(area_perimeter_length, dtype=np.float64)
     up = np.asarray(up_cosine, dtype=np.float64)
     ra_v = per_volume * soft_rise(rise) * (np.sqrt(np.maximum(1.0 - up * up, 0.0)) * fall**3)
-    ra_h = per_volume * rise * (up * span**3)
+    ra_h = per_volume * (rise if level_rise is None else level_rise) * (up * span**3)
     unstable, stable = np.maximum(ra_h, 0.0), np.maximum(-ra_h, 0.0)
     if laminar:
         nu_v, nu_up = churchill_chu_laminar(ra_v, pr), hot_side_up_laminar(unstable)

@@ -13,7 +13,7 @@ from enclosure_check.physics.air import air, pressure_at_altitude
 from enclosure_check.physics.bodies import cuboid_film, cuboid_gravity_function_tilted
 from enclosure_check.physics.box import box_film, box_geometry
 from enclosure_check.physics.plates import fall_length, inclined_parts, inclined_plate
-from enclosure_check.physics.smooth import soft_abs, soft_sign
+from enclosure_check.physics.smooth import soft_abs
 
 SIGMA = 5.670374419e-8
 WALLS = {
@@ -218,9 +218,9 @@ class Surfaces:
         sampled = [self.air_at(low + (high - low) * (k + 0.5) / 6) for k in range(6)]
         signed = float(np.mean([mean - layer for layer in sampled]))
         size = float(np.mean([soft_abs(mean - layer, 0.01) for layer in sampled]))
-        sign = float(soft_sign(signed, 0.01))
         warm, cold = law.get("kept", (1.0, 1.0))
-        kept = warm * (0.5 + 0.5 * sign) + cold * (0.5 - 0.5 * sign)
+        lean = signed / size
+        kept = warm * (0.5 + 0.5 * lean) + cold * (0.5 - 0.5 * lean)
         film_k = self.ambient_k + mean - signed / 2
         if "body" in law:
             return kept * float(
@@ -228,7 +228,8 @@ class Surfaces:
             )
         properties = air(film_k, self.pressure)
         shape = law["fall"], law["span"], law["cosine"]
-        _, upright, level, _, _ = inclined_parts(np.array(size * sign), properties, *shape)
+        upright = inclined_parts(np.array(size), properties, *shape)[1]
+        level = inclined_parts(np.array(signed), properties, *shape)[2]
         warming = max(self.air_at(high) - self.air_at(low), 0.0) / size
         upright = upright * cavity.stratified_factor(law.get("stratified", 0.0) * warming)
         film = (float(upright) ** 10 + float(level) ** 10) ** 0.1 * kept
