@@ -26,6 +26,9 @@ def resolve(document: Document, condition: str, option: str | None = None) -> Ca
     remarks = Remarks()
     if document.mode is not None and document.mode not in document.modes:
         remarks.unknown(("mode",), "mode", document.mode, list(document.modes))
+    for pattern, tolerance in document.tolerances.items():
+        if (tolerance.pct is None) == (tolerance.plus_minus is None):
+            remarks.error(("tolerances", pattern), "needs exactly one of pct and plus_minus")
     rows = Rows(document, remarks)
     walls = resolve_walls(document, rows, remarks)
     surroundings = resolve_surroundings(document, remarks)

@@ -261,3 +261,12 @@ def test_errors_carry_paths_as_written():
     with pytest.raises(FieldErrors) as caught:
         case_of(with_part(side="top"))
     assert [problem.path for problem in caught.value.problems] == [("parts", "U1", "side")]
+
+
+@pytest.mark.parametrize("given", [{}, {"pct": 5, "plus_minus": 1}])
+def test_a_tolerance_is_in_percent_or_in_its_own_unit(given):
+    path, message = only(box(tolerances={"surroundings.air_c": given}))
+    assert path == "tolerances.surroundings.air_c"
+    assert message == "needs exactly one of pct and plus_minus"
+    for one in ({"pct": 5}, {"plus_minus": 1}):
+        assert errors_of(box(tolerances={"surroundings.air_c": one})) == {}
