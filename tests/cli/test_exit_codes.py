@@ -5,8 +5,10 @@ from dataclasses import replace
 import pytest
 from support.reports import SMALL, report_of, write_document
 
-from enclosure_check import __version__, cli
-from enclosure_check.cli import ExitCode, exit_code, main
+from enclosure_check import __version__
+from enclosure_check.cli import main
+from enclosure_check.cli.check_command import FORMATS
+from enclosure_check.cli.codes import ExitCode, exit_code
 
 RUNAWAY = {**SMALL, "parts": {"X1": {**SMALL["parts"]["X1"], "power_doubling_k": 2}}}
 
@@ -166,4 +168,4 @@ def test_main_leaves_the_garbage_collector_as_it_was(tmp_path):
 def test_formats_are_those_of_the_writers():
     from enclosure_check.report.writers import WRITERS
 
-    assert tuple(WRITERS) == cli.FORMATS
+    assert tuple(WRITERS) == FORMATS

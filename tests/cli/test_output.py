@@ -9,8 +9,7 @@ from pathlib import Path
 import pytest
 from support.reports import SMALL, write_document
 
-from enclosure_check import cli
-from enclosure_check.cli import main
+from enclosure_check.cli import main, output
 
 from .conftest import COMMAND, environment
 
@@ -91,7 +90,7 @@ def test_the_old_file_survives_a_failure_half_way(tmp_path, monkeypatch, capsys,
     def fail(*_):
         raise OSError(28, "No space left on device")
 
-    monkeypatch.setattr(cli.os, step, fail)
+    monkeypatch.setattr(output.os, step, fail)
     assert main(["check", str(document), "--output", str(out)]) == 2
     assert out.read_text() == "old"
     assert names(tmp_path) == {"box.yaml", "report.txt"}
@@ -107,18 +106,18 @@ def test_interrupted_while_writing_leaves_nothing_behind(tmp_path, monkeypatch):
     def interrupt(*_):
         raise KeyboardInterrupt
 
-    monkeypatch.setattr(cli.os, "replace", interrupt)
+    monkeypatch.setattr(output.os, "replace", interrupt)
     assert main(["check", str(document), "--output", str(out)]) == 130
     assert names(tmp_path) == {"box.yaml"}
 
 
 @pytest.mark.parametrize(
-    "output", [".", "no/such/folder/report.txt", "a\0b", "x" * 300, "", "\x1b[31m/report.txt"]
+    "path", [".", "no/such/folder/report.txt", "a\0b", "x" * 300, "", "\x1b[31m/report.txt"]
 )
-def test_output_that_cannot_be_written(tmp_path, monkeypatch, capsys, output):
+def test_output_that_cannot_be_written(tmp_path, monkeypatch, capsys, path):
     write_document(tmp_path)
     monkeypatch.chdir(tmp_path)
-    assert main(["check", "box.yaml", "--output", output]) == 2
+    assert main(["check", "box.yaml", "--output", path]) == 2
     captured = capsys.readouterr()
     assert captured.out == ""
     assert "cannot be written: " in captured.err
@@ -131,8 +130,8 @@ def test_the_document_is_never_overwritten(tmp_path, capsys):
     document, link = write_document(tmp_path), tmp_path / "link"
     link.symlink_to(document)
     before = document.read_bytes()
-    for output in (document, link):
-        assert main(["check", str(document), "--output", str(output)]) == 2
+    for out in (document, link):
+        assert main(["check", str(document), "--output", str(out)]) == 2
         assert "not overwritten" in capsys.readouterr().err
     assert document.read_bytes() == before
 

@@ -6,7 +6,8 @@ import shlex
 import pytest
 
 from enclosure_check.check import check
-from enclosure_check.cli import ExitCode, main
+from enclosure_check.cli import main
+from enclosure_check.cli.codes import ExitCode
 from enclosure_check.description.load import load_document
 from enclosure_check.findings.results import CAUTION
 

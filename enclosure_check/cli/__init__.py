@@ -1,0 +1,64 @@
+"""The command line: arguments in, exit code out; nothing outside this room prints."""
+
+import gc
+import os
+from collections.abc import Iterator, Sequence
+from contextlib import contextmanager
+
+from enclosure_check.cli.codes import ExitCode
+from enclosure_check.cli.output import PROGRAM, CannotWriteError, say
+
+
+def main(argv: Sequence[str] | None = None) -> int:
+    """Run one command.
+
+    Parameters
+    ----------
+    argv
+        Arguments without the program's name; those of the process when left out.
+
+    Returns
+    -------
+    int
+        An `ExitCode`.
+    """
+    try:
+        with _quick_start(whole_process=argv is None):
+            from enclosure_check.cli.arguments import parser
+
+            arguments = parser().parse_args(argv)
+            return int(arguments.run(arguments))
+    except SystemExit as ended:  # argparse, after --help, --version or wrong usage
+        return ended.code if isinstance(ended.code, int) else int(ExitCode.BAD_INPUT)
+    except CannotWriteError as error:
+        say(f"{PROGRAM}: {error}")
+        return int(ExitCode.BAD_INPUT)
+    except KeyboardInterrupt:
+        return int(ExitCode.INTERRUPTED)
+    except Exception:
+        import traceback
+
+        traceback.print_exc()
+        say(f"{PROGRAM}: internal error, no result; the lines above say where")
+        return int(ExitCode.INTERNAL_ERROR)
+
+
+@contextmanager
+def _quick_start(whole_process: bool) -> Iterator[None]:
+    """Spare what a short run has no use for.
+
+    The cyclic garbage collector would mostly look at modules as they load, and again as the
+    process ends. Matrices here are small: threads for linear algebra take longer to start than
+    they save. Validation uses no plug-ins of other packages.
+    """
+    os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")
+    os.environ.setdefault("PYDANTIC_DISABLE_PLUGINS", "__all__")
+    enabled = gc.isenabled()
+    gc.disable()
+    try:
+        yield
+    finally:
+        if whole_process:
+            gc.freeze()
+        if enabled:
+            gc.enable()

@@ -1,0 +1,53 @@
+"""The parser of the command line; each command adds its own arguments."""
+
+import argparse
+from typing import Any, NoReturn
+
+from enclosure_check import __version__
+from enclosure_check.cli import check_command, schema_command
+from enclosure_check.cli.codes import CODES
+from enclosure_check.cli.output import PROGRAM, printable
+
+_EXAMPLES = """\
+examples:
+  enclosure-check check box.yaml
+  enclosure-check check box.yaml --condition noon_sun --condition cold_soak
+  enclosure-check check box.yaml --option white_finish --strict
+  enclosure-check check box.yaml --format json --output box.report.json
+  enclosure-check schema document > enclosure.schema.json
+"""
+
+# Each has `add(commands)`, which adds its parser and sets `run`, a function of its arguments.
+COMMANDS = (check_command, schema_command)
+
+
+class Parser(argparse.ArgumentParser):
+    """A parser whose options are never abbreviated and whose messages are printable."""
+
+    def __init__(self, **settings: Any) -> None:
+        super().__init__(
+            allow_abbrev=False,
+            formatter_class=argparse.RawDescriptionHelpFormatter,
+            **settings,
+        )
+
+    def error(self, message: str) -> NoReturn:
+        """End with exit code 2 and a message that is safe to print."""
+        super().error(printable(message))
+
+
+def parser() -> Parser:
+    """Give the parser of the whole command line."""
+    whole = Parser(
+        prog=PROGRAM,
+        description="Checks the passive cooling of an electronics enclosure described in YAML:\n"
+        "temperatures of walls, air and parts, with a margin against every limit.",
+        epilog=f"{_EXAMPLES}\n{CODES}",
+    )
+    whole.add_argument("--version", action="version", version=f"{PROGRAM} {__version__}")
+    commands = whole.add_subparsers(
+        prog=PROGRAM, title="commands", metavar="COMMAND", required=True
+    )
+    for command in COMMANDS:
+        command.add(commands)
+    return whole

@@ -1,0 +1,35 @@
+"""The command ``schema``: JSON Schemas for editors and other programs."""
+
+import argparse
+from typing import Any
+
+from enclosure_check.cli.codes import ExitCode
+from enclosure_check.cli.output import print_result
+
+
+def add(commands: Any) -> None:
+    """Add the command's parser."""
+    schema = commands.add_parser(
+        "schema",
+        help="print a JSON Schema",
+        description="Prints the JSON Schema (draft 2020-12) of the document, for editors, or of\n"
+        "the JSON report.",
+    )
+    schema.set_defaults(run=run)
+    schema.add_argument("of", choices=("document", "report"), help="which one")
+
+
+def run(arguments: argparse.Namespace) -> ExitCode:
+    """Print a schema."""
+    import json
+
+    from enclosure_check.report.schema import document_schema, report_schema
+
+    if arguments.of == "report":
+        schema = report_schema()
+    else:
+        from enclosure_check.description.document import Document
+
+        schema = document_schema(Document.model_json_schema())
+    print_result(json.dumps(schema, indent=2) + "\n")
+    return ExitCode.PASS
