@@ -28,7 +28,8 @@ _HOPELESS_DEPTH = 200
 Mark = tuple[int, int]
 Scalar = str | int | float | bool | None
 
-_NUMBER = re.compile(r"[-+]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][-+]?[0-9]+)?\Z")
+# Each text can match in one way only, so that a megabyte of digits is refused at once.
+_NUMBER = re.compile(r"[-+]?(?:[0-9]+(?:\.[0-9]*)?|\.[0-9]+)(?:[eE][-+]?[0-9]+)?\Z")
 _INTEGER = re.compile(r"[-+]?[0-9]{1,15}\Z")
 _NOT_FINITE = re.compile(r"[-+]?\.(?:inf|Inf|INF)\Z|\.(?:nan|NaN|NAN)\Z")
 _LINE_BREAK = re.compile(r"\r\n|\r|\n")
