@@ -1,11 +1,10 @@
 """A case: one document under one condition, every default filled in, still in mm and Celsius."""
 
-from dataclasses import dataclass, field
-
 from enclosure_check.description.base import WallName
 from enclosure_check.description.box import MountingKind
 from enclosure_check.description.frames import Vector
 from enclosure_check.description.part import LimitKind
+from enclosure_check.records import dataclass, field
 
 
 @dataclass(frozen=True)

@@ -6,9 +6,8 @@ looked at against its normal. Seen so, *up* is z on upright faces and y (the rea
 ones, and *right* follows from it.
 """
 
-from dataclasses import dataclass
-
 from enclosure_check.description.base import WallName
+from enclosure_check.records import dataclass
 
 Vector = tuple[float, float, float]
 

@@ -2,7 +2,6 @@
 
 import hashlib
 from collections.abc import Iterator, Mapping, Sequence
-from dataclasses import dataclass, field
 from itertools import chain, islice
 
 from enclosure_check.description.case import Case
@@ -26,6 +25,7 @@ from enclosure_check.description.yaml_nodes import (
     locate,
     read_yaml,
 )
+from enclosure_check.records import dataclass, field
 
 MAX_COMBINATIONS = 200
 _LONGEST_NAME = 80

@@ -1,8 +1,9 @@
 """What can be wrong with a document: problems with their position, and how they are worded."""
 
 from collections.abc import Iterable
-from dataclasses import dataclass
 from typing import NamedTuple
+
+from enclosure_check.records import dataclass
 
 LONGEST_QUOTE = 60
 # Most names compared when looking for the nearest spelling: keeps a huge document quick.

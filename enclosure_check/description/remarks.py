@@ -1,9 +1,8 @@
 """Where the resolving steps put what they find: errors, warnings and assumptions."""
 
-from dataclasses import dataclass, field
-
 from enclosure_check.description.case import Note
 from enclosure_check.description.problems import FieldErrors, FieldProblem, nearest
+from enclosure_check.records import dataclass, field
 
 Path = tuple[str | int, ...]
 

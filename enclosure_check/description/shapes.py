@@ -2,7 +2,6 @@
 
 import types
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass, field
 from typing import Annotated, Any, Literal, Union, get_args, get_origin
 
 from pydantic import BaseModel
@@ -10,6 +9,7 @@ from pydantic.fields import FieldInfo
 
 from enclosure_check.description.document import Document
 from enclosure_check.description.problems import Path
+from enclosure_check.records import dataclass, field
 
 
 @dataclass(frozen=True)

@@ -8,13 +8,13 @@ refused here; everything wrong with a file is collected before it is raised. Onl
 
 import re
 from collections.abc import Iterator
-from dataclasses import dataclass, field
 from itertools import islice
 from typing import Any
 
 import yaml
 
 from enclosure_check.description.problems import DocumentError, Path, Problem, dotted, quoted
+from enclosure_check.records import dataclass, field
 
 MAX_BYTES = 1 << 20
 MAX_DEPTH = 32
@@ -46,7 +46,7 @@ _BYTE_ORDER_MARKS = (
 _LOADER: Any = getattr(yaml, "CSafeLoader", yaml.SafeLoader)
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True)
 class ScalarNode:
     """A single value and where it stands; ``text`` is what was written, without its quotes."""
 
@@ -56,7 +56,7 @@ class ScalarNode:
     text: str
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True)
 class SequenceNode:
     """A list and where it starts."""
 
@@ -65,7 +65,7 @@ class SequenceNode:
     column: int
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True)
 class MappingNode:
     """A mapping: its values, where its keys stand, and where a patch removed some."""
 

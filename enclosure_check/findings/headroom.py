@@ -5,14 +5,13 @@ smallest margin; the rises of the check are the first guess. Where power that gr
 leaves no steady state, the search goes back towards the last one there was.
 """
 
-from dataclasses import dataclass, replace
-
 import numpy as np
 
 from enclosure_check.findings.results import Headroom, PartFinding, WallFinding
 from enclosure_check.findings.solved import Solved
 from enclosure_check.network.links import FloatArray, IntArray
 from enclosure_check.network.network import BoolArray, Network
+from enclosure_check.records import dataclass, replace
 from enclosure_check.solve.nearby import Inverse, solve_nearby
 from enclosure_check.solve.steady import SolveOptions
 

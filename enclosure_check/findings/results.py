@@ -6,10 +6,11 @@ The descriptions make up the JSON Schema of the report.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from typing import Annotated, Literal
 
 from pydantic import Field
+
+from enclosure_check.records import dataclass
 
 Verdict = Literal["pass", "marginal", "fail"]
 VERDICTS: tuple[Verdict, ...] = ("pass", "marginal", "fail")

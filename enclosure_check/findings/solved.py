@@ -1,6 +1,5 @@
 """A case with its network and temperatures, and the few things findings read off it."""
 
-from dataclasses import dataclass
 from functools import cached_property
 
 import numpy as np
@@ -9,6 +8,7 @@ from enclosure_check.description.case import Case
 from enclosure_check.network.links import FloatArray
 from enclosure_check.network.network import Network
 from enclosure_check.network.units import celsius
+from enclosure_check.records import dataclass
 from enclosure_check.solve.nearby import Inverse
 from enclosure_check.solve.steady import Solution
 

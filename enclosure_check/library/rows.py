@@ -5,13 +5,14 @@ validated again at run time: loading is one parse of each file, kept for the lif
 """
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 from functools import cache
 from pathlib import Path
 from types import MappingProxyType
 from typing import Any, Final, Literal, get_args
 
 import yaml
+
+from enclosure_check.records import dataclass
 
 TouchClass = Literal["metal", "glass", "plastic", "wood"]
 Basis = Literal["published", "from memory", "common practice, no source"]
@@ -26,7 +27,7 @@ _FOLDER = Path(__file__).parent
 _LOADER: Any = getattr(yaml, "CSafeLoader", yaml.SafeLoader)
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True)
 class Material:
     """One solid, at about 300 K.
 
@@ -64,7 +65,7 @@ class Material:
     source: str
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True)
 class Finish:
     """One state of a surface, at about 300 K.
 

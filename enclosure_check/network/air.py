@@ -1,6 +1,5 @@
 """Builds the air inside: its nodes along gravity, the films, gaps and streams of every surface."""
 
-from dataclasses import dataclass, field
 from typing import Any
 
 import numpy as np
@@ -17,6 +16,7 @@ from enclosure_check.network.links import FloatArray, IntArray
 from enclosure_check.network.network import PlateNodes
 from enclosure_check.physics.air import air
 from enclosure_check.physics.cavity import plume_decay
+from enclosure_check.records import dataclass, field
 
 # Air nodes along gravity. Enough for the profile that the numerical experiments show; more change
 # their totals by less than 4 %.

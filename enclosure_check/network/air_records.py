@@ -1,8 +1,7 @@
 """What the laws of the inside air need of surfaces and of gaps between them, as flat arrays."""
 
-from dataclasses import dataclass
-
 from enclosure_check.network.links import FloatArray, IntArray
+from enclosure_check.records import dataclass
 
 
 @dataclass(frozen=True, eq=False)

@@ -1,7 +1,6 @@
 """Collects nodes and links while the small builders run, then makes the network of them."""
 
 from collections.abc import Sequence
-from dataclasses import dataclass, field
 from typing import Any
 
 import numpy as np
@@ -19,6 +18,7 @@ from enclosure_check.network.links import (
 )
 from enclosure_check.network.network import Network, Places, Sources
 from enclosure_check.physics.box import BoxGeometry
+from enclosure_check.records import dataclass, field
 
 # Resistances below this, and conductances over its inverse, are far beyond what any part of a
 # check can tell; stated as zero they are taken as this. [K/W]

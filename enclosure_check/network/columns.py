@@ -3,13 +3,12 @@
 Every piece of a face lies in exactly one column, which ends at the face it looks at.
 """
 
-from dataclasses import dataclass
-
 import numpy as np
 
 from enclosure_check.description.frames import Vector
 from enclosure_check.network.grid import PlateGrid
 from enclosure_check.network.links import FloatArray, IntArray
+from enclosure_check.records import dataclass
 
 # Faces nearer than this are taken as so far apart. [m]
 LEAST_GAP = 1e-5

@@ -5,7 +5,6 @@ walls; a can is a surface of its own over parts.
 """
 
 from collections.abc import Sequence
-from dataclasses import dataclass
 from itertools import pairwise
 
 import numpy as np
@@ -28,6 +27,7 @@ from enclosure_check.network.links import FloatArray, LinkLabel
 from enclosure_check.network.site import InsideSurface, Site, footprint
 from enclosure_check.network.units import metres, metres_3
 from enclosure_check.network.walls import edge_cells
+from enclosure_check.records import dataclass
 
 # Least air gap between a part and the can over it; a part as high as its can touches it nowhere
 # well. (common practice, no source) [m]

@@ -1,6 +1,5 @@
 """Free convection of the outer faces of the box to the air around it."""
 
-from dataclasses import dataclass
 from functools import cached_property
 from typing import ClassVar, NamedTuple
 
@@ -13,6 +12,7 @@ from enclosure_check.network.links import (
     Links,
 )
 from enclosure_check.physics.box import BoxGeometry, box_film
+from enclosure_check.records import dataclass
 
 # Step of a differenced derivative. Film laws are smooth over this width (their rounding at zero
 # difference is 100 times wider), and rounding leaves eight digits. [K]

@@ -1,6 +1,5 @@
 """Plates on a grid of cells: geometry, shares of a footprint, and what cells do not resolve."""
 
-from dataclasses import dataclass
 from functools import cached_property, lru_cache
 
 import numpy as np
@@ -8,6 +7,7 @@ import numpy as np
 from enclosure_check.description.frames import Vector
 from enclosure_check.network.links import FloatArray
 from enclosure_check.physics.conduction import plate_source_rise, spreading_resistance
+from enclosure_check.records import dataclass
 
 # Film coefficient of both faces of a plate together for the spreading terms, which have to assume
 # one: still air and radiation, two faces of 10 W/m2K. (common practice, no source)

@@ -1,6 +1,5 @@
 """All convection inside a box as one kind of link: `inside_air_heat` with its derivatives."""
 
-from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import ClassVar
 
@@ -16,6 +15,7 @@ from enclosure_check.network.links import (
 )
 from enclosure_check.network.streams import march, passing
 from enclosure_check.physics.air import air
+from enclosure_check.records import dataclass, replace
 
 # Film coefficient that the first guess takes. [W/m2K]
 NOMINAL_FILM = 5.0

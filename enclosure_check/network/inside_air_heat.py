@@ -7,7 +7,6 @@ node to the next, with the stream of a warm face that rises or of a cold one tha
 neighbouring air nodes mix.
 """
 
-from dataclasses import dataclass
 from functools import cached_property
 from typing import ClassVar
 
@@ -25,6 +24,7 @@ from enclosure_check.physics.air import GRAVITY, air
 from enclosure_check.physics.bodies import cuboid_film
 from enclosure_check.physics.plates import inclined_parts, plate_audit
 from enclosure_check.physics.smooth import soft_abs
+from enclosure_check.records import dataclass
 
 BODY_LAW = 3
 

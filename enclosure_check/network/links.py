@@ -5,7 +5,6 @@ Every kind holds all links of its kind in the network. Temperatures come as rise
 kind, each depending on ``k`` nodes, ``v`` variants computed at once on the trailing axis.
 """
 
-from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import Any, ClassVar, NamedTuple, Protocol, Self
 
@@ -17,6 +16,7 @@ from enclosure_check.physics.radiation import (
     grey_exchange,
     grey_exchange_by_emissivity,
 )
+from enclosure_check.records import dataclass, replace
 
 FloatArray = npt.NDArray[np.float64]
 IntArray = npt.NDArray[np.intp]

@@ -1,6 +1,5 @@
 """The network as arrays, and its heat balance and Jacobian by array operations."""
 
-from dataclasses import dataclass, replace
 from functools import cached_property
 
 import numpy as np
@@ -8,6 +7,7 @@ import numpy.typing as npt
 
 from enclosure_check.network.linear import Factor, dense, factorise
 from enclosure_check.network.links import FloatArray, IntArray, LinkKind, LinkLabel
+from enclosure_check.records import dataclass, replace
 
 BoolArray = npt.NDArray[np.bool_]
 

@@ -4,7 +4,6 @@ The laws are those of gaps inside (see `physics.cavity`): part of the heat goes 
 surface, the rest with the air that rises through the gap, and the edges may be closed.
 """
 
-from dataclasses import dataclass
 from functools import cached_property
 from typing import ClassVar
 
@@ -14,6 +13,7 @@ from enclosure_check.network.films import DIFFERENCE_K
 from enclosure_check.network.links import NOMINAL_RISE_K, FloatArray, IntArray, Links
 from enclosure_check.physics.cavity import gap_exchange
 from enclosure_check.physics.plates import inclined_plate
+from enclosure_check.records import dataclass
 
 
 @dataclass(frozen=True, eq=False)

@@ -4,7 +4,6 @@ Walls and boards are divided into blocks of cells, bodies in the air count whole
 lies on a patch (its cells, the parts standing on it) takes the same irradiation.
 """
 
-from dataclasses import dataclass, field
 from functools import lru_cache
 
 import numpy as np
@@ -13,6 +12,7 @@ from enclosure_check.description.frames import Vector
 from enclosure_check.network.grid import PlateGrid
 from enclosure_check.network.links import FloatArray, IntArray
 from enclosure_check.physics.view_factors import Boxes, Rectangles, exchange_areas
+from enclosure_check.records import dataclass, field
 
 # Blocks along each axis of a wall or board: fewer where it has fewer cells.
 BLOCKS = 2

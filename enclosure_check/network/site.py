@@ -1,7 +1,5 @@
 """What the builders share while a network is being made: the surroundings, air and surfaces."""
 
-from dataclasses import dataclass, field
-
 import numpy as np
 
 from enclosure_check.description.case import Case, PartCase
@@ -16,6 +14,7 @@ from enclosure_check.network.units import kelvin, metres_3
 from enclosure_check.physics.air import air, pressure_at_altitude
 from enclosure_check.physics.plates import fall_length
 from enclosure_check.physics.radiation import sky_temperature_clear
+from enclosure_check.records import dataclass, field
 
 
 @dataclass(frozen=True, eq=False)

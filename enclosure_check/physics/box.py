@@ -7,7 +7,6 @@ isothermal box meets the cuboid law.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from typing import NamedTuple
 
 import numpy as np
@@ -18,6 +17,7 @@ from enclosure_check.physics.air import Air, air, rayleigh_number
 from enclosure_check.physics.bodies import cuboid_gravity_function_tilted, cuboid_nusselt
 from enclosure_check.physics.plates import fall_length, inclined_parts, plate_audit
 from enclosure_check.physics.smooth import RISE_WIDTH_K, soft_rise, soft_sign
+from enclosure_check.records import dataclass
 
 FloatArray = npt.NDArray[np.float64]
 IntArray = npt.NDArray[np.intp]

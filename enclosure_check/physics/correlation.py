@@ -7,7 +7,6 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable
-from dataclasses import dataclass
 from typing import Literal
 
 import numpy as np
@@ -15,6 +14,7 @@ import numpy.typing as npt
 from numpy.typing import ArrayLike
 
 from enclosure_check.physics import bodies, plates
+from enclosure_check.records import dataclass
 
 FloatArray = npt.NDArray[np.float64]
 Law = Callable[[ArrayLike, ArrayLike], FloatArray]

@@ -2,11 +2,11 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 import numpy as np
 import numpy.typing as npt
 from numpy.typing import ArrayLike
+
+from enclosure_check.records import dataclass
 
 FloatArray = npt.NDArray[np.float64]
 IntArray = npt.NDArray[np.intp]

@@ -1,6 +1,6 @@
 """What a writer is told about the place its text goes to."""
 
-from dataclasses import dataclass
+from enclosure_check.records import dataclass
 
 
 @dataclass(frozen=True)

@@ -6,7 +6,6 @@ methods for solving nonlinear simultaneous equations", Mathematics of Computatio
 Variants that do not get there are left to Newton.
 """
 
-from dataclasses import dataclass, replace
 from functools import cached_property
 
 import numpy as np
@@ -14,6 +13,7 @@ import numpy as np
 from enclosure_check.network.linear import DenseFactor, Factor
 from enclosure_check.network.links import FloatArray
 from enclosure_check.network.network import Network
+from enclosure_check.records import dataclass, replace
 from enclosure_check.solve.steady import (
     Solution,
     SolveOptions,

@@ -1,11 +1,10 @@
 """Sensitivities of temperatures by the adjoint: one transposed solve serves every parameter."""
 
-from dataclasses import dataclass
-
 import numpy as np
 
 from enclosure_check.network.links import FloatArray
 from enclosure_check.network.network import Network
+from enclosure_check.records import dataclass
 from enclosure_check.solve.steady import Solution
 
 

@@ -11,7 +11,6 @@ stable state the power is held at the temperatures found, and so on until it doe
 """
 
 from contextlib import suppress
-from dataclasses import dataclass, replace
 from enum import Enum
 
 import numpy as np
@@ -19,6 +18,7 @@ import numpy.typing as npt
 
 from enclosure_check.network.links import FloatArray, IntArray
 from enclosure_check.network.network import Network
+from enclosure_check.records import dataclass, replace
 
 BoolArray = npt.NDArray[np.bool_]
 
