@@ -51,6 +51,7 @@ def check(
         margin_stated=any(case.margin_k is not None for case in cases),
         conditions=tuple(found),
         caution=CAUTION,
+        inputs=document.inputs(option),
     )
 
 

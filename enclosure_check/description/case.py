@@ -4,6 +4,7 @@ from enclosure_check.description.base import WallName
 from enclosure_check.description.box import MountingKind
 from enclosure_check.description.frames import Vector
 from enclosure_check.description.part import LimitKind
+from enclosure_check.description.positions import Positions
 from enclosure_check.records import dataclass, field
 
 
@@ -282,6 +283,8 @@ class Case:
     readings: tuple[ReadingCase, ...] = ()
     warnings: tuple[Note, ...] = ()
     assumptions: tuple[str, ...] = field(default=())
+    positions: Positions = field(default=Positions(), compare=False)
+    """Where its parts and walls stand in the document."""
 
 
 def _add(a: Vector, b: Vector) -> Vector:

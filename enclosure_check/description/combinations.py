@@ -1,11 +1,13 @@
 """Check every combination of options and conditions, and tell which patch a problem needs."""
 
 from collections.abc import Iterable, Iterator, Mapping, Sequence
+from dataclasses import replace
 from itertools import islice
 
 from enclosure_check.description.case import Case
 from enclosure_check.description.document import Document
 from enclosure_check.description.merge import merge_patch
+from enclosure_check.description.positions import positions
 from enclosure_check.description.problems import (
     DocumentError,
     FieldErrors,
@@ -96,7 +98,7 @@ class Checked:
         except FieldErrors as error:
             problems += error.problems
         else:
-            self.cases[combination] = case
+            self.cases[combination] = replace(case, positions=positions(node, case.walls))
         for each in problems:
             self._note(self._located(each, node), True, combination)
 

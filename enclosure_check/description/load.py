@@ -6,6 +6,7 @@ from itertools import chain, islice
 
 from enclosure_check.description.case import Case
 from enclosure_check.description.combinations import BASE, MAX_PROBLEMS, Checked, Combination
+from enclosure_check.description.inputs import Input, document_inputs
 from enclosure_check.description.problems import (
     DocumentError,
     Path,
@@ -51,6 +52,10 @@ class LoadedDocument:
     def option_names(self) -> tuple[str, ...]:
         """Give the names of the options, in their order."""
         return tuple(_named(self.node, "options"))
+
+    def inputs(self, option: str | None = None) -> dict[str, Input]:
+        """Give every value stated, with an option applied, by its dotted path."""
+        return document_inputs(self.node, option)
 
     def cases(
         self, *, option: str | None = None, conditions: Sequence[str] | None = None

@@ -1,5 +1,6 @@
 """Where the heat leaves: wall by wall, the balance of the whole box, and the inside air."""
 
+from enclosure_check.findings.position import position_of
 from enclosure_check.findings.results import (
     AirFinding,
     AirLayer,
@@ -38,6 +39,7 @@ def _wall(solved: Solved, name: str) -> WallFinding:
         touch_max_c=wall.touch_max_c,
         touch_margin_k=touch,
         touch_verdict=None if touch is None else judge(touch, solved.case.margin_k or 0.0),
+        position=position_of(solved.case.positions.walls, name),
     )
 
 

@@ -3,6 +3,7 @@
 from typing import Literal
 
 from enclosure_check.description.case import LimitCase, PartCase, ReadingCase
+from enclosure_check.findings.position import position_of
 from enclosure_check.findings.results import (
     BoardFinding,
     PartFinding,
@@ -41,6 +42,7 @@ def _finding(solved: Solved, part: PartCase, limit: LimitCase, side: str) -> Par
         margin_k=margin,
         verdict=judge(margin, solved.case.margin_k or 0.0),
         local_air_c=float(solved.temperature_c[solved.network.places.parts[part.name].air]),
+        position=position_of(solved.case.positions.parts, part.name),
     )
 
 

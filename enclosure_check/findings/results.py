@@ -6,6 +6,7 @@ The descriptions make up the JSON Schema of the report.
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from typing import Annotated, Literal
 
 from pydantic import Field
@@ -18,6 +19,14 @@ VERDICTS: tuple[Verdict, ...] = ("pass", "marginal", "fail")
 
 def _about(text: str) -> object:
     return Field(description=text)
+
+
+@dataclass(frozen=True)
+class Position:
+    """Where something stands in the document; both count from 1."""
+
+    line: Annotated[int, _about("Line.")]
+    column: Annotated[int, _about("Column, in characters.")]
 
 
 @dataclass(frozen=True)
@@ -38,6 +47,9 @@ class PartFinding:
     margin_k: Annotated[float, _about("Distance to the limit, negative beyond it. [K]")]
     verdict: Annotated[Verdict, _about("Whether it holds.")]
     local_air_c: Annotated[float, _about("Air around the part. [C]")]
+    position: Annotated[
+        Position | None, _about("Where the part stands in the document; null if unknown.")
+    ]
 
 
 @dataclass(frozen=True)
@@ -116,6 +128,9 @@ class WallFinding:
     touch_max_c: Annotated[float | None, _about("Highest temperature allowed for touch. [C]")]
     touch_margin_k: Annotated[float | None, _about("Distance to it. [K]")]
     touch_verdict: Annotated[Verdict | None, _about("Whether it holds.")]
+    position: Annotated[
+        Position | None, _about("Where the wall, or what it follows, stands; null if unknown.")
+    ]
 
 
 @dataclass(frozen=True)
@@ -263,6 +278,13 @@ class Report:
     margin_stated: Annotated[bool, _about("Whether the document states a margin wanted.")]
     conditions: Annotated[tuple[ConditionFinding, ...], _about("In the document's order.")]
     caution: Annotated[str, _about("What this check is not.")]
+    inputs: Annotated[
+        Mapping[str, float | bool | str | None],
+        _about(
+            "Every value the document states, the option applied, by its dotted path: what a "
+            "later check compares with."
+        ),
+    ]
 
 
 CAUTION = (

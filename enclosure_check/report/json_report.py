@@ -1,5 +1,6 @@
 """The report as JSON, for other programs."""
 
+from collections.abc import Mapping
 from dataclasses import fields, is_dataclass
 from typing import Any
 
@@ -24,6 +25,8 @@ def plain(value: Any) -> Any:
     """Give records as dictionaries and tuples as lists, all the way down."""
     if is_dataclass(value):
         return {field.name: plain(getattr(value, field.name)) for field in fields(value)}
+    if isinstance(value, Mapping):
+        return {key: plain(item) for key, item in value.items()}
     if isinstance(value, tuple):
         return [plain(item) for item in value]
     return value

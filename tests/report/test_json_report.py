@@ -96,6 +96,8 @@ def test_keys_are_those_of_the_records(report):
             assert list(data) == [field.name for field in fields(record)]
             for name, value in data.items():
                 compare(getattr(record, name), value)
+        elif isinstance(record, dict):
+            assert list(record.items()) == list(data.items())
         elif isinstance(record, tuple):
             assert len(record) == len(data)
             for one, other in zip(record, data, strict=True):
@@ -107,7 +109,7 @@ def test_keys_are_those_of_the_records(report):
     compare(report, json.loads(written(report)))
 
 
-COUNTS = ("format", "unknowns", "iterations", "fallbacks")
+COUNTS = ("format", "unknowns", "iterations", "fallbacks", "line", "column")
 
 
 def test_what_is_measured_is_a_float_and_what_is_counted_an_integer(report):
@@ -148,3 +150,19 @@ def test_a_number_that_is_not_finite_is_refused(tmp_path, value):
 
 def test_tuples_become_lists():
     assert plain(((1, "a"), None)) == [[1, "a"], None]
+
+
+def test_inputs_are_the_values_of_the_document(tmp_path):
+    data = json.loads(written(report_of(tmp_path)))
+    assert data["inputs"]["box.width_mm"] == 100.0
+    assert data["inputs"]["parts.X1.limits.case.max_c"] == 110.0
+
+
+def test_parts_and_walls_have_their_place(tmp_path):
+    data = json.loads(written(report_of(tmp_path)))
+    lines = (tmp_path / "box.yaml").read_text("utf-8").splitlines()
+    (part,) = data["conditions"][0]["parts"]
+    assert lines[part["position"]["line"] - 1] == "  X1:"
+    assert part["position"]["column"] == 3
+    for wall in data["conditions"][0]["walls"]:
+        assert lines[wall["position"]["line"] - 1] == "  wall:"

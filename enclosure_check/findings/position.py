@@ -1,0 +1,11 @@
+"""From the loader's marks to the positions in findings."""
+
+from collections.abc import Mapping
+
+from enclosure_check.findings.results import Position
+
+
+def position_of(marks: Mapping[str, tuple[int, int]], name: str) -> Position | None:
+    """Give where something stands, None for what has no place of its own."""
+    mark = marks.get(name)
+    return None if mark is None else Position(*mark)
