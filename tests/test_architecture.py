@@ -37,8 +37,8 @@ TOP = {
 # Slow to import, and needed by few: inside a function or not at all.
 LAZY = ("scipy", "rich", "matplotlib", "pandas")
 MOST_LINES = 450
-# Programs that write a page of the documentation; they print when run, as their last line.
-PAGES = ("description/page.py", "library/page.py")
+# Programs that write a page of the documentation or a table; they print when run, as their last line.
+PAGES = ("description/page.py", "description/quick_page.py", "library/page.py")
 
 
 class Import(NamedTuple):

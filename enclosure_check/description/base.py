@@ -1,13 +1,9 @@
 """What every model of the document shares: strictness, names and bounded numbers."""
 
-from typing import Annotated, Any, ClassVar, Literal
+from typing import Annotated, Any, ClassVar
 
 from pydantic import BaseModel, BeforeValidator, ConfigDict, Field, StringConstraints
 from pydantic_core import PydanticCustomError
-
-WallName = Literal["left", "right", "front", "back", "bottom", "top"]
-WALL_NAMES: tuple[WallName, ...] = ("left", "right", "front", "back", "bottom", "top")
-AIR = "air"
 
 Name = Annotated[str, StringConstraints(min_length=1, max_length=80)]
 Text = Annotated[str, StringConstraints(max_length=2000)]

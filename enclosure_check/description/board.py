@@ -15,8 +15,8 @@ from enclosure_check.description.base import (
     Strict,
     Text,
     ThermalResistanceKPerW,
-    WallName,
 )
+from enclosure_check.description.names import WallName
 
 
 class CopperLayer(Strict):

@@ -13,10 +13,7 @@ from enclosure_check.description.base import (
     Strict,
     TemperatureC,
 )
-
-MountingKind = Literal[
-    "open_air", "against_surface", "neighbour", "standing_on", "bolted_to", "insulated"
-]
+from enclosure_check.description.names import MountingKind
 
 
 class Tilt(Strict):

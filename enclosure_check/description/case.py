@@ -1,9 +1,7 @@
 """A case: one document under one condition, every default filled in, still in mm and Celsius."""
 
-from enclosure_check.description.base import WallName
-from enclosure_check.description.box import MountingKind
 from enclosure_check.description.frames import Vector
-from enclosure_check.description.part import LimitKind
+from enclosure_check.description.names import LimitKind, MountingKind, WallName
 from enclosure_check.description.positions import Positions
 from enclosure_check.records import dataclass, field
 

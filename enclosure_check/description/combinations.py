@@ -1,11 +1,13 @@
 """Check every combination of options and conditions, and tell which patch a problem needs."""
 
+from __future__ import annotations
+
 from collections.abc import Iterable, Iterator, Mapping, Sequence
 from dataclasses import replace
 from itertools import islice
+from typing import TYPE_CHECKING
 
 from enclosure_check.description.case import Case
-from enclosure_check.description.document import Document
 from enclosure_check.description.merge import merge_patch
 from enclosure_check.description.positions import positions
 from enclosure_check.description.problems import (
@@ -17,10 +19,13 @@ from enclosure_check.description.problems import (
     nearest,
     quoted,
 )
+from enclosure_check.description.quick import validated
 from enclosure_check.description.resolve import resolve
 from enclosure_check.description.tolerances import like_paths, matches_number
-from enclosure_check.description.validate import validate
 from enclosure_check.description.yaml_nodes import MappingNode, locate
+
+if TYPE_CHECKING:
+    from enclosure_check.description.document import Document
 
 # Checking further combinations ends once this many different problems are found.
 MAX_PROBLEMS = 500
@@ -80,7 +85,7 @@ class Checked:
         if condition is not None:
             node = merge_patch(node, self.conditions[condition])
         try:
-            document = validate(node, self.file)
+            document = validated(node, self.file)
         except DocumentError as error:
             for problem in error.problems:
                 self._note(problem, False, combination)

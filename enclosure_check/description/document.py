@@ -12,11 +12,11 @@ from enclosure_check.description.base import (
     Strict,
     TemperatureC,
     Text,
-    WallName,
 )
 from enclosure_check.description.board import Board, BoardDefaults
 from enclosure_check.description.box import Box, Wall, WallDefaults
-from enclosure_check.description.part import LimitKind, Part, PartType, Percent
+from enclosure_check.description.names import LimitKind, WallName
+from enclosure_check.description.part import Part, PartType, Percent
 from enclosure_check.description.surroundings import Surroundings
 
 

@@ -6,7 +6,7 @@ looked at against its normal. Seen so, *up* is z on upright faces and y (the rea
 ones, and *right* follows from it.
 """
 
-from enclosure_check.description.base import WallName
+from enclosure_check.description.names import WallName
 from enclosure_check.records import dataclass
 
 Vector = tuple[float, float, float]

@@ -7,6 +7,7 @@ from itertools import chain, islice
 from enclosure_check.description.case import Case
 from enclosure_check.description.combinations import BASE, MAX_PROBLEMS, Checked, Combination
 from enclosure_check.description.inputs import Input, document_inputs
+from enclosure_check.description.merge import null_paths
 from enclosure_check.description.problems import (
     DocumentError,
     Path,
@@ -15,8 +16,7 @@ from enclosure_check.description.problems import (
     nearest,
     quoted,
 )
-from enclosure_check.description.shapes import is_mapping_by_name
-from enclosure_check.description.validate import null_paths
+from enclosure_check.description.quick import is_mapping_by_name
 from enclosure_check.description.yaml_nodes import (
     MAX_BYTES,
     MappingNode,

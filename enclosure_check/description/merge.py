@@ -1,8 +1,16 @@
 """JSON merge patches (RFC 7396) on nodes, so that every value keeps its place in the file."""
 
+from collections.abc import Iterator
 from typing import overload
 
-from enclosure_check.description.yaml_nodes import MappingNode, Node, is_null
+from enclosure_check.description.problems import Path
+from enclosure_check.description.yaml_nodes import (
+    MappingNode,
+    Node,
+    ScalarNode,
+    SequenceNode,
+    is_null,
+)
 
 
 @overload
@@ -46,3 +54,18 @@ def merge_patch(target: Node | None, patch: Node) -> Node:
             marks[key] = patch.marks[key]
         removed.pop(key, None)
     return MappingNode(entries, marks, line, column, removed)
+
+
+def null_paths(node: Node, path: Path = ()) -> Iterator[Path]:
+    """Give the paths of the keys that are null or were removed by a patch."""
+    if isinstance(node, MappingNode):
+        for key in node.removed:
+            yield (*path, key)
+        for key, value in node.entries.items():
+            if is_null(value):
+                yield (*path, key)
+            elif not isinstance(value, ScalarNode):
+                yield from null_paths(value, (*path, key))
+    elif isinstance(node, SequenceNode):
+        for index, item in enumerate(node.items):
+            yield from null_paths(item, (*path, index))

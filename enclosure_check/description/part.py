@@ -16,11 +16,9 @@ from enclosure_check.description.base import (
     TemperatureC,
     Text,
     ThermalResistanceKPerW,
-    WallName,
 )
+from enclosure_check.description.names import LimitKind, WallName
 
-LimitKind = Literal["junction", "case", "board", "air"]
-LIMIT_KINDS: tuple[LimitKind, ...] = ("junction", "case", "board", "air")
 Corner = Literal["lower_left", "lower_right", "upper_left", "upper_right"]
 Percent = Annotated[float, Field(ge=0, le=1000)]
 

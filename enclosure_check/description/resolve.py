@@ -1,7 +1,10 @@
 """Fill in a validated document to a case: defaults, types, places, and checks across fields."""
 
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
 from enclosure_check.description.case import Case, ReadingCase
-from enclosure_check.description.document import Document
 from enclosure_check.description.remarks import Remarks
 from enclosure_check.description.resolve_board import resolve_boards
 from enclosure_check.description.resolve_box import (
@@ -13,6 +16,9 @@ from enclosure_check.description.resolve_box import (
 )
 from enclosure_check.description.resolve_features import check_covered
 from enclosure_check.description.resolve_part import PartResolver
+
+if TYPE_CHECKING:
+    from enclosure_check.description.document import Document
 
 
 def resolve(document: Document, condition: str, option: str | None = None) -> Case:

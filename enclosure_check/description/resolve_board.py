@@ -1,15 +1,20 @@
 """Fill in the boards: their place in the box, laminate, copper and other power."""
 
-from collections.abc import Iterable, Mapping
+from __future__ import annotations
 
-from enclosure_check.description.base import WallName
-from enclosure_check.description.board import Board
+from collections.abc import Iterable, Mapping
+from typing import TYPE_CHECKING
+
 from enclosure_check.description.case import BoardCase
-from enclosure_check.description.document import Document
 from enclosure_check.description.frames import AXIS, Vector, wall_pair
+from enclosure_check.description.names import WallName
 from enclosure_check.description.remarks import ROUNDING_MM, Path, Remarks
 from enclosure_check.description.resolve_box import Rows, reserved_names
 from enclosure_check.description.resolve_features import resolve_copper, with_features
+
+if TYPE_CHECKING:
+    from enclosure_check.description.board import Board
+    from enclosure_check.description.document import Document
 
 BOARD_THICKNESS_MM = 1.6
 LAMINATE = "fr4"

@@ -1,10 +1,11 @@
 """Fill in the box: walls, what they are made of, how they are mounted, and the surroundings."""
 
+from __future__ import annotations
+
 import math
 from collections.abc import Mapping
+from typing import TYPE_CHECKING
 
-from enclosure_check.description.base import AIR, WALL_NAMES, WallName
-from enclosure_check.description.box import Mounting, Tilt, Wall
 from enclosure_check.description.case import (
     CableCase,
     Finish,
@@ -13,10 +14,15 @@ from enclosure_check.description.case import (
     SurroundingsCase,
     WallCase,
 )
-from enclosure_check.description.document import Document
 from enclosure_check.description.frames import AXIS, Vector
+from enclosure_check.description.names import AIR, WALL_NAMES, WallName
+from enclosure_check.description.quick import mounting_by_default
 from enclosure_check.description.remarks import Path, Remarks
 from enclosure_check.library.rows import load_finishes, load_materials
+
+if TYPE_CHECKING:
+    from enclosure_check.description.box import Mounting, Tilt, Wall
+    from enclosure_check.description.document import Document
 
 # A surface lying flush is never perfectly so. [mm] (common practice, no source)
 FLUSH_GAP_MM = 0.1
@@ -137,7 +143,7 @@ def _resolve_wall(
     outside = rows.finish(str(outside_name), outside_path) if outside_name else None
     inside = rows.finish(str(inside_name), inside_path) if inside_name else outside
     mounting = _resolve_mounting(
-        name, written.mounting if written is not None else Mounting(), document, remarks
+        name, written.mounting if written is not None else mounting_by_default(), document, remarks
     )
     sun = document.surroundings.sun_w_per_m2.get(name, 0.0)
     if sun > 0 and mounting.kind != "open_air":

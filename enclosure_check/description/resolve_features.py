@@ -1,11 +1,12 @@
 """Fill in what boards carry besides parts: zones, stand-offs, clamps, fillers and shield cans."""
 
+from __future__ import annotations
+
 import math
 from collections.abc import Iterable, Iterator, Sequence
 from dataclasses import replace
+from typing import TYPE_CHECKING
 
-from enclosure_check.description.base import WallName
-from enclosure_check.description.board import Board, StandOff, Zone
 from enclosure_check.description.case import (
     BoardCase,
     CopperCase,
@@ -17,8 +18,12 @@ from enclosure_check.description.case import (
     ZoneCase,
 )
 from enclosure_check.description.frames import AXIS, SIGN, Vector, wall_pair
+from enclosure_check.description.names import WallName
 from enclosure_check.description.remarks import ROUNDING_MM, Path, Remarks
 from enclosure_check.description.resolve_box import Rows
+
+if TYPE_CHECKING:
+    from enclosure_check.description.board import Board, StandOff, Zone
 
 # Foot of a stand-off that is stated by its resistance: M3 hardware. [mm]
 # (common practice, no source)

@@ -1,11 +1,17 @@
 """Fill in the limits of parts, derating curves included."""
 
+from __future__ import annotations
+
 from itertools import pairwise
+from typing import TYPE_CHECKING
 
 from enclosure_check.description.case import LimitCase
-from enclosure_check.description.part import Limit, LimitKind
+from enclosure_check.description.names import LimitKind
 from enclosure_check.description.remarks import Path, Remarks
 from enclosure_check.description.yaml_nodes import plain_value
+
+if TYPE_CHECKING:
+    from enclosure_check.description.part import Limit
 
 # The temperatures a derating curve may be drawn over, as every other temperature limit. [C]
 LOWEST_C, HIGHEST_C = -150.0, 500.0

@@ -1,8 +1,9 @@
 """Fill in the parts: type, place, power, thermal resistances, pad and limits."""
 
-from typing import Any
+from __future__ import annotations
 
-from enclosure_check.description.base import AIR, WALL_NAMES, WallName
+from typing import TYPE_CHECKING, Any
+
 from enclosure_check.description.case import (
     BoardCase,
     Finish,
@@ -11,7 +12,6 @@ from enclosure_check.description.case import (
     PartCase,
     WallCase,
 )
-from enclosure_check.description.document import Document
 from enclosure_check.description.frames import (
     AXIS,
     OPPOSITE,
@@ -21,7 +21,7 @@ from enclosure_check.description.frames import (
     point_on_face,
     wall_pair,
 )
-from enclosure_check.description.part import Limit, LimitKind, Pad, Part
+from enclosure_check.description.names import AIR, WALL_NAMES, LimitKind, WallName
 from enclosure_check.description.remarks import ROUNDING_MM, Path, Remarks
 from enclosure_check.description.resolve_board import (
     check_mode_names,
@@ -30,6 +30,10 @@ from enclosure_check.description.resolve_board import (
 )
 from enclosure_check.description.resolve_box import Rows, reserved_names
 from enclosure_check.description.resolve_limit import resolve_limit
+
+if TYPE_CHECKING:
+    from enclosure_check.description.document import Document
+    from enclosure_check.description.part import Limit, Pad, Part
 
 PART_FINISH = "epoxy_package"
 POWER_AT_C = 25.0

@@ -98,12 +98,6 @@ def shape_at(path: Path) -> Shape | None:
     return shape
 
 
-def is_mapping_by_name(path: Path) -> bool:
-    """Tell whether a mapping whose keys are names of the user's stands at a path."""
-    shape = shape_at(path)
-    return shape is not None and shape.core is dict and not shape.key.words()
-
-
 def allowed(shape: Shape) -> str:
     """Say what a shape allows."""
     if shape.words():

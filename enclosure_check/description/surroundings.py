@@ -4,13 +4,8 @@ from typing import ClassVar, Literal
 
 from pydantic import Field
 
-from enclosure_check.description.base import (
-    AmbientC,
-    IrradianceWPerM2,
-    Strict,
-    TemperatureC,
-    WallName,
-)
+from enclosure_check.description.base import AmbientC, IrradianceWPerM2, Strict, TemperatureC
+from enclosure_check.description.names import WallName
 
 
 class Surroundings(Strict):

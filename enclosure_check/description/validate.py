@@ -7,6 +7,7 @@ from typing import Any
 from pydantic import BaseModel, ValidationError
 
 from enclosure_check.description.document import Document
+from enclosure_check.description.merge import null_paths
 from enclosure_check.description.problems import (
     DocumentError,
     Path,
@@ -22,7 +23,6 @@ from enclosure_check.description.yaml_nodes import (
     Node,
     ScalarNode,
     SequenceNode,
-    is_null,
     locate,
     plain_value,
     to_data,
@@ -82,21 +82,6 @@ def validate(node: MappingNode, file: str) -> Document:
 
 
 # Keys without a value ---------------------------------------------------------------------
-
-
-def null_paths(node: Node, path: Path = ()) -> Iterator[Path]:
-    """Give the paths of the keys that are null or were removed by a patch."""
-    if isinstance(node, MappingNode):
-        for key in node.removed:
-            yield (*path, key)
-        for key, value in node.entries.items():
-            if is_null(value):
-                yield (*path, key)
-            elif not isinstance(value, ScalarNode):
-                yield from null_paths(value, (*path, key))
-    elif isinstance(node, SequenceNode):
-        for index, item in enumerate(node.items):
-            yield from null_paths(item, (*path, index))
 
 
 def _unknown_nulls(paths: list[Path], node: MappingNode, file: str) -> Iterator[Problem]:

@@ -2,7 +2,7 @@
 
 import numpy as np
 
-from enclosure_check.description.base import WALL_NAMES
+from enclosure_check.description.names import WALL_NAMES
 from enclosure_check.findings.results import RangeFinding
 from enclosure_check.findings.solved import Solved
 from enclosure_check.network.films import BoxFilm, FilmAudit

@@ -9,8 +9,6 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Annotated, Literal
 
-from pydantic import Field
-
 from enclosure_check.records import dataclass
 
 Verdict = Literal["pass", "marginal", "fail"]
@@ -18,6 +16,9 @@ VERDICTS: tuple[Verdict, ...] = ("pass", "marginal", "fail")
 
 
 def _about(text: str) -> object:
+    # Annotations are not evaluated until the schema is made.
+    from pydantic import Field
+
     return Field(description=text)
 
 

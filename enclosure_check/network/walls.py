@@ -5,9 +5,9 @@ from itertools import combinations
 
 import numpy as np
 
-from enclosure_check.description.base import WALL_NAMES, WallName
 from enclosure_check.description.case import Case, WallCase
 from enclosure_check.description.frames import AXIS, SIGN, Vector
+from enclosure_check.description.names import WALL_NAMES, WallName
 from enclosure_check.network.air import channel_shape
 from enclosure_check.network.covering import bare_wall
 from enclosure_check.network.grid import PlateGrid, cell_counts

@@ -6,7 +6,6 @@ import math
 import numpy as np
 import pytest
 
-from enclosure_check.description.base import WALL_NAMES
 from enclosure_check.description.box import Tilt
 from enclosure_check.description.frames import (
     AXIS,
@@ -16,6 +15,7 @@ from enclosure_check.description.frames import (
     point_on_face,
     wall_pair,
 )
+from enclosure_check.description.names import WALL_NAMES
 from enclosure_check.description.resolve_box import up_vector
 
 X, Y, Z = 0, 1, 2

@@ -3,7 +3,7 @@
 import pytest
 from support.cases import board, box, case_of, errors_of, part, patched
 
-from enclosure_check.description.base import WALL_NAMES
+from enclosure_check.description.names import WALL_NAMES
 from enclosure_check.description.problems import FieldErrors
 
 

@@ -6,9 +6,10 @@ from support.mutations import FULL
 
 from enclosure_check.description import shapes
 from enclosure_check.description import validate as module
-from enclosure_check.description.base import WALL_NAMES, Strict
+from enclosure_check.description.base import Strict
 from enclosure_check.description.document import Document
 from enclosure_check.description.merge import merge_patch
+from enclosure_check.description.names import WALL_NAMES
 from enclosure_check.description.problems import DocumentError, Problem
 from enclosure_check.description.validate import validate
 from enclosure_check.description.yaml_nodes import MappingNode, read_yaml
@@ -398,21 +399,6 @@ def test_walls_are_the_keys_of_the_walls():
     assert shape.key.words() == WALL_NAMES
     assert shapes.shape_at(("walls", "top", "mounting", "gap_mm", "x")) is None
     assert shapes.shape_at(("nowhere",)) is None
-
-
-@pytest.mark.parametrize(
-    ("path", "by_name"),
-    [
-        (("parts",), True),
-        (("boards", "main", "copper"), True),
-        (("walls",), False),
-        (("box",), False),
-        (("parts", "U1", "limits"), False),
-        (("nowhere", "x"), False),
-    ],
-)
-def test_where_names_are_the_users_own(path, by_name):
-    assert shapes.is_mapping_by_name(path) is by_name
 
 
 def test_the_full_document_is_valid():

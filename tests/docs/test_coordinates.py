@@ -5,10 +5,10 @@ import xml.etree.ElementTree as ET
 
 import pytest
 
-from enclosure_check.description.base import WALL_NAMES
 from enclosure_check.description.box import Tilt
 from enclosure_check.description.frames import AXIS, OPPOSITE, SIGN, face_frame, wall_pair
 from enclosure_check.description.load import load_document
+from enclosure_check.description.names import WALL_NAMES
 from enclosure_check.description.resolve_box import up_vector
 
 PAGE, DRAWING = "docs/coordinates.md", "docs/coordinates.svg"

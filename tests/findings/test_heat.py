@@ -7,7 +7,7 @@ import pytest
 from support.cases import board, box, checked, part, patched, solved
 from support.random_documents import random_document
 
-from enclosure_check.description.base import WALL_NAMES
+from enclosure_check.description.names import WALL_NAMES
 from enclosure_check.findings.assess import assess
 
 WARM = box(

@@ -25,8 +25,8 @@ from support.cases import (
 )
 from support.random_documents import mirrored, random_document
 
-from enclosure_check.description.base import WALL_NAMES
 from enclosure_check.description.frames import wall_pair
+from enclosure_check.description.names import WALL_NAMES
 from enclosure_check.findings.heat import heat_balance, wall_findings
 from enclosure_check.findings.solved import Solved
 from enclosure_check.network.network import Network

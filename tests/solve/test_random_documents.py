@@ -9,8 +9,8 @@ import pytest
 from support.cases import assert_balanced, case_of, network_of, solved_as
 from support.random_documents import random_document
 
-from enclosure_check.description.base import WALL_NAMES
 from enclosure_check.description.document import Document
+from enclosure_check.description.names import WALL_NAMES
 from enclosure_check.network.build import build_network
 from enclosure_check.solve.steady import solve_steady
 

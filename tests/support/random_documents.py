@@ -11,8 +11,8 @@ import math
 import random
 from typing import Any
 
-from enclosure_check.description.base import WALL_NAMES
 from enclosure_check.description.frames import AXIS, OPPOSITE, SIGN, wall_pair
+from enclosure_check.description.names import WALL_NAMES
 
 Data = dict[str, Any]
 
