@@ -1,6 +1,6 @@
 """The whole line, from a document to its report."""
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 
 from enclosure_check import __version__
 from enclosure_check.description.case import Case
@@ -17,6 +17,7 @@ class NotConvergedError(Exception):
     """No steady temperatures were found; the message names the condition, node and a way out."""
 
     def __init__(self, condition: str, node: str, imbalance_w: float, outcome: Outcome) -> None:
+        self.condition = condition
         super().__init__(
             f"condition {condition!r}: no converged answer. Worst node: {node} "
             f"({imbalance_w:.3g} W out of balance): {outcome.value}"
@@ -24,9 +25,13 @@ class NotConvergedError(Exception):
 
 
 def check(
-    document: LoadedDocument, *, option: str | None = None, conditions: Sequence[str] | None = None
+    document: LoadedDocument,
+    *,
+    option: str | None = None,
+    conditions: Sequence[str] | None = None,
+    tell: Callable[[str], None] | None = None,
 ) -> Report:
-    """Check a document under its conditions.
+    """Check a document under its conditions; ``tell`` is told the name of each as it begins.
 
     Raises
     ------
@@ -39,6 +44,8 @@ def check(
     found: list[ConditionFinding] = []
     known: Known | None = None
     for case in cases:
+        if tell is not None:
+            tell(case.condition)
         solved, known = solve_case(case, known)
         found.append(assess(solved))
     return Report(

@@ -5,7 +5,7 @@ import os
 from collections.abc import Iterator, Sequence
 from contextlib import contextmanager
 
-from enclosure_check.cli.codes import ExitCode
+from enclosure_check.cli.codes import ExitCode, UsageError
 from enclosure_check.cli.output import PROGRAM, CannotWriteError, say
 
 
@@ -30,7 +30,7 @@ def main(argv: Sequence[str] | None = None) -> int:
             return int(arguments.run(arguments))
     except SystemExit as ended:  # argparse, after --help, --version or wrong usage
         return ended.code if isinstance(ended.code, int) else int(ExitCode.BAD_INPUT)
-    except CannotWriteError as error:
+    except (CannotWriteError, UsageError) as error:
         say(f"{PROGRAM}: {error}")
         return int(ExitCode.BAD_INPUT)
     except KeyboardInterrupt:

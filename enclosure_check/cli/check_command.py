@@ -1,11 +1,13 @@
-"""The command ``check``: a document against its limits."""
+"""The command ``check``: documents against their limits."""
 
 import argparse
-from typing import Any
+from collections.abc import Sequence
+from typing import TYPE_CHECKING, Any, NamedTuple
 
-from enclosure_check.cli.codes import CODES, ExitCode, exit_code
+from enclosure_check.cli.codes import CODES, ExitCode, UsageError, run_exit_code
 from enclosure_check.cli.output import (
     CannotWriteError,
+    Progress,
     print_result,
     same_file,
     save,
@@ -13,22 +15,49 @@ from enclosure_check.cli.output import (
     terminal_options,
 )
 
+if TYPE_CHECKING:
+    from enclosure_check.findings.run import Run
+
 FORMATS = ("text", "json")
+
+_ABOUT = """\
+Checks documents under their conditions and reports margins, worst first.
+
+A folder stands for every .yaml and .yml file in it and its sub-folders that has
+two of the keys box, boards, parts and surroundings at the left margin; names
+that start with a dot and links that lead out of it are passed over."""
+
+_EXAMPLES = """\
+examples:
+  enclosure-check check box.yaml
+  enclosure-check check box.yaml --condition noon_sun --strict
+  enclosure-check check enclosures/ --quiet
+  enclosure-check check enclosures/ --write json=run.json --write junit=run.xml
+"""
 
 _COLOUR = """\
 Colour is added on a terminal only; NO_COLOR turns it off, FORCE_COLOR on."""
+
+
+class Destination(NamedTuple):
+    """A format and where it goes, None for standard output."""
+
+    format: str
+    path: str | None
 
 
 def add(commands: Any) -> None:
     """Add the command's parser."""
     check = commands.add_parser(
         "check",
-        help="check a document against its limits",
-        description="Checks a document under its conditions and reports margins, worst first.",
-        epilog=f"{CODES}\n{_COLOUR}",
+        help="check documents against their limits",
+        description=_ABOUT,
+        epilog=f"{_EXAMPLES}\n{CODES}\n{_COLOUR}",
     )
     check.set_defaults(run=run)
-    check.add_argument("file", metavar="FILE", help="the document, in YAML")
+    check.add_argument(
+        "files", metavar="FILE", nargs="+", help="a document, in YAML, or a folder with documents"
+    )
     check.add_argument(
         "--condition",
         action="append",
@@ -47,42 +76,103 @@ def add(commands: Any) -> None:
         metavar="PATH",
         help="write the report there, at once or not at all (default: standard output)",
     )
+    check.add_argument(
+        "--write",
+        action="append",
+        default=[],
+        type=_destination,
+        metavar="FORMAT=PATH",
+        help="also write a report of this format there; may be given several times",
+    )
+    check.add_argument(
+        "--quiet",
+        action="store_true",
+        help="one line per document, the verdict and the smallest margin, in place of the text "
+        "report; no progress",
+    )
+
+
+def _destination(text: str) -> Destination:
+    name, found, path = text.partition("=")
+    if not (found and path):
+        raise argparse.ArgumentTypeError(f"given {text!r}, allowed: FORMAT=PATH")
+    if name not in FORMATS:
+        allowed = ", ".join(FORMATS)
+        raise argparse.ArgumentTypeError(f"given {name!r}, allowed formats: {allowed}")
+    return Destination(name, path)
 
 
 def run(arguments: argparse.Namespace) -> ExitCode:
-    """Check a document and give the report out.
+    """Check documents and give the reports out.
 
     Raises
     ------
     CannotWriteError
-        When the report cannot be written where it is wanted.
+        When a report cannot be written where it is wanted.
+    UsageError
+        When arguments do not go together.
     """
-    from enclosure_check.check import NotConvergedError, check
-    from enclosure_check.description.load import load_document
-    from enclosure_check.description.problems import DocumentError
+    from enclosure_check.cli.answers import Asked, answer_all
+    from enclosure_check.cli.documents import find_documents, is_several
 
+    if arguments.quiet and arguments.format != "text":
+        raise UsageError("--quiet shortens the text report; it does not go with --format")
     conditions = None
     if arguments.condition:
         conditions = tuple(dict.fromkeys(arguments.condition))
-    if arguments.output is not None and same_file(arguments.output, arguments.file):
-        raise CannotWriteError(f"{arguments.output}: is the document itself, not overwritten")
-    try:
-        document = load_document(arguments.file)
-        report = check(document, option=arguments.option, conditions=conditions)
-    except DocumentError as error:
-        for problem in error.problems:
-            say(str(problem))
-        return ExitCode.BAD_INPUT
-    except NotConvergedError as error:
-        say(f"{arguments.file}: {error}")
-        return ExitCode.NOT_CONVERGED
-    from enclosure_check.report.writers import WRITERS
+    destinations = [*arguments.write, Destination(arguments.format, arguments.output)]
+    documents = find_documents(arguments.files)
+    _refuse_overwriting(destinations, documents.paths)
+    with Progress(wanted=not arguments.quiet) as progress:
+        run, said = answer_all(
+            documents.paths,
+            documents.refused,
+            Asked(arguments.option, conditions, arguments.strict),
+            progress.tell,
+        )
+    for line in said:
+        say(line)
+    give_out(run, destinations, several=is_several(arguments.files), short=arguments.quiet)
+    return run_exit_code(run)
 
-    write = WRITERS[arguments.format]
-    if arguments.output is None:
-        print_result(write(report, terminal_options()))
-    else:
-        from enclosure_check.report.options import WriterOptions
 
-        save(arguments.output, write(report, WriterOptions()))
-    return exit_code(report, strict=arguments.strict)
+def _refuse_overwriting(destinations: Sequence[Destination], documents: Sequence[str]) -> None:
+    """Refuse to write on a document, or two reports to one place."""
+    import os
+
+    paths = [path for _, path in destinations if path is not None]
+    for place, path in enumerate(paths):
+        if any(same_file(path, document) for document in documents):
+            raise CannotWriteError(f"{path}: is the document itself, not overwritten")
+        if os.path.abspath(path) in map(os.path.abspath, paths[:place]):
+            raise UsageError(f"{path}: two reports cannot go to one place")
+
+
+def give_out(
+    run: "Run", destinations: Sequence[Destination], *, several: bool, short: bool
+) -> None:
+    """Write a run in every format wanted: all are made before the first is written.
+
+    A format that cannot tell what went wrong is left out where no document has an answer.
+
+    Raises
+    ------
+    CannotWriteError
+        When one cannot be written.
+    """
+    from dataclasses import replace
+
+    from enclosure_check.report.options import WriterOptions
+    from enclosure_check.report.writers import SHOW_ERRORS, WRITERS
+
+    made = []
+    for name, path in destinations:
+        if run.documents or name in SHOW_ERRORS:
+            options = terminal_options() if path is None else WriterOptions()
+            options = replace(options, several=several, short=short and name == "text")
+            made.append((path, WRITERS[name](run, options)))
+    for path, text in made:
+        if path is None:
+            print_result(text)
+        else:
+            save(path, text)

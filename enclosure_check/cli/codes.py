@@ -5,6 +5,7 @@ from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
     from enclosure_check.findings.results import Report
+    from enclosure_check.findings.run import Run
 
 
 class ExitCode(IntEnum):
@@ -26,13 +27,27 @@ exit codes:
   2    bad input, wrong usage, or an output that cannot be written
   3    no converged answer
   70   an error of this program; 130 interrupted
-Results go to standard output or to --output, diagnostics to standard error.
-Nothing is written when there is an error."""
+Of several documents the highest code counts.
+Results go to standard output or to files, diagnostics to standard error.
+Nothing is written when no document has an answer."""
+
+
+class UsageError(Exception):
+    """Arguments that do not go together."""
 
 
 def exit_code(report: "Report", *, strict: bool) -> ExitCode:
     """Give the exit code of a report."""
-    matters = strict or report.margin_stated
-    if report.verdict == "fail" or (report.verdict == "marginal" and matters):
-        return ExitCode.FAIL
-    return ExitCode.PASS
+    from enclosure_check.findings.run import stops
+
+    return ExitCode.FAIL if stops(report.verdict, report, strict=strict) else ExitCode.PASS
+
+
+def run_exit_code(run: "Run") -> ExitCode:
+    """Give the exit code of a run: the highest of its documents."""
+    codes = [exit_code(report, strict=run.strict) for report in run.documents]
+    codes += [
+        ExitCode.BAD_INPUT if each.reason == "bad_input" else ExitCode.NOT_CONVERGED
+        for each in run.without_answer
+    ]
+    return max(codes, default=ExitCode.PASS)

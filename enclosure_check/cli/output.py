@@ -5,6 +5,8 @@ import sys
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
+    import threading
+
     from enclosure_check.report.options import WriterOptions
 
 PROGRAM = "enclosure-check"
@@ -111,3 +113,63 @@ def _replace(target: str, data: bytes) -> None:
     except BaseException:
         os.unlink(temporary)
         raise
+
+
+# Progress ---------------------------------------------------------------------------------
+
+
+class Progress:
+    """A line on standard error that tells what is being done, once that takes a while.
+
+    It is shown on a terminal only, and gone when the work is done.
+    """
+
+    FIRST_S = 1.0
+
+    def __init__(self, *, wanted: bool) -> None:
+        self._shown = wanted and sys.stderr is not None and sys.stderr.isatty()
+        self._text, self._width, self._due = "", 0, False
+        self._timer: threading.Timer | None = None
+
+    def __enter__(self) -> "Progress":
+        if self._shown:
+            import threading
+
+            self._lock = threading.Lock()
+            self._timer = threading.Timer(self.FIRST_S, self._begin)
+            self._timer.daemon = True
+            self._timer.start()
+        return self
+
+    def __exit__(self, *_: object) -> None:
+        if self._timer is not None:
+            self._timer.cancel()
+            with self._lock:
+                self._shown = False
+                self._draw("")
+
+    def tell(self, text: str) -> None:
+        """Say what is being done now."""
+        if self._timer is not None:
+            with self._lock:
+                self._text = text
+                if self._due:
+                    self._draw(text)
+
+    def _begin(self) -> None:
+        with self._lock:
+            self._due = True
+            if self._shown:
+                self._draw(self._text)
+
+    def _draw(self, text: str) -> None:
+        """Put a text in place of the one before, within one line, without any control sequence."""
+        from shutil import get_terminal_size
+
+        room = get_terminal_size().columns - 1
+        shown = printable(text).replace("\n", " ").encode("ascii", "backslashreplace").decode()
+        shown = shown if len(shown) <= room else f"...{shown[len(shown) - room + 3 :]}"
+        if shown or self._width:
+            sys.stderr.write(f"\r{shown.ljust(self._width)}" + ("" if shown else "\r"))
+            sys.stderr.flush()
+        self._width = len(shown)

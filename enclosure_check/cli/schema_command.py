@@ -12,21 +12,23 @@ def add(commands: Any) -> None:
     schema = commands.add_parser(
         "schema",
         help="print a JSON Schema",
-        description="Prints the JSON Schema (draft 2020-12) of the document, for editors, or of\n"
-        "the JSON report.",
+        description="Prints the JSON Schema (draft 2020-12) of the document, for editors, of\n"
+        "the JSON report of one document, or of a run over several.",
     )
     schema.set_defaults(run=run)
-    schema.add_argument("of", choices=("document", "report"), help="which one")
+    schema.add_argument("of", choices=("document", "report", "run"), help="which one")
 
 
 def run(arguments: argparse.Namespace) -> ExitCode:
     """Print a schema."""
     import json
 
-    from enclosure_check.report.schema import document_schema, report_schema
+    from enclosure_check.report.schema import document_schema, report_schema, run_schema
 
     if arguments.of == "report":
         schema = report_schema()
+    elif arguments.of == "run":
+        schema = run_schema()
     else:
         from enclosure_check.description.document import Document
 

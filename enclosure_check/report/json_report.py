@@ -5,11 +5,14 @@ from dataclasses import fields, is_dataclass
 from typing import Any
 
 from enclosure_check.findings.results import Report
+from enclosure_check.findings.run import Run
 from enclosure_check.report.options import WriterOptions
 
 
-def write_json(report: Report, options: WriterOptions) -> str:  # noqa: ARG001 - the same anywhere
-    """Give a report as JSON: the keys of its records, pure ASCII, the same bytes every time.
+def write_json(result: Report | Run, options: WriterOptions) -> str:  # noqa: ARG001 - the same anywhere
+    """Give a report, or those of several documents, as JSON.
+
+    The keys of the records, pure ASCII, the same bytes every time.
 
     Raises
     ------
@@ -18,7 +21,7 @@ def write_json(report: Report, options: WriterOptions) -> str:  # noqa: ARG001 -
     """
     import json
 
-    return json.dumps(plain(report), indent=2, allow_nan=False) + "\n"
+    return json.dumps(plain(result), indent=2, allow_nan=False) + "\n"
 
 
 def plain(value: Any) -> Any:

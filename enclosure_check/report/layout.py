@@ -214,6 +214,15 @@ def cut(text: str, width: int) -> str:
     return _head(text, width - len(mark)) + mark
 
 
+def tail(text: str, width: int) -> str:
+    """Cut a path to a width at its beginning: its end tells more."""
+    if cells_of(text) <= width:
+        return text
+    while text and cells_of(text) > width - len(ELLIPSIS):
+        text = text[1:]
+    return ELLIPSIS + text
+
+
 def _head(text: str, width: int) -> str:
     """Give the beginning of a text that fits in a width."""
     if text.isascii():

@@ -2,7 +2,7 @@
 
 from typing import NamedTuple
 
-from enclosure_check.findings.results import VERDICTS, ConditionFinding, Verdict
+from enclosure_check.findings.results import VERDICTS, ConditionFinding, Report, Verdict
 
 # Told apart without colour: what does not pass is in capitals.
 WORDS: dict[Verdict, str] = {"pass": "pass", "marginal": "MARGINAL", "fail": "FAIL"}
@@ -29,6 +29,12 @@ def limits_of(condition: ConditionFinding) -> list[Held]:
         if wall.touch_margin_k is not None and wall.touch_verdict is not None
     ]
     return sorted(held, key=lambda each: each.margin_k)
+
+
+def smallest_of(report: Report) -> tuple[ConditionFinding, Held] | None:
+    """Give the smallest margin of all, and the condition it arises in; None without any limit."""
+    found = [(each, held[0]) for each in report.conditions if (held := limits_of(each))]
+    return min(found, key=lambda pair: pair[1].margin_k, default=None)
 
 
 def worst_first(conditions: tuple[ConditionFinding, ...]) -> list[ConditionFinding]:

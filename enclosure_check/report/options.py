@@ -13,3 +13,7 @@ class WriterOptions:
     """Whether colour may be added to words."""
     encoding: str = "utf-8"
     """Encoding of the place; characters it lacks are written as escapes."""
+    several: bool = False
+    """Whether several documents were asked for, even if only one is there."""
+    short: bool = False
+    """Whether a text holds the verdict lines only."""

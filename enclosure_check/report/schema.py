@@ -22,6 +22,16 @@ def report_schema() -> Schema:
     return {"$schema": DIALECT, **schema, "title": "Report of enclosure-check"}
 
 
+def run_schema() -> Schema:
+    """Give the JSON Schema of the JSON report of several documents."""
+    from pydantic import TypeAdapter
+
+    from enclosure_check.findings.run import Run
+
+    schema = TypeAdapter(Run).json_schema(mode="serialization")
+    return {"$schema": DIALECT, **schema, "title": "Run of enclosure-check"}
+
+
 def document_schema(document: Mapping[str, Any]) -> Schema:
     """Give the JSON Schema of the document, its options and conditions included.
 

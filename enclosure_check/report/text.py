@@ -14,7 +14,7 @@ from enclosure_check.report.layout import (
     right,
     tenths,
 )
-from enclosure_check.report.limits import WORDS, Held, limits_of, worst_first
+from enclosure_check.report.limits import WORDS, limits_of, smallest_of, worst_first
 from enclosure_check.report.options import WriterOptions
 
 # Conditions named in a sentence before the rest become a number.
@@ -64,7 +64,7 @@ def _title(page: Page, report: Report) -> None:
 def _verdict(page: Page, report: Report, conditions: Sequence[ConditionFinding]) -> None:
     named = len(conditions) > 1
     page.paragraph(_headline(page, report, conditions), style=report.verdict)
-    worst = _worst(conditions)
+    worst = smallest_of(report)
     if worst is not None:
         condition, held = worst
         under = f" under {page.clean(condition.name)}" if named else ""
@@ -92,12 +92,6 @@ def _headline(page: Page, report: Report, conditions: Sequence[ConditionFinding]
         return "PASS: no limit is stated, so there was nothing to fail."
     held = "" if wanted == [0.0] else f" with the {kept} wanted"
     return f"PASS: every limit is kept{held}{where}."
-
-
-def _worst(conditions: Sequence[ConditionFinding]) -> tuple[ConditionFinding, Held] | None:
-    """Give the smallest margin of all, and the condition it arises in."""
-    found = [(each, held[0]) for each in conditions if (held := limits_of(each))]
-    return min(found, key=lambda pair: pair[1].margin_k, default=None)
 
 
 _SUMMARY = (

@@ -1,13 +1,29 @@
-"""The table of report formats."""
+"""The table of report formats; each is imported when it is asked for."""
 
 from collections.abc import Callable
 
-from enclosure_check.findings.results import Report
-from enclosure_check.report.json_report import write_json
+from enclosure_check.findings.run import Run
 from enclosure_check.report.options import WriterOptions
-from enclosure_check.report.text import write_text
 
-WRITERS: dict[str, Callable[[Report, WriterOptions], str]] = {
-    "text": write_text,
-    "json": write_json,
-}
+Writer = Callable[[Run, WriterOptions], str]
+
+
+def _text(run: Run, options: WriterOptions) -> str:
+    if not options.several and not options.short:
+        from enclosure_check.report.text import write_text
+
+        return write_text(run.documents[0], options)
+    from enclosure_check.report.run_text import write_run
+
+    return write_run(run, options)
+
+
+def _json(run: Run, options: WriterOptions) -> str:
+    from enclosure_check.report.json_report import write_json
+
+    return write_json(run if options.several else run.documents[0], options)
+
+
+WRITERS: dict[str, Writer] = {"text": _text, "json": _json}
+# Those that show what has no answer; the others need a document that has one.
+SHOW_ERRORS: frozenset[str] = frozenset()

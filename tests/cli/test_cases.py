@@ -1,6 +1,6 @@
 """Whole runs: command, exit code, standard output and standard error, held together in a file.
 
-A case is a folder with ``cmd`` (one line), the documents it names, and ``expected.txt``. Write a
+A case is a folder with ``cmd`` (one line), the documents and folders it names, and ``expected.txt``. Write a
 new ``expected.txt`` with ``pytest tests/cli --update-expected`` and review it.
 """
 
@@ -36,8 +36,11 @@ def normal(text: str, is_json: bool) -> str:
 @pytest.mark.parametrize("folder", sorted(CASES.iterdir()), ids=lambda folder: folder.name)
 def test_case(folder: Path, run, tmp_path: Path, request: pytest.FixtureRequest):
     command = (folder / "cmd").read_text(encoding="utf-8").strip()
-    for document in folder.glob("*.yaml"):
-        shutil.copy(document, tmp_path)
+    for path in folder.iterdir():
+        if path.is_dir():
+            shutil.copytree(path, tmp_path / path.name)
+        elif path.suffix == ".yaml":
+            shutil.copy(path, tmp_path)
     program, *arguments = shlex.split(command)
     assert program == PROGRAM
     ended = run(*arguments)

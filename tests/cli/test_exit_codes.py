@@ -59,7 +59,9 @@ def test_not_converged(tmp_path, capsys):
         ["check", "box.yaml", "--format", "xml"],
         ["check", "box.yaml", "--form", "json"],
         ["check", "box.yaml", "--bogus"],
-        ["check", "box.yaml", "another.yaml"],
+        ["check", "box.yaml", "--write", "json"],
+        ["check", "box.yaml", "--write", "json="],
+        ["check", "box.yaml", "--write", "xml=box.xml"],
         ["check", "box.yaml", "--condition"],
         ["schema"],
         ["schema", "everything"],
@@ -74,9 +76,7 @@ def test_wrong_usage(arguments, capsys):
     assert "\x1b" not in captured.err
 
 
-@pytest.mark.parametrize(
-    "name", ["missing.yaml", ".", "a\0b", "x" * 5000, "\x1b[31m.yaml", "\udcff"]
-)
+@pytest.mark.parametrize("name", ["missing.yaml", "a\0b", "x" * 5000, "\x1b[31m.yaml", "\udcff"])
 def test_files_that_cannot_be_read(name, tmp_path, monkeypatch, capsys):
     monkeypatch.chdir(tmp_path)
     assert main(["check", name]) == 2
@@ -127,7 +127,7 @@ def test_help_has_examples(capsys):
     assert "enclosure-check check box.yaml" in capsys.readouterr().out
 
 
-@pytest.mark.parametrize("of", ["document", "report"])
+@pytest.mark.parametrize("of", ["document", "report", "run"])
 def test_schema(of, capsys):
     import json
 
@@ -140,7 +140,7 @@ def test_interrupted(tmp_path, monkeypatch, capsys):
     def interrupt(*_):
         raise KeyboardInterrupt
 
-    monkeypatch.setattr("enclosure_check.description.load.load_document", interrupt)
+    monkeypatch.setattr("enclosure_check.cli.answers.load_document", interrupt)
     assert main(["check", str(write_document(tmp_path))]) == 130
     assert capsys.readouterr() == ("", "")
 
@@ -149,7 +149,7 @@ def test_an_error_of_the_program_is_not_taken_for_a_verdict(tmp_path, monkeypatc
     def break_down(*_, **__):
         raise ZeroDivisionError("division by zero")
 
-    monkeypatch.setattr("enclosure_check.check.check", break_down)
+    monkeypatch.setattr("enclosure_check.cli.answers.check", break_down)
     assert main(["check", str(write_document(tmp_path))]) == 70
     captured = capsys.readouterr()
     assert captured.out == ""

@@ -1,0 +1,95 @@
+"""One answer per document: its report, or why there is none."""
+
+from collections.abc import Callable, Iterable, Sequence
+from functools import partial
+from typing import NamedTuple
+
+from enclosure_check import __version__
+from enclosure_check.check import NotConvergedError, check
+from enclosure_check.description.load import LoadedDocument, load_document
+from enclosure_check.description.problems import DocumentError, Problem
+from enclosure_check.description.yaml_nodes import locate
+from enclosure_check.findings.results import Report
+from enclosure_check.findings.run import NoAnswer, ProblemFinding, Reason, Run, run_of
+
+
+class Asked(NamedTuple):
+    """What is asked of each document."""
+
+    option: str | None
+    conditions: Sequence[str] | None
+    strict: bool
+
+
+def answer_all(
+    paths: Sequence[str],
+    refused: Iterable[tuple[str, str]],
+    asked: Asked,
+    tell: Callable[[str], None],
+) -> tuple[Run, list[str]]:
+    """Check documents one after the other; what stops one does not stop the others.
+
+    Parameters
+    ----------
+    paths
+        The documents.
+    refused
+        Folders without documents, with the reason.
+    asked
+        What is asked of each.
+    tell
+        Told what is being done, as it goes on.
+
+    Returns
+    -------
+    tuple
+        The run, and the diagnostics of all documents without an answer.
+    """
+    reports: list[Report] = []
+    without: list[NoAnswer] = []
+    said: list[str] = []
+    for count, path in enumerate(paths, 1):
+        lead = f"{count} of {len(paths)}: {path}" if len(paths) > 1 else path
+        answer, lines = _answer(path, asked, partial(_tell_under, tell, lead))
+        said += lines
+        if isinstance(answer, Report):
+            reports.append(answer)
+        else:
+            without.append(answer)
+    for folder, reason in refused:
+        problem = Problem(folder, 1, 1, "", reason)
+        said.append(str(problem))
+        without.append(_no_answer(folder, "bad_input", [problem]))
+    return run_of(__version__, asked.strict, tuple(reports), tuple(without)), said
+
+
+def _tell_under(tell: Callable[[str], None], lead: str, name: str) -> None:
+    tell(f"{lead}: {name}")
+
+
+def _answer(
+    path: str, asked: Asked, tell: Callable[[str], None]
+) -> tuple[Report | NoAnswer, list[str]]:
+    document: LoadedDocument | None = None
+    try:
+        document = load_document(path)
+        return check(document, option=asked.option, conditions=asked.conditions, tell=tell), []
+    except DocumentError as error:
+        lines = [str(problem) for problem in error.problems]
+        return _no_answer(path, "bad_input", error.problems), lines
+    except NotConvergedError as error:
+        assert document is not None
+        at = locate(document.node, ("conditions", error.condition), at_key=True)
+        problem = Problem(path, *at, "", str(error))
+        return _no_answer(path, "not_converged", [problem]), [f"{path}: {error}"]
+
+
+def _no_answer(path: str, reason: Reason, problems: Iterable[Problem]) -> NoAnswer:
+    return NoAnswer(
+        path,
+        reason,
+        tuple(
+            ProblemFinding(each.file, each.line, each.column, each.field, each.message)
+            for each in problems
+        ),
+    )
