@@ -9,17 +9,11 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Annotated, Literal
 
+from enclosure_check.findings.about import about as _about
 from enclosure_check.records import dataclass
 
 Verdict = Literal["pass", "marginal", "fail"]
 VERDICTS: tuple[Verdict, ...] = ("pass", "marginal", "fail")
-
-
-def _about(text: str) -> object:
-    # Annotations are not evaluated until the schema is made.
-    from pydantic import Field
-
-    return Field(description=text)
 
 
 @dataclass(frozen=True)

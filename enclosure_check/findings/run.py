@@ -4,16 +4,11 @@ from __future__ import annotations
 
 from typing import Annotated, Literal
 
-from pydantic import Field
-
+from enclosure_check.findings.about import about as _about
 from enclosure_check.findings.results import Report, Verdict, worst
 from enclosure_check.records import dataclass
 
 Reason = Literal["bad_input", "not_converged"]
-
-
-def _about(text: str) -> object:
-    return Field(description=text)
 
 
 @dataclass(frozen=True)

@@ -2,6 +2,8 @@
 
 import json
 import os
+import subprocess
+import sys
 from pathlib import Path
 
 import pytest
@@ -9,6 +11,8 @@ from support.reports import SMALL, write_document
 
 from enclosure_check.cli import main
 from enclosure_check.cli.documents import find_documents, is_several
+
+from .conftest import environment
 
 HOT = {**SMALL, "parts": {"X1": {**SMALL["parts"]["X1"], "limits": {"case": {"max_c": 30}}}}}
 RUNAWAY = {**SMALL, "parts": {"X1": {**SMALL["parts"]["X1"], "power_doubling_k": 2}}}
@@ -230,3 +234,18 @@ def test_no_document_is_overwritten(here, capsys):
     assert main(["check", "a.yaml", "b.yaml", "--write", "json=./b.yaml"]) == 2
     assert "not overwritten" in capsys.readouterr().err
     assert Path("b.yaml").read_bytes() == before
+
+
+def test_a_plain_check_loads_nothing_it_does_not_need(here):
+    put("a.yaml")
+    code = (
+        "import sys; from enclosure_check.cli import main; main(['check', 'a.yaml', '--quiet']); "
+        "print(sorted(sys.modules))"
+    )
+    ended = subprocess.run(
+        [sys.executable, "-c", code], env=environment(), capture_output=True, text=True, check=True
+    )
+    loaded = ended.stdout.partition("\n")[2]
+    assert "'enclosure_check.cli.answers'" in loaded
+    for name in ("pydantic", "json", "enclosure_check.report.json_report"):
+        assert f"'{name}'" not in loaded
