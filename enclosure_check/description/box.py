@@ -14,6 +14,7 @@ from enclosure_check.description.base import (
     TemperatureC,
 )
 from enclosure_check.description.names import MountingKind
+from enclosure_check.description.opening import Opening
 
 
 class Tilt(Strict):
@@ -102,16 +103,15 @@ class Cable(Strict):
 class Wall(WallDefaults):
     """One of the six walls; what it leaves out comes from `defaults.wall`."""
 
-    NOT_YET: ClassVar[dict[str, str]] = {
-        "openings": "openings and vent flow are not computed in this version; the box must be "
-        "sealed",
-        "fins": "fins are not computed in this version",
-    }
+    NOT_YET: ClassVar[dict[str, str]] = {"fins": "fins are not computed in this version"}
     mounting: Mounting = Field(
         default_factory=Mounting, description="What the outside of this wall faces."
     )
     cables: dict[Name, Cable] = Field(
         default_factory=dict, description="Conductors through this wall, by name."
+    )
+    openings: dict[Name, Opening] = Field(
+        default_factory=dict, description="Openings in this wall, by name."
     )
     touch_max_c: TemperatureC | None = Field(
         None,

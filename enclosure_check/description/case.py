@@ -1,7 +1,12 @@
 """A case: one document under one condition, every default filled in, still in mm and Celsius."""
 
 from enclosure_check.description.frames import Vector
-from enclosure_check.description.names import LimitKind, MountingKind, WallName
+from enclosure_check.description.names import (
+    LimitKind,
+    MountingKind,
+    OpeningKind,
+    WallName,
+)
 from enclosure_check.description.positions import Positions
 from enclosure_check.records import dataclass, field
 
@@ -52,6 +57,59 @@ class CableCase:
 
 
 @dataclass(frozen=True)
+class ScreenCase:
+    """A woven mesh of square apertures."""
+
+    name: str
+    wire_mm: float
+    aperture_mm: float
+
+    @property
+    def free_share(self) -> float:
+        """Open share of the mesh [-]."""
+        return (self.aperture_mm / (self.aperture_mm + self.wire_mm)) ** 2
+
+
+@dataclass(frozen=True)
+class OpeningCase:
+    """An opening, or a row of alike ones; ``low_mm`` and ``size_mm`` are its whole outline.
+
+    What it loses follows from this in `network/opening_losses.py`.
+    """
+
+    name: str
+    wall: WallName
+    kind: OpeningKind
+    low_mm: Vector
+    size_mm: Vector
+    """Nothing along the axis of the wall."""
+    free_area_mm2: float
+    """All that is open, the blocked share taken off; 0 when it is closed."""
+    free_share: float
+    """What holes leave open of the area they stand in, blocked or not; 1 for cut-outs [-]."""
+    count: int
+    """How many alike cut-outs stand in a row; 1 for areas."""
+    area_mm: float
+    """Hydraulic diameter of one cut-out or of the area the holes stand in."""
+    hole_mm: float
+    """Hydraulic diameter of one hole."""
+    hole_aspect: float | None
+    """Narrow over wide side of one hole, 0 for a slot; None for a round one."""
+    thickness_mm: float
+    stated_loss: float | None
+    """Loss coefficient on the velocity in the free area, where it does not follow from sizes."""
+    screen: ScreenCase | None
+    filter_pa_s_per_m: float
+    """Loss of a filter per velocity in the free area."""
+    blocked_pct: float
+
+    @property
+    def closed(self) -> bool:
+        """Whether no air passes."""
+        return self.free_area_mm2 <= 0
+
+
+@dataclass(frozen=True)
 class WallCase:
     """A wall with its defaults filled in."""
 
@@ -64,6 +122,7 @@ class WallCase:
     touch_max_c: float | None
     sun_w_per_m2: float
     cables: tuple[CableCase, ...] = ()
+    openings: tuple[OpeningCase, ...] = ()
 
 
 @dataclass(frozen=True)

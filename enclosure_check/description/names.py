@@ -10,3 +10,4 @@ MountingKind = Literal[
     "open_air", "against_surface", "neighbour", "standing_on", "bolted_to", "insulated"
 ]
 LimitKind = Literal["junction", "case", "board", "air"]
+OpeningKind = Literal["hole", "perforated", "slots", "louvre", "mesh", "filter", "cable_gland"]

@@ -30,6 +30,8 @@ UNITS = (
     ("_k", "K", "temperature difference"),
     ("_w", "W", "power"),
     ("_a", "A", "current"),
+    ("_pa", "Pa", "difference of pressure"),
+    ("_m_per_s", "m/s", "velocity"),
     ("_w_per_m2", "W/m2", "irradiance"),
     ("_w_per_m2k", "W/m2K", "contact conductance per area"),
     ("_w_per_mk", "W/mK", "thermal conductivity; conductance per metre of an edge"),

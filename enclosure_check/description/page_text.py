@@ -116,6 +116,14 @@ Checked after the keys themselves, with every option and condition applied:
   filler has no pad.
 - A part lies wholly under a can or beside it. A can is no lower than the parts under it and fits
   between board and wall. A part under a can has no pad. Its local air is as warm as the can.
+- An opening lies inside its wall, which has air outside: open air, or a gap with open edges, which
+  is a warning. One that is closed (`blocked_pct: 100`) may be anywhere. Sizes: `hole` (one, or
+  `count` in a row at `pitch_mm`), `mesh` and `filter` take `diameter_mm`, or `width_mm` and
+  `height_mm`; `cable_gland` takes `diameter_mm` and `cable_mm`; `perforated` the area, `hole_mm`
+  and one of `free_area_pct`, `pitch_mm` and `count`; `slots` the area, `slot_width_mm` and one of
+  these too, or `count` and `pitch_mm`, which give the size across; `louvre` the area,
+  `slot_width_mm` and `free_area_pct`. Openings over each other, and parts or fillers over them, are
+  a warning.
 - Cables: the copper has room in the diameter.
 - Parts: sizes come from the part or its type. On a board: `side` and `at_mm`; on a wall: `at_mm`;
   in the air: `from_walls_mm` or the middle. Outlines stay on the board or wall, tops stay out of

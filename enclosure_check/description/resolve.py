@@ -41,9 +41,16 @@ def resolve(document: Document, condition: str, option: str | None = None) -> Ca
     inside, outside = resolve_sizes(document, walls, remarks)
     if min(inside) <= 0:
         remarks.finish()
+    vented = any(wall.openings for wall in document.walls.values())
+    if vented:
+        from enclosure_check.description.resolve_openings import check_uncovered, resolve_openings
+
+        walls = resolve_openings(document, inside, walls, remarks)
     boards = resolve_boards(document, inside, rows, remarks)
     parts = PartResolver(document, inside, walls, boards, rows, remarks).resolve()
     check_covered(boards, parts, remarks)
+    if vented:
+        check_uncovered(walls, boards, parts, remarks)
     readings = _readings(document, condition, remarks)
     remarks.finish()
     requirements = document.requirements

@@ -3,6 +3,12 @@
 import sys
 from collections.abc import Iterable, Sequence
 
+from enclosure_check.library.opening_rows import (
+    Mesh,
+    load_filters,
+    load_louvres,
+    load_screens,
+)
 from enclosure_check.library.rows import (
     CAPACITY_BASIS,
     Finish,
@@ -12,14 +18,14 @@ from enclosure_check.library.rows import (
 )
 
 _INTRODUCTION = f"""\
-# Shipped materials and finishes
+# Shipped materials, finishes, louvres, meshes and filters
 
 This page is written by `python -m enclosure_check.library.page > docs/library.md`; edit
 `enclosure_check/library/*.yaml` instead.
 
-Every number is for about 300 K. A spread is a half-width at about 95 %: it covers the range of
-the sources where they give one, else it is a judgement. The basis says how well a number is
-founded:
+Every number of a material or finish is for about 300 K. A spread is a half-width at about 95 %: it
+covers the range of the sources where they give one, else it is a judgement. The basis says how well
+a number is founded:
 
 - *published*: read in the source named in the row. Where a row names only a published table, or
   textbook or handbook tables, their titles were not recorded;
@@ -50,6 +56,17 @@ _FINISH_HEAD = (
     "basis",
     "source",
 )
+_LOUVRE_HEAD = ("name", "loss coefficient", "spread [±]", "basis", "source")
+_MESH_HEAD = ("name", "wire [mm]", "aperture [mm]", "open [%]", "basis", "source")
+_FILTER_HEAD = ("name", "loss per velocity [Pa s/m]", "spread [± %]", "basis", "source")
+_OPENINGS = """\
+## Openings
+
+Loss coefficients of louvres are those of inlet and outlet together, on the velocity in the free
+area, at high Reynolds number. What holes, slots, meshes and perforated areas lose follows from
+their sizes ([method](method.md#openings)). Filters are clean; one that is due for a change loses
+about twice as much (common practice, no source).
+"""
 
 
 def library_page() -> str:
@@ -58,11 +75,49 @@ def library_page() -> str:
     Returns
     -------
     str
-        Markdown with one table of materials and one of finishes, ending in a line feed.
+        Markdown with one table of each kind of row, ending in a line feed.
     """
     materials = _table(_MATERIAL_HEAD, map(_material_cells, load_materials().values()))
     finishes = _table(_FINISH_HEAD, map(_finish_cells, load_finishes().values()))
-    return f"{_INTRODUCTION}\n## Materials\n\n{materials}\n\n## Finishes\n\n{finishes}\n"
+    louvres = _table(
+        _LOUVRE_HEAD,
+        (
+            (f"`{row.name}`", f"{row.loss:g}", f"{row.loss_spread:g}", row.basis, row.source)
+            for row in load_louvres().values()
+        ),
+    )
+    meshes = _table(_MESH_HEAD, map(_mesh_cells, load_screens().values()))
+    filters = _table(
+        _FILTER_HEAD,
+        (
+            (
+                f"`{row.name}`",
+                f"{row.resistance_pa_s_per_m:g}",
+                f"{row.spread_pct:g}",
+                row.basis,
+                row.source,
+            )
+            for row in load_filters().values()
+        ),
+    )
+    return (
+        f"{_INTRODUCTION}\n## Materials\n\n{materials}\n\n## Finishes\n\n{finishes}\n\n"
+        f"{_OPENINGS}\n### Louvres\n\n{louvres}\n\n### Meshes\n\n{meshes}\n\n"
+        f"### Filters\n\n{filters}\n"
+    )
+
+
+def _mesh_cells(row: Mesh) -> tuple[str, ...]:
+    """Write one mesh as the cells of a table row."""
+    share = (row.aperture_mm / (row.aperture_mm + row.wire_mm)) ** 2
+    return (
+        f"`{row.name}`",
+        f"{row.wire_mm:g}",
+        f"{row.aperture_mm:g}",
+        f"{100 * share:.0f}",
+        row.basis,
+        row.source,
+    )
 
 
 def _material_cells(material: Material) -> tuple[str, ...]:

@@ -112,7 +112,7 @@ def load_materials() -> Mapping[str, Material]:
         If a row lacks a key or has one that `Material` does not know.
     """
     return MappingProxyType(
-        {name: _material(name, row) for name, row in _read("materials.yaml").items()}
+        {name: _material(name, row) for name, row in read_table("materials.yaml").items()}
     )
 
 
@@ -131,7 +131,7 @@ def load_finishes() -> Mapping[str, Finish]:
         If a row lacks a key or has one that `Finish` does not know.
     """
     return MappingProxyType(
-        {name: Finish(name=name, **row) for name, row in _read("finishes.yaml").items()}
+        {name: Finish(name=name, **row) for name, row in read_table("finishes.yaml").items()}
     )
 
 
@@ -141,7 +141,7 @@ def _material(name: str, row: dict[str, Any]) -> Material:
     return Material(name=name, in_plane_conductivity_w_per_mk=in_plane, **row)
 
 
-def _read(file_name: str) -> dict[str, dict[str, Any]]:
+def read_table(file_name: str) -> dict[str, dict[str, Any]]:
     """Parse one table; whole numbers become floats, text stays text."""
     text = (_FOLDER / file_name).read_text(encoding="utf-8")
     table: dict[str, dict[str, Any]] = yaml.load(text, Loader=_LOADER)

@@ -7,53 +7,17 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable
-from typing import Literal
 
 import numpy as np
 import numpy.typing as npt
 from numpy.typing import ArrayLike
 
 from enclosure_check.physics import bodies, plates
-from enclosure_check.records import dataclass
+from enclosure_check.physics.data_sheet import EXPERIMENT, MEMORY, SCATTER, Correlation
+from enclosure_check.physics.opening_laws import OPENING_LAWS
 
 FloatArray = npt.NDArray[np.float64]
 Law = Callable[[ArrayLike, ArrayLike], FloatArray]
-
-STATED = "stated by the authors"
-SCATTER = "scatter against independent data"
-EXPERIMENT = "scatter against numerical experiments made for this project"
-MEMORY = "from memory"
-
-
-@dataclass(frozen=True)
-class Correlation:
-    """Data sheet of a law."""
-
-    key: str
-    """Name in the registry and in reports."""
-    name: str
-    """Name for a reader."""
-    equation: str
-    """Equation as text."""
-    characteristic_length: str
-    """Length in the Rayleigh and Nusselt numbers."""
-    variable: Literal["rayleigh", "elenbaas", "reynolds", "stratification", "temperature", "none"]
-    """Group that the range is given in."""
-    valid_from: float
-    """Lower end of the range of that group [-], or [K] for a temperature."""
-    valid_to: float
-    """Upper end of the range of that group [-], or [K] for a temperature."""
-    prandtl_from: float
-    """Lower end of the Prandtl number [-]."""
-    prandtl_to: float
-    """Upper end of the Prandtl number [-]."""
-    accuracy_pct: float
-    """Half-width of the band that holds about 95 % of data [%]."""
-    accuracy_basis: str
-    """Where the accuracy comes from."""
-    reference: str
-    """Author, year, title, journal."""
-
 
 _CHURCHILL_CHU_PLATE = (
     "S. W. Churchill, H. H. S. Chu, 1975, Correlating equations for laminar and turbulent free "
@@ -338,6 +302,7 @@ _ROWS = (
         "equations for nitrogen, oxygen, argon, and air, International Journal of Thermophysics "
         "25, 21-69",
     ),
+    *OPENING_LAWS,
 )
 
 #: Every law used, by key.

@@ -6,10 +6,12 @@ import math
 import re
 
 import pytest
+from fluids.filters import square_edge_screen
 from published import experiments_inside as inside
 
 from enclosure_check.physics.air import air, rayleigh_number
 from enclosure_check.physics.correlation import CORRELATIONS
+from enclosure_check.physics.openings import cut_out_loss, plate_loss
 from enclosure_check.physics.plates import (
     churchill_chu_laminar,
     hot_side_up_laminar,
@@ -48,6 +50,7 @@ def test_register_of_laws_is_complete(method):
     names = {
         "rayleigh": "Ra ",
         "elenbaas": "El ",
+        "reynolds": "Re ",
         "stratification": "S ",
         "temperature": "T ",
         "none": "",
@@ -98,6 +101,31 @@ def test_constants_are_those_of_the_code(method):
         assert getattr(importlib.import_module(f"enclosure_check.{module}"), constant) == float(
             value
         ), name
+
+
+# Openings -----------------------------------------------------------------------------------
+
+
+def test_losses_of_perforated_areas(method):
+    rows = method.table("f", "`K_plate/f^2`, thin plate")
+    expected = []
+    for f in (0.2, 0.3, 0.4, 0.5, 0.6, 0.7):
+        plate, cut_out = float(plate_loss(f)), float(cut_out_loss())
+        joined = 0.707 * (1 - f) ** 0.375
+        expected.append(
+            [
+                f"{f:g}",
+                f"{plate / f**2:.3g}",
+                f"{(joined + 1 - f) ** 2 / f**2:.3g}",
+                f"{square_edge_screen(f):.3g}",
+                f"{plate + f * f * cut_out:.2f}",
+                f"{plate + f * f:.2f}",
+                f"{(1 + joined) ** 2:.2f}",
+            ]
+        )
+        # Ours lies between jets that win pressure back and jets that do not.
+        assert plate + f * f < plate + f * f * cut_out < (1 + joined) ** 2
+    assert rows == expected
 
 
 # Outside: boxes against the numerical experiments -------------------------------------------

@@ -5,6 +5,7 @@ import sys
 from pathlib import Path
 
 from enclosure_check.library import load_finishes, load_materials
+from enclosure_check.library.opening_rows import load_filters, load_louvres, load_screens
 from enclosure_check.library.page import library_page
 
 ROOT = Path(__file__).parents[2]
@@ -38,11 +39,14 @@ def test_the_command_writes_the_page():
     assert run.stderr == ""
 
 
-def test_every_row_is_on_the_page_once_with_eight_cells_and_its_source():
+def test_every_row_is_on_the_page_once_with_all_its_cells_and_its_source():
     cells = table_rows(library_page())
-    expected = [*load_materials().values(), *load_finishes().values()]
+    surfaces = [*load_materials().values(), *load_finishes().values()]
+    louvres, screens, filters = load_louvres(), load_screens(), load_filters()
+    expected = [*surfaces, *louvres.values(), *screens.values(), *filters.values()]
     assert [row[0] for row in cells] == [f"`{row.name}`" for row in expected]
-    assert all(len(row) == 8 for row in cells)
+    counts = [8] * len(surfaces) + [5] * len(louvres) + [6] * len(screens) + [5] * len(filters)
+    assert [len(row) for row in cells] == counts
     assert [row[-1] for row in cells] == [row.source for row in expected]
 
 
