@@ -36,6 +36,9 @@ TOP = {
 }
 # Slow to import, and needed by few: inside a function or not at all.
 LAZY = ("scipy", "rich", "matplotlib", "pandas")
+# Where the library of the models may be imported at the top: a check runs without the models.
+MODELS = ("pydantic", "pydantic_core")
+OF_MODELS = "description"
 MOST_LINES = 450
 # Programs that write a page of the documentation or a table; they print when run, as their last line.
 PAGES = ("description/page.py", "description/quick_page.py", "library/page.py")
@@ -86,6 +89,8 @@ def wrong_imports(room: str, tree: ast.AST) -> list[str]:
         head, _, rest = each.module.partition(".")
         if head in LAZY and each.at_top:
             wrong.append(f"line {each.line}: {each.module} at the top of a module")
+        if head in MODELS and each.at_top and room != OF_MODELS:
+            wrong.append(f"line {each.line}: {each.module} at the top, outside the models")
         if head == "enclosure_check" and rest.partition(".")[0] not in allowed:
             wrong.append(f"line {each.line}: {each.module}")
     return wrong
@@ -189,6 +194,9 @@ def test_files_can_be_held_in_mind(folder):
         ("physics", "import scipy.special", True),
         ("physics", "def f():\n    import scipy.special", False),
         ("report", "from rich.table import Table", True),
+        ("findings", "from pydantic import Field", True),
+        ("findings", "def f():\n    from pydantic import Field", False),
+        ("description", "from pydantic import Field", False),
         ("cli", "from enclosure_check import __version__", False),
         ("cli", "from enclosure_check.network.links import X", True),
         ("report", "from enclosure_check.cli.output import X", True),

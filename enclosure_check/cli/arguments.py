@@ -1,6 +1,8 @@
 """The parser of the command line; each command adds its own arguments."""
 
 import argparse
+import os
+import sys
 from typing import Any, NoReturn
 
 from enclosure_check import __version__
@@ -21,13 +23,32 @@ examples:
 COMMANDS = (check_command, schema_command)
 
 
+def _formatter(prog: str) -> argparse.RawDescriptionHelpFormatter:
+    """Give a formatter for help; told its width, it need not load the compression libraries."""
+    return argparse.RawDescriptionHelpFormatter(prog, width=_columns() - 2)
+
+
+def _columns() -> int:
+    """Give the columns of the terminal, as `shutil.get_terminal_size` finds them."""
+    try:
+        columns = int(os.environ["COLUMNS"])
+    except (KeyError, ValueError):
+        columns = 0
+    if columns <= 0:
+        try:
+            columns = os.get_terminal_size(sys.__stdout__.fileno()).columns if sys.__stdout__ else 0
+        except (ValueError, OSError):
+            columns = 0
+    return columns or 80
+
+
 class Parser(argparse.ArgumentParser):
     """A parser whose options are never abbreviated and whose messages are printable."""
 
     def __init__(self, **settings: Any) -> None:
         super().__init__(
             allow_abbrev=False,
-            formatter_class=argparse.RawDescriptionHelpFormatter,
+            formatter_class=_formatter,
             **settings,
         )
 
