@@ -130,6 +130,8 @@ Checked after the keys themselves, with every option and condition applied:
   the wall they face. Overlapping outlines are a warning.
 - The path to the board is `theta_jb_k_per_w` when given, else `theta_jc_bottom_k_per_w` and
   `bottom_contact_k_per_w` in series (no joint when only the first is given), else 0.1 mm of air.
+- `output_w` and `efficiency_pct` go together and exclude `power_w`: the power is
+  `output_w (100 / efficiency_pct - 1)`. A mode's own power in `power_by_mode_w` is always heat.
 - `power_slope_pct_per_k` and `power_doubling_k` exclude each other.
 - A pad of a part on a board goes to the wall the part faces, is no larger than the part and, before
   assembly, at least as thick as the distance. It is compressed to that distance; to less than half

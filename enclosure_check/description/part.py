@@ -82,6 +82,18 @@ class PartType(Strict):
     power_w: PowerW | None = Field(
         None, description="Power turned to heat; scaled by the mode's `power_pct`. [W]"
     )
+    output_w: PowerW | None = Field(
+        None,
+        description="What a converter gives out; with `efficiency_pct` instead of `power_w`, and "
+        "scaled by the mode's `power_pct` alike. [W]",
+    )
+    efficiency_pct: float | None = Field(
+        None,
+        gt=0,
+        le=100,
+        description="Of what a converter takes in at that output, the share it gives out; the rest "
+        "turns to heat. [%]",
+    )
     power_by_mode_w: dict[Name, PowerW] = Field(
         default_factory=dict,
         description="Power by operating mode; a mode not named here takes `power_w` times the "

@@ -30,6 +30,7 @@ from enclosure_check.description.resolve_board import (
 )
 from enclosure_check.description.resolve_box import Rows, reserved_names
 from enclosure_check.description.resolve_limit import resolve_limit
+from enclosure_check.description.resolve_power import stated_power
 
 if TYPE_CHECKING:
     from enclosure_check.description.document import Document
@@ -114,7 +115,7 @@ class PartResolver:
         )
         of_type = kind.power_by_mode_w if kind is not None else {}
         by_mode = {**of_type, **part.power_by_mode_w}
-        stated = pick("power_w")
+        stated = stated_power(pick, where, remarks)
         if stated is None and not by_mode:
             remarks.assume("no power stated: taken as none", name)
         check_mode_names(
