@@ -299,6 +299,9 @@ class SurroundingsCase:
     altitude_m: float
     sky: str
     sky_c: float | None
+    wind_m_per_s: float = 0.0
+    wind_from: WallName | None = None
+    """The side the wind comes from; None for any side."""
 
 
 @dataclass(frozen=True)

@@ -245,6 +245,8 @@ MODELS: Final[dict[str, dict[str, tuple[Any, ...]]]] = {
         'altitude_m': (('float', -500, True, 9000, True), 0.0),
         'sky': (('words', ('none', 'clear', 'overcast', 'given')), 'none'),
         'sky_c': (('float', -150, True, 500, True), None),
+        'wind_m_per_s': (('float', 0, True, 60, True), 0.0),
+        'wind_from': (('words', ('any', 'left', 'right', 'front', 'back', 'bottom', 'top')), 'any'),
         'sun_w_per_m2': (('mapping', ('words', ('left', 'right', 'front', 'back', 'bottom', 'top')), ('float', 0, True, 2000, True), 0, inf), {}),
     },
     'Tilt': {

@@ -16,6 +16,7 @@ from enclosure_check.description.resolve_box import (
 )
 from enclosure_check.description.resolve_features import check_covered
 from enclosure_check.description.resolve_part import PartResolver
+from enclosure_check.description.resolve_wind import check_wind
 
 if TYPE_CHECKING:
     from enclosure_check.description.document import Document
@@ -46,6 +47,7 @@ def resolve(document: Document, condition: str, option: str | None = None) -> Ca
         from enclosure_check.description.resolve_openings import check_uncovered, resolve_openings
 
         walls = resolve_openings(document, inside, walls, remarks)
+    check_wind(surroundings, walls, remarks)
     boards = resolve_boards(document, inside, rows, remarks)
     parts = PartResolver(document, inside, walls, boards, rows, remarks).resolve()
     check_covered(boards, parts, remarks)

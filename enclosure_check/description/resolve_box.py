@@ -252,6 +252,8 @@ def resolve_surroundings(document: Document, remarks: Remarks) -> SurroundingsCa
         given.altitude_m,
         given.sky,
         given.sky_c,
+        given.wind_m_per_s,
+        None if given.wind_from == "any" else given.wind_from,
     )
 
 

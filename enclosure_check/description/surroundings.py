@@ -12,7 +12,6 @@ class Surroundings(Strict):
     """What the box stands in."""
 
     NOT_YET: ClassVar[dict[str, str]] = {
-        "wind_m_per_s": "wind is not computed in this version; still air is the hot case",
         "humidity_pct": "condensation is not computed in this version",
     }
     air_c: AmbientC = Field(description="Temperature of the air around the box. [C]")
@@ -30,6 +29,18 @@ class Surroundings(Strict):
         "overcast (as the air), or given by `sky_c`.",
     )
     sky_c: TemperatureC | None = Field(None, description="Radiant temperature of the sky. [C]")
+    wind_m_per_s: float = Field(
+        0.0,
+        ge=0,
+        le=60,
+        description="Speed of the air past the box, at the box and not at a weather station; 0 is "
+        "still air, the hot case. [m/s]",
+    )
+    wind_from: Literal["any", WallName] = Field(
+        "any",
+        description="The side of the box the wind comes from; any: from no certain side, each wall "
+        "counts with its longer edge.",
+    )
     sun_w_per_m2: dict[WallName, IrradianceWPerM2] = Field(
         default_factory=dict,
         description="Irradiance falling on each wall, direct and diffuse together, in the plane "

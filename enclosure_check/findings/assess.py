@@ -31,8 +31,8 @@ def assess(solved: Solved) -> ConditionFinding:
     """Give everything found for one solved case."""
     case, solution = solved.case, solved.solution
     parts = part_findings(solved)
-    walls = wall_findings(solved)
     ranges = range_findings(solved)
+    walls = wall_findings(solved, ranges)
     verdicts: list[Verdict] = [part.verdict for part in parts]
     verdicts += [wall.touch_verdict for wall in walls if wall.touch_verdict is not None]
     return ConditionFinding(
@@ -42,6 +42,8 @@ def assess(solved: Solved) -> ConditionFinding:
         mode=case.mode,
         surrounding_air_c=case.surroundings.air_c,
         altitude_m=case.surroundings.altitude_m,
+        wind_m_per_s=case.surroundings.wind_m_per_s,
+        wind_from=case.surroundings.wind_from,
         parts=parts,
         part_heat=part_heat(solved),
         boards=board_findings(solved),

@@ -1,5 +1,7 @@
 """A hand calculation beside the answer: isolated-plate laws summed over an isothermal box."""
 
+from typing import TYPE_CHECKING
+
 import numpy as np
 
 from enclosure_check.findings.results import HandEstimate
@@ -14,6 +16,9 @@ from enclosure_check.physics.plates import (
     mcadams_down,
 )
 from enclosure_check.physics.radiation import STEFAN_BOLTZMANN
+
+if TYPE_CHECKING:
+    from enclosure_check.physics.wind import Wind
 
 # Rises the hand calculation is tabulated at [K]; between them it goes nearly as a power.
 _RISES = np.geomspace(0.01, 1000.0, 61)
@@ -41,7 +46,7 @@ def hand_estimate(solved: Solved) -> HandEstimate:
     )
     warm = abs(mean_rise) > _LEAST_RISE_K
     emissivity = np.array([wall.finish_outside.emissivity for wall in walls])
-    by_rise = plates_heat(box, emissivity, reference, kind.pressure_pa)
+    by_rise = plates_heat(box, emissivity, reference, kind.pressure_pa, _wind(kind))
     plates: float | None = None
     if warm and mean_rise > 0 and by_rise[0] < heat < by_rise[-1]:
         plates = float(np.exp(np.interp(np.log(heat), np.log(by_rise), np.log(_RISES))))
@@ -55,14 +60,25 @@ def hand_estimate(solved: Solved) -> HandEstimate:
     )
 
 
+def _wind(kind: BoxFilm) -> "Wind | None":
+    """Give the wind past the box; none in still air."""
+    wind: Wind | None = getattr(kind, "wind", None)
+    return wind
+
+
 def plates_heat(
-    box: BoxGeometry, emissivity: FloatArray, air_k: float, pressure_pa: float
+    box: BoxGeometry,
+    emissivity: FloatArray,
+    air_k: float,
+    pressure_pa: float,
+    wind: "Wind | None" = None,
 ) -> FloatArray:
     """Heat of the isothermal box by isolated plates and radiation, at each tabulated rise [W].
 
     Sides by Churchill & Chu (laminar) with the length along gravity, tops by ``0.54 Ra^(1/4)`` and
     bottoms by ``0.27 Ra^(1/4)`` with area over perimeter; a tilted face takes the larger of the two
-    kinds with its component of gravity. Radiation to black surroundings at air temperature.
+    kinds with its component of gravity. In wind each is joined with the plate along it. Radiation
+    to black surroundings at air temperature.
     """
     rise = _RISES[None, :]
     properties = air(air_k + rise / 2, pressure_pa)
@@ -78,6 +94,13 @@ def plates_heat(
     film = properties.conductivity * np.maximum(
         np.where(upright, vertical / fall, 0.0), horizontal / span
     )
+    if wind is not None:
+        from enclosure_check.physics.wind import combined_film, wind_film
+
+        rises = np.broadcast_to(rise, film.shape)
+        film = combined_film(
+            film, wind_film(rises, air_k + rises / 2, pressure_pa, wind).coefficient
+        )
     fourth = (air_k + rise) ** 4 - air_k**4
     flux = film * rise + emissivity[:, None] * STEFAN_BOLTZMANN * fourth
     return np.asarray((box.open_area[:, None] * flux).sum(axis=0))

@@ -6,6 +6,8 @@ from enclosure_check.findings.results import (
     AirLayer,
     HeatBalance,
     OpeningsFinding,
+    RangeFinding,
+    Regime,
     WallFinding,
     judge,
 )
@@ -13,12 +15,16 @@ from enclosure_check.findings.solved import Solved
 from enclosure_check.network.units import millimetres
 
 
-def wall_findings(solved: Solved) -> tuple[WallFinding, ...]:
-    """Give the six walls."""
-    return tuple(_wall(solved, name) for name in solved.case.walls)
+def wall_findings(solved: Solved, ranges: tuple[RangeFinding, ...] = ()) -> tuple[WallFinding, ...]:
+    """Give the six walls; what the wind does there is found in the ``ranges`` of its law."""
+    regimes = {row.surface: row.regime for row in ranges}
+    return tuple(
+        _wall(solved, name, regimes.get(f"wall {name} outside in wind"))
+        for name in solved.case.walls
+    )
 
 
-def _wall(solved: Solved, name: str) -> WallFinding:
+def _wall(solved: Solved, name: str, regime: Regime | None) -> WallFinding:
     wall = next(wall for key, wall in solved.case.walls.items() if key == name)
     places, owner = solved.network.places, f"wall:{name}"
     outside = solved.at(places.wall_outside[name].mean)
@@ -39,6 +45,7 @@ def _wall(solved: Solved, name: str) -> WallFinding:
         touch_max_c=wall.touch_max_c,
         touch_margin_k=touch,
         touch_verdict=None if touch is None else judge(touch, solved.case.margin_k or 0.0),
+        wind_regime=regime,
         position=position_of(solved.case.positions.walls, name),
     )
 

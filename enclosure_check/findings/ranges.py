@@ -3,7 +3,7 @@
 import numpy as np
 
 from enclosure_check.description.names import WALL_NAMES
-from enclosure_check.findings.results import RangeFinding
+from enclosure_check.findings.results import RangeFinding, Regime
 from enclosure_check.findings.solved import Solved
 from enclosure_check.network.films import BoxFilm, FilmAudit
 from enclosure_check.network.inside_air import InsideAir
@@ -27,9 +27,14 @@ def range_findings(solved: Solved) -> tuple[RangeFinding, ...]:
             audit = kind.audit(rise[kind.nodes], reference)
             faces = enumerate(zip(WALL_NAMES, kind.geometry.open_faces, strict=True))
             names = {k: f"wall {wall} outside" for k, (wall, counts) in faces if counts}
-            rows += _films(audit, kind.pressure_pa, names)
+            outside = _films(audit, kind.pressure_pa, names)
             if names:
-                rows.append(_whole_box(kind, audit))
+                outside.append(_whole_box(kind, audit))
+            if solved.case.surroundings.wind_m_per_s > 0:
+                from enclosure_check.findings.wind import ranges_in_wind
+
+                outside = ranges_in_wind(kind, rise[kind.nodes], reference, names, outside)
+            rows += outside
     return tuple(rows)
 
 
@@ -37,7 +42,7 @@ def _films(audit: FilmAudit, pressure_pa: float, names: dict[int, str]) -> list[
     """Give the films of the surfaces named."""
     prandtl = air(audit.film_temperature, pressure_pa).prandtl
     return [
-        _finding(
+        range_finding(
             surface=name,
             key=_LAWS[int(audit.law[at])],
             length=float(audit.length[at]),
@@ -61,7 +66,7 @@ def _whole_box(kind: BoxFilm, audit: FilmAudit) -> RangeFinding:
     length = float(np.sqrt(box.body_area))
     heat = float(np.sum(box.open_area[:, None] * audit.coefficient * np.abs(audit.rise)))
     film = heat / max(float(box.open_area.sum()) * rise, 1e-300)
-    return _finding(
+    return range_finding(
         surface="whole box outside",
         key="box_shelter",
         length=length,
@@ -73,7 +78,7 @@ def _whole_box(kind: BoxFilm, audit: FilmAudit) -> RangeFinding:
     )
 
 
-def _finding(
+def range_finding(
     surface: str,
     key: str,
     length: float,
@@ -82,14 +87,19 @@ def _finding(
     prandtl: float,
     nusselt: float,
     film: float,
+    reynolds: float | None = None,
+    regime: Regime | None = None,
 ) -> RangeFinding:
+    """Give a film with its groups, those of the wind where it is one in wind."""
     law = CORRELATIONS[key]
     outside_by = 1.0
-    if abs(rise) > _NO_RISE_K:
-        if rayleigh < law.valid_from:
-            outside_by = rayleigh / law.valid_from
-        elif rayleigh > law.valid_to:
-            outside_by = rayleigh / law.valid_to
+    number = rayleigh if reynolds is None else reynolds
+    # Nor does the law of the wind matter where it adds next to nothing.
+    if abs(rise) > _NO_RISE_K and regime != "natural":
+        if number < law.valid_from:
+            outside_by = number / law.valid_from
+        elif number > law.valid_to:
+            outside_by = number / law.valid_to
     return RangeFinding(
         surface=surface,
         correlation=key,
@@ -104,6 +114,10 @@ def _finding(
         valid_to=law.valid_to if np.isfinite(law.valid_to) else None,
         inside_range=outside_by == 1.0,
         outside_by=outside_by,
+        range_of="rayleigh" if reynolds is None else "reynolds",
+        reynolds=reynolds,
+        gr_over_re2=None if reynolds is None else rayleigh / prandtl / reynolds**2,
+        regime=regime,
     )
 
 
@@ -117,11 +131,13 @@ def range_warnings(ranges: tuple[RangeFinding, ...]) -> list[str]:
     for key, rows in by_law.items():
         law = CORRELATIONS[key]
         worst = max(rows, key=lambda row: max(row.outside_by, 1 / max(row.outside_by, 1e-300)))
-        where = f"{worst.surface} (Ra {worst.rayleigh:.2g})"
+        group = "Ra" if worst.reynolds is None else "Re"
+        number = worst.rayleigh if worst.reynolds is None else worst.reynolds
+        where = f"{worst.surface} ({group} {number:.2g})"
         if len(rows) > 1:
             where = f"{len(rows)} surfaces, furthest {where}"
         lines.append(
-            f"{law.name}: outside its range (Ra {law.valid_from:.3g} to {law.valid_to:.3g}) on "
-            f"{where}"
+            f"{law.name}: outside its range ({group} {law.valid_from:.3g} to "
+            f"{law.valid_to:.3g}) on {where}"
         )
     return lines

@@ -13,6 +13,7 @@ from enclosure_check.findings.about import about as _about
 from enclosure_check.records import dataclass
 
 Verdict = Literal["pass", "marginal", "fail"]
+Regime = Literal["forced", "mixed", "natural"]
 VERDICTS: tuple[Verdict, ...] = ("pass", "marginal", "fail")
 
 
@@ -126,6 +127,10 @@ class WallFinding:
     position: Annotated[
         Position | None, _about("Where the wall, or what it follows, stands; null if unknown.")
     ]
+    wind_regime: Annotated[
+        Regime | None,
+        _about("What moves the air along it: wind, both, buoyancy; null without wind there."),
+    ]
 
 
 @dataclass(frozen=True)
@@ -211,14 +216,26 @@ class RangeFinding:
     rayleigh: Annotated[float, _about("Rayleigh number.")]
     nusselt: Annotated[float, _about("Nusselt number.")]
     film_w_per_m2k: Annotated[float, _about("Film coefficient. [W/m2K]")]
-    valid_from: Annotated[float, _about("Lower end of the law's range of Rayleigh numbers.")]
+    valid_from: Annotated[float, _about("Lower end of the law's range of `range_of`.")]
     valid_to: Annotated[
         float | None,
-        _about("Upper end of the law's range of Rayleigh numbers; null when it has none."),
+        _about("Upper end of the law's range of `range_of`; null when it has none."),
     ]
     inside_range: Annotated[bool, _about("Whether the law is used inside its range.")]
     outside_by: Annotated[
-        float, _about("Rayleigh number over the end of the range it passes, 1 inside.")
+        float, _about("That number over the end of the range it passes, 1 inside.")
+    ]
+    range_of: Annotated[
+        Literal["rayleigh", "reynolds"], _about("The number the law's range is given in.")
+    ]
+    reynolds: Annotated[float | None, _about("Reynolds number; null for free convection.")]
+    gr_over_re2: Annotated[
+        float | None,
+        _about("Grashof over squared Reynolds number; null for free convection."),
+    ]
+    regime: Annotated[
+        Regime | None,
+        _about("By that ratio: forced below 0.1, natural above 10; null for free convection."),
     ]
 
 
@@ -244,6 +261,8 @@ class ConditionFinding:
     mode: Annotated[str | None, _about("Operating mode.")]
     surrounding_air_c: Annotated[float, _about("Surrounding air. [C]")]
     altitude_m: Annotated[float, _about("Altitude. [m]")]
+    wind_m_per_s: Annotated[float, _about("Wind past the box. [m/s]")]
+    wind_from: Annotated[str | None, _about("Where it comes from; null from any side.")]
     parts: Annotated[tuple[PartFinding, ...], _about("Worst margin first.")]
     part_heat: Annotated[tuple[PartHeat, ...], _about("Hottest first.")]
     boards: Annotated[tuple[BoardFinding, ...], _about("By board.")]

@@ -1,7 +1,7 @@
 """Collects nodes and links while the small builders run, then makes the network of them."""
 
 from collections.abc import Sequence
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 from numpy.typing import ArrayLike
@@ -19,6 +19,9 @@ from enclosure_check.network.links import (
 from enclosure_check.network.network import Network, Places, Sources
 from enclosure_check.physics.box import BoxGeometry
 from enclosure_check.records import dataclass, field
+
+if TYPE_CHECKING:
+    from enclosure_check.physics.wind import Wind
 
 # Resistances below this, and conductances over its inverse, are far beyond what any part of a
 # check can tell; stated as zero they are taken as this. [K/W]
@@ -183,22 +186,26 @@ class NetworkBuilder:
         air: int,
         geometry: BoxGeometry,
         labels: Sequence[LinkLabel],
+        wind: "Wind | None" = None,
     ) -> None:
         """Join the outer faces of a box, all six in order, to the air around it."""
         blocks = Blocks((*_ENDS, "surface"), ("area",))
         for index, (face, label) in enumerate(zip(cells, labels, strict=True)):
             area = geometry.area[index] / face.size
             blocks.add(face.size, (face.ravel(), air, self.label(label), index), (area,))
-        nodes = np.array([*means, air], dtype=np.intp)
-        self.add(
-            BoxFilm(
-                **blocks.columns(),
-                nodes=nodes,
-                geometry=geometry,
-                factor=np.ones((6, 1)),
-                pressure_pa=self.pressure_pa,
-            )
-        )
+        given: dict[str, Any] = {
+            **blocks.columns(),
+            "nodes": np.array([*means, air], dtype=np.intp),
+            "geometry": geometry,
+            "factor": np.ones((6, 1)),
+            "pressure_pa": self.pressure_pa,
+        }
+        if wind is None:
+            self.add(BoxFilm(**given))
+        else:
+            from enclosure_check.network.wind import BoxFilmInWind
+
+            self.add(BoxFilmInWind(**given, wind=wind, wind_factor=np.ones((6, 1))))
 
     def heat(
         self,

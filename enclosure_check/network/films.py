@@ -67,7 +67,7 @@ class BoxFilm(Links):
         return np.concatenate((np.stack((self.a, self.b)), means))
 
     def audit(self, rise: FloatArray, reference_k: FloatArray) -> FilmAudit:
-        """Give the films of the faces from the rises of ``nodes`` [K], shape (7, v)."""
+        """Give the free films of the faces from the rises of ``nodes`` [K], shape (7, v)."""
         faces, air = rise[:6], rise[6]
         film = box_film(faces + reference_k, air + reference_k, self.pressure_pa, self.geometry)
         return FilmAudit(
@@ -80,9 +80,17 @@ class BoxFilm(Links):
             film.law,
         )
 
+    def films(self, rise: FloatArray, reference_k: FloatArray, copies: int = 1) -> FloatArray:
+        """Film coefficients of the faces from the rises of ``nodes`` [W/m2K], shape (6, c v).
+
+        ``copies`` is how many copies c of the variants the rises hold, shape (7, c v).
+        """
+        film: FloatArray = copied(self.factor, copies) * self.audit(rise, reference_k).coefficient
+        return film
+
     def heat(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
         """Heat rate from each cell to the air [W], shape (m, v)."""
-        film = self.factor * self.audit(rise[2:, 0], reference_k).coefficient
+        film = self.films(rise[2:, 0], reference_k)
         heat: FloatArray = film[self.surface] * self.area * (rise[0] - rise[1])
         return heat
 
@@ -98,8 +106,7 @@ class BoxFilm(Links):
         steps = np.arange(7)
         shifted[steps, steps + 1, :] += DIFFERENCE_K
         copies = np.tile(np.broadcast_to(reference_k, (v,)), 8)
-        film = self.audit(shifted.reshape(7, 8 * v), copies).coefficient.reshape(6, 8, v)
-        film = self.factor[:, None] * film
+        film = self.films(shifted.reshape(7, 8 * v), copies, 8).reshape(6, 8, v)
         direct = film[:, 0][self.surface] * self.area
         by_node = np.moveaxis((film[:, 1:] - film[:, :1]) / DIFFERENCE_K, 1, 0)
         indirect = by_node[:, self.surface] * (self.area * (rise[0] - rise[1]))
@@ -109,10 +116,15 @@ class BoxFilm(Links):
         """Factors at a nominal rise [W/K], shape (9, m, 1)."""
         rise = np.full((7, 1), NOMINAL_RISE_K)
         rise[-1] = 0.0
-        film = self.factor[:, :1] * self.audit(rise, reference_k).coefficient
+        film = self.films(rise, reference_k)[:, :1]
         direct = film[self.surface] * self.area[:, :1]
         return np.concatenate((np.stack((direct, -direct)), np.zeros((7, *direct.shape))))
 
     def parameter_of(self, name: str) -> IntArray:
         """Which value of a parameter is each link's own: that of its face, or its own."""
         return self.surface if name == "factor" else np.arange(len(self.a))
+
+
+def copied(values: FloatArray, copies: int) -> FloatArray:
+    """Give values by variant (6, v) for copies of all variants (6, c v); one for all as it is."""
+    return values if values.shape[1] == 1 else np.tile(values, copies)

@@ -2,6 +2,7 @@
 
 import math
 from itertools import combinations
+from typing import TYPE_CHECKING
 
 import numpy as np
 
@@ -18,6 +19,9 @@ from enclosure_check.network.site import InsideSurface, Site
 from enclosure_check.network.units import kelvin, metres, metres_3
 from enclosure_check.physics.box import box_geometry
 from enclosure_check.physics.radiation import sky_view_factor
+
+if TYPE_CHECKING:
+    from enclosure_check.physics.wind import Wind
 
 # A wall that conducts better than this through its thickness is taken as even across it: films of
 # 20 W/m2K leave a difference below 1 % of theirs.
@@ -40,7 +44,18 @@ def build_walls(case: Case, site: Site) -> None:
         site.ambient,
         box_geometry(outside, case.up, open_faces),
         [LinkLabel(f"wall:{name}", "convection_outside") for name in WALL_NAMES],
+        _wind(case, outside),
     )
+
+
+def _wind(case: Case, outside: Vector) -> "Wind | None":
+    """Give the wind past the box; None in still air."""
+    speed, side = case.surroundings.wind_m_per_s, case.surroundings.wind_from
+    if speed <= 0:
+        return None
+    from enclosure_check.physics.wind import wind_past_box
+
+    return wind_past_box(outside, speed, None if side is None else AXIS[side])
 
 
 def _build_wall(case: Case, name: WallName, inside: Vector, outside: Vector, site: Site) -> None:

@@ -47,9 +47,13 @@ def write_condition(page: Page, condition: ConditionFinding, shared: tuple[str, 
 
 def _site(page: Page, condition: ConditionFinding) -> None:
     mode = "" if condition.mode is None else f"; mode {page.clean(condition.mode)}"
+    wind = ""
+    if condition.wind_m_per_s > 0:
+        side = "any side" if condition.wind_from is None else f"the {condition.wind_from}"
+        wind = f", wind {condition.wind_m_per_s:g} m/s from {side}"
     page.paragraph(
         f"Surrounding air {tenths(condition.surrounding_air_c)} C, altitude "
-        f"{condition.altitude_m:.0f} m{mode}."
+        f"{condition.altitude_m:.0f} m{wind}{mode}."
     )
 
 

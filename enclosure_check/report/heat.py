@@ -75,6 +75,11 @@ _WALLS = (
         Column("Faces", yields=True),
         lambda wall: _FACES.get(wall.mounting, wall.mounting.replace("_", " ")),
     ),
+    Shown[WallFinding](
+        Column("Wind"),
+        lambda wall: wall.wind_regime or "-",
+        lambda wall: wall.wind_regime is not None,
+    ),
     Shown[WallFinding](right("Out C"), lambda wall: tenths(wall.outside_c)),
     Shown[WallFinding](
         right("Max C"),
@@ -111,9 +116,11 @@ _WALLS = (
 def _walls(page: Page, condition: ConditionFinding) -> None:
     page.gap()
     touch = any(wall.touch_verdict is not None for wall in condition.walls)
+    windy = any(wall.wind_regime is not None for wall in condition.walls)
     page.paragraph(
         "Walls (W: heat that leaves there, negative where it enters, and sun absorbed"
-        + ("; touch: margin to the highest temperature allowed)" if touch else ")"),
+        + ("; touch: margin to the highest temperature allowed" if touch else "")
+        + ("; wind: convection forced by it, natural, or mixed)" if windy else ")"),
         style="bold",
     )
     page.records(_WALLS, condition.walls)

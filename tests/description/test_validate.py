@@ -171,8 +171,8 @@ def test_missing_is_told_at_the_mapping_that_lacks_it():
             1,
             1,
             "surroundings",
-            "missing; needs a mapping with keys out of air_c, radiant_c, altitude_m, sky, sky_c "
-            "or sun_w_per_m2",
+            "missing; needs a mapping with keys out of air_c, radiant_c, altitude_m, sky, sky_c, "
+            "wind_m_per_s, wind_from or sun_w_per_m2",
         ),
         Problem(
             "box.yaml",

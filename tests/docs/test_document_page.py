@@ -78,7 +78,7 @@ def test_a_section_has_the_keys_of_its_model(read_page):
 def test_keys_not_computed_yet_are_told_with_what_to_do(read_page):
     told = set(re.findall(r"^- `(\w+)`: (.+)$", read_page("docs/document.md").text, re.MULTILINE))
     expected = {item for model in set(models()) for item in model.NOT_YET.items()}
-    assert len(expected) > 5
+    assert expected
     assert told >= expected
 
 

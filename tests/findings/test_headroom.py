@@ -44,6 +44,7 @@ VARIANTS = {
     "radiant": {"surroundings": {"radiant_c": 45}},
     "sun": {"surroundings": {"sun_w_per_m2": {"top": 700}}},
     "sky": {"surroundings": {"sky": "given", "sky_c": -10}},
+    "wind": {"surroundings": {"wind_m_per_s": 1.5, "wind_from": "left"}},
     "line": {"parts": {"U1": {"power_slope_pct_per_k": 0.4}}},
     "leakage": {"parts": {"U1": {"power_doubling_k": 90}}},
     "tilted": {"box": {"tilt": {"lean_back_deg": 90, "roll_right_deg": 30}}},

@@ -4,7 +4,7 @@ import pytest
 from support.cases import board, box, checked, part, patched, solved
 
 from enclosure_check.findings.assess import assess
-from enclosure_check.findings.ranges import _finding, range_warnings
+from enclosure_check.findings.ranges import range_finding, range_warnings
 from enclosure_check.findings.results import RangeFinding
 from enclosure_check.physics.air import air
 from enclosure_check.physics.correlation import CORRELATIONS
@@ -42,7 +42,7 @@ def test_every_film_is_listed():
 
 
 def row(rayleigh: float, rise: float = 10.0, key: str = "lloyd_moran_hot_up") -> RangeFinding:
-    return _finding("wall top outside", key, 0.1, rise, rayleigh, 0.7, 5.0, 4.0)
+    return range_finding("wall top outside", key, 0.1, rise, rayleigh, 0.7, 5.0, 4.0)
 
 
 LAW = CORRELATIONS["lloyd_moran_hot_up"]
@@ -149,11 +149,11 @@ def test_the_doubled_body_of_a_wall_mounted_box():
 
 def test_one_warning_per_law_naming_the_furthest():
     outside = [
-        _finding("near", LAW.key, 0.1, 5, LAW.valid_from / 2, 0.7, 5, 4),
-        _finding("far", LAW.key, 0.1, 5, LAW.valid_from / 50, 0.7, 5, 4),
-        _finding("over", LAW.key, 0.1, 5, LAW.valid_to * 10, 0.7, 5, 4),
-        _finding("fine", LAW.key, 0.1, 5, 1e6, 0.7, 5, 4),
-        _finding("other", "raithby_hollands_hot_down", 0.1, 5, 1.0, 0.7, 5, 4),
+        range_finding("near", LAW.key, 0.1, 5, LAW.valid_from / 2, 0.7, 5, 4),
+        range_finding("far", LAW.key, 0.1, 5, LAW.valid_from / 50, 0.7, 5, 4),
+        range_finding("over", LAW.key, 0.1, 5, LAW.valid_to * 10, 0.7, 5, 4),
+        range_finding("fine", LAW.key, 0.1, 5, 1e6, 0.7, 5, 4),
+        range_finding("other", "raithby_hollands_hot_down", 0.1, 5, 1.0, 0.7, 5, 4),
     ]
     first, second = range_warnings(tuple(outside))
     assert first.startswith(LAW.name)
@@ -164,14 +164,14 @@ def test_one_warning_per_law_naming_the_furthest():
 
 def test_a_far_larger_number_is_further_than_a_little_smaller_one():
     outside = [
-        _finding("below", LAW.key, 0.1, 5, LAW.valid_from / 2, 0.7, 5, 4),
-        _finding("above", LAW.key, 0.1, 5, LAW.valid_to * 10, 0.7, 5, 4),
+        range_finding("below", LAW.key, 0.1, 5, LAW.valid_from / 2, 0.7, 5, 4),
+        range_finding("above", LAW.key, 0.1, 5, LAW.valid_to * 10, 0.7, 5, 4),
     ]
     assert "furthest above" in range_warnings(tuple(outside))[0]
 
 
 def test_many_surfaces_are_counted():
-    outside = [_finding(f"s{index}", LAW.key, 0.1, 5, 1.0, 0.7, 5, 4) for index in range(7)]
+    outside = [range_finding(f"s{index}", LAW.key, 0.1, 5, 1.0, 0.7, 5, 4) for index in range(7)]
     (line,) = range_warnings(tuple(outside))
     assert "on 7 surfaces, furthest s" in line
 

@@ -17,8 +17,9 @@ from enclosure_check.network.inside_air import InsideAir
 from enclosure_check.network.links import Conduction, LinkKind, PatchExchange, Radiation
 from enclosure_check.network.network import Network
 from enclosure_check.network.outer_gap import OuterGap
+from enclosure_check.network.wind import BoxFilmInWind
 
-KINDS = (Conduction, Radiation, PatchExchange, BoxFilm, OuterGap, InsideAir)
+KINDS = (Conduction, Radiation, PatchExchange, BoxFilm, BoxFilmInWind, OuterGap, InsideAir)
 # All of them tilted, with boards that face each other, so that every law has all its parts.
 SEEDS = (12, 19, 53)
 REFERENCE_K = np.array([253.15, 298.15, 340.15])
@@ -34,6 +35,13 @@ NETWORKS = [network_of(random_document(random.Random(seed)), COARSE) for seed in
 
 Case = tuple[Network, LinkKind]
 CASES: list[Case] = [(network, kind) for network in NETWORKS for kind in network.kinds]
+# Of boxes in wind the outside alone is another kind: where wind and buoyancy weigh about the same,
+# and where the wind is turbulent along the longest faces.
+for seed, wind_m_per_s, wind_from in ((12, 0.4, "any"), (53, 11.0, "left")):
+    _made = random_document(random.Random(seed))
+    _made["surroundings"] |= {"wind_m_per_s": wind_m_per_s, "wind_from": wind_from}
+    _windy = network_of(_made, COARSE)
+    CASES += [(_windy, kind) for kind in _windy.kinds if isinstance(kind, BoxFilm)]
 IDS = [f"{type(kind).__name__}-{index}" for index, (_, kind) in enumerate(CASES)]
 every_kind = pytest.mark.parametrize(("network", "kind"), CASES, ids=IDS)
 
@@ -137,6 +145,7 @@ def test_every_parameter_is_reached():
         "Radiation": ("area", "exchange_area", "share", "emissivity"),
         "PatchExchange": ("exchange_area", "emissivity_a", "emissivity_b"),
         "BoxFilm": ("area", "factor"),
+        "BoxFilmInWind": ("area", "factor", "wind_factor"),
         "OuterGap": ("area",),
         "InsideAir": ("factor",),
     }

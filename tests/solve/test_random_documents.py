@@ -90,4 +90,9 @@ def test_they_reach_everything_they_are_meant_to():
     tilts = {(each.box.tilt.lean_back_deg, each.box.tilt.roll_right_deg) for each in found}
     assert len(tilts) > 40
     assert any(each.surroundings.sun_w_per_m2 for each in found)
+    winds = [each.surroundings.wind_m_per_s for each in found]
+    assert winds.count(0) > 40
+    assert min(wind for wind in winds if wind > 0) < 0.1
+    assert max(winds) > 4.5
+    assert {each.surroundings.wind_from for each in found} == {"any", *WALL_NAMES}
     assert {each.mode for each in found} == {None, "full", "low", "off"}

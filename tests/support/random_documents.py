@@ -2,8 +2,8 @@
 
 Import it as ``from support.random_documents import random_document``. The same random state gives
 the same document. Boxes of 30 mm to 2 m inside, up to 2 kW per square metre of open wall, air of
--40 to 70 C, 0 to 5000 m, any tilt, every kind of mounting, up to four boards in any plane, up to
-twenty parts with every kind of path. Power that grows with temperature stays so small beside what
+-40 to 70 C, 0 to 5000 m, wind of up to 5 m/s, any tilt, every kind of mounting, up to four boards
+in any plane, up to twenty parts with every kind of path. Power that grows with temperature stays so small beside what
 cools its part that a steady state exists.
 """
 
@@ -95,7 +95,21 @@ class _Maker:
         }
         if self.chance(0.5):
             document["mode"] = rng.choice(["full", "full", "low", "off"])
+        if self.chance(0.4):
+            document["surroundings"] |= self.wind(walls)
         return document
+
+    def wind(self, walls: Data) -> Data:
+        """Wind of 0 to 5 m/s, as often weak as strong, from any side or from one that is free."""
+        speed = self.rng.choice([0, self.rng.uniform(0, 5), self.log(0.01, 5)])
+        given: Data = {"wind_m_per_s": speed}
+        mounted = {
+            name: wall["mounting"]["kind"] for name, wall in walls.items() if "mounting" in wall
+        }
+        free = [name for name in WALL_NAMES if mounted.get(name) in (None, "insulated")]
+        if self.chance(0.5):
+            given["wind_from"] = self.rng.choice(["any", *free])
+        return given
 
     def tilt(self) -> Data:
         kind = self.rng.choice(["upright", "quarter", "any"])
@@ -375,6 +389,8 @@ def mirrored(document: Data, axis: int) -> Data:
     around = dict(document["surroundings"])
     if "sun_w_per_m2" in around:
         around["sun_w_per_m2"] = keys(around["sun_w_per_m2"])
+    if "wind_from" in around:
+        around["wind_from"] = name(around["wind_from"])
     image["surroundings"] = around
     image["boards"] = {
         key: {
