@@ -48,7 +48,8 @@ def _made(cls: type, *, frozen: bool, eq: bool, order: bool) -> type:
         if each.default is not MISSING or each.default_factory is not MISSING
     }
     made._record_key = staticmethod(_getter([each.name for each in every if each.compare]))
-    methods: dict[str, Callable[..., Any] | None] = {"__init__": _init, "__repr__": _repr}
+    init = _init_and_more if hasattr(made, "__post_init__") else _init
+    methods: dict[str, Callable[..., Any] | None] = {"__init__": init, "__repr__": _repr}
     if eq:
         methods |= {"__eq__": _eq, "__hash__": _hash if frozen else None}
     if order:
@@ -69,23 +70,36 @@ def _getter(names: list[str]) -> Callable[[Any], Any]:
 
 
 def _init(self: Any, /, *args: Any, **named: Any) -> None:
-    cls = type(self)
-    names = cls.__match_args__
+    cls = self.__class__
     # A frozen class refuses attributes, but its dictionary can be filled.
     values = self.__dict__
-    values.update(zip(names, args, strict=False))
-    values.update(named)
-    if len(values) != len(args) + len(named):
+    if args:
+        values.update(zip(cls.__match_args__, args, strict=False))
+    if named:
+        values.update(named)
+        complete = values.keys() == cls._record_names
+    else:
+        complete = len(values) == len(cls.__match_args__)
+    if not complete or len(values) != len(args) + len(named):
+        _complete(cls, values, len(args) + len(named))
+
+
+def _init_and_more(self: Any, /, *args: Any, **named: Any) -> None:
+    _init(self, *args, **named)
+    self.__post_init__()
+
+
+def _complete(cls: Any, values: dict[str, Any], given: int) -> None:
+    """Fill in defaults, or refuse what was given."""
+    names = cls.__match_args__
+    if len(values) != given:
         raise TypeError(f"{cls.__name__}() got too many or repeated arguments")
-    if len(values) < len(names):
-        for name, each in cls._record_defaults.items():
-            if name not in values:
-                made = each.default_factory is not MISSING
-                values[name] = each.default_factory() if made else each.default
+    for name, each in cls._record_defaults.items():
+        if name not in values:
+            made = each.default_factory is not MISSING
+            values[name] = each.default_factory() if made else each.default
     if values.keys() != cls._record_names:
         _refuse_arguments(cls.__name__, names, values)
-    if hasattr(cls, "__post_init__"):
-        self.__post_init__()
 
 
 def _refuse_arguments(owner: str, names: tuple[str, ...], given: dict[str, Any]) -> NoReturn:

@@ -19,7 +19,7 @@ from enclosure_check.description.problems import (
     nearest,
     quoted,
 )
-from enclosure_check.description.quick import validated
+from enclosure_check.description.quick import Known, validated
 from enclosure_check.description.resolve import resolve
 from enclosure_check.description.tolerances import like_paths, matches_number
 from enclosure_check.description.yaml_nodes import MappingNode, locate
@@ -57,6 +57,7 @@ class Checked:
         self.options, self.conditions = options, conditions
         self.condition_names = tuple(condition_names)
         self.cases: dict[Combination, Case] = {}
+        self.known: Known = {}
         self.merged: list[MappingNode] = []
         self.tolerances: dict[str, Problem] = {}
         # Combinations whose models are valid, so that they were resolved.
@@ -85,7 +86,7 @@ class Checked:
         if condition is not None:
             node = merge_patch(node, self.conditions[condition])
         try:
-            document = validated(node, self.file)
+            document = validated(node, self.file, self.known)
         except DocumentError as error:
             for problem in error.problems:
                 self._note(problem, False, combination)

@@ -25,6 +25,9 @@ if TYPE_CHECKING:
     from enclosure_check.description.box import Mounting
     from enclosure_check.description.document import Document
 
+# Parts of a document found valid, by model and identity of the node, which is kept beside them:
+# the documents under two conditions share what neither patch changes.
+Known = dict[tuple[str, int], tuple[Node, "Plain"]]
 # What stands at a place, as `quick_models.py` words it: its kind first, then what that needs.
 Kind = tuple[Any, ...]
 
@@ -48,7 +51,7 @@ class _DoubtError(Exception):
     """What was looked at is not plainly valid."""
 
 
-def validated(node: MappingNode, file: str) -> "Document":
+def validated(node: MappingNode, file: str, known: Known | None = None) -> "Document":
     """Give the validated document.
 
     Parameters
@@ -57,13 +60,15 @@ def validated(node: MappingNode, file: str) -> "Document":
         The document, every patch applied.
     file
         The file's name, for the messages.
+    known
+        What is already known of its parts; more is added.
 
     Raises
     ------
     DocumentError
         With every error at once, each at its place in the file.
     """
-    document = plainly_valid(node)
+    document = plainly_valid(node, known)
     if document is not None:
         return document
     from enclosure_check.description.validate import validate
@@ -71,10 +76,10 @@ def validated(node: MappingNode, file: str) -> "Document":
     return validate(node, file)
 
 
-def plainly_valid(node: MappingNode) -> "Document | None":
+def plainly_valid(node: MappingNode, known: Known | None = None) -> "Document | None":
     """Give the document if it is valid without any doubt, else None."""
     try:
-        return cast("Document", _model(("model", "Document"), node))
+        return cast("Document", _model(("model", "Document"), node, {} if known is None else known))
     except _DoubtError:
         return None
 
@@ -107,8 +112,11 @@ def _step(kind: Kind, step: str | int) -> Kind | None:
 # One function per kind ----------------------------------------------------------------------
 
 
-def _model(kind: Kind, node: Node) -> Plain:
+def _model(kind: Kind, node: Node, known: Known) -> Plain:
     """Take ``("model", NAME)``."""
+    identity = (kind[1], id(node))
+    if identity in known:
+        return known[identity][1]
     rows = MODELS[kind[1]]
     if not isinstance(node, MappingNode) or not rows.keys() >= node.removed.keys():
         raise _DoubtError
@@ -119,12 +127,14 @@ def _model(kind: Kind, node: Node) -> Plain:
             raise _DoubtError
         if not is_null(value):
             inner = row[0]
-            values[key] = _TAKE[inner[0]](inner, value)
+            values[key] = _TAKE[inner[0]](inner, value, known)
     given = frozenset(values)
     for key, row in rows.items():
         if key not in values:
             values[key] = _default(row)
-    return Plain(values, given)
+    plain = Plain(values, given)
+    known[identity] = (node, plain)
+    return plain
 
 
 def _default(row: tuple[Any, ...]) -> Any:
@@ -142,7 +152,7 @@ def _blank(name: str) -> Plain:
     return Plain(values, frozenset())
 
 
-def _mapping(kind: Kind, node: Node) -> dict[str, Any]:
+def _mapping(kind: Kind, node: Node, known: Known) -> dict[str, Any]:
     """Take ``("mapping", KEY, VALUE, LEAST, MOST)``."""
     if not isinstance(node, MappingNode):
         raise _DoubtError
@@ -152,7 +162,7 @@ def _mapping(kind: Kind, node: Node) -> dict[str, Any]:
     for key, value in node.entries.items():
         of_key(key_kind, key)
         if not is_null(value):
-            values[key] = take(inner, value)
+            values[key] = take(inner, value, known)
     for key in node.removed:
         of_key(key_kind, key)
     if not least <= len(values) <= most:
@@ -160,16 +170,16 @@ def _mapping(kind: Kind, node: Node) -> dict[str, Any]:
     return values
 
 
-def _list(kind: Kind, node: Node) -> list[Any]:
+def _list(kind: Kind, node: Node, known: Known) -> list[Any]:
     """Take ``("list", ITEM, LEAST, MOST)``."""
     _, inner, least, most = kind
     if not isinstance(node, SequenceNode) or not least <= len(node.items) <= most:
         raise _DoubtError
     take = _TAKE[inner[0]]
-    return [take(inner, item) for item in node.items]
+    return [take(inner, item, known) for item in node.items]
 
 
-def _number(kind: Kind, node: Node) -> float:
+def _number(kind: Kind, node: Node, _: Known) -> float:
     """Take ``("float", LOW, WHETHER LOW ITSELF, HIGH, WHETHER HIGH ITSELF)``."""
     value = node.value if isinstance(node, ScalarNode) else None
     if type(value) is not float and type(value) is not int:
@@ -178,7 +188,7 @@ def _number(kind: Kind, node: Node) -> float:
     return float(value)
 
 
-def _whole(kind: Kind, node: Node) -> int:
+def _whole(kind: Kind, node: Node, _: Known) -> int:
     """Take ``("int", ...)``, bounds as of a float."""
     value = node.value if isinstance(node, ScalarNode) else None
     if type(value) is not int:
@@ -196,7 +206,7 @@ def _bounded(kind: Kind, value: float) -> None:
         raise _DoubtError
 
 
-def _text(kind: Kind, node: Node) -> str:
+def _text(kind: Kind, node: Node, _: Known) -> str:
     """Take ``("text", LEAST, MOST)``."""
     value = node.value if isinstance(node, ScalarNode) else None
     if not isinstance(value, str):
@@ -210,7 +220,7 @@ def _length(kind: Kind, value: str) -> None:
         raise _DoubtError
 
 
-def _word(kind: Kind, node: Node) -> str | int:
+def _word(kind: Kind, node: Node, _: Known) -> str | int:
     """Take ``("words", ALLOWED)``: texts or whole numbers."""
     value = node.value if isinstance(node, ScalarNode) else None
     if type(value) is not str and type(value) is not int:
@@ -224,7 +234,7 @@ def _listed(kind: Kind, value: str | int) -> None:
         raise _DoubtError
 
 
-def _truth(_: Kind, node: Node) -> bool:
+def _truth(_: Kind, node: Node, __: Known) -> bool:
     """Take ``("bool",)``."""
     value = node.value if isinstance(node, ScalarNode) else None
     if not isinstance(value, bool):
@@ -232,12 +242,12 @@ def _truth(_: Kind, node: Node) -> bool:
     return value
 
 
-def _anything(_: Kind, node: Node) -> Any:
+def _anything(_: Kind, node: Node, __: Known) -> Any:
     """Take ``("any",)``."""
     return to_data(node)
 
 
-_TAKE: dict[str, Callable[[Kind, Any], Any]] = {
+_TAKE: dict[str, Callable[[Kind, Any, Known], Any]] = {
     "model": _model,
     "mapping": _mapping,
     "list": _list,

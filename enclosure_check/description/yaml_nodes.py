@@ -9,7 +9,7 @@ refused here; everything wrong with a file is collected before it is raised. Onl
 import re
 from collections.abc import Iterator
 from itertools import islice
-from typing import Any
+from typing import Any, NamedTuple
 
 import yaml
 
@@ -46,8 +46,7 @@ _BYTE_ORDER_MARKS = (
 _LOADER: Any = getattr(yaml, "CSafeLoader", yaml.SafeLoader)
 
 
-@dataclass(frozen=True)
-class ScalarNode:
+class ScalarNode(NamedTuple):
     """A single value and where it stands; ``text`` is what was written, without its quotes."""
 
     value: Scalar

@@ -31,6 +31,7 @@ from enclosure_check.description.load import load_document
 from enclosure_check.description.merge import merge_patch
 from enclosure_check.description.problems import DocumentError
 from enclosure_check.description.quick import (
+    Known,
     Plain,
     is_mapping_by_name,
     mounting_by_default,
@@ -213,6 +214,7 @@ def test_what_it_knows_is_written():
 @pytest.mark.parametrize("path", [*SAMPLES, FULL], ids=lambda path: path.stem)
 def test_valid_documents_are_accepted(path):
     node = read_yaml(path.read_bytes(), path.name)
+    known: Known = {}
     patches = [MappingNode({}, {}, 1, 1)]
     for key in ("options", "conditions"):
         if key in node.entries:
@@ -222,6 +224,20 @@ def test_valid_documents_are_accepted(path):
         patched = merge_patch(node, patch)
         assert plainly_valid(patched) is not None
         assert agree(patched)
+        # Again with what is known of the others.
+        assert same(plainly_valid(patched, known), decided(patched))
+
+
+def test_one_node_at_two_places_is_looked_at_twice():
+    board = "boards: {main: &one {parallel_to: back, length_mm: 1, width_mm: 1}}"
+    node = node_of(f"{TOP}{board}\nparts: {{U1: *one}}\n")
+    assert plainly_valid(node, {}) is None
+    sound = node_of(f"{TOP}finishes: {{a: &a {{emissivity: 1}}, b: *a}}\n")
+    plain = plainly_valid(sound, {})
+    assert plain.finishes["a"] is plain.finishes["b"]
+    empty = node_of(TOP + "defaults: {wall: &none {}, board: *none}\n")
+    assert agree(empty)
+    assert plainly_valid(empty, {}).defaults.board.material is None
 
 
 def test_random_documents_are_accepted():
@@ -373,5 +389,5 @@ def test_a_check_does_not_load_the_models(path):
 
 def test_a_document_is_loaded_either_way(monkeypatch):
     quickly = load_document(str(FULL)).cases()
-    monkeypatch.setattr("enclosure_check.description.quick.plainly_valid", lambda _: None)
+    monkeypatch.setattr("enclosure_check.description.quick.plainly_valid", lambda *_: None)
     assert load_document(str(FULL)).cases() == quickly
