@@ -111,8 +111,8 @@ class Opening(Strict):
         gt=0,
         le=10_000,
         description="Loss coefficient of inlet and outlet together on the velocity in the free "
-        "area, at high Reynolds number; instead of what follows from kind and sizes. A `screen` or "
-        "`filter` comes on top.",
+        "area, without what viscosity adds; instead of what follows from kind and sizes. A "
+        "`screen` or `filter` comes on top.",
     )
     blocked_pct: PercentUpTo100 = Field(
         0.0, description="Share of the opening that is covered; at 100 it is closed. [%]"

@@ -3,6 +3,7 @@
 from enclosure_check.description.case import OpeningCase
 from enclosure_check.network.units import metres
 from enclosure_check.physics.openings import (
+    CONTRACTION_LEFT,
     ROUND_FRICTION,
     cut_out_loss,
     duct_friction,
@@ -26,15 +27,10 @@ class OpeningLoss:
     hole_m: float
     """Hydraulic diameter of one hole."""
     loss: float
-    """K of inlet and outlet together, at high Reynolds number [-]."""
+    """K of inlet and outlet together, without what viscosity adds [-]."""
     viscous: float
     """C of what viscosity adds [-]."""
     filter_pa_s_per_m: float
-
-    @property
-    def discharge(self) -> float:
-        """Discharge coefficient at high Reynolds number, without a filter [-]."""
-        return float(self.loss**-0.5)
 
 
 def opening_loss(opening: OpeningCase) -> OpeningLoss:
@@ -42,7 +38,8 @@ def opening_loss(opening: OpeningCase) -> OpeningLoss:
 
     Holes of an area are a plate in series with the cut-out that the area is: the plate's loss on
     the velocity v in the holes, the cut-out's on that of the whole area, f v. A mesh over an
-    opening is one more in series.
+    opening is one more in series. Holes lose what they do in free convection, where little is left
+    of the contraction.
 
     Parameters
     ----------
@@ -53,11 +50,12 @@ def opening_loss(opening: OpeningCase) -> OpeningLoss:
     length_ratio = opening.thickness_mm / opening.hole_mm
     round_or_square = opening.hole_aspect is None
     friction = ROUND_FRICTION if round_or_square else float(duct_friction(opening.hole_aspect or 0))
-    rim = float(cut_out_loss(opening.thickness_mm / opening.area_mm)) * share**2
+    rim_ratio = opening.thickness_mm / opening.area_mm
+    rim = float(cut_out_loss(rim_ratio, CONTRACTION_LEFT)) * share**2
     loss = viscous = 0.0
     if opening.kind != "mesh":
         # A cut-out has no plate: its share is 1.
-        loss = float(plate_loss(share, length_ratio))
+        loss = float(plate_loss(share, length_ratio, CONTRACTION_LEFT))
         viscous = float(viscous_loss(length_ratio, friction))
     loss = loss + rim if opening.stated_loss is None else opening.stated_loss
     if opening.screen is not None:

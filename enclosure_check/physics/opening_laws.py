@@ -13,17 +13,19 @@ OPENING_LAWS = (
         key="perforated_plate",
         name="Idelchik, holes and perforated plates",
         equation="K = 0.5 (1 - f)^0.75 + tau (1 - f)^1.375 + (1 - f)^2 on the velocity in the "
-        "holes; tau = (2.4 - l) 10^-(0.25 + 0.535 l^8/(0.05 + l^7)), l = length / diameter",
+        "holes; tau = 0.25 (2.4 - l) 10^-(0.25 + 0.535 l^8/(0.05 + l^7)), l = length / diameter",
         characteristic_length="hydraulic diameter of a hole",
         variable="reynolds",
-        valid_from=1e5,
-        valid_to=math.inf,
+        valid_from=25.0,
+        valid_to=1e4,
         prandtl_from=0.0,
         prandtl_to=math.inf,
-        accuracy_pct=15.0,
-        accuracy_basis=f"{SCATTER}: fluids after Blevins, thin plates, f 0.2 to 0.7 (2 % low to "
-        "12 % high); with what viscosity adds up to 60 % high about Re = 100 (from memory)",
-        reference=f"{IDELCHIK}, diagrams 8-1, 8-3 and 4-12 (from memory)",
+        accuracy_pct=20.0,
+        accuracy_basis=f"{MEMORY}: thin hole with what viscosity adds, against the author's table; "
+        "with all of tau, for Re above 1e5, 1 % low to 12 % high of fluids after Blevins, f 0.2 to "
+        "0.7",
+        reference=f"{IDELCHIK}, diagrams 8-1, 8-3, 4-12 and 4-19 (from memory); one share of tau "
+        "for all Re made for this project",
     ),
     Correlation(
         key="creeping_hole",

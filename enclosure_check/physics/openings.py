@@ -7,9 +7,8 @@ All losses here are of the form
 with v the velocity in the free area and d the hydraulic diameter of a hole: smooth, monotone and
 linear in v near zero. K is the loss at high Reynolds number, C that of creeping flow.
 
-Their sum is the upper side of what is measured between the two: about Re = 100 a sharp-edged hole
-lets a fifth more air through than the sum says (I. E. Idelchik, Handbook of Hydraulic Resistance,
-diagram 4-19, from memory: K = 2.0 at Re = 100, the sum gives 3.2).
+In free convection holes run at Reynolds numbers of 20 to some thousands, where a jet hardly
+contracts. There K is taken with what is then left of the contraction, `CONTRACTION_LEFT`.
 """
 
 from __future__ import annotations
@@ -20,6 +19,10 @@ from numpy.typing import ArrayLike
 
 FloatArray = npt.NDArray[np.float64]
 
+#: Share of the contraction's loss that is left in free convection, Re = 25 to 1e4 [-]. Mean of
+#: K(Re) less 12 pi / Re over Re = 100 to 4000 for a sharp-edged hole between large rooms (I. E.
+#: Idelchik, Handbook of Hydraulic Resistance, diagram 4-19, from memory).
+CONTRACTION_LEFT = 0.25
 #: C of creeping flow through a round hole in a thin wall [-]: dp = 3 mu Q / r^3.
 CREEPING_HOLE = 12.0 * np.pi
 #: Loss of a woven mesh at high Reynolds number over (1 - f^2)/f^2 [-].
@@ -56,7 +59,9 @@ def edge_loss(length_ratio: ArrayLike) -> FloatArray:
     return np.asarray((2.4 - short) * 10.0**-phi)
 
 
-def plate_loss(free_share: ArrayLike, length_ratio: ArrayLike = 0.0) -> FloatArray:
+def plate_loss(
+    free_share: ArrayLike, length_ratio: ArrayLike = 0.0, contraction: float = 1.0
+) -> FloatArray:
     """Loss of a perforated plate or of slots, on the velocity in the holes.
 
     ``K = 0.5 (1 - f)^0.75 + tau (1 - f)^1.375 + (1 - f)^2``: inlet, contraction and widening of
@@ -69,6 +74,8 @@ def plate_loss(free_share: ArrayLike, length_ratio: ArrayLike = 0.0) -> FloatArr
         Free area over the area the holes stand in, f, from 0 to 1 [-].
     length_ratio : array_like
         Length of a hole over its hydraulic diameter [-].
+    contraction : float
+        Share of tau that counts: 1 at Re above 1e5, `CONTRACTION_LEFT` in free convection [-].
 
     Returns
     -------
@@ -80,22 +87,25 @@ def plate_loss(free_share: ArrayLike, length_ratio: ArrayLike = 0.0) -> FloatArr
     I. E. Idelchik, Handbook of Hydraulic Resistance, diagrams 8-1 and 8-3 (from memory).
     """
     closed = 1.0 - np.asarray(free_share, dtype=np.float64)
-    tau = edge_loss(length_ratio)
+    tau = contraction * edge_loss(length_ratio)
     return np.asarray(0.5 * closed**0.75 + tau * closed**1.375 + closed**2)
 
 
-def cut_out_loss(length_ratio: ArrayLike = 0.0) -> FloatArray:
+def cut_out_loss(length_ratio: ArrayLike = 0.0, contraction: float = 1.0) -> FloatArray:
     """Loss of a plain hole between two large rooms, on its own velocity.
 
     ``K = 1.5 + tau``: `plate_loss` of a vanishing free share. 2.85 for a thin wall, which is a
-    discharge coefficient ``1 / sqrt(K)`` of 0.59; 0.60 to 0.65 are in use for sharp openings.
+    discharge coefficient ``1 / sqrt(K)`` of 0.59; 0.60 to 0.65 are in use for sharp openings. In
+    free convection 1.84, with 12 pi / Re on top.
 
     Parameters
     ----------
     length_ratio : array_like
         Length of the hole over its hydraulic diameter [-].
+    contraction : float
+        As of `plate_loss` [-].
     """
-    return plate_loss(0.0, length_ratio)
+    return plate_loss(0.0, length_ratio, contraction)
 
 
 def loss_of_discharge(coefficient: ArrayLike) -> FloatArray:

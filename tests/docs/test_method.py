@@ -11,7 +11,7 @@ from published import experiments_inside as inside
 
 from enclosure_check.physics.air import air, rayleigh_number
 from enclosure_check.physics.correlation import CORRELATIONS
-from enclosure_check.physics.openings import cut_out_loss, plate_loss
+from enclosure_check.physics.openings import CONTRACTION_LEFT, cut_out_loss, plate_loss
 from enclosure_check.physics.plates import (
     churchill_chu_laminar,
     hot_side_up_laminar,
@@ -111,6 +111,8 @@ def test_losses_of_perforated_areas(method):
     expected = []
     for f in (0.2, 0.3, 0.4, 0.5, 0.6, 0.7):
         plate, cut_out = float(plate_loss(f)), float(cut_out_loss())
+        slow_plate = float(plate_loss(f, 0.0, CONTRACTION_LEFT))
+        slow_cut_out = float(cut_out_loss(0.0, CONTRACTION_LEFT))
         joined = 0.707 * (1 - f) ** 0.375
         expected.append(
             [
@@ -121,6 +123,7 @@ def test_losses_of_perforated_areas(method):
                 f"{plate + f * f * cut_out:.2f}",
                 f"{plate + f * f:.2f}",
                 f"{(1 + joined) ** 2:.2f}",
+                f"{slow_plate + f * f * slow_cut_out:.2f}",
             ]
         )
         # Ours lies between jets that win pressure back and jets that do not.

@@ -6,6 +6,7 @@ from support.cases import box, case_of
 
 from enclosure_check.network.opening_losses import opening_loss
 from enclosure_check.physics.openings import (
+    CONTRACTION_LEFT,
     cut_out_loss,
     mesh_loss,
     plate_loss,
@@ -25,7 +26,7 @@ def test_a_cut_out():
     found = lost(kind="hole", diameter_mm=20)
     assert found.free_area_m2 == pytest.approx(np.pi * 1e-4)
     assert found.hole_m == pytest.approx(0.02)
-    assert found.loss == pytest.approx(float(cut_out_loss(0.1)))
+    assert found.loss == pytest.approx(float(cut_out_loss(0.1, CONTRACTION_LEFT)))
     assert found.viscous == pytest.approx(12 * np.pi + 6.4)
     assert found.filter_pa_s_per_m == 0
 
@@ -39,8 +40,8 @@ def test_a_row_loses_what_one_does():
 
 def test_an_area_is_a_plate_in_its_cut_out():
     found = lost(**AREA)
-    rim = float(cut_out_loss(2 / (4 * 3200 / 240)))
-    assert found.loss == pytest.approx(float(plate_loss(0.4, 2 / 3)) + 0.16 * rim)
+    rim = float(cut_out_loss(2 / (4 * 3200 / 240), CONTRACTION_LEFT))
+    assert found.loss == pytest.approx(float(plate_loss(0.4, 2 / 3, CONTRACTION_LEFT)) + 0.16 * rim)
     assert found.viscous == pytest.approx(float(viscous_loss(2 / 3)))
 
 

@@ -4,7 +4,9 @@ import numpy as np
 import pytest
 from fluids.filters import round_edge_screen, square_edge_screen
 
+from enclosure_check.physics.correlation import CORRELATIONS
 from enclosure_check.physics.openings import (
+    CONTRACTION_LEFT,
     cut_out_loss,
     duct_friction,
     edge_loss,
@@ -75,6 +77,32 @@ def test_a_hole_is_a_plate_with_few_holes_and_a_gap_none():
     assert cut_out_loss() ** -0.5 == pytest.approx(0.60, abs=0.01)
     # A hole with rounded flow: half a head at the inlet, one at the outlet.
     assert cut_out_loss(10.0) == pytest.approx(1.5)
+
+
+# Sharp-edged hole between large rooms, I. E. Idelchik, diagram 4-19, from memory:
+# K = zeta_phi + 2.85 epsilon.
+REYNOLDS = np.array([25, 40, 60, 100, 200, 400, 1000, 2000, 4000, 1e4])
+ZETA_PHI = np.array([1.94, 1.38, 1.14, 0.89, 0.69, 0.64, 0.39, 0.30, 0.22, 0.15])
+EPSILON = np.array([0.34, 0.36, 0.37, 0.40, 0.42, 0.46, 0.53, 0.59, 0.64, 0.74])
+SHARP = ZETA_PHI + 2.85 * EPSILON
+
+
+def test_holes_in_free_convection_against_idelchik():
+    """Within the stated 20 %, so that a flow is within 10 %."""
+    ours = cut_out_loss(0.0, CONTRACTION_LEFT) + viscous_loss(0.0) / REYNOLDS
+    np.testing.assert_allclose(
+        ours, SHARP, rtol=CORRELATIONS["perforated_plate"].accuracy_pct / 100
+    )
+    # With all of the contraction it is half as much again where holes run.
+    turbulent = cut_out_loss(0.0) + viscous_loss(0.0) / REYNOLDS
+    assert np.max(turbulent / SHARP) > 1.5
+
+
+def test_share_of_the_contraction_is_the_mean_of_the_table():
+    among = (REYNOLDS >= 100) & (REYNOLDS <= 4000)
+    left = SHARP[among] - viscous_loss(0.0) / REYNOLDS[among] - 1.5
+    share = np.mean(left) / float(edge_loss(0.0))
+    assert pytest.approx(float(share), abs=0.01) == CONTRACTION_LEFT
 
 
 def test_losses_fall_with_the_free_share():
