@@ -62,6 +62,7 @@ def check(
         conditions=tuple(found),
         caution=CAUTION,
         inputs=document.inputs(option),
+        baseline=None,
     )
 
 

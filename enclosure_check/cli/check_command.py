@@ -4,6 +4,7 @@ import argparse
 from collections.abc import Sequence
 from typing import TYPE_CHECKING, Any, NamedTuple
 
+from enclosure_check.cli.baseline import DEFAULT_LOSS_K, against, read_baseline
 from enclosure_check.cli.codes import CODES, ExitCode, UsageError, run_exit_code
 from enclosure_check.cli.output import (
     CannotWriteError,
@@ -18,6 +19,7 @@ from enclosure_check.cli.output import (
 if TYPE_CHECKING:
     from enclosure_check.findings.run import Run
 
+MOST_LOSS_K = 1000.0
 FORMATS = ("text", "json")
 
 _ABOUT = """\
@@ -33,6 +35,7 @@ examples:
   enclosure-check check box.yaml --condition noon_sun --strict
   enclosure-check check enclosures/ --quiet
   enclosure-check check enclosures/ --write json=run.json --write junit=run.xml
+  enclosure-check check enclosures/ --baseline main.json --allow-loss-k 0.5
 """
 
 _COLOUR = """\
@@ -85,6 +88,18 @@ def add(commands: Any) -> None:
         help="also write a report of this format there; may be given several times",
     )
     check.add_argument(
+        "--baseline",
+        metavar="FILE",
+        help="compare with an earlier JSON report: exit 1 when a margin fell by more than allowed, "
+        "even when it is still there",
+    )
+    check.add_argument(
+        "--allow-loss-k",
+        type=_loss,
+        metavar="K",
+        help=f"what a margin may lose against the baseline (default: {DEFAULT_LOSS_K:g})",
+    )
+    check.add_argument(
         "--quiet",
         action="store_true",
         help="one line per document, the verdict and the smallest margin, in place of the text "
@@ -102,6 +117,16 @@ def _destination(text: str) -> Destination:
     return Destination(name, path)
 
 
+def _loss(text: str) -> float:
+    try:
+        loss = float(text)
+    except ValueError:
+        loss = -1.0
+    if not 0 <= loss <= MOST_LOSS_K:
+        raise argparse.ArgumentTypeError(f"given {text!r}, allowed: 0 to {MOST_LOSS_K:g} K")
+    return loss
+
+
 def run(arguments: argparse.Namespace) -> ExitCode:
     """Check documents and give the reports out.
 
@@ -117,12 +142,17 @@ def run(arguments: argparse.Namespace) -> ExitCode:
 
     if arguments.quiet and arguments.format != "text":
         raise UsageError("--quiet shortens the text report; it does not go with --format")
+    if arguments.allow_loss_k is not None and arguments.baseline is None:
+        raise UsageError("--allow-loss-k needs a --baseline to compare with")
     conditions = None
     if arguments.condition:
         conditions = tuple(dict.fromkeys(arguments.condition))
     destinations = [*arguments.write, Destination(arguments.format, arguments.output)]
     documents = find_documents(arguments.files)
     _refuse_overwriting(destinations, documents.paths)
+    earlier = None
+    if arguments.baseline is not None:
+        earlier = read_baseline(arguments.baseline, documents.paths)
     with Progress(wanted=not arguments.quiet) as progress:
         run, said = answer_all(
             documents.paths,
@@ -130,6 +160,8 @@ def run(arguments: argparse.Namespace) -> ExitCode:
             Asked(arguments.option, conditions, arguments.strict),
             progress.tell,
         )
+    if earlier is not None:
+        run = against(run, earlier, arguments.baseline, arguments.allow_loss_k)
     for line in said:
         say(line)
     give_out(run, destinations, several=is_several(arguments.files), short=arguments.quiet)

@@ -23,7 +23,8 @@ CODES = """\
 exit codes:
   0    every limit is kept
   1    a limit is passed; or a verdict is marginal, where the document states
-       a margin wanted or --strict is given
+       a margin wanted or --strict is given; or a margin fell by more than
+       --allow-loss-k since the --baseline
   2    bad input, wrong usage, or an output that cannot be written
   3    no converged answer
   70   an error of this program; 130 interrupted
@@ -40,7 +41,9 @@ def exit_code(report: "Report", *, strict: bool) -> ExitCode:
     """Give the exit code of a report."""
     from enclosure_check.findings.run import stops
 
-    return ExitCode.FAIL if stops(report.verdict, report, strict=strict) else ExitCode.PASS
+    lost = report.baseline is not None and report.baseline.verdict == "fail"
+    failed = lost or stops(report.verdict, report, strict=strict)
+    return ExitCode.FAIL if failed else ExitCode.PASS
 
 
 def run_exit_code(run: "Run") -> ExitCode:

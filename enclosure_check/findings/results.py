@@ -10,6 +10,7 @@ from collections.abc import Mapping
 from typing import Annotated, Literal
 
 from enclosure_check.findings.about import about as _about
+from enclosure_check.findings.baseline import Baseline
 from enclosure_check.records import dataclass
 
 Verdict = Literal["pass", "marginal", "fail"]
@@ -298,6 +299,9 @@ class Report:
             "Every value the document states, the option applied, by its dotted path: what a "
             "later check compares with."
         ),
+    ]
+    baseline: Annotated[
+        Baseline | None, _about("What changed against an earlier result; null without one.")
     ]
 
 

@@ -44,6 +44,10 @@ class Run:
     strict: Annotated[bool, _about("Whether a marginal verdict stops in any case.")]
     documents: Annotated[tuple[Report, ...], _about("Reports, in the order asked for.")]
     without_answer: Annotated[tuple[NoAnswer, ...], _about("Documents without an answer.")]
+    unchecked: Annotated[
+        tuple[str, ...],
+        _about("Documents of the earlier result compared with that were not asked for."),
+    ]
 
 
 def run_of(
@@ -58,6 +62,7 @@ def run_of(
         strict=strict,
         documents=documents,
         without_answer=without_answer,
+        unchecked=(),
     )
 
 

@@ -19,11 +19,21 @@ def write_run(run: Run, options: WriterOptions) -> str:
     page.heading(_headline(run), "" if run.verdict == "error" else run.verdict)
     page.gap()
     room = options.width * 2 // 5
-    page.table(_COLUMNS, [_row(page, report, room) for report in run.documents])
+    compared = any(report.baseline is not None for report in run.documents)
+    columns = [*_COLUMNS, Column("Baseline")] if compared else _COLUMNS
+    rows = [
+        (*_row(page, report, room), *([_baseline(report)] if compared else []))
+        for report in run.documents
+    ]
+    page.table(columns, rows)
     if run.without_answer:
         page.gap()
         page.heading("Without an answer, see the messages", "fail")
         page.bullets(page.clean(each.document) for each in run.without_answer)
+    if run.unchecked:
+        page.gap()
+        page.heading("In the baseline, but not checked now", "marginal")
+        page.bullets(page.clean(document) for document in run.unchecked)
     each_alone = replace(options, several=False)
     rule = "=" * options.width
     reports = [f"\n{rule}\n{write_text(report, each_alone)}" for report in run.documents]
@@ -57,6 +67,15 @@ def _row(page: Page, report: Report, room: int) -> tuple[str | Cell, ...]:
     return (tail(page.clean(report.document), room), verdict, *_smallest(report))
 
 
+def _baseline(report: Report) -> Cell:
+    """Say in a word how the margins stand against an earlier result."""
+    baseline = report.baseline
+    if baseline is None or not baseline.known:
+        return Cell("new", "")
+    lost = sum(change.lost for change in baseline.limits)
+    return Cell(f"{lost} LOST", "fail") if lost else Cell("kept", "pass")
+
+
 def _smallest(report: Report) -> tuple[str, str]:
     found = smallest_of(report)
     if found is None:
@@ -70,4 +89,13 @@ def verdict_line(report: Report) -> str:
     """Give a report in one line: the verdict and the smallest margin."""
     margin, where = _smallest(report)
     kept = f"smallest margin {margin} K: {where}" if margin != "-" else where
-    return f"{report.document}: {WORDS[report.verdict]}, {kept}"
+    return f"{report.document}: {WORDS[report.verdict]}, {kept}{_against(report)}"
+
+
+def _against(report: Report) -> str:
+    """Say how the margins stand against an earlier result, nothing without one."""
+    if report.baseline is None:
+        return ""
+    from enclosure_check.report.changes import headline
+
+    return f"; against {report.baseline.file}: {headline(report.baseline)}"

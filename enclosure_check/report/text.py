@@ -28,6 +28,10 @@ def write_text(report: Report, options: WriterOptions) -> str:
     _title(page, report)
     _verdict(page, report, conditions)
     _summary(page, conditions)
+    if report.baseline is not None:
+        from enclosure_check.report.baseline_text import write_baseline
+
+        write_baseline(page, report, report.baseline)
     shared = shared_assumptions(report.conditions)
     for condition in conditions:
         write_condition(page, condition, shared)

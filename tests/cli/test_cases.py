@@ -39,7 +39,7 @@ def test_case(folder: Path, run, tmp_path: Path, request: pytest.FixtureRequest)
     for path in folder.iterdir():
         if path.is_dir():
             shutil.copytree(path, tmp_path / path.name)
-        elif path.suffix == ".yaml":
+        elif path.suffix in (".yaml", ".json"):
             shutil.copy(path, tmp_path)
     program, *arguments = shlex.split(command)
     assert program == PROGRAM
