@@ -5,8 +5,6 @@ from collections.abc import Callable, Sequence
 from enclosure_check import __version__
 from enclosure_check.description.case import Case
 from enclosure_check.description.load import LoadedDocument
-from enclosure_check.description.problems import DocumentError, Problem
-from enclosure_check.description.yaml_nodes import locate
 from enclosure_check.findings.assess import assess
 from enclosure_check.findings.results import CAUTION, ConditionFinding, Report, worst
 from enclosure_check.findings.solved import Solved
@@ -43,7 +41,6 @@ def check(
         When a condition has no steady temperatures.
     """
     cases = document.cases(option=option, conditions=conditions)
-    _refuse_openings(document, cases)
     found: list[ConditionFinding] = []
     known: Known | None = None
     for case in cases:
@@ -64,25 +61,6 @@ def check(
         inputs=document.inputs(option),
         baseline=None,
     )
-
-
-def _refuse_openings(document: LoadedDocument, cases: Sequence[Case]) -> None:
-    """Refuse openings that are not closed: their flow is not computed in this version."""
-    problems = [
-        Problem(
-            document.file,
-            *locate(document.node, ("walls", wall.name, "openings", opening.name), at_key=True),
-            f"walls.{wall.name}.openings.{opening.name}",
-            "the flow through openings is not computed in this version; close it with "
-            "`blocked_pct: 100`",
-        )
-        for case in cases
-        for wall in case.walls.values()
-        for opening in wall.openings
-        if not opening.closed
-    ]
-    if problems:
-        raise DocumentError(problems)
 
 
 def solve_case(case: Case, known: Known | None = None) -> tuple[Solved, Known]:

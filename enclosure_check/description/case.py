@@ -340,6 +340,7 @@ class Case:
     surroundings: SurroundingsCase
     margin_k: float | None
     confidence_pct: float | None
+    stirred: bool = False
     readings: tuple[ReadingCase, ...] = ()
     warnings: tuple[Note, ...] = ()
     assumptions: tuple[str, ...] = field(default=())

@@ -1,6 +1,6 @@
 """The document as a whole."""
 
-from typing import Annotated, Any, ClassVar, Literal
+from typing import Annotated, Any, Literal
 
 from pydantic import Field
 
@@ -105,9 +105,6 @@ class Measured(Strict):
 class Document(Strict):
     """A box, what is in it and what is around it."""
 
-    NOT_YET: ClassVar[dict[str, str]] = {
-        "stirred": "air stirred by a fan is not computed in this version",
-    }
     format: Annotated[Literal[1], NotBoolean] = Field(
         1, description="Version of this document format."
     )
@@ -136,6 +133,11 @@ class Document(Strict):
         None, description="The operating mode that applies; full power when left out."
     )
     surroundings: Surroundings = Field(description="What the box stands in.")
+    stirred: bool = Field(
+        False,
+        description="Whether a fan keeps the inside air at one temperature; films stay those of "
+        "free convection.",
+    )
     requirements: Requirements = Field(
         default_factory=Requirements, description="What must be kept beyond the limits."
     )

@@ -76,6 +76,7 @@ MODELS: Final[dict[str, dict[str, tuple[Any, ...]]]] = {
         'modes': (('mapping', ('text', 1, 80), ('model', 'Mode'), 0, inf), {}),
         'mode': (('text', 1, 80), None),
         'surroundings': (('model', 'Surroundings'),),
+        'stirred': (('bool',), False),
         'requirements': (('model', 'Requirements'), {}),
         'tolerances': (('mapping', ('text', 1, 80), ('model', 'Tolerance'), 0, inf), {}),
         'measured': (('mapping', ('text', 1, 80), ('model', 'Measured'), 0, inf), {}),

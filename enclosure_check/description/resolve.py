@@ -54,6 +54,8 @@ def resolve(document: Document, condition: str, option: str | None = None) -> Ca
     if vented:
         check_uncovered(walls, boards, parts, remarks)
     readings = _readings(document, condition, remarks)
+    if document.stirred:
+        remarks.assume("stirred inside air is at one temperature; films stay those of still air")
     remarks.finish()
     requirements = document.requirements
     return Case(
@@ -70,6 +72,7 @@ def resolve(document: Document, condition: str, option: str | None = None) -> Ca
         surroundings=surroundings,
         margin_k=requirements.margin_k,
         confidence_pct=requirements.confidence_pct,
+        stirred=document.stirred,
         readings=readings,
         warnings=tuple(remarks.warnings),
         assumptions=remarks.assumptions(),

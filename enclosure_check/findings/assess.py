@@ -6,9 +6,9 @@ from enclosure_check.findings.headroom import headroom
 from enclosure_check.findings.heat import (
     air_finding,
     heat_balance,
-    openings_finding,
     wall_findings,
 )
+from enclosure_check.findings.openings import openings_finding
 from enclosure_check.findings.parts import (
     board_findings,
     part_findings,
@@ -52,7 +52,7 @@ def assess(solved: Solved) -> ConditionFinding:
         heat_balance=heat_balance(solved, walls),
         headroom=headroom(solved, parts, walls),
         hand_estimate=hand_estimate(solved),
-        openings=openings_finding(),
+        openings=openings_finding(solved),
         solver=SolverFinding(
             unknowns=len(solved.network.unknown),
             iterations=int(solution.steps[0]),

@@ -5,7 +5,6 @@ from enclosure_check.findings.results import (
     AirFinding,
     AirLayer,
     HeatBalance,
-    OpeningsFinding,
     RangeFinding,
     Regime,
     WallFinding,
@@ -39,7 +38,9 @@ def _wall(solved: Solved, name: str, regime: Regime | None) -> WallFinding:
         convection_w=solved.flow(owner, "convection_outside"),
         radiation_w=solved.flow(owner, "radiation_outside"),
         sun_w=solved.put_in(owner, "sun"),
-        openings_w=0.0,
+        openings_w=sum(
+            (solved.flow(f"opening:{name}/{each.name}", "openings") for each in wall.openings), 0.0
+        ),
         mounting_w=solved.flow(owner, "mounting"),
         cables_w=solved.flow(owner, "cable"),
         touch_max_c=wall.touch_max_c,
@@ -78,8 +79,3 @@ def air_finding(solved: Solved) -> AirFinding:
         for height, node in zip(places.air_heights, places.air_nodes, strict=True)
     )
     return AirFinding(solved.at(places.air), profile[-1].air_c, profile)
-
-
-def openings_finding() -> OpeningsFinding:
-    """Give the flow through openings: none, boxes are sealed in this version."""
-    return OpeningsFinding(0.0)

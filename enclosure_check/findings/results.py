@@ -187,10 +187,42 @@ class HandEstimate:
 
 
 @dataclass(frozen=True)
+class OpeningFinding:
+    """Air through one opening that is not closed; it may come in and go out at once."""
+
+    name: Annotated[str, _about("Name of the opening.")]
+    wall: Annotated[str, _about("Wall it is in.")]
+    kind: Annotated[str, _about("What kind of opening.")]
+    height_mm: Annotated[
+        float, _about("Height of its middle over the lowest point of the inside. [mm]")
+    ]
+    free_area_mm2: Annotated[float, _about("Free area, blocked shares taken off. [mm2]")]
+    inflow_g_per_s: Annotated[float, _about("Air that comes in. [g/s]")]
+    outflow_g_per_s: Annotated[float, _about("Air that goes out. [g/s]")]
+    air_out_c: Annotated[float | None, _about("Air that goes out; null where none does. [C]")]
+    velocity_m_per_s: Annotated[
+        float, _about("Mean velocity of the larger of the two flows in the free area. [m/s]")
+    ]
+    reynolds: Annotated[float, _about("Reynolds number of it on the diameter of a hole.")]
+    loss_coefficient: Annotated[
+        float, _about("Loss in velocity heads of it, viscosity and filter counted.")
+    ]
+    heat_w: Annotated[float, _about("Heat that leaves with the air. [W]")]
+
+
+@dataclass(frozen=True)
 class OpeningsFinding:
-    """Flow through openings; none in this version, the box is sealed."""
+    """Flow through openings; none in a sealed box."""
 
     flow_g_per_s: Annotated[float, _about("Air flow through the box. [g/s]")]
+    neutral_height_mm: Annotated[
+        float | None,
+        _about(
+            "Height over the lowest point of the inside at which the pressure is that outside; air "
+            "leaves by openings above it where the inside is warmer; null if there is none. [mm]"
+        ),
+    ]
+    each: Annotated[tuple[OpeningFinding, ...], _about("By wall and opening.")]
 
 
 @dataclass(frozen=True)

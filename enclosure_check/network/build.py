@@ -10,9 +10,13 @@ from enclosure_check.network.grid import GridOptions
 from enclosure_check.network.inside import build_inside_radiation
 from enclosure_check.network.links import LinkLabel
 from enclosure_check.network.network import Network, Places
+from enclosure_check.network.openings import build_openings
 from enclosure_check.network.parts import build_parts
 from enclosure_check.network.site import Site
 from enclosure_check.network.walls import build_walls
+
+# Mixing of air that a fan stirs, over what its films carry: one temperature to a thousandth.
+STIRRED = 1e4
 
 
 def build_network(case: Case, options: GridOptions | None = None) -> Network:
@@ -25,7 +29,8 @@ def build_network(case: Case, options: GridOptions | None = None) -> Network:
     build_cables(case, site)
     build_inside_radiation(site)
     build_inside_air(site)
-    return site.builder.finish(
+    build_openings(case, site)
+    network = site.builder.finish(
         Places(
             ambient=site.ambient,
             air=site.air,
@@ -37,6 +42,7 @@ def build_network(case: Case, options: GridOptions | None = None) -> Network:
             parts=site.parts,
         )
     )
+    return network.stirred(STIRRED) if case.stirred else network
 
 
 def build_inside_air(site: Site) -> None:

@@ -60,4 +60,39 @@ OPENING_LAWS = (
         reference="R. D. Blevins, 1984, Applied Fluid Dynamics Handbook, Van Nostrand Reinhold; "
         "form of the rise towards low Re made for this project",
     ),
+    Correlation(
+        key="level_exchange",
+        name="Epstein, two-way exchange through a level opening",
+        equation="Q = 0.055 (1 + 400 l^3)^(1/6) / (1 + 0.00527 (1 + 400 l^3)^(1/2) (l^6 + 117 "
+        "l^2)^(3/4))^(1/3) sqrt(g' D^5), l = L/D",
+        characteristic_length="diameter of a hole",
+        variable="none",
+        valid_from=0.0,
+        valid_to=math.inf,
+        prandtl_from=0.0,
+        prandtl_to=math.inf,
+        accuracy_pct=10.0,
+        accuracy_basis=f"{MEMORY}: brine and water, l from 0.01 to 10",
+        reference="M. Epstein, 1988, Buoyancy-driven exchange flow through small openings in "
+        "horizontal partitions, Journal of Heat Transfer 110, 885-893 (from memory); stopped by a "
+        "net flow of 0.55 sqrt(g' D^5), M. Epstein, M. A. Kenton, 1989, Journal of Heat Transfer "
+        "111, 980-987 (from memory)",
+    ),
+    Correlation(
+        key="entraining_plume",
+        name="Morton, Taylor & Turner, plume of inflowing air",
+        equation="M/M_0 = (1 + 6 e y / (5 b))^(5/3), e = 0.1",
+        characteristic_length="radius of the flow at the opening",
+        variable="none",
+        valid_from=0.0,
+        valid_to=math.inf,
+        prandtl_from=0.0,
+        prandtl_to=math.inf,
+        accuracy_pct=30.0,
+        accuracy_basis=f"{MEMORY}: published entrainment coefficients run from 0.08 to 0.13; free "
+        "turbulent plumes, not small boxes",
+        reference="B. R. Morton, G. Taylor, J. S. Turner, 1956, Turbulent gravitational convection "
+        "from maintained and instantaneous sources, Proceedings of the Royal Society A 234, 1-23 "
+        "(from memory)",
+    ),
 )

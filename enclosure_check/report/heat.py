@@ -19,6 +19,7 @@ from enclosure_check.report.layout import (
     watts,
 )
 from enclosure_check.report.limits import WORDS
+from enclosure_check.report.openings import write_openings
 from enclosure_check.report.pictures import board_picture, profile_picture
 
 # Parts whose heat is followed.
@@ -30,6 +31,7 @@ _SAME_K = 0.05
 def write_heat(page: Page, condition: ConditionFinding) -> None:
     """Put in all that is known of where the heat goes."""
     _air(page, condition)
+    write_openings(page, condition)
     _walls(page, condition)
     _balance(page, condition)
     _boards(page, condition)

@@ -169,17 +169,3 @@ def test_formats_are_those_of_the_writers():
     from enclosure_check.report.writers import WRITERS
 
     assert tuple(WRITERS) == FORMATS
-
-
-def test_openings_that_are_not_closed_are_refused(tmp_path, capsys):
-    """Until their flow is computed; one that is closed is a piece of wall."""
-
-    def code(**changes):
-        hole = {"kind": "hole", "diameter_mm": 12, **changes}
-        document = {**SMALL, "walls": {"top": {"openings": {"out": hole}}}}
-        return main(["check", str(write_document(tmp_path, document))])
-
-    assert code() == 2
-    message = capsys.readouterr().err
-    assert "walls.top.openings.out: the flow through openings is not computed" in message
-    assert code(blocked_pct=100) == 0

@@ -7,6 +7,7 @@ import re
 
 import pytest
 from fluids.filters import square_edge_screen
+from published import experiment_vented as vented
 from published import experiments_inside as inside
 
 from enclosure_check.physics.air import air, rayleigh_number
@@ -229,3 +230,7 @@ def test_what_is_told_of_the_tables_is_so(method):
         if case.profile_k is not None:
             assert got.profile_k[0] < case.profile_k[0]
             assert got.profile_k[1] < case.profile_k[1]
+
+
+def test_table_of_the_vented_box_is_current(method):
+    assert method.table("quantity", "experiment", "ours") == vented.table()
