@@ -1,16 +1,21 @@
 """The whole line, from a document to its report."""
 
 from collections.abc import Callable, Sequence
+from typing import TYPE_CHECKING
 
 from enclosure_check import __version__
 from enclosure_check.description.case import Case
 from enclosure_check.description.load import LoadedDocument
+from enclosure_check.description.problems import DocumentError
 from enclosure_check.findings.assess import assess
 from enclosure_check.findings.results import CAUTION, ConditionFinding, Report, worst
 from enclosure_check.findings.solved import Solved
 from enclosure_check.network.build import build_network
 from enclosure_check.solve.nearby import Known, solve_known
 from enclosure_check.solve.steady import Outcome
+
+if TYPE_CHECKING:
+    from enclosure_check.findings.explanation import ExplainedReport
 
 
 class NotConvergedError(Exception):
@@ -30,8 +35,11 @@ def check(
     option: str | None = None,
     conditions: Sequence[str] | None = None,
     tell: Callable[[str], None] | None = None,
+    see: Callable[[Solved, ConditionFinding], None] | None = None,
 ) -> Report:
-    """Check a document under its conditions; ``tell`` is told the name of each as it begins.
+    """Check a document under its conditions.
+
+    ``tell`` is told the name of each as it begins, ``see`` is shown what was found for it.
 
     Raises
     ------
@@ -48,6 +56,8 @@ def check(
             tell(case.condition)
         solved, known = solve_case(case, known)
         found.append(assess(solved))
+        if see is not None:
+            see(solved, found[-1])
     return Report(
         format=1,
         version=__version__,
@@ -61,6 +71,34 @@ def check(
         inputs=document.inputs(option),
         baseline=None,
     )
+
+
+def check_and_explain(
+    document: LoadedDocument,
+    part: str,
+    *,
+    option: str | None = None,
+    conditions: Sequence[str] | None = None,
+    tell: Callable[[str], None] | None = None,
+) -> "ExplainedReport":
+    """Check a document and explain one part, under the condition where its margin is smallest.
+
+    Raises
+    ------
+    DocumentError
+        When a condition, option or part named does not exist.
+    NotConvergedError
+        When a condition has no steady temperatures.
+    """
+    from enclosure_check.findings.explain import Worst
+
+    cases = document.cases(option=option, conditions=conditions)
+    names = tuple(dict.fromkeys(name for case in cases for name in case.parts))
+    if part not in names:
+        raise DocumentError([document.unknown("parts", "part", part, names)])
+    worst_of = Worst(part)
+    report = check(document, option=option, conditions=conditions, tell=tell, see=worst_of.see)
+    return worst_of.explained(report)
 
 
 def solve_case(case: Case, known: Known | None = None) -> tuple[Solved, Known]:

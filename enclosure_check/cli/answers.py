@@ -5,7 +5,7 @@ from functools import partial
 from typing import NamedTuple
 
 from enclosure_check import __version__
-from enclosure_check.check import NotConvergedError, check
+from enclosure_check.check import NotConvergedError, check, check_and_explain
 from enclosure_check.description.load import LoadedDocument, load_document
 from enclosure_check.description.problems import DocumentError, Problem
 from enclosure_check.description.yaml_nodes import locate
@@ -19,6 +19,8 @@ class Asked(NamedTuple):
     option: str | None
     conditions: Sequence[str] | None
     strict: bool
+    explain: str | None = None
+    """A part of it."""
 
 
 def answer_all(
@@ -73,7 +75,7 @@ def _answer(
     document: LoadedDocument | None = None
     try:
         document = load_document(path)
-        return check(document, option=asked.option, conditions=asked.conditions, tell=tell), []
+        return _report(document, asked, tell), []
     except DocumentError as error:
         lines = [str(problem) for problem in error.problems]
         return _no_answer(path, "bad_input", error.problems), lines
@@ -82,6 +84,15 @@ def _answer(
         at = locate(document.node, ("conditions", error.condition), at_key=True)
         problem = Problem(path, *at, "", str(error))
         return _no_answer(path, "not_converged", [problem]), [f"{path}: {error}"]
+
+
+def _report(document: LoadedDocument, asked: Asked, tell: Callable[[str], None]) -> Report:
+    option, conditions = asked.option, asked.conditions
+    if asked.explain is None:
+        return check(document, option=option, conditions=conditions, tell=tell)
+    return check_and_explain(
+        document, asked.explain, option=option, conditions=conditions, tell=tell
+    )
 
 
 def _no_answer(path: str, reason: Reason, problems: Iterable[Problem]) -> NoAnswer:

@@ -33,6 +33,7 @@ _EXAMPLES = """\
 examples:
   enclosure-check check box.yaml
   enclosure-check check box.yaml --condition noon_sun --strict
+  enclosure-check check box.yaml --explain U1
   enclosure-check check enclosures/ --quiet
   enclosure-check check enclosures/ --write json=run.json --write junit=run.xml
   enclosure-check check enclosures/ --baseline main.json --allow-loss-k 0.5
@@ -68,6 +69,12 @@ def add(commands: Any) -> None:
         help="only this condition; may be given several times (default: all)",
     )
     check.add_argument("--option", metavar="NAME", help="with this design option applied")
+    check.add_argument(
+        "--explain",
+        metavar="PART",
+        help="where this part's heat goes and what a kelvin of margin costs, under the condition "
+        "where its margin is smallest; of one document, in place of the text report",
+    )
     check.add_argument(
         "--strict", action="store_true", help="exit 1 on a marginal verdict in any case"
     )
@@ -144,6 +151,10 @@ def run(arguments: argparse.Namespace) -> ExitCode:
         raise UsageError("--quiet shortens the text report; it does not go with --format")
     if arguments.allow_loss_k is not None and arguments.baseline is None:
         raise UsageError("--allow-loss-k needs a --baseline to compare with")
+    if arguments.explain is not None and (
+        arguments.quiet or arguments.baseline is not None or is_several(arguments.files)
+    ):
+        raise UsageError("--explain goes with one document, and not with --quiet or --baseline")
     conditions = None
     if arguments.condition:
         conditions = tuple(dict.fromkeys(arguments.condition))
@@ -157,7 +168,7 @@ def run(arguments: argparse.Namespace) -> ExitCode:
         run, said = answer_all(
             documents.paths,
             documents.refused,
-            Asked(arguments.option, conditions, arguments.strict),
+            Asked(arguments.option, conditions, arguments.strict, arguments.explain),
             progress.tell,
         )
     if earlier is not None:

@@ -71,11 +71,11 @@ class LoadedDocument:
         """
         problems = []
         if option is not None and option not in self.option_names():
-            problems.append(self._unknown("options", "option", option, self.option_names()))
+            problems.append(self.unknown("options", "option", option, self.option_names()))
         existing = self.condition_names() or (BASE,)
         wanted = existing if conditions is None else tuple(conditions)
         problems += [
-            self._unknown("conditions", "condition", name, existing)
+            self.unknown("conditions", "condition", name, existing)
             for name in wanted
             if name not in existing
         ]
@@ -84,7 +84,8 @@ class LoadedDocument:
         keys = wanted if self.condition_names() else [None for _ in wanted]
         return tuple(self._cases[option, key] for key in keys)
 
-    def _unknown(self, key: str, what: str, given: str, names: Sequence[str]) -> Problem:
+    def unknown(self, key: str, what: str, given: str, names: Sequence[str]) -> Problem:
+        """Give the problem of a name that is none of the document's under a key."""
         known = f"; there is {', '.join(map(quoted, names))}" if names else f"; there is no {what}"
         message = f"given {quoted(given)}, which is no {what} here{nearest(given, names) or known}"
         return Problem(self.file, *locate(self.node, (key,), at_key=True), key, message)

@@ -16,9 +16,9 @@ def report_schema() -> Schema:
     """Give the JSON Schema of the JSON report."""
     from pydantic import TypeAdapter
 
-    from enclosure_check.findings.results import Report
+    from enclosure_check.findings.explanation import ExplainedReport
 
-    schema = TypeAdapter(Report).json_schema(mode="serialization")
+    schema = TypeAdapter(ExplainedReport).json_schema(mode="serialization")
     return {"$schema": DIALECT, **schema, "title": "Report of enclosure-check"}
 
 

@@ -10,6 +10,10 @@ Writer = Callable[[Run, WriterOptions], str]
 
 def _text(run: Run, options: WriterOptions) -> str:
     if not options.several and not options.short:
+        if hasattr(run.documents[0], "explain"):
+            from enclosure_check.report.explain import write_explanation
+
+            return write_explanation(run.documents[0], options)
         from enclosure_check.report.text import write_text
 
         return write_text(run.documents[0], options)

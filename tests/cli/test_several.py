@@ -216,10 +216,14 @@ def test_all_are_made_before_one_is_written(here, monkeypatch, capsys):
         ["--write", "json=x", "--write", "text=./x"],
         ["--output", "x", "--write", "json=x"],
         ["--quiet", "--format", "json"],
+        ["--quiet", "--explain", "X1"],
+        ["b.yaml", "--explain", "X1"],
+        [".", "--explain", "X1"],
     ],
 )
 def test_what_does_not_go_together(here, capsys, arguments):
     put("a.yaml")
+    put("b.yaml")
     assert main(["check", "a.yaml", *arguments]) == 2
     captured = capsys.readouterr()
     assert captured.out == ""
@@ -249,3 +253,13 @@ def test_a_plain_check_loads_nothing_it_does_not_need(here):
     assert "'enclosure_check.cli.answers'" in loaded
     for name in ("pydantic", "json", "enclosure_check.report.json_report"):
         assert f"'{name}'" not in loaded
+
+
+def test_an_explanation_and_the_whole_report_in_one_run(here, capsys):
+    put("a.yaml")
+    arguments = ["check", "a.yaml", "--explain", "X1", "--write", "json=a.json"]
+    assert main(arguments) == 0
+    assert "X1 under base: case" in capsys.readouterr().out
+    data = json.loads(Path("a.json").read_text("utf-8"))
+    assert data["explain"]["part"] == "X1"
+    assert data["conditions"][0]["parts"]
