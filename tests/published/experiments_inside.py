@@ -14,9 +14,10 @@ from pathlib import Path
 from typing import Any
 
 if __name__ == "__main__":
-    sys.path[:0] = [str(Path(__file__).resolve().parents[2])]
+    sys.path[:0] = [str(Path(__file__).resolve().parents[at]) for at in (2, 1)]
 
 import numpy as np
+from published.slices import Slices, slice_mean
 
 from enclosure_check.description.document import Document
 from enclosure_check.description.resolve import resolve
@@ -89,6 +90,9 @@ class Ours:
     floor: float
     facing: float
     profile_k: tuple[float, ...]
+    """Rise of the air away from films."""
+    slices_k: tuple[float, ...]
+    """Mean rise of whole slices, films and gaps counted; none without an experiment."""
 
 
 def _document(case: Sealed, power_w: float) -> dict[str, Any]:
@@ -155,7 +159,29 @@ def ours(name: str) -> Ours:
         walls["bottom"] / total,
         (walls["front"] + walls["back"]) / total,
         tuple(profile.tolist()),
+        _slices(case, network, solution),
     )
+
+
+def _slices(case: Sealed, network: Network, solution: Solution) -> tuple[float, ...]:
+    if case.profile_k is None:
+        return ()
+    width, depth, tall = (1e-3 * each for each in case.inside)
+    along, across, thickness = (
+        1e-3 * case.board[key] for key in ("length_mm", "width_mm", "thickness_mm")
+    )
+    flat = case.board["parallel_to"] == "bottom"
+    half = (thickness if flat else across) / 2
+    board = {
+        "along": along,
+        "thickness": thickness,
+        "low": tall / 2 - half,
+        "high": tall / 2 + half,
+    }
+    if flat:
+        board["across"] = across
+    slices = Slices(network, solution)
+    return tuple(slice_mean(slices, (width, depth, tall), board, at) for at in HEIGHTS)
 
 
 def table() -> list[list[str]]:
@@ -177,12 +203,14 @@ def table() -> list[list[str]]:
 
 
 def profile_table() -> list[list[str]]:
-    """Give the rows of the table of profiles: theirs / ours at each height."""
+    """Give the rows of the table of profiles: theirs / our slices / our air at each height."""
     return [
         [case.name]
         + [
-            f"{theirs:.1f} / {got:.1f}"
-            for theirs, got in zip(case.profile_k, ours(case.name).profile_k, strict=True)
+            f"{theirs:.1f} / {got:.1f} / {core:.1f}"
+            for theirs, got, core in zip(
+                case.profile_k, ours(case.name).slices_k, ours(case.name).profile_k, strict=True
+            )
         ]
         for case in CASES
         if case.profile_k is not None
