@@ -20,7 +20,7 @@ if TYPE_CHECKING:
     from enclosure_check.findings.run import Run
 
 MOST_LOSS_K = 1000.0
-FORMATS = ("text", "json")
+FORMATS = ("text", "json", "markdown", "junit", "sarif")
 
 _ABOUT = """\
 Checks documents under their conditions and reports margins, worst first.

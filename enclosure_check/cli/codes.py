@@ -30,7 +30,8 @@ exit codes:
   70   an error of this program; 130 interrupted
 Of several documents the highest code counts.
 Results go to standard output or to files, diagnostics to standard error.
-Nothing is written when no document has an answer."""
+Nothing is written when no document has an answer, but for the formats markdown,
+junit and sarif, which tell why."""
 
 
 class UsageError(Exception):

@@ -36,8 +36,8 @@ def write_baseline(page: Page, report: Report, baseline: Baseline) -> None:
     for what, names in came_and_went(baseline):
         cleaned = [page.clean(name) for name in names]
         page.paragraph(f"{what}: {listed(cleaned, MOST_NAMED)}.")
-    for line in about_inputs(baseline, report):
-        page.paragraph(page.clean(line))
+    for line in about_inputs(baseline, report, page.clean):
+        page.paragraph(line)
     inputs, more = shown_inputs(baseline)
     if inputs:
         page.paragraph("Changed in the document:")

@@ -1,6 +1,6 @@
 """What changed against an earlier result, put in words for every format."""
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 
 from enclosure_check.findings.baseline import Baseline, InputChange, LimitChange, Value
 from enclosure_check.findings.results import Report
@@ -107,16 +107,18 @@ def came_and_went(baseline: Baseline) -> list[tuple[str, tuple[str, ...]]]:
     ]
 
 
-def about_inputs(baseline: Baseline, report: Report) -> list[str]:
-    """Say what cannot be seen from the list of changed values."""
+def about_inputs(baseline: Baseline, report: Report, shown: Callable[[str], str]) -> list[str]:
+    """Say what cannot be seen from the list of changed values; ``shown`` is for user's texts."""
     lines = []
     option = report.conditions[0].option
     if baseline.old_option != option:
-        lines.append(f"Option: then {_named(baseline.old_option)}, now {_named(option)}.")
+        lines.append(
+            f"Option: then {_named(baseline.old_option, shown)}, now {_named(option, shown)}."
+        )
     if baseline.old_version != report.version:
         lines.append(
-            f"Program: then version {baseline.old_version}, now {report.version}; it may be what "
-            "moved the margins."
+            f"Program: then version {shown(baseline.old_version)}, now {report.version}; it may "
+            "be what moved the margins."
         )
     if not baseline.inputs_known:
         lines.append("The baseline does not list what its document stated.")
@@ -127,8 +129,8 @@ def about_inputs(baseline: Baseline, report: Report) -> list[str]:
     return lines
 
 
-def _named(option: str | None) -> str:
-    return "none" if option is None else repr(option)
+def _named(option: str | None, shown: Callable[[str], str]) -> str:
+    return "none" if option is None else shown(option)
 
 
 def shown_inputs(baseline: Baseline) -> tuple[Sequence[InputChange], int]:

@@ -28,6 +28,30 @@ def _json(run: Run, options: WriterOptions) -> str:
     return write_json(run if options.several else run.documents[0], options)
 
 
-WRITERS: dict[str, Writer] = {"text": _text, "json": _json}
+def _markdown(run: Run, options: WriterOptions) -> str:
+    from enclosure_check.report.markdown import write_markdown
+
+    return write_markdown(run, options)
+
+
+def _junit(run: Run, options: WriterOptions) -> str:
+    from enclosure_check.report.junit import write_junit
+
+    return write_junit(run, options)
+
+
+def _sarif(run: Run, options: WriterOptions) -> str:
+    from enclosure_check.report.sarif import write_sarif
+
+    return write_sarif(run, options)
+
+
+WRITERS: dict[str, Writer] = {
+    "text": _text,
+    "json": _json,
+    "markdown": _markdown,
+    "junit": _junit,
+    "sarif": _sarif,
+}
 # Those that show what has no answer; the others need a document that has one.
-SHOW_ERRORS: frozenset[str] = frozenset()
+SHOW_ERRORS = frozenset({"markdown", "junit", "sarif"})
