@@ -75,12 +75,7 @@ _WALLS = (
     Shown[WallFinding](Column("Wall"), lambda wall: wall.name),
     Shown[WallFinding](
         Column("Faces", yields=True),
-        lambda wall: _FACES.get(wall.mounting, wall.mounting.replace("_", " ")),
-    ),
-    Shown[WallFinding](
-        Column("Wind"),
-        lambda wall: wall.wind_regime or "-",
-        lambda wall: wall.wind_regime is not None,
+        lambda wall: wall.wind_regime or _FACES.get(wall.mounting, wall.mounting.replace("_", " ")),
     ),
     Shown[WallFinding](right("Out C"), lambda wall: tenths(wall.outside_c)),
     Shown[WallFinding](
@@ -122,7 +117,7 @@ def _walls(page: Page, condition: ConditionFinding) -> None:
     page.paragraph(
         "Walls (W: heat that leaves there, negative where it enters, and sun absorbed"
         + ("; touch: margin to the highest temperature allowed" if touch else "")
-        + ("; wind: convection forced by it, natural, or mixed)" if windy else ")"),
+        + ("; forced, mixed, natural: convection of open air in wind)" if windy else ")"),
         style="bold",
     )
     page.records(_WALLS, condition.walls)
