@@ -1,7 +1,5 @@
 """Makes ``python -m enclosure_check`` the command line."""
 
-import sys
+from enclosure_check.cli import run
 
-from enclosure_check.cli import main
-
-sys.exit(main())
+run()

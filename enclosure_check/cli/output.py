@@ -63,6 +63,17 @@ def print_result(text: str) -> None:
         raise CannotWriteError(f"standard output cannot be written: {error.strerror}") from None
 
 
+def all_is_written() -> bool:
+    """Write what the standard streams hold back; tell whether nothing is left."""
+    try:
+        for stream in (sys.stdout, sys.stderr):
+            if stream is not None:
+                stream.flush()
+    except (OSError, ValueError):
+        return False
+    return True
+
+
 def same_file(one: str, other: str) -> bool:
     """Tell whether two paths lead to one file that exists."""
     try:

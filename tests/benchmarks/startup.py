@@ -25,7 +25,7 @@ ROOT = Path(__file__).parent.parent.parent
 def program() -> list[str]:
     """Give the command as it was installed, or what an installed one runs."""
     script = Path(sys.executable).with_name("enclosure-check")
-    run = "import sys; from enclosure_check.cli import main; sys.exit(main())"
+    run = "from enclosure_check.cli import run; run()"
     return [str(script)] if script.exists() else [sys.executable, "-c", run]
 
 

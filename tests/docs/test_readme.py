@@ -53,7 +53,7 @@ def test_the_gate_finds_its_command(root, readme):
 
 
 def test_program_of_the_command_is_what_the_project_installs(root):
-    assert 'enclosure-check = "enclosure_check.cli:main"' in (root / "pyproject.toml").read_text(
+    assert 'enclosure-check = "enclosure_check.cli:run"' in (root / "pyproject.toml").read_text(
         "utf-8"
     )
 
