@@ -3,7 +3,16 @@
 import re
 
 import pytest
-from published.cabinets import BARE, CABINETS, PAINTED, RISE_K, ours, rows
+from published.cabinets import (
+    BARE,
+    CABINETS,
+    PAINTED,
+    RISE_K,
+    ishizuka_rise_k,
+    ours,
+    rows,
+    vented_rows,
+)
 
 
 @pytest.fixture(scope="module")
@@ -34,3 +43,16 @@ def test_what_is_said_of_walls(page):
     }
     wall, free = (sum(values) / len(values) for values in ratios.values())
     assert wall / free == pytest.approx(0.8, abs=0.05)
+
+
+def test_table_of_vented_cabinets(page):
+    assert page.table("height x width x depth m", "W", "straight", "through vents") == vented_rows()
+
+
+def test_what_is_said_of_air_that_leaves():
+    for cabinet in CABINETS:
+        practice = ishizuka_rise_k(cabinet)
+        painted, bare = (ours(cabinet, emissivity, True) for emissivity in (PAINTED, BARE))
+        assert painted.outlet_k == pytest.approx(practice, rel=0.15)
+        assert bare.outlet_k > 1.2 * practice
+        assert bare.middle_k < 0.8 * practice / 1.3

@@ -13,6 +13,7 @@ from enclosure_check.findings.results import CAUTION
 
 SAMPLE = "sample_boards/wall_sensor_hub.yaml"
 FAILING = "sample_boards/river_gauge_station.yaml"
+VENTED = "sample_boards/door_controller.yaml"
 SETTING_UP = "python3 -m venv .venv && .venv/bin/pip install -q "
 COMMANDS = (
     f"{SETTING_UP}. && .venv/bin/enclosure-check check {SAMPLE}",
@@ -143,6 +144,53 @@ def test_what_is_told_of_the_shade_roof(readme, battery):
         battery[option, "noon_sun"][1].temperature_c for option in (None, "shade_roof", "aged_coat")
     )
     assert dirty - bare > 0.5 * (bare - roofed) > 0
+
+
+# Vents --------------------------------------------------------------------------------------
+
+
+@pytest.fixture(scope="module")
+def processor(root):
+    """Findings of the vented sample and its processor's margin, by option and condition."""
+    document = load_document(str(root / VENTED))
+    names = ("warm_riser", "vent_blocked")
+    found = {}
+    for option in (None, *document.option_names()):
+        for condition in check(document, option=option, conditions=names).conditions:
+            own = [part for part in condition.parts if part.name == "U3"]
+            worst = min(own, key=lambda part: part.margin_k)
+            assert worst.margin_k == min(part.margin_k for part in condition.parts)
+            found[option, condition.name] = (condition, worst)
+    return found
+
+
+def test_table_of_vents_is_current(readme, processor):
+    told = readme.table("option", "warm_riser", "vent_blocked")
+    expected = []
+    for option in dict.fromkeys(option for option, _ in processor):
+        row = [f"`{option}`" if option else "none"]
+        for name in ("warm_riser", "vent_blocked"):
+            condition, worst = processor[option, name]
+            balance = condition.heat_balance
+            share = 100 * balance.openings_w / balance.generated_w
+            row.append(f"{worst.margin_k:+.1f} K, {worst.verdict}; {share:.0f} %")
+        expected.append(row)
+    assert told == expected
+
+
+def test_what_is_told_of_the_vents(readme, processor):
+    def margin(option, condition="warm_riser"):
+        return processor[option, condition][1].margin_k
+
+    sealed, drawn, wanted = margin("sealed"), margin(None), 3.0
+    assert drawn < wanted < margin("larger_vents")
+    assert margin("lower_outlets") < drawn
+    # The filter takes more than half of what the vents bring.
+    assert sealed < margin("dust_filter") < 0.5 * (sealed + drawn)
+    blocked = {each.name: each for each in processor[None, "vent_blocked"][0].openings.each}
+    assert blocked["entries"].inflow_g_per_s > 0
+    assert blocked["outlet"].inflow_g_per_s > 0
+    assert blocked["outlet"].outflow_g_per_s > 0
 
 
 # Accuracy and caution -----------------------------------------------------------------------
