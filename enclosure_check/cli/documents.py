@@ -11,7 +11,7 @@ ENDINGS = (".yaml", ".yml")
 TELLING = ("box", "boards", "parts", "surroundings")
 FEWEST_TELLING = 2
 # Bounds of what is looked at within folders.
-MAX_DOCUMENTS = 1000
+MAX_DOCUMENTS = 500
 MAX_ENTRIES = 100_000
 MAX_BYTES = 1 << 20
 

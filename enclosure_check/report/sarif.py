@@ -225,7 +225,10 @@ def _location(path: str) -> _Json:
     """Give a path as a URI, relative to where the check was started unless it is absolute."""
     from urllib.parse import quote
 
-    encoded = quote(path, safe="/", errors="surrogateescape")
+    plain = path
+    while plain.startswith("./"):
+        plain = plain[2:].lstrip("/")
+    encoded = quote(plain, safe="/", errors="surrogateescape")
     if path.startswith("/"):
         return {"uri": f"file://{encoded}"}
     return {"uri": encoded, "uriBaseId": ROOT}

@@ -12,7 +12,10 @@ import pytest
 import yaml
 from support.reports import SMALL
 
+from enclosure_check.cli.baseline import DEFAULT_LOSS_K
 from enclosure_check.cli.check_command import FORMATS
+from enclosure_check.cli.documents import MAX_DOCUMENTS
+from enclosure_check.findings.earlier import MAX_BYTES, MAX_VALUES
 from enclosure_check.report.writers import SHOW_ERRORS
 
 PLAIN = ("NO_COLOR", "FORCE_COLOR", "COLUMNS", "TERM", "GIT_DIR", "GIT_WORK_TREE", "GIT_INDEX_FILE")
@@ -168,6 +171,13 @@ def test_a_fixed_state_is_held(repository, read_page):
     repository.document(2.0)
     again = fixed.splitlines()[-1]
     assert repository.run("sh", "-c", again).returncode == 1
+
+
+def test_bounds_named_on_the_page(read_page):
+    prose = " ".join(read_page("docs/gate.md").prose().split())
+    assert f"up to {MAX_BYTES >> 20} MiB and {MAX_VALUES:,} values" in prose
+    assert f"up to {MAX_DOCUMENTS} documents" in prose
+    assert f"({DEFAULT_LOSS_K} K when not given)" in prose
 
 
 def test_formats_named_on_the_page(read_page):

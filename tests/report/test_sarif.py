@@ -174,11 +174,23 @@ def test_names_cannot_break_out(tmp_path):
         assert each.get("properties", {}).get("condition", "").isprintable()
 
 
-def test_an_absolute_path_is_a_file_uri(tmp_path):
+@pytest.mark.parametrize(
+    ("path", "uri"),
+    [
+        ("/a b/box.yaml", "file:///a%20b/box.yaml"),
+        ("././/box.yaml", "box.yaml"),
+        ("../box.yaml", "../box.yaml"),
+        ("a:b/%41#?.yaml", "a%3Ab/%2541%23%3F.yaml"),
+        ("\udcff.yaml", "%FF.yaml"),  # a name that is no UTF-8, as the system hands it over
+    ],
+)
+def test_paths_become_uris(tmp_path, path, uri):
     run = PLAIN_RUN(tmp_path)
-    report = replace(run.documents[0], document="/a b/box.yaml")
+    report = replace(run.documents[0], document=path)
     log = read(replace(run, documents=(report,)))
-    assert log["runs"][0]["artifacts"][0]["location"] == {"uri": "file:///a%20b/box.yaml"}
+    location = log["runs"][0]["artifacts"][0]["location"]
+    base = {} if path.startswith("/") else {"uriBaseId": "%SRCROOT%"}
+    assert location == {"uri": uri, **base}
     assert faults(log) == []
 
 
