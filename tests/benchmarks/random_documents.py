@@ -7,7 +7,9 @@ seed 0 by default. It ends with exit code 1 when any of them does not converge.
 import random
 import sys
 import time
+from collections.abc import Callable
 from pathlib import Path
+from typing import Any
 
 sys.path.insert(0, str(Path(__file__).resolve().parents[2]))
 sys.path.insert(0, str(Path(__file__).resolve().parents[1]))
@@ -19,12 +21,14 @@ from support.random_documents import random_document
 from enclosure_check.solve.steady import solve_steady
 
 
-def main(count: int, first: int) -> int:
-    """Solve ``count`` documents, print the figures, and tell how many did not converge."""
+def main(
+    count: int, first: int, make: Callable[[random.Random], dict[str, Any]] = random_document
+) -> int:
+    """Solve ``count`` documents that ``make`` gives, print the figures, and tell how many did not converge."""
     steps, fallbacks, shares, unknowns, failed = [], [], [], [], []
     spent = 0.0
     for seed in range(first, first + count):
-        network = network_of(random_document(random.Random(seed)))
+        network = network_of(make(random.Random(seed)))
         start = time.process_time()
         solution = solve_steady(network)
         spent += time.process_time() - start

@@ -5,7 +5,6 @@ import hashlib
 import os
 import subprocess
 import sys
-import time
 
 import pytest
 from support.mutations import FULL
@@ -187,13 +186,3 @@ def test_the_full_document(load):
     assert [len(case.parts) for case in document.cases(option="no_heater")] == [4, 4, 4]
     assert len(noon.parts) == 5
     assert len(noon.readings) == 5
-
-
-def test_loading_is_quick():
-    """Of 260 lines in nine combinations: below 10 ms of processor time."""
-    times = []
-    for _ in range(20):
-        start = time.process_time()
-        load_document(str(FULL))
-        times.append(time.process_time() - start)
-    assert min(times) < 0.010

@@ -26,10 +26,10 @@ def test_there_are_enough_and_no_two_are_the_same():
 def test_refused(mutation: Mutation, tmp_path):
     path = tmp_path / "enclosure.yaml"
     path.write_bytes(mutation.data)
-    start = time.perf_counter()
+    start = time.process_time()
     with pytest.raises(DocumentError) as caught:
         load_document(str(path))
-    assert time.perf_counter() - start < LONGEST_S
+    assert time.process_time() - start < LONGEST_S
     problems = caught.value.problems
     assert problems
     assert all(each.line >= 1 and each.column >= 1 for each in problems)

@@ -77,5 +77,5 @@ def test_files_named_in_the_guide_for_developers_exist(root, read_page):
 
 def test_programs_named_in_the_guide_for_developers_exist(root, read_page):
     named = re.findall(r"python (tests/[\w/]+\.py)", read_page("DEVELOPERS.md").text)
-    assert len(named) == 6
+    assert len(named) > 5
     assert [name for name in named if not (root / name).exists()] == []

@@ -122,8 +122,8 @@ def test_size_is_bounded(monkeypatch):
     monkeypatch.setattr(earlier, "MAX_BYTES", 1 << 20)
     with pytest.raises(EarlierError, match="larger than 1 MiB"):
         read_earlier(b" " * (1 << 20) + b"{}")
-    start = time.perf_counter()
+    start = time.process_time()
     monkeypatch.setattr(earlier, "MAX_BYTES", 24 << 20)
     with pytest.raises(EarlierError, match="more than 600000 values"):
         read_earlier(b'{"format":1,"x":[' + b"[]," * 1_000_000 + b"[]]}")
-    assert time.perf_counter() - start < 1.0
+    assert time.process_time() - start < 1.0

@@ -307,7 +307,7 @@ def test_a_shelf_nearly_from_wall_to_wall_throttles_the_draught():
 # Derivatives -------------------------------------------------------------------------------------
 
 # Openings on several walls, of several kinds, and tall ones among them, through which air passes.
-VENTED_SEEDS = (1, 11, 15, 23)
+VENTED_SEEDS = (0, 6, 15, 20)
 VENTED = [network_of(random_vented_document(random.Random(seed)), COARSE) for seed in VENTED_SEEDS]
 each_vented = pytest.mark.parametrize("network", VENTED, ids=[str(seed) for seed in VENTED_SEEDS])
 

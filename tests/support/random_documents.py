@@ -42,14 +42,15 @@ _CLEAR = 0.2
 _MOST_FLUX_W_PER_M2, _MOST_PATH_RISE_K = 2_000.0, 50.0
 
 
-def random_document(rng: random.Random) -> Data:
+def random_document(rng: random.Random, most_boards: int = 4) -> Data:
     """Make one document."""
-    return _Maker(rng).document()
+    return _Maker(rng, most_boards).document()
 
 
 class _Maker:
-    def __init__(self, rng: random.Random) -> None:
+    def __init__(self, rng: random.Random, most_boards: int) -> None:
         self.rng = rng
+        self.most_boards = most_boards
         self.inside = [self.log(30, 2000) for _ in range(3)]
         self.heat: list[tuple[Data, str, float]] = []
         """Who takes power: the mapping, its key, and the most it may take [W]."""
@@ -64,7 +65,9 @@ class _Maker:
         rng = self.rng
         air_c = rng.uniform(-40, 70)
         walls = self.walls(air_c)
-        boards = {f"board {index}": self.board() for index in range(rng.randint(0, 4))}
+        boards = {
+            f"board {index}": self.board() for index in range(rng.randint(0, self.most_boards))
+        }
         parts: Data = {}
         for index in range(rng.randint(0, 20)):
             made = self.part(boards)

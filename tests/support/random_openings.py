@@ -20,8 +20,8 @@ _ACROSS = {0: ("depth_mm", "height_mm"), 1: ("width_mm", "height_mm"), 2: ("widt
 
 
 def random_vented_document(rng: random.Random, most: int = 6) -> Data:
-    """Make one document with up to ``most`` openings."""
-    document = random_document(rng)
+    """Make one document with up to ``most`` openings and up to eight boards."""
+    document = random_document(rng, most_boards=8)
     walls = document["walls"]
     free = [name for name in WALL_NAMES if "mounting" not in walls.get(name, {})]
     for index in range(rng.randint(0, most)):
