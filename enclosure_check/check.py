@@ -65,7 +65,9 @@ def check(
         digest=document.digest,
         title=cases[0].title,
         verdict=worst([condition.verdict for condition in found]),
-        margin_stated=any(case.margin_k is not None for case in cases),
+        margin_stated=any(
+            case.margin_k is not None or case.confidence_pct is not None for case in cases
+        ),
         conditions=tuple(found),
         caution=CAUTION,
         inputs=document.inputs(option),

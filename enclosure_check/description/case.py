@@ -316,6 +316,21 @@ class ReadingCase:
 
 
 @dataclass(frozen=True)
+class ToleranceCase:
+    """What a number of the document may be, by a tolerance stated: a half-width at about 95 %.
+
+    ``about`` and ``covers`` tell what the number is in the case, see `numbers.meaning`.
+    """
+
+    path: tuple[str, ...]
+    value: float
+    half_width: float
+    pct: float | None
+    about: tuple[tuple[str, ...], ...]
+    covers: tuple[tuple[str, ...], ...]
+
+
+@dataclass(frozen=True)
 class Note:
     """A remark on a field of the document: a warning or an assumption made."""
 
@@ -342,6 +357,7 @@ class Case:
     confidence_pct: float | None
     stirred: bool = False
     readings: tuple[ReadingCase, ...] = ()
+    tolerances: tuple[ToleranceCase, ...] = ()
     warnings: tuple[Note, ...] = ()
     assumptions: tuple[str, ...] = field(default=())
     positions: Positions = field(default=Positions(), compare=False)

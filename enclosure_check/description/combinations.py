@@ -104,7 +104,12 @@ class Checked:
         except FieldErrors as error:
             problems += error.problems
         else:
-            self.cases[combination] = replace(case, positions=positions(node, case.walls))
+            case = replace(case, positions=positions(node, case.walls))
+            if document.tolerances:
+                from enclosure_check.description.numbers import stated_tolerances
+
+                case = replace(case, tolerances=stated_tolerances(node, document))
+            self.cases[combination] = case
         for each in problems:
             self._note(self._located(each, node), True, combination)
 

@@ -65,7 +65,8 @@ class Requirements(Strict):
         None,
         ge=50,
         lt=100,
-        description="Confidence wanted in that margin; used once bands are computed. [%]",
+        description="Confidence wanted in that margin, on one side; where it is left out, the band "
+        "at about 95 % must not reach past a limit. [%]",
     )
     touch_max_c: TemperatureC | None = Field(
         None, description="Highest outside temperature of any wall, for touch. [C]"

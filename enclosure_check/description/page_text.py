@@ -139,8 +139,8 @@ Checked after the keys themselves, with every option and condition applied:
 - A limit has `max_c`, `min_c` or a derating curve, the lower below the higher; `board` limits only
   for parts on boards. A derating curve has rising temperatures and a load that does not rise; the
   temperature at which it still allows the load is the limit.
-- `mode` and every mode named in a power exist. `tolerances` match at least one number each.
-  `measured` names parts that exist, and its condition when there are any. Tolerances and
-  `confidence_pct` are checked but not used in this version.
+- `mode` and every mode named in a power exist. `tolerances` match at least one number each; of
+  several for one number the one with the fewest `*` counts, the last of equals. `measured` names
+  parts that exist, and its condition when there are any.
 - `sky_c` goes with `sky: given`. Sun on a wall that is not in open air is left out, with a warning.
 """

@@ -1,11 +1,14 @@
 """Puts the findings of one solved case together."""
 
 from enclosure_check.description.case import Case, Note
+from enclosure_check.findings.certainty import BandCheck
+from enclosure_check.findings.confidence import Bands, bands
 from enclosure_check.findings.hand import hand_estimate
 from enclosure_check.findings.headroom import headroom
 from enclosure_check.findings.heat import (
     air_finding,
     heat_balance,
+    hottest_cell,
     wall_findings,
 )
 from enclosure_check.findings.openings import openings_finding
@@ -13,9 +16,10 @@ from enclosure_check.findings.parts import (
     board_findings,
     part_findings,
     part_heat,
-    reading_findings,
+    point,
 )
 from enclosure_check.findings.ranges import range_findings, range_warnings
+from enclosure_check.findings.readings import reading_bias, reading_findings, reading_node
 from enclosure_check.findings.results import (
     ConditionFinding,
     PartFinding,
@@ -26,13 +30,21 @@ from enclosure_check.findings.results import (
 )
 from enclosure_check.findings.solved import Solved
 
+# A band smaller than this is not checked to second order: its ends hardly differ. [K]
+LEAST_CHECKED_BAND_K = 1.5
+# Share of the band that its ends to second order may lie off to be called fair.
+FAIR_SHARE = 0.1
+
 
 def assess(solved: Solved) -> ConditionFinding:
     """Give everything found for one solved case."""
     case, solution = solved.case, solved.solution
-    parts = part_findings(solved)
+    own = bands(solved, reported_nodes(solved))
+    parts = part_findings(solved, own)
+    readings = reading_findings(solved, own)
+    check = _band_check(solved, own, parts)
     ranges = range_findings(solved)
-    walls = wall_findings(solved, ranges)
+    walls = wall_findings(solved, ranges, own)
     verdicts: list[Verdict] = [part.verdict for part in parts]
     verdicts += [wall.touch_verdict for wall in walls if wall.touch_verdict is not None]
     return ConditionFinding(
@@ -44,10 +56,11 @@ def assess(solved: Solved) -> ConditionFinding:
         altitude_m=case.surroundings.altitude_m,
         wind_m_per_s=case.surroundings.wind_m_per_s,
         wind_from=case.surroundings.wind_from,
+        confidence_pct=case.confidence_pct,
         parts=parts,
         part_heat=part_heat(solved),
         boards=board_findings(solved),
-        air=air_finding(solved),
+        air=air_finding(solved, own),
         walls=walls,
         heat_balance=heat_balance(solved, walls),
         headroom=headroom(solved, parts, walls),
@@ -61,11 +74,14 @@ def assess(solved: Solved) -> ConditionFinding:
             worst_node=solved.network.node_labels[int(solution.worst_node[0])],
         ),
         ranges=ranges,
-        readings=reading_findings(solved),
+        readings=readings,
+        reading_bias=reading_bias(readings),
+        band_check=check,
         warnings=(
             *(_note(note) for note in case.warnings),
             *_missing(case, parts, walls),
             *range_warnings(ranges),
+            *_unfair(own, check),
         ),
         assumptions=case.assumptions,
     )
@@ -85,9 +101,52 @@ def _missing(
     without = [name for name, part in case.parts.items() if not part.limits]
     if without and parts:
         lines.append(f"no limit stated, so not judged: {', '.join(without)}")
-    if case.confidence_pct is not None:
-        lines.append(
-            "requirements.confidence_pct: bands are not computed in this version, so verdicts "
-            "rest on the best estimates alone; choose margin_k with that in mind"
-        )
     return lines
+
+
+# Bands ------------------------------------------------------------------------------------
+
+
+def reported_nodes(solved: Solved) -> list[int]:
+    """Give the nodes of all temperatures that are reported with a band."""
+    places = solved.network.places
+    nodes = [
+        point(solved, part.name, limit.kind)
+        for part in solved.case.parts.values()
+        for limit in part.limits
+    ]
+    nodes += [reading_node(solved, reading) for reading in solved.case.readings]
+    for wall in solved.case.walls:
+        nodes += [places.wall_outside[wall].mean, places.wall_inside[wall].mean]
+        nodes.append(hottest_cell(solved, wall))
+    return [*nodes, places.air, *places.air_nodes.tolist()]
+
+
+def _band_check(
+    solved: Solved, own: Bands | None, parts: tuple[PartFinding, ...]
+) -> BandCheck | None:
+    """Give the ends of the band of the smallest margin's part to second order."""
+    if own is None or not parts:
+        return None
+    worst_part = parts[0]
+    band = worst_part.band_k
+    if band is None or band < LEAST_CHECKED_BAND_K:
+        return None
+    low, high = own.ends(point(solved, worst_part.name, worst_part.limit_kind))
+    off = max(abs(high - band), abs(low + band))
+    return BandCheck(
+        worst_part.name, worst_part.limit_kind, band, low, high, off <= FAIR_SHARE * band
+    )
+
+
+def _unfair(own: Bands | None, check: BandCheck | None) -> list[str]:
+    """Say where bands cannot be taken at their word."""
+    if own is None:
+        return ["no band was found: the balance hardly determines the temperatures"]
+    if check is None or check.fair:
+        return []
+    return [
+        f"the band of {check.name} {check.limit_kind}, +-{check.band_k:.1f} K to first order, "
+        f"reaches from {check.lower_k:+.1f} to {check.upper_k:+.1f} K to second order; other "
+        "bands may lean as much"
+    ]

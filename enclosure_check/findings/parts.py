@@ -1,23 +1,23 @@
-"""Margins of parts against their limits, where their heat goes, and readings beside them."""
+"""Margins of parts against their limits, and where their heat goes."""
 
 from typing import Literal
 
-from enclosure_check.description.case import LimitCase, PartCase, ReadingCase
+from enclosure_check.description.case import LimitCase, PartCase
+from enclosure_check.findings.confidence import Bands
 from enclosure_check.findings.position import position_of
 from enclosure_check.findings.results import (
     BoardFinding,
     PartFinding,
     PartHeat,
-    ReadingFinding,
     judge,
 )
 from enclosure_check.findings.solved import Solved
 
 
-def part_findings(solved: Solved) -> tuple[PartFinding, ...]:
+def part_findings(solved: Solved, bands: Bands | None) -> tuple[PartFinding, ...]:
     """Give every part against every limit, the worst margin first."""
     findings = [
-        _finding(solved, part, limit, side)
+        _finding(solved, bands, part, limit, side)
         for part in solved.case.parts.values()
         for limit in part.limits
         for side in ("max", "min")
@@ -26,32 +26,42 @@ def part_findings(solved: Solved) -> tuple[PartFinding, ...]:
     return tuple(sorted(findings, key=lambda finding: finding.margin_k))
 
 
-def _finding(solved: Solved, part: PartCase, limit: LimitCase, side: str) -> PartFinding:
-    temperature = point_c(solved, part.name, limit.kind)
+def _finding(
+    solved: Solved, bands: Bands | None, part: PartCase, limit: LimitCase, side: str
+) -> PartFinding:
+    case, node = solved.case, point(solved, part.name, limit.kind)
+    temperature = solved.at(node)
     allowed = limit.max_c if side == "max" else limit.min_c
     assert allowed is not None
     margin = allowed - temperature if side == "max" else temperature - allowed
+    band = None if bands is None else bands.band_k(node)
     return PartFinding(
         name=part.name,
         limit_kind=limit.kind,
         limit_side="max" if side == "max" else "min",
         temperature_c=temperature,
-        band_k=None,
+        band_k=band,
         limit_c=allowed,
         derated=limit.derated and side == "max",
         margin_k=margin,
-        verdict=judge(margin, solved.case.margin_k or 0.0),
+        verdict=judge(margin, case.margin_k or 0.0, band, case.confidence_pct),
         local_air_c=float(solved.temperature_c[solved.network.places.parts[part.name].air]),
         position=position_of(solved.case.positions.parts, part.name),
+        contributions=() if bands is None else bands.contributions(node),
     )
 
 
-def point_c(solved: Solved, part: str, point: str) -> float:
-    """Give the temperature of a point of a part: junction, case, board or air [C]."""
-    node = getattr(solved.network.places.parts[part], point)
+def point(solved: Solved, part: str, kind: str) -> int:
+    """Give the node of a point of a part: junction, case, board or air."""
+    node = getattr(solved.network.places.parts[part], kind)
     if node is None:
-        raise ValueError(f"part {part!r} has no {point}")
-    return float(solved.temperature_c[node])
+        raise ValueError(f"part {part!r} has no {kind}")
+    return int(node)
+
+
+def point_c(solved: Solved, part: str, kind: str) -> float:
+    """Give the temperature of a point of a part: junction, case, board or air [C]."""
+    return solved.at(point(solved, part, kind))
 
 
 def part_heat(solved: Solved) -> tuple[PartHeat, ...]:
@@ -113,28 +123,4 @@ def _board(solved: Solved, name: str) -> BoardFinding:
         map_c=tuple(tuple(row) for row in cells.T[::-1].tolist()),
         seen_from=_SEEN_FROM[board.axis],
         hottest_at_mm=at,
-    )
-
-
-def reading_findings(solved: Solved) -> tuple[ReadingFinding, ...]:
-    """Give the readings taken under this condition beside the predictions."""
-    return tuple(_reading(solved, reading) for reading in solved.case.readings)
-
-
-def _reading(solved: Solved, reading: ReadingCase) -> ReadingFinding:
-    places = solved.network.places
-    if reading.kind == "part":
-        predicted = point_c(solved, reading.name, reading.point)
-    elif reading.kind == "wall":
-        nodes = places.wall_outside if reading.point == "outside" else places.wall_inside
-        predicted = solved.at(nodes[reading.name].mean)
-    else:
-        predicted = float(solved.temperature_c[places.air])
-    return ReadingFinding(
-        reading.run,
-        reading.name,
-        reading.point,
-        reading.measured_c,
-        predicted,
-        predicted - reading.measured_c,
     )

@@ -6,11 +6,19 @@ The descriptions make up the JSON Schema of the report.
 
 from __future__ import annotations
 
+import math
 from collections.abc import Mapping
 from typing import Annotated, Literal
 
 from enclosure_check.findings.about import about as _about
 from enclosure_check.findings.baseline import Baseline
+from enclosure_check.findings.certainty import (
+    BAND,
+    BandCheck,
+    Contribution,
+    ReadingBias,
+    ReadingFinding,
+)
 from enclosure_check.records import dataclass
 
 Verdict = Literal["pass", "marginal", "fail"]
@@ -37,7 +45,8 @@ class PartFinding:
     limit_side: Annotated[Literal["max", "min"], _about("Highest or lowest temperature allowed.")]
     temperature_c: Annotated[float, _about("Temperature of that point. [C]")]
     band_k: Annotated[
-        float | None, _about("Half-width at about 95 %; null until confidence is computed. [K]")
+        float | None,
+        _about("Half-width of its band at about 95 % (k = 2); null where none could be found. [K]"),
     ]
     limit_c: Annotated[float, _about("The limit. [C]")]
     derated: Annotated[bool, _about("Whether the limit comes from a derating curve.")]
@@ -46,6 +55,9 @@ class PartFinding:
     local_air_c: Annotated[float, _about("Air around the part. [C]")]
     position: Annotated[
         Position | None, _about("Where the part stands in the document; null if unknown.")
+    ]
+    contributions: Annotated[
+        tuple[Contribution, ...], _about("What the band is made of, the largest first.")
     ]
 
 
@@ -96,6 +108,7 @@ class AirLayer:
 
     height_mm: Annotated[float, _about("Height over the lowest point of the inside. [mm]")]
     air_c: Annotated[float, _about("Air temperature there. [C]")]
+    band_k: Annotated[float | None, _about(f"{BAND}. [K]")]
 
 
 @dataclass(frozen=True)
@@ -103,7 +116,9 @@ class AirFinding:
     """Inside air: its mean and its profile along gravity, linear between the heights given."""
 
     mean_c: Annotated[float, _about("Mean. [C]")]
+    mean_band_k: Annotated[float | None, _about(f"{BAND}. [K]")]
     top_c: Annotated[float, _about("At the highest point. [C]")]
+    top_band_k: Annotated[float | None, _about(f"{BAND} of that. [K]")]
     profile: Annotated[tuple[AirLayer, ...], _about("From the bottom up.")]
 
 
@@ -114,8 +129,11 @@ class WallFinding:
     name: Annotated[str, _about("Which wall.")]
     mounting: Annotated[str, _about("What its outside faces.")]
     outside_c: Annotated[float, _about("Mean outside temperature. [C]")]
+    outside_band_k: Annotated[float | None, _about(f"{BAND} of that. [K]")]
     outside_max_c: Annotated[float, _about("Highest outside temperature. [C]")]
+    outside_max_band_k: Annotated[float | None, _about(f"{BAND} of that. [K]")]
     inside_c: Annotated[float, _about("Mean inside temperature. [C]")]
+    inside_band_k: Annotated[float | None, _about(f"{BAND} of that. [K]")]
     convection_w: Annotated[float, _about("To the surrounding air. [W]")]
     radiation_w: Annotated[float, _about("To surroundings and sky. [W]")]
     sun_w: Annotated[float, _about("Sun absorbed. [W]")]
@@ -273,18 +291,6 @@ class RangeFinding:
 
 
 @dataclass(frozen=True)
-class ReadingFinding:
-    """A thermocouple reading beside the prediction."""
-
-    run: Annotated[str, _about("Name of the run.")]
-    name: Annotated[str, _about("Part or wall, or air.")]
-    point: Annotated[str, _about("Where on it.")]
-    measured_c: Annotated[float, _about("Reading. [C]")]
-    predicted_c: Annotated[float, _about("Prediction. [C]")]
-    difference_k: Annotated[float, _about("Prediction minus reading. [K]")]
-
-
-@dataclass(frozen=True)
 class ConditionFinding:
     """Everything found for one condition."""
 
@@ -296,6 +302,9 @@ class ConditionFinding:
     altitude_m: Annotated[float, _about("Altitude. [m]")]
     wind_m_per_s: Annotated[float, _about("Wind past the box. [m/s]")]
     wind_from: Annotated[str | None, _about("Where it comes from; null from any side.")]
+    confidence_pct: Annotated[
+        float | None, _about("Confidence wanted in the margin; null where none is stated. [%]")
+    ]
     parts: Annotated[tuple[PartFinding, ...], _about("Worst margin first.")]
     part_heat: Annotated[tuple[PartHeat, ...], _about("Hottest first.")]
     boards: Annotated[tuple[BoardFinding, ...], _about("By board.")]
@@ -308,6 +317,11 @@ class ConditionFinding:
     solver: Annotated[SolverFinding, _about("How well the balance was met.")]
     ranges: Annotated[tuple[RangeFinding, ...], _about("Every film law used.")]
     readings: Annotated[tuple[ReadingFinding, ...], _about("Measured beside predicted.")]
+    reading_bias: Annotated[tuple[ReadingBias, ...], _about("Readings by kind.")]
+    band_check: Annotated[
+        BandCheck | None,
+        _about("Whether first order is fair; null where the band is too small to matter."),
+    ]
     warnings: Annotated[tuple[str, ...], _about("What should be looked at.")]
     assumptions: Annotated[tuple[str, ...], _about("What was assumed because not stated.")]
 
@@ -322,7 +336,9 @@ class Report:
     digest: Annotated[str, _about("SHA-256 of the document's bytes.")]
     title: Annotated[str, _about("Title of the document.")]
     verdict: Annotated[Verdict, _about("The worst verdict of all conditions.")]
-    margin_stated: Annotated[bool, _about("Whether the document states a margin wanted.")]
+    margin_stated: Annotated[
+        bool, _about("Whether the document states a margin or a confidence wanted.")
+    ]
     conditions: Annotated[tuple[ConditionFinding, ...], _about("In the document's order.")]
     caution: Annotated[str, _about("What this check is not.")]
     inputs: Annotated[
@@ -349,8 +365,41 @@ def worst(verdicts: list[Verdict]) -> Verdict:
     return max(verdicts, key=VERDICTS.index, default="pass")
 
 
-def judge(margin_k: float, wanted_k: float) -> Verdict:
-    """Give the verdict on a margin: negative fails, less than wanted is marginal."""
+def judge(
+    margin_k: float,
+    wanted_k: float,
+    band_k: float | None = None,
+    confidence_pct: float | None = None,
+) -> Verdict:
+    """Give the verdict on a margin.
+
+    Negative fails. It passes where the margin wanted is there with the confidence wanted (one
+    side of a normal distribution whose k = 2 half-width is the band); where no confidence is
+    wanted, where neither the margin wanted nor the band reaches past the limit. Else it is
+    marginal.
+    """
     if margin_k < 0:
         return "fail"
-    return "marginal" if margin_k < wanted_k else "pass"
+    if band_k is None:
+        needed = wanted_k
+    elif confidence_pct is None:
+        needed = max(wanted_k, band_k)
+    else:
+        needed = wanted_k + normal_quantile(confidence_pct / 100) * band_k / 2
+    return "marginal" if margin_k < needed else "pass"
+
+
+def normal_quantile(share: float) -> float:
+    """Give the number of standard deviations below which a share of a normal distribution lies.
+
+    Newton's method on the distribution by `math.erf`; for shares from 0.5 to below 1.
+    """
+    z = 0.0
+    for _ in range(60):
+        density = math.exp(-0.5 * z * z) / math.sqrt(2.0 * math.pi)
+        below = 0.5 * (1.0 + math.erf(z / math.sqrt(2.0)))
+        step = min((share - below) / density, 1.0)
+        z += step
+        if abs(step) < 1e-12:
+            break
+    return z

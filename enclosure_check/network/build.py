@@ -40,6 +40,7 @@ def build_network(case: Case, options: GridOptions | None = None) -> Network:
             wall_inside=site.wall_inside,
             boards=site.boards,
             parts=site.parts,
+            grids=site.grids,
         )
     )
     return network.stirred(STIRRED) if case.stirred else network

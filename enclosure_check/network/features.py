@@ -98,12 +98,16 @@ class Covers:
 
     def _join_filler(self, part: PartCase, node: int, filler: FillerCase) -> None:
         """Join a part to the wall through the filler left over its top."""
-        owner, height = f"part:{part.name}", part.size_mm[AXIS[part.side]]
-        left = max(metres(filler.distance_mm - height), 0.0)
-        resistance = _filler_resistance(filler, left) / _area(part, filler)
+        resistance = filler_over(part, filler)
         wall = self.site.wall_inside[filler.side]
-        label = LinkLabel(owner, "filler")
+        label = LinkLabel(f"part:{part.name}", "filler")
         self.site.spot(node, resistance, filler.side, wall, *shared(part, filler), label)
+
+
+def filler_over(part: PartCase, filler: FillerCase) -> float:
+    """Give the resistance of what is left of a filler over the top of a part [K/W]."""
+    left = max(metres(filler.distance_mm - part.size_mm[AXIS[part.side]]), 0.0)
+    return _filler_resistance(filler, left) / _area(part, filler)
 
 
 # Share of a part that is told from none by nobody. [-]

@@ -5,9 +5,10 @@ from functools import cached_property
 import numpy as np
 import numpy.typing as npt
 
+from enclosure_check.network.grid import PlateGrid
 from enclosure_check.network.linear import Factor, dense, factorise
 from enclosure_check.network.links import FloatArray, IntArray, LinkKind, LinkLabel
-from enclosure_check.records import dataclass, replace
+from enclosure_check.records import dataclass, field, replace
 
 BoolArray = npt.NDArray[np.bool_]
 
@@ -123,6 +124,8 @@ class Places:
     wall_inside: dict[str, PlateNodes]
     boards: dict[str, PlateNodes]
     parts: dict[str, PartNodes]
+    grids: dict[str, PlateGrid] = field(default_factory=dict)
+    """Cells of walls and boards, by name."""
 
 
 @dataclass(frozen=True, eq=False)

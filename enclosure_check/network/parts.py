@@ -58,26 +58,46 @@ def _build_part(part: PartCase, site: Site, covers: Covers) -> None:
 
 def _join_board(part: PartCase, junction: int, site: Site) -> Spot:
     """Join a part to its board; gives the spot of the board under it."""
-    owner = f"part:{part.name}"
-    if part.theta_jb_k_per_w is not None:
-        resistance = part.theta_jb_k_per_w
-    else:
-        resistance = (part.theta_jc_bottom_k_per_w or 0.0) + _joint(part, site)
+    resistance = sum(resistances(part, site.air_conductivity).values())
     low, size = metres_3(part.low_mm), metres_3(part.size_mm)
-    label = LinkLabel(owner, "to_board")
+    label = LinkLabel(f"part:{part.name}", "to_board")
     return site.spot(junction, resistance, part.host, site.boards[part.host], low, size, label)
 
 
 def _join_wall(part: PartCase, junction: int, site: Site) -> None:
     """Join a part that sits on a wall to it."""
-    owner, wall = f"part:{part.name}", OPPOSITE[part.side]
-    joint = _pad_resistance(part.pad) if part.pad is not None else _joint(part, site)
-    resistance = (part.theta_jc_bottom_k_per_w or 0.0) + joint
+    wall = OPPOSITE[part.side]
+    resistance = sum(resistances(part, site.air_conductivity).values())
     # What touches the wall: the pad where there is one.
     foot = part if part.pad is None else part.pad
     low, size = metres_3(foot.low_mm), metres_3(foot.size_mm)
-    label = LinkLabel(owner, "to_wall")
+    label = LinkLabel(f"part:{part.name}", "to_wall")
     site.spot(junction, resistance, wall, site.wall_inside[wall], low, size, label)
+
+
+def resistances(part: PartCase, air_conductivity: float) -> dict[str, float]:
+    """Give what lies in series between a junction and its board or wall, by name [K/W].
+
+    The names are the keys that state them; ``joint`` is the air under a body where none does,
+    ``pad`` and ``pad_contact`` are the pad of a part on a wall.
+    """
+    if part.place == "board" and part.theta_jb_k_per_w is not None:
+        return {"theta_jb_k_per_w": part.theta_jb_k_per_w}
+    series = {"theta_jc_bottom_k_per_w": part.theta_jc_bottom_k_per_w or 0.0}
+    if part.place == "wall" and part.pad is not None:
+        return series | pad_resistances(part.pad)
+    if part.bottom_contact_k_per_w is not None:
+        series["bottom_contact_k_per_w"] = part.bottom_contact_k_per_w
+    elif part.theta_jc_bottom_k_per_w is None or part.place != "board":
+        series["joint"] = BODY_STAND_OFF / (air_conductivity * footprint(part))
+    return series
+
+
+def pad_resistances(pad: PadCase) -> dict[str, float]:
+    """Give the resistance of a pad and that of its contact faces [K/W]."""
+    area_mm2 = pad.area_mm2
+    bulk = metres(pad.distance_mm) / (pad.conductivity_w_per_mk * area_mm2 * 1e-6)
+    return {"pad": bulk, "pad_contact": pad.contact_mm2k_per_w / area_mm2}
 
 
 def _join_air(part: PartCase, case: int, site: Site, covers: Covers) -> None:
@@ -132,23 +152,7 @@ def _join_air(part: PartCase, case: int, site: Site, covers: Covers) -> None:
 
 def _join_pad(part: PartCase, pad: PadCase, case: int, site: Site) -> None:
     owner = f"part:{part.name}"
-    resistance = _pad_resistance(pad)
+    resistance = sum(pad_resistances(pad).values())
     low, size = metres_3(pad.low_mm), metres_3(pad.size_mm)
     label = LinkLabel(owner, "pad")
     site.spot(case, resistance, pad.wall, site.wall_inside[pad.wall], low, size, label)
-
-
-def _pad_resistance(pad: PadCase) -> float:
-    """Give the resistance of a pad and its contact faces [K/W]."""
-    area_mm2 = pad.area_mm2
-    bulk = metres(pad.distance_mm) / (pad.conductivity_w_per_mk * area_mm2 * 1e-6)
-    return bulk + pad.contact_mm2k_per_w / area_mm2
-
-
-def _joint(part: PartCase, site: Site) -> float:
-    """Give the resistance from the bottom of a body to what it stands on [K/W]."""
-    if part.bottom_contact_k_per_w is not None:
-        return part.bottom_contact_k_per_w
-    if part.theta_jc_bottom_k_per_w is not None and part.place == "board":
-        return 0.0
-    return BODY_STAND_OFF / (site.air_conductivity * footprint(part))

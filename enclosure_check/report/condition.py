@@ -2,7 +2,8 @@
 
 from collections.abc import Sequence
 
-from enclosure_check.findings.results import ConditionFinding, PartFinding, ReadingFinding
+from enclosure_check.findings.results import ConditionFinding, PartFinding
+from enclosure_check.report.bands import write_bands, write_readings
 from enclosure_check.report.heat import write_heat
 from enclosure_check.report.layout import (
     Cell,
@@ -33,8 +34,9 @@ def write_condition(page: Page, condition: ConditionFinding, shared: tuple[str, 
     _site(page, condition)
     _limits(page, condition)
     _headroom(page, condition)
+    write_bands(page, condition)
     write_heat(page, condition)
-    _readings(page, condition)
+    write_readings(page, condition)
     own = [line for line in condition.assumptions if line not in shared]
     for words, lines in (("To be looked at", condition.warnings), ("Assumed here", own)):
         if lines:
@@ -152,22 +154,7 @@ def _power_room(condition: ConditionFinding) -> str:
     return "no power was found at which a limit is just met"
 
 
-# Readings and solver ----------------------------------------------------------------------
-
-_READINGS = (
-    Shown[ReadingFinding](Column("Run", yields=True), lambda row: row.run),
-    Shown[ReadingFinding](Column("At", yields=True), lambda row: f"{row.name} {row.point}"),
-    Shown[ReadingFinding](right("Measured C"), lambda row: tenths(row.measured_c)),
-    Shown[ReadingFinding](right("Predicted C"), lambda row: tenths(row.predicted_c)),
-    Shown[ReadingFinding](right("Difference K"), lambda row: tenths(row.difference_k)),
-)
-
-
-def _readings(page: Page, condition: ConditionFinding) -> None:
-    if condition.readings:
-        page.gap()
-        page.heading("Readings beside the prediction (difference: prediction less reading)")
-        page.records(_READINGS, condition.readings)
+# Solver -----------------------------------------------------------------------------------
 
 
 def _solver(page: Page, condition: ConditionFinding) -> None:

@@ -91,11 +91,28 @@ def _headline(page: Page, report: Report, conditions: Sequence[ConditionFinding]
     if report.verdict == "fail":
         return f"FAIL: past a limit{where}."
     if report.verdict == "marginal":
-        return f"MARGINAL: inside every limit, but closer than the {kept} wanted{where}."
+        return f"MARGINAL: inside every limit, but {_why(short, kept)}{where}."
     if all(not limits_of(each) for each in conditions):
         return "PASS: no limit is stated, so there was nothing to fail."
     held = "" if wanted == [0.0] else f" with the {kept} wanted"
+    sure = sorted({each.confidence_pct for each in short if each.confidence_pct is not None})
+    if sure:
+        held += f", {sure[0]:g} % sure" if len(sure) == 1 else ", as sure as wanted"
     return f"PASS: every limit is kept{held}{where}."
+
+
+def _why(short: Sequence[ConditionFinding], kept: str) -> str:
+    """Say what makes conditions marginal."""
+    closer = any(
+        held.verdict == "marginal" and held.margin_k < each.headroom.wanted_margin_k
+        for each in short
+        for held in limits_of(each)
+    )
+    if closer:
+        return f"closer than the {kept} wanted"
+    if any(each.confidence_pct is not None for each in short):
+        return "not with the confidence wanted"
+    return "a band reaches past one"
 
 
 _SUMMARY = (

@@ -10,6 +10,7 @@ from fluids.filters import square_edge_screen
 from published import experiment_vented as vented
 from published import experiments_inside as inside
 
+from enclosure_check.findings.causes import CAUSES
 from enclosure_check.physics.air import air, rayleigh_number
 from enclosure_check.physics.correlation import CORRELATIONS
 from enclosure_check.physics.openings import CONTRACTION_LEFT, cut_out_loss, plate_loss
@@ -130,6 +131,20 @@ def test_losses_of_perforated_areas(method):
         # Ours lies between jets that win pressure back and jets that do not.
         assert plate + f * f < plate + f * f * cut_out < (1 + joined) ** 2
     assert rows == expected
+
+
+def test_defaults_of_uncertainty_are_those_of_the_code(method):
+    units = {"%": " %", "K": " K", "mm": " mm", "-": ""}
+    expected = [
+        [
+            row.words.format(name="NAME"),
+            f"{row.half_width:g}{units[row.unit]}",
+            row.basis,
+            row.shared,
+        ]
+        for row in CAUSES.values()
+    ]
+    assert method.table("what", "half-width", "rests on", "moves together") == expected
 
 
 # Outside: boxes against the numerical experiments -------------------------------------------

@@ -7,7 +7,7 @@ from support.cases import board, box, checked, part, patched, solved, temperatur
 from support.random_documents import random_document
 
 from enclosure_check.findings.assess import assess
-from enclosure_check.findings.parts import point_c
+from enclosure_check.findings.parts import point
 from enclosure_check.findings.results import judge, worst
 
 WARM = box(
@@ -83,7 +83,7 @@ def test_margins_are_limit_less_temperature():
         ("air", 55, nodes.air),
     ):
         row = found["U1", kind, "max"]
-        assert (row.limit_c, row.derated, row.band_k) == (limit, False, None)
+        assert (row.limit_c, row.derated) == (limit, False)
         assert row.temperature_c == at[node]
         assert row.margin_k == limit - at[node]
         assert row.local_air_c == at[nodes.air]
@@ -114,7 +114,8 @@ def junction_c() -> float:
 @pytest.mark.parametrize(
     ("over", "wanted", "verdict"),
     [
-        (0.01, None, "pass"),
+        (0.01, None, "marginal"),
+        (20.0, None, "pass"),
         (-0.01, None, "fail"),
         (4.9, 5, "marginal"),
         (5.1, 5, "pass"),
@@ -133,6 +134,42 @@ def test_verdict_of_a_part(junction_c, side, over, wanted, verdict):
     assert row.margin_k == pytest.approx(over, abs=1e-6)
     assert row.verdict == verdict
     assert finding.verdict == verdict
+
+
+@pytest.mark.parametrize(
+    ("share_of_band", "confidence", "verdict"),
+    [
+        # Without a confidence wanted the band must not reach past the limit.
+        (0.99, None, "marginal"),
+        (1.01, None, "pass"),
+        # With one: so many standard deviations, half of the band each, on one side.
+        (0.99 * 1.6448536 / 2, 95, "marginal"),
+        (1.01 * 1.6448536 / 2, 95, "pass"),
+        (0.99 * 0.6744898 / 2, 75, "marginal"),
+        (1.01 * 0.6744898 / 2, 75, "pass"),
+        (0.001, 50, "pass"),
+        (-0.001, 50, "fail"),
+    ],
+)
+@pytest.mark.parametrize("wanted", [None, 3])
+def test_verdict_by_band_and_confidence(wanted, share_of_band, confidence, verdict):
+    """The quantiles are those of printed tables of the normal distribution."""
+    free = limited(
+        {"max_c": 300, "min_c": None}, {"margin_k": wanted, "confidence_pct": confidence}
+    )
+    free = patched(free, {"parts": {"R1": {"limits": None}}})
+    (row,) = checked(free).parts
+    over = share_of_band * row.band_k
+    if wanted and confidence:
+        over += wanted if over > 0 else 0.0
+    if wanted and not confidence:
+        # The wanted margin is less than the band here, and is kept with it.
+        assert wanted < row.band_k
+    limit = row.temperature_c + over
+    made = patched(free, {"parts": {"U1": {"limits": {"junction": {"max_c": limit}}}}})
+    finding = checked(made)
+    assert finding.parts[0].margin_k == pytest.approx(over, abs=1e-6)
+    assert finding.parts[0].verdict == verdict
 
 
 def test_derated_limit_is_marked_at_its_upper_side_only():
@@ -154,7 +191,7 @@ def test_verdict_of_the_case_is_the_worst_of_parts_and_walls():
 
 def test_a_point_that_a_part_does_not_have():
     with pytest.raises(ValueError, match="'R1' has no board"):
-        point_c(solved(WARM), "R1", "board")
+        point(solved(WARM), "R1", "board")
 
 
 # Where the heat goes ------------------------------------------------------------------------
@@ -291,9 +328,23 @@ def test_readings_beside_the_prediction():
         ("top", "inside"): answer.temperature_c[places.wall_inside["top"].mean],
         ("air", "mean"): names["inside air, mean"],
     }
-    rows = assess(answer).readings
+    finding = assess(answer)
+    rows = finding.readings
     assert {(row.name, row.point): row.predicted_c for row in rows} == predicted
     for row in rows:
         assert row.run == "bench"
         assert row.difference_k == row.predicted_c - row.measured_c
+        assert row.band_k > 0
+        assert row.inside_band == (abs(row.difference_k) <= row.band_k)
     assert [row.measured_c for row in rows] == [60, 50, 55, 40, 33, 34, 41]
+    assert {row.inside_band for row in rows} == {True, False}
+    bias = {row.kind: row for row in finding.reading_bias}
+    assert {kind: row.count for kind, row in bias.items()} == {"part": 4, "wall": 2, "air": 1}
+    walls = [row for row in rows if row.kind == "wall"]
+    assert bias["wall"].mean_difference_k == pytest.approx(
+        sum(row.difference_k for row in walls) / 2
+    )
+    assert bias["wall"].rms_difference_k == pytest.approx(
+        (sum(row.difference_k**2 for row in walls) / 2) ** 0.5
+    )
+    assert bias["wall"].inside_band == sum(row.inside_band for row in walls)

@@ -145,7 +145,7 @@ def test_maps_of_the_samples_show_the_hottest_part_in_its_place():
 
 
 def profile(*temperatures: float) -> tuple[AirLayer, ...]:
-    return tuple(AirLayer(10.0 * index, value) for index, value in enumerate(temperatures))
+    return tuple(AirLayer(10.0 * index, value, 1.0) for index, value in enumerate(temperatures))
 
 
 def test_profile_is_drawn_from_the_top_down():
@@ -164,7 +164,7 @@ def test_even_air_is_not_drawn():
 def test_pictures_fit_any_page(tmp_path):
     report = with_condition(
         report_of(tmp_path),
-        air=AirFinding(30.0, 40.0, profile(20.0, 30.0, 40.0)),
+        air=AirFinding(30.0, 1.0, 40.0, 1.0, profile(20.0, 30.0, 40.0)),
         boards=(board(ramp(24, 10)),),
     )
     for width in (80, 100):

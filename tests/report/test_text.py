@@ -155,7 +155,7 @@ def test_caution_is_the_last_word_but_for_the_version(sample):
 
 
 def part(margin: float, verdict: str, name: str = "X1", side: str = "max") -> PartFinding:
-    return PartFinding(name, "case", side, 50.0, None, 60.0, False, margin, verdict, 30.0, None)
+    return PartFinding(name, "case", side, 50.0, None, 60.0, False, margin, verdict, 30.0, None, ())
 
 
 def with_verdicts(report: Report, *verdicts: str, wanted: float = 0.0) -> Report:

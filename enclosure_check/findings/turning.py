@@ -1,0 +1,102 @@
+"""Knobs of a network as they are found, and what turns them."""
+
+from collections.abc import Iterator
+
+import numpy as np
+
+from enclosure_check.findings.solved import Solved
+from enclosure_check.network.inside_air import InsideAir
+from enclosure_check.network.knobs import Knobs, emitters_of
+from enclosure_check.network.links import Conduction, FloatArray, IntArray, LinkLabel
+from enclosure_check.network.units import kelvin
+from enclosure_check.physics.air import air, pressure_at_altitude
+from enclosure_check.records import dataclass, field
+
+Key = tuple[str, ...]
+# Roles of links that carry nothing uncertain: balances of means, traces, and the molecular
+# conduction of air between its layers.
+EXACT_ROLES = frozenset({"mean", "trace", "mixing"})
+
+
+@dataclass
+class Turned:
+    """Knobs that a quantity turns, by the sort of knob and their number there."""
+
+    family: str
+    name: str
+    value: float | None
+    effects: list[tuple[str, int, float]] = field(default_factory=list)
+
+
+class Turns:
+    """Knobs of a solved case's network as they are found, and what turns them."""
+
+    def __init__(self, solved: Solved) -> None:
+        self.solved, self.case, self.network = solved, solved.case, solved.network
+        self.found: dict[Key, Turned] = {}
+        self.count = 0
+        self.link = [np.full(len(kind.a), -1, dtype=np.intp) for kind in self.network.kinds]
+        self.parameter: list[tuple[int, str]] = []
+        self.films: list[FloatArray] = []
+        self.finishes: dict[str, int] = {}
+        self.finish_of_label = np.full(len(self.network.labels), -1, dtype=np.intp)
+        self.source: list[int] = []
+        self.node: list[int] = []
+        around = self.case.surroundings
+        pressure = float(pressure_at_altitude(around.altitude_m))
+        self.air_conductivity = float(air(kelvin(around.air_c), pressure).conductivity)
+
+    def turn(
+        self,
+        key: Key,
+        family: str,
+        sort: str,
+        number: int,
+        share: float = 1.0,
+        name: str = "",
+        value: float | None = None,
+    ) -> None:
+        """Let a quantity turn a knob."""
+        if share:
+            own = self.found.setdefault(key, Turned(family, name, value))
+            own.effects.append((sort, number, share))
+
+    def knob(self, kind: int, links: IntArray) -> int:
+        """Give a new knob on some links of a kind."""
+        self.link[kind][links] = self.count
+        self.count += 1
+        return self.count - 1
+
+    def knobs_by_label(self, kind: int) -> Iterator[tuple[LinkLabel, int, float]]:
+        """Give every label of a kind with a new knob on its links, and their conductance."""
+        links = self.network.kinds[kind]
+        labels = links.label
+        present = np.flatnonzero(np.bincount(labels, minlength=len(self.network.labels)))
+        knob_of = np.full(len(self.network.labels), -1, dtype=np.intp)
+        for index in present.tolist():
+            label = self.network.labels[index]
+            if label.role not in EXACT_ROLES:
+                knob_of[index] = self.count
+                self.count += 1
+        self.link[kind] = knob_of[labels]
+        weights = links.conductance[:, 0] if isinstance(links, Conduction) else None
+        total = np.bincount(labels, weights, len(self.network.labels)).astype(np.float64)
+        for index in present.tolist():
+            if knob_of[index] >= 0:
+                yield self.network.labels[index], int(knob_of[index]), float(total[index])
+
+    def knobs(self) -> Knobs:
+        """Give the knobs found."""
+        surfaces = next(
+            (len(kind.factor) for kind in self.network.kinds if isinstance(kind, InsideAir)), 0
+        )
+        return Knobs(
+            self.network,
+            tuple(self.link),
+            self.count,
+            tuple(self.parameter),
+            np.array(self.films).reshape(len(self.films), surfaces),
+            emitters_of(self.network, self.finish_of_label, len(self.finishes)),
+            np.array(self.source, dtype=np.intp),
+            np.array(self.node, dtype=np.intp),
+        )
