@@ -109,7 +109,8 @@ class Bands:
         for _ in range(_STEPS_TO_ENDS):
             rise[unknown] -= solved.inverse.apply(moved.imbalance(rise)[unknown])
         corrected = rise[node] - self.adjoint.weight[:, place] @ moved.imbalance(rise)
-        low, high = (corrected - solved.solution.rise[node, 0]).tolist()
+        warmer = moved.reference_k - solved.network.reference_k
+        low, high = (corrected + warmer - solved.solution.rise[node, 0]).tolist()
         return low, high
 
 

@@ -318,22 +318,19 @@ class _Collector(Turns):
     def _given(self) -> None:
         """Let given temperatures turn their nodes: what is as warm as the air follows it."""
         around, network = self.case.surroundings, self.network
-        reference = float(network.reference_k[0])
         nodes = {label: index for index, label in enumerate(network.node_labels)}
         air_key = ("surroundings", "air_c")
         stated = {key for tolerance in self.case.tolerances for key in tolerance.covers}
+        # The air takes all that is given along; what does not follow it is turned back.
+        self.turn(air_key, "air_c", "air", 0, value=around.air_c)
 
         def given(label: str, key: Key, name: str, value: float) -> None:
-            if label in nodes:
-                follows = abs(value - around.air_c) < _SAME_K and key not in stated
+            if label in nodes and (abs(value - around.air_c) >= _SAME_K or key in stated):
                 self.node.append(nodes[label])
                 number = len(self.node) - 1
-                if follows or key == air_key:
-                    self.turn(air_key, "air_c", "node", number, 1.0, "", around.air_c)
-                else:
-                    self.turn(key, key[-1], "node", number, 1.0, name, value)
+                self.turn(air_key, "air_c", "node", number, -1.0)
+                self.turn(key, key[-1], "node", number, 1.0, name, value)
 
-        given("surrounding air", air_key, "", around.air_c)
         given("radiant surroundings", ("surroundings", "radiant_c"), "", around.radiant_c)
         for wall in self.case.walls.values():
             if wall.mounting.surface_c is not None:
@@ -343,13 +340,15 @@ class _Collector(Turns):
         if "sky" in nodes:
             self.node.append(nodes["sky"])
             number = len(self.node) - 1
-            if around.sky == "clear":
-                moved = sky_temperature_clear(np.array([reference + _SKY_STEP_K, reference]))
-                by_air = float(moved[0] - moved[1]) / _SKY_STEP_K
-                self.turn(air_key, "air_c", "node", number, by_air)
-            elif around.sky == "overcast":
-                self.turn(air_key, "air_c", "node", number)
+            follows = {"clear": self._sky_by_air(), "overcast": 1.0}.get(around.sky, 0.0)
+            self.turn(air_key, "air_c", "node", number, follows - 1.0)
             self.turn(("surroundings", "sky_c"), "sky_c", "node", number, value=around.sky_c)
+
+    def _sky_by_air(self) -> float:
+        """How far a clear sky follows the air [K/K]."""
+        air_k = float(self.network.reference_k[0])
+        moved = sky_temperature_clear(np.array([air_k + _SKY_STEP_K, air_k]))
+        return float(moved[0] - moved[1]) / _SKY_STEP_K
 
 
 def quantities(solved: Solved) -> tuple[Knobs, tuple[Quantity, ...]]:
@@ -358,7 +357,7 @@ def quantities(solved: Solved) -> tuple[Knobs, tuple[Quantity, ...]]:
     collector.go()
     knobs = collector.knobs()
     sorts = ("parameter", "film", "finish", "source", "node")
-    start = {"link": 0, **dict(zip(sorts, knobs.starts, strict=False))}
+    start = {"link": 0, **dict(zip(sorts, knobs.starts, strict=False)), "air": knobs.starts[-1] - 1}
     return knobs, tuple(
         Quantity(
             key,

@@ -23,8 +23,8 @@ from enclosure_check.network.links import (
 from enclosure_check.network.network import Network
 from enclosure_check.records import dataclass, replace
 
-# Step of the differenced derivative by a factor on films. [-]
-_STEP = 1e-5
+# Steps of the differenced derivatives by a factor on films [-], and by the air's temperature [K].
+_STEP, _STEP_K = 1e-5, 1e-3
 # An emissivity moved beyond these is held there; they keep a surface grey. [-]
 LEAST_EMISSIVITY, LARGEST_EMISSIVITY = 1e-6, 1.0
 
@@ -122,6 +122,8 @@ class Knobs:
         Label whose sources each source knob turns, shape (sources,).
     node
         Given node that each temperature knob turns, shape (nodes,).
+
+    The last knob is the temperature of the surrounding air, with all that is given taken along.
     """
 
     network: Network
@@ -135,12 +137,12 @@ class Knobs:
 
     @cached_property
     def starts(self) -> tuple[int, int, int, int, int, int]:
-        """Where parameters, films, finishes, sources and given nodes start, and where they end."""
+        """Where parameters, films, finishes, sources and given nodes start; how many all are."""
         films = self.count + len(self.parameter)
         finishes = films + len(self.films)
         sources = finishes + len(self.emitters.mean_a)
         nodes = sources + len(self.source)
-        return self.count, films, finishes, sources, nodes, nodes + len(self.node)
+        return self.count, films, finishes, sources, nodes, nodes + len(self.node) + 1
 
     # Gradient ----------------------------------------------------------------------------
 
@@ -194,8 +196,15 @@ class Knobs:
         kept = own >= 0
         np.add.at(pushed, (sources + own[kept], network.sources.node[kept]), -put_in[kept])
         gradient = -pushed @ weight
-        gradient[nodes:] = self._by_given(weight, derivatives)
+        gradient[nodes:-1] = self._by_given(weight, derivatives)
+        gradient[-1] = 1.0 - self._by_reference(rise) @ weight
         return np.asarray(gradient)
+
+    def _by_reference(self, rise: FloatArray) -> FloatArray:
+        """Imbalance by the temperature all rises count from [W/K], shape (n,)."""
+        warmer = replace(self.network, reference_k=self.network.reference_k + _STEP_K)
+        change = warmer.imbalance(rise) - self.network.imbalance(rise)
+        return np.asarray(change[:, 0] / _STEP_K)
 
     def _by_films(self, kind: InsideAir, rise: FloatArray) -> FloatArray:
         """Heat by each film knob [W], shape (films, m)."""
@@ -272,11 +281,11 @@ class Knobs:
         by_label = np.ones((len(network.labels), variants))
         by_label[self.source] += amounts[sources:nodes]
         fixed_rise = np.repeat(network.fixed_rise, variants, axis=1)
-        fixed_rise[self.node] += amounts[nodes:]
+        fixed_rise[self.node] += amounts[nodes:-1]
         return replace(
             network,
             kinds=kinds,
-            reference_k=np.repeat(network.reference_k, variants),
+            reference_k=network.reference_k + amounts[-1],
             fixed_rise=fixed_rise,
             sources=replace(
                 network.sources,

@@ -272,7 +272,7 @@ def spread(answer, found, draws, seed):
     start = np.repeat(answer.solution.rise[network.unknown], draws, axis=1)
     solution = solve_nearby(network, start, answer.inverse)
     assert solution.converged
-    return 2.0 * solution.rise[found.adjoint.nodes].std(axis=1)
+    return 2.0 * (solution.rise[found.adjoint.nodes] + network.reference_k).std(axis=1)
 
 
 MONTE_CARLO = patched(
@@ -358,7 +358,8 @@ def test_ends_of_a_band_to_second_order_are_those_of_solving_there(document):
     start = np.repeat(answer.solution.rise[network.unknown], 2, axis=1)
     moved = solve_nearby(network, start, answer.inverse)
     assert moved.converged
-    exact = moved.rise[node] - answer.solution.rise[node, 0]
+    exact = moved.rise[node] + network.reference_k - answer.solution.rise[node, 0]
+    exact = exact - answer.network.reference_k
     # What the first order leaves is found to a half.
     assert low == pytest.approx(exact[0], abs=abs(exact[0] + band) / 2 + 0.02 * band)
     assert high == pytest.approx(exact[1], abs=abs(exact[1] - band) / 2 + 0.02 * band)
