@@ -6,12 +6,13 @@ import sys
 from typing import Any, NoReturn
 
 from enclosure_check import __version__
-from enclosure_check.cli import check_command, schema_command
+from enclosure_check.cli import check_command, completion_command, new_command, schema_command
 from enclosure_check.cli.codes import CODES
 from enclosure_check.cli.output import PROGRAM, printable
 
 _EXAMPLES = """\
 examples:
+  enclosure-check new box.yaml
   enclosure-check check box.yaml
   enclosure-check check box.yaml --condition noon_sun --condition cold_soak
   enclosure-check check box.yaml --option white_finish --strict
@@ -20,7 +21,7 @@ examples:
 """
 
 # Each has `add(commands)`, which adds its parser and sets `run`, a function of its arguments.
-COMMANDS = (check_command, schema_command)
+COMMANDS = (check_command, new_command, schema_command, completion_command)
 
 
 def _formatter(prog: str) -> argparse.RawDescriptionHelpFormatter:

@@ -6,6 +6,11 @@ from typing import Any
 from enclosure_check.cli.codes import ExitCode
 from enclosure_check.cli.output import print_result
 
+_EXAMPLES = """\
+examples:
+  enclosure-check schema document > enclosure.schema.json
+  enclosure-check schema report > report.schema.json"""
+
 
 def add(commands: Any) -> None:
     """Add the command's parser."""
@@ -14,6 +19,7 @@ def add(commands: Any) -> None:
         help="print a JSON Schema",
         description="Prints the JSON Schema (draft 2020-12) of the document, for editors, of\n"
         "the JSON report of one document, or of a run over several.",
+        epilog=_EXAMPLES,
     )
     schema.set_defaults(run=run)
     schema.add_argument("of", choices=("document", "report", "run"), help="which one")
@@ -21,17 +27,22 @@ def add(commands: Any) -> None:
 
 def run(arguments: argparse.Namespace) -> ExitCode:
     """Print a schema."""
+    print_result(schema_text(arguments.of))
+    return ExitCode.PASS
+
+
+def schema_text(of: str) -> str:
+    """Give a schema as text."""
     import json
 
     from enclosure_check.report.schema import document_schema, report_schema, run_schema
 
-    if arguments.of == "report":
+    if of == "report":
         schema = report_schema()
-    elif arguments.of == "run":
+    elif of == "run":
         schema = run_schema()
     else:
         from enclosure_check.description.document import Document
 
         schema = document_schema(Document.model_json_schema())
-    print_result(json.dumps(schema, indent=2) + "\n")
-    return ExitCode.PASS
+    return json.dumps(schema, indent=2) + "\n"

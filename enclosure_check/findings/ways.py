@@ -37,6 +37,7 @@ _PLAIN = {
     "filler": "filler: thickness over conductivity and area, and contact faces",
     "still_air": "still air under the can: conductivity times area over gap",
     "frame": "stated conductance of the can's frame",
+    "openings": "flow by the balance of mass; R goes with one over the free area of all openings",
     "edge_clamp": "stated conductance of the clamp, half a cell, and the wall around the line",
     "mounting": "stated contact conductance",
     "through": "wall: conductivity times area over thickness",

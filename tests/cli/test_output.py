@@ -187,3 +187,15 @@ def test_standard_output_that_is_closed(tmp_path, monkeypatch, capsys):
     monkeypatch.setattr("sys.stdout", None)
     assert main(["check", str(tmp_path / "box.yaml")]) == 2
     assert capsys.readouterr().err == "enclosure-check: standard output is closed\n"
+
+
+def test_help_of_every_command_has_examples(capsys):
+    from enclosure_check.cli.arguments import parser
+    from enclosure_check.cli.completion import commands_of
+
+    for command in commands_of(parser()):
+        assert main([*([command.name] if command.name else []), "--help"]) == 0
+        told = capsys.readouterr().out
+        assert "examples" in told, command.name
+        assert f"enclosure-check {command.name}" in told.partition("examples")[2]
+        assert max(map(len, told.splitlines())) <= 80

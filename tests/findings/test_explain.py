@@ -5,7 +5,7 @@ from collections import defaultdict
 
 import pytest
 from support.cases import COARSE, box, part, patched, solved
-from support.explained import DOCUMENT, scaled
+from support.explained import DOCUMENT, VENTED, scaled
 
 from enclosure_check.check import check_and_explain
 from enclosure_check.description.load import load_document
@@ -55,6 +55,22 @@ def thing_by_label(label: str) -> str:
         if re.fullmatch(pattern, label):
             return re.sub(pattern, name, label)
     return label
+
+
+def test_openings_take_their_share():
+    answer = solved(VENTED, COARSE)
+    told = explain(answer, "U1", limit_of(answer, "U1"))
+    test_every_thing_gives_what_it_gets(told)
+    test_all_of_the_heat_leaves_at_last(told)
+    (out,) = (link for link in told.links if link.way == "openings")
+    assert (out.start, out.end) == ("inside air", "surrounding air")
+    carried = sum(
+        answer.flow(label.owner, "openings")
+        for label in answer.network.labels
+        if label.role == "openings"
+    )
+    assert out.heat_w == pytest.approx(carried) != 0
+    assert out.k_per_pct < 0
 
 
 def sums_by_label(answer):

@@ -6,12 +6,14 @@ Import it as ``from support.explained import DOCUMENT`` (``tests`` is on the pat
 from dataclasses import replace
 
 import numpy as np
-from support.cases import board, box, part
+from support.cases import board, box, part, patched
 from support.features import CABLE, CAN, STAND_OFF
 
 from enclosure_check.network.inside_air import InsideAir
 from enclosure_check.network.links import Conduction, Radiation
 from enclosure_check.network.network import Network
+from enclosure_check.network.scaled import with_free_areas
+from enclosure_check.network.vents import Vents
 from enclosure_check.solve.levers import Bundle
 
 DOCUMENT = box(
@@ -46,6 +48,23 @@ DOCUMENT = box(
     },
 )
 
+SLOTS = {
+    "kind": "slots",
+    "width_mm": 60,
+    "height_mm": 30,
+    "slot_width_mm": 4,
+    "free_area_pct": 50,
+}
+VENTED = patched(
+    DOCUMENT,
+    {
+        "walls": {
+            "front": {"openings": {"high": {**SLOTS, "at_mm": [100, 125]}}},
+            "right": {"openings": {"low": {**SLOTS, "at_mm": [50, 25]}}},
+        }
+    },
+)
+
 
 def scaled(network: Network, bundle: Bundle, factor: float) -> Network:
     """The network with the conductance of some links multiplied, by the kinds' own numbers."""
@@ -63,6 +82,9 @@ def scaled(network: Network, bundle: Bundle, factor: float) -> Network:
             area=kind.area * factors[:films],
             straight_area=kind.straight_area * factors[2 * films : 2 * films + straights],
         )
+    elif isinstance(kind, Vents):
+        by_opening = factors[len(kind.air) - 1 :].reshape(-1, len(kind.air))[:, :1]
+        changed = with_free_areas(kind, by_opening)
     else:
         changed = replace(kind, area=kind.area * factors)
     kinds = list(network.kinds)
