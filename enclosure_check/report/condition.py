@@ -4,6 +4,7 @@ from collections.abc import Sequence
 
 from enclosure_check.findings.results import ConditionFinding, PartFinding
 from enclosure_check.report.bands import write_bands, write_readings
+from enclosure_check.report.bars import Scale, bar, legend, scale_of
 from enclosure_check.report.heat import write_heat
 from enclosure_check.report.layout import (
     Cell,
@@ -79,6 +80,11 @@ _LIMITS = (
 )
 
 
+def _bars(scale: Scale) -> Shown[PartFinding]:
+    """Give the column that draws margins."""
+    return Shown(Column(scale.title), lambda row: Cell(bar(row, scale), row.verdict))
+
+
 def _limits(page: Page, condition: ConditionFinding) -> None:
     page.gap()
     rows = condition.parts
@@ -88,7 +94,10 @@ def _limits(page: Page, condition: ConditionFinding) -> None:
     page.heading("Parts against their limits (margin: distance to the limit, negative past it)")
     near = nearer_limits(rows)
     shown = near[: max(MOST_LIMITS, sum(row.verdict != "pass" for row in near))]
-    page.records(_LIMITS, shown)
+    scale = scale_of(shown, page.room_beside(_LIMITS, shown))
+    page.records(_LIMITS if scale is None else (*_LIMITS, _bars(scale)), shown)
+    if scale is not None:
+        page.paragraph(f"Bars: {legend(shown, scale)}", first="  ", rest="  ")
     notes = ["* from the part's derating curve"] if any(row.derated for row in shown) else []
     if hidden := near[len(shown) :]:
         least = tenths(hidden[0].margin_k)

@@ -17,8 +17,9 @@ ELLIPSIS = "..."
 LEAST_W = 1e-6
 SMALL_W = 1e-3
 
-# SGR parameters of ECMA-48 ("ANSI escape codes").
-STYLES = {"bold": "1", "pass": "32", "marginal": "33;1", "fail": "31;1"}
+# SGR parameters of ECMA-48 ("ANSI escape codes"). Colours by number, of the cube that no theme
+# changes, about as far from black as from white: they read on both.
+STYLES = {"bold": "1", "pass": "38;5;28", "marginal": "38;5;130;1", "fail": "38;5;160;1"}
 
 
 class Column(NamedTuple):
@@ -118,6 +119,14 @@ class Page:
             [each.column for each in kept],
             ([each.cell(record) for each in kept] for record in records),
         )
+
+    def room_beside(self, shown: Sequence[Shown[Record]], records: Sequence[Record]) -> int:
+        """Give the cells that are left for one column more, negative where there are none."""
+        used = INDENT
+        for each in shown:
+            texts = (self._cell(each.cell(record)).text for record in records)
+            used += max(cells_of(text) for text in (each.column.title, *texts)) + GAP
+        return self.options.width - used
 
     def _cell(self, value: str | Cell) -> Cell:
         text, style = value if isinstance(value, Cell) else (value, "")

@@ -57,7 +57,7 @@ def uncoloured(text: str) -> str:
 def test_a_terminal_gets_colour_and_the_same_words(tmp_path, run):
     write_document(tmp_path)
     shown = in_terminal(tmp_path, 80, "check", "box.yaml")
-    assert "\x1b[32mPASS: every limit is kept.\x1b[0m" in shown
+    assert "\x1b[38;5;28mPASS: every limit is kept.\x1b[0m" in shown
     assert uncoloured(shown) == run("check", "box.yaml").out
 
 

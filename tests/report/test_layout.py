@@ -187,7 +187,7 @@ def test_colour_only_adds_to_the_words():
         sheet.table(
             COLUMNS, [["a", "1.0", Cell("FAIL", "fail")], ["b", "2.0", Cell("pass", "pass")]]
         )
-    assert "\x1b[31;1mFAIL\x1b[0m" in coloured.text()
+    assert "\x1b[38;5;160;1mFAIL\x1b[0m" in coloured.text()
     import re
 
     assert re.sub(r"\x1b\[[0-9;]*m", "", coloured.text()) == plain.text()
