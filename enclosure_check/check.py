@@ -8,13 +8,14 @@ from enclosure_check.description.case import Case
 from enclosure_check.description.load import LoadedDocument
 from enclosure_check.description.problems import DocumentError
 from enclosure_check.findings.assess import assess
-from enclosure_check.findings.results import CAUTION, ConditionFinding, Report, worst
+from enclosure_check.findings.results import CAUTION, ConditionFinding, PartFinding, Report, worst
 from enclosure_check.findings.solved import Solved
 from enclosure_check.network.build import build_network
 from enclosure_check.solve.nearby import Known, solve_known
 from enclosure_check.solve.steady import Outcome
 
 if TYPE_CHECKING:
+    from enclosure_check.findings.certainty import Sensitivities
     from enclosure_check.findings.explanation import ExplainedReport
 
 
@@ -36,10 +37,12 @@ def check(
     conditions: Sequence[str] | None = None,
     tell: Callable[[str], None] | None = None,
     see: Callable[[Solved, ConditionFinding], None] | None = None,
+    sensitivities: int = 0,
 ) -> Report:
     """Check a document under its conditions.
 
-    ``tell`` is told the name of each as it begins, ``see`` is shown what was found for it.
+    ``tell`` is told the name of each as it begins, ``see`` is shown what was found for it. The
+    report tells so many ``sensitivities`` of the smallest margin of a part.
 
     Raises
     ------
@@ -51,13 +54,19 @@ def check(
     cases = document.cases(option=option, conditions=conditions)
     found: list[ConditionFinding] = []
     known: Known | None = None
+    closest: tuple[Solved, PartFinding] | None = None
     for case in cases:
         if tell is not None:
             tell(case.condition)
         solved, known = solve_case(case, known)
-        found.append(assess(solved))
+        # Only tolerances ask for the document again.
+        rebuild = document.variation(case).case_with if case.tolerances else None
+        found.append(assess(solved, rebuild))
         if see is not None:
             see(solved, found[-1])
+        parts = found[-1].parts
+        if parts and (closest is None or parts[0].margin_k < closest[1].margin_k):
+            closest = solved, parts[0]
     return Report(
         format=1,
         version=__version__,
@@ -72,7 +81,20 @@ def check(
         caution=CAUTION,
         inputs=document.inputs(option),
         baseline=None,
+        sensitivities=_sensitivities(document, closest, sensitivities),
     )
+
+
+def _sensitivities(
+    document: LoadedDocument, closest: tuple[Solved, PartFinding] | None, most: int
+) -> "Sensitivities | None":
+    """Give the numbers that move the smallest margin most, where they are asked for."""
+    if closest is None or most == 0:
+        return None
+    from enclosure_check.findings.sensitivities import sensitivities
+
+    solved, part = closest
+    return sensitivities(solved, document.variation(solved.case), part, most)
 
 
 def check_and_explain(

@@ -21,6 +21,8 @@ class Asked(NamedTuple):
     strict: bool
     explain: str | None = None
     """A part of it."""
+    sensitivities: int = 0
+    """How many of the smallest margin."""
 
 
 def answer_all(
@@ -89,7 +91,13 @@ def _answer(
 def _report(document: LoadedDocument, asked: Asked, tell: Callable[[str], None]) -> Report:
     option, conditions = asked.option, asked.conditions
     if asked.explain is None:
-        return check(document, option=option, conditions=conditions, tell=tell)
+        return check(
+            document,
+            option=option,
+            conditions=conditions,
+            tell=tell,
+            sensitivities=asked.sensitivities,
+        )
     return check_and_explain(
         document, asked.explain, option=option, conditions=conditions, tell=tell
     )

@@ -20,6 +20,7 @@ if TYPE_CHECKING:
     from enclosure_check.findings.run import Run
 
 MOST_LOSS_K = 1000.0
+DEFAULT_SENSITIVITIES, MOST_SENSITIVITIES = 5, 1000
 FORMATS = ("text", "json", "markdown", "junit", "sarif")
 
 _ABOUT = """\
@@ -76,6 +77,16 @@ def add(commands: Any) -> None:
         "where its margin is smallest; of one document, in place of the text report",
     )
     check.add_argument(
+        "--sensitivities",
+        type=_count,
+        nargs="?",
+        const=DEFAULT_SENSITIVITIES,
+        default=0,
+        metavar="N",
+        help="also tell the N numbers of the document that move the smallest margin of a part most "
+        "(when given without N: %(const)s)",
+    )
+    check.add_argument(
         "--strict", action="store_true", help="exit 1 on a marginal verdict in any case"
     )
     check.add_argument(
@@ -124,6 +135,12 @@ def _destination(text: str) -> Destination:
     return Destination(name, path)
 
 
+def _count(text: str) -> int:
+    if not text.isdecimal() or not 1 <= int(text) <= MOST_SENSITIVITIES:
+        raise argparse.ArgumentTypeError(f"given {text!r}, allowed: 1 to {MOST_SENSITIVITIES}")
+    return int(text)
+
+
 def _loss(text: str) -> float:
     try:
         loss = float(text)
@@ -155,6 +172,8 @@ def run(arguments: argparse.Namespace) -> ExitCode:
         arguments.quiet or arguments.baseline is not None or is_several(arguments.files)
     ):
         raise UsageError("--explain goes with one document, and not with --quiet or --baseline")
+    if arguments.sensitivities and (arguments.explain is not None or arguments.quiet):
+        raise UsageError("--sensitivities does not go with --explain or --quiet")
     conditions = None
     if arguments.condition:
         conditions = tuple(dict.fromkeys(arguments.condition))
@@ -168,7 +187,13 @@ def run(arguments: argparse.Namespace) -> ExitCode:
         run, said = answer_all(
             documents.paths,
             documents.refused,
-            Asked(arguments.option, conditions, arguments.strict, arguments.explain),
+            Asked(
+                arguments.option,
+                conditions,
+                arguments.strict,
+                arguments.explain,
+                arguments.sensitivities,
+            ),
             progress.tell,
         )
     if earlier is not None:

@@ -1,8 +1,11 @@
 """Load a document: read, patch, validate and resolve every combination it describes."""
 
+from __future__ import annotations
+
 import hashlib
 from collections.abc import Iterator, Mapping, Sequence
 from itertools import chain, islice
+from typing import TYPE_CHECKING
 
 from enclosure_check.description.case import Case
 from enclosure_check.description.combinations import BASE, MAX_PROBLEMS, Checked, Combination
@@ -27,6 +30,9 @@ from enclosure_check.description.yaml_nodes import (
     read_yaml,
 )
 from enclosure_check.records import dataclass, field
+
+if TYPE_CHECKING:
+    from enclosure_check.description.variation import Variation
 
 MAX_COMBINATIONS = 200
 _LONGEST_NAME = 80
@@ -56,6 +62,12 @@ class LoadedDocument:
     def inputs(self, option: str | None = None) -> dict[str, Input]:
         """Give every value stated, with an option applied, by its dotted path."""
         return document_inputs(self.node, option)
+
+    def variation(self, case: Case) -> Variation:
+        """Give the document of one of its cases, whose numbers can be changed."""
+        from enclosure_check.description.variation import Variation
+
+        return Variation(self.node, self.file, case.option, case.condition)
 
     def cases(
         self, *, option: str | None = None, conditions: Sequence[str] | None = None

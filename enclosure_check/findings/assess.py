@@ -20,6 +20,7 @@ from enclosure_check.findings.parts import (
 )
 from enclosure_check.findings.ranges import range_findings, range_warnings
 from enclosure_check.findings.readings import reading_bias, reading_findings, reading_node
+from enclosure_check.findings.rebuilt import Rebuild
 from enclosure_check.findings.results import (
     ConditionFinding,
     PartFinding,
@@ -36,10 +37,10 @@ LEAST_CHECKED_BAND_K = 1.5
 FAIR_SHARE = 0.1
 
 
-def assess(solved: Solved) -> ConditionFinding:
-    """Give everything found for one solved case."""
+def assess(solved: Solved, rebuild: Rebuild | None = None) -> ConditionFinding:
+    """Give everything found for one solved case; see `confidence.bands` for ``rebuild``."""
     case, solution = solved.case, solved.solution
-    own = bands(solved, reported_nodes(solved))
+    own = bands(solved, reported_nodes(solved), rebuild)
     parts = part_findings(solved, own)
     readings = reading_findings(solved, own)
     check = _band_check(solved, own, parts)

@@ -57,3 +57,41 @@ class BandCheck:
     lower_k: Annotated[float, _about("Lower end of the band, from the best estimate. [K]")]
     upper_k: Annotated[float, _about("Upper end of the band, from the best estimate. [K]")]
     fair: Annotated[bool, _about("Whether both ends are near enough to the band reported.")]
+
+
+@dataclass(frozen=True)
+class Sensitivity:
+    """What a number of the document buys at the smallest margin."""
+
+    path: Annotated[str, _about("Where it stands, the option and condition applied.")]
+    value: Annotated[float, _about("The number.")]
+    unit: Annotated[str, _about("The unit of its changes; empty without one.")]
+    margin_per_pct_k: Annotated[
+        float | None,
+        _about("Margin won by one percent more of it; null for a temperature in Celsius. [K]"),
+    ]
+    margin_per_unit_k: Annotated[float, _about("Margin won by one more of its unit. [K]")]
+    installation: Annotated[
+        bool, _about("Whether it is a fact of the installation, not a designer's choice.")
+    ]
+    route: Annotated[
+        Literal["adjoint", "rebuilt"],
+        _about("Found by the adjoint alone, or with the network built again."),
+    ]
+
+
+@dataclass(frozen=True)
+class Sensitivities:
+    """The numbers that move the smallest margin most."""
+
+    name: Annotated[str, _about("Reference of the part with the smallest margin.")]
+    limit_kind: Annotated[str, _about("The point.")]
+    limit_side: Annotated[str, _about("Highest or lowest temperature allowed.")]
+    condition: Annotated[str, _about("The condition it arises in.")]
+    numbers: Annotated[
+        tuple[Sensitivity, ...],
+        _about(
+            "Those a designer can change, then the installation's; most per percent, or per kelvin "
+            "of a temperature, first."
+        ),
+    ]

@@ -15,6 +15,7 @@ from enclosure_check.description.case import ToleranceCase
 from enclosure_check.findings.causes import CAUSES, LARGEST_GAP_SHARE
 from enclosure_check.findings.certainty import Contribution
 from enclosure_check.findings.quantities import Quantity, quantities
+from enclosure_check.findings.rebuilt import Rebuild, derivative_by_rebuilding
 from enclosure_check.findings.solved import Solved
 from enclosure_check.findings.turning import Key
 from enclosure_check.network.knobs import Knobs
@@ -49,6 +50,8 @@ class Bands:
     quantities: tuple[Quantity, ...]
     causes: tuple[Cause, ...]
     adjoint: Adjoint
+    others: tuple[tuple[Cause, FloatArray], ...] = ()
+    """Causes that turn no knob, and what they do to every temperature [K]."""
 
     @cached_property
     def gradient(self) -> FloatArray:
@@ -68,8 +71,12 @@ class Bands:
 
     @cached_property
     def effects(self) -> FloatArray:
-        """What the half-width of every cause does to every temperature [K], shape (causes, t)."""
-        return np.asarray(self.turns @ self.gradient)
+        """What the half-width of every cause does to every temperature [K], shape (causes, t).
+
+        Those that turn knobs first, then the others.
+        """
+        by_knobs = self.turns @ self.gradient
+        return np.concatenate((by_knobs, *(effect[None] for _, effect in self.others)))
 
     @cached_property
     def _places(self) -> dict[int, int]:
@@ -83,10 +90,9 @@ class Bands:
         """Give the causes that move a node's temperature most, the largest first."""
         effect = self.effects[:, self._places[node]]
         largest = np.argsort(-np.abs(effect), kind="stable")[:MOST_CONTRIBUTIONS]
+        every = (*self.causes, *(cause for cause, _ in self.others))
         return tuple(
-            Contribution(
-                self.causes[index].words, self.causes[index].half_width, float(effect[index])
-            )
+            Contribution(every[index].words, every[index].half_width, float(effect[index]))
             for index in largest.tolist()
             if effect[index] != 0
         )
@@ -98,7 +104,7 @@ class Bands:
         inverse and a correction by the adjoint, which is right to second order and better.
         """
         solved, place = self.solved, self._places[node]
-        effect = self.effects[:, place]
+        effect = self.effects[: len(self.causes), place]
         size = float(np.sqrt(np.sum(effect**2)))
         if size == 0:
             return 0.0, 0.0
@@ -114,15 +120,34 @@ class Bands:
         return low, high
 
 
-def bands(solved: Solved, nodes: Sequence[int]) -> Bands | None:
-    """Give the bands on the temperatures of nodes; None where the balance is singular."""
+def bands(solved: Solved, nodes: Sequence[int], rebuild: Rebuild | None = None) -> Bands | None:
+    """Give the bands on the temperatures of nodes; None where the balance is singular.
+
+    ``rebuild`` is what tolerances of numbers need that turn no knob; without it they are left out.
+    """
     knobs, found = quantities(solved)
     wanted: IntArray = np.array(sorted(set(nodes)), dtype=np.intp)
     try:
         weights = adjoint(solved.network, solved.solution.rise, wanted)
     except np.linalg.LinAlgError:
         return None
-    return Bands(solved, knobs, found, causes(found, solved.case.tolerances), weights)
+    others = _others(solved, weights, rebuild)
+    return Bands(solved, knobs, found, causes(found, solved.case.tolerances), weights, others)
+
+
+def _others(
+    solved: Solved, weights: Adjoint, rebuild: Rebuild | None
+) -> tuple[tuple[Cause, FloatArray], ...]:
+    """Give what tolerances do of numbers that are shape, or several things at once."""
+    rows = []
+    for tolerance in solved.case.tolerances:
+        if not tolerance.about and rebuild is not None:
+            path, value = tolerance.path, tolerance.value
+            by = derivative_by_rebuilding(solved, weights, rebuild, path, value)
+            if by is not None and by.any():
+                cause = Cause(".".join(path), _half_width(tolerance), "stated", ())
+                rows.append((cause, by * tolerance.half_width))
+    return tuple(rows)
 
 
 # Causes -----------------------------------------------------------------------------------
@@ -141,7 +166,7 @@ def causes(
     for tolerance in tolerances:
         about = [by_key[key] for key in tolerance.about if key in by_key]
         covered |= set(tolerance.covers)
-        turns = [turn for quantity in about for turn in _stated(quantity, tolerance)]
+        turns = [turn for quantity in about for turn in stated_turns(quantity, tolerance)]
         if turns:
             words = ".".join(tolerance.path)
             stated.append(Cause(words, _half_width(tolerance), "stated", tuple(turns)))
@@ -173,7 +198,7 @@ def _default(group: Sequence[Quantity]) -> Cause:
     return Cause(row.words.format(name=names), f"{row.half_width:g}{unit}", row.basis, tuple(turns))
 
 
-def _stated(quantity: Quantity, tolerance: ToleranceCase) -> list[tuple[int, float]]:
+def stated_turns(quantity: Quantity, tolerance: ToleranceCase) -> list[tuple[int, float]]:
     """Give what a stated half-width of a number turns."""
     step = tolerance.half_width
     if CAUSES[quantity.family].unit == "%":

@@ -18,6 +18,7 @@ from enclosure_check.findings.certainty import (
     Contribution,
     ReadingBias,
     ReadingFinding,
+    Sensitivities,
 )
 from enclosure_check.records import dataclass
 
@@ -350,6 +351,10 @@ class Report:
     ]
     baseline: Annotated[
         Baseline | None, _about("What changed against an earlier result; null without one.")
+    ]
+    sensitivities: Annotated[
+        Sensitivities | None,
+        _about("What moves the smallest margin of a part; null where it is not asked for."),
     ]
 
 

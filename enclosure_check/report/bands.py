@@ -1,6 +1,11 @@
 """Bands: what those of the worst parts are made of, and readings beside predictions."""
 
-from enclosure_check.findings.certainty import ReadingBias, ReadingFinding
+from enclosure_check.findings.certainty import (
+    ReadingBias,
+    ReadingFinding,
+    Sensitivities,
+    Sensitivity,
+)
 from enclosure_check.findings.results import ConditionFinding, PartFinding
 from enclosure_check.report.layout import Column, Page, Shown, counted, right, tenths
 
@@ -90,3 +95,36 @@ def bias_words(row: ReadingBias) -> str:
         f"{counted(row.count, 'reading')}, {row.rms_difference_k:.1f} K root mean square, "
         f"{row.inside_band} inside the band"
     )
+
+
+# Sensitivities ----------------------------------------------------------------------------
+
+_NUMBERS = (
+    Shown[Sensitivity](Column("Number", yields=True), lambda row: row.path),
+    Shown[Sensitivity](right("Is"), lambda row: f"{row.value:g}"),
+    Shown[Sensitivity](
+        right("K per %"),
+        lambda row: "-" if row.margin_per_pct_k is None else f"{row.margin_per_pct_k:+.3f}",
+    ),
+    Shown[Sensitivity](right("K per unit"), lambda row: f"{row.margin_per_unit_k:+.3g}"),
+    Shown[Sensitivity](Column("Unit"), lambda row: row.unit or "-"),
+)
+
+
+def write_sensitivities(page: Page, found: Sensitivities) -> None:
+    """Say which numbers buy most margin."""
+    page.gap()
+    page.paragraph(
+        page.clean(
+            f"What more of a number does to the smallest margin of a part, {found.name} "
+            f"{found.limit_kind} {found.limit_side} under {found.condition} (first order)"
+        ),
+        style="bold",
+    )
+    for words, kind in (("A designer's choice:", False), ("The installation:", True)):
+        rows = [row for row in found.numbers if row.installation is kind]
+        if rows:
+            page.paragraph(words, first="  ", rest="  ")
+            page.records(_NUMBERS, rows)
+    if not found.numbers:
+        page.paragraph("No number moves it.", first="  ", rest="  ")

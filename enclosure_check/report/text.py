@@ -3,6 +3,7 @@
 from collections.abc import Sequence
 
 from enclosure_check.findings.results import ConditionFinding, Report
+from enclosure_check.report.bands import write_sensitivities
 from enclosure_check.report.condition import write_condition
 from enclosure_check.report.layout import (
     Cell,
@@ -32,6 +33,8 @@ def write_text(report: Report, options: WriterOptions) -> str:
         from enclosure_check.report.baseline_text import write_baseline
 
         write_baseline(page, report, report.baseline)
+    if report.sensitivities is not None:
+        write_sensitivities(page, report.sensitivities)
     shared = shared_assumptions(report.conditions)
     for condition in conditions:
         write_condition(page, condition, shared)

@@ -1,0 +1,62 @@
+"""What a number does that is shape, or several things at once: by building the network again."""
+
+from collections.abc import Callable
+
+import numpy as np
+
+from enclosure_check.description.case import Case
+from enclosure_check.findings.solved import Solved
+from enclosure_check.network.build import build_network
+from enclosure_check.network.links import FloatArray
+from enclosure_check.records import replace
+from enclosure_check.solve.adjoint import Adjoint
+
+Key = tuple[str, ...]
+# Gives the case with another number at a path; None where that is no valid document.
+Rebuild = Callable[[Key, float], Case | None]
+# Step of the rebuilt difference: a share of the number, and for a length at least so many
+# millimetres, so that what goes over cells and patches in steps is smoothed.
+STEP, LEAST_STEP_MM, LEAST_STEP = 0.005, 0.5, 1e-3
+
+
+def derivative_by_rebuilding(
+    solved: Solved, adjoint: Adjoint, rebuild: Rebuild, path: Key, value: float
+) -> FloatArray | None:
+    """Derivatives of temperatures by a number, from the balance of the network it then makes.
+
+    ``dT/dp = -w . (r(x, p + dp) - r(x, p - dp)) / (2 dp)``: no new solve, a Newton correction in
+    effect; from one side where there is no like network on the other.
+
+    Returns
+    -------
+    ndarray or None
+        By the number's own unit, shape (t,); None where no like network can be built either way.
+    """
+    step = max(STEP * abs(value), LEAST_STEP_MM if _is_length(path) else LEAST_STEP)
+    ends = [_moved(solved, adjoint, rebuild(path, value + way)) for way in (step, -step)]
+    high, low = ends
+    if high is None and low is None:
+        return None
+    still = np.zeros(adjoint.weight.shape[1])
+    span = step * ((high is not None) + (low is not None))
+    return np.asarray(((still if high is None else high) - (still if low is None else low)) / span)
+
+
+def _moved(solved: Solved, adjoint: Adjoint, case: Case | None) -> FloatArray | None:
+    """Change of temperatures in another case, shape (t,); None where its network is unlike."""
+    if case is None:
+        return None
+    same = replace(case, positions=solved.case.positions, tolerances=solved.case.tolerances)
+    if same == solved.case:
+        return np.zeros(adjoint.weight.shape[1])
+    network, own = build_network(case), solved.network
+    if network.node_labels != own.node_labels or not np.array_equal(network.fixed, own.fixed):
+        return None
+    rise = network.full_rise(solved.solution.rise[own.unknown])
+    change = network.imbalance(rise)[:, 0] - own.imbalance(solved.solution.rise)[:, 0]
+    warmer = float(network.reference_k[0] - own.reference_k[0])
+    return np.asarray(warmer - change @ adjoint.weight)
+
+
+def _is_length(path: Key) -> bool:
+    return any(step.endswith("_mm") for step in path)
