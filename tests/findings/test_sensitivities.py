@@ -7,7 +7,7 @@ from support.cases import board, box, part
 from enclosure_check.check import check
 from enclosure_check.cli import main
 from enclosure_check.description.load import load_document
-from enclosure_check.findings.rebuilt import LEAST_STEP, LEAST_STEP_MM, STEP
+from enclosure_check.findings.rebuilt import step_of
 
 DOCUMENT = box(
     finishes={"coat": {"emissivity": 0.85, "solar_absorptivity": 0.4}},
@@ -64,13 +64,12 @@ def margin_with(folder, path, value):
     return check(load_document(str(written(folder, document)))).conditions[0].parts[0].margin_k
 
 
-def step_of(row):
+def moved_by(row):
     """The step of rebuilt differences, which some lengths need; small for all others."""
     if row.margin_per_pct_k is None:
         return 0.05
-    if row.route == "rebuilt":
-        return max(STEP * abs(row.value), LEAST_STEP_MM if "_mm" in row.path else LEAST_STEP)
-    return 0.002 * row.value
+    path = tuple(row.path.split("."))
+    return step_of(path, row.value) if row.route == "rebuilt" else 0.002 * row.value
 
 
 def test_every_sensitivity_is_that_of_checking_again(folder, found):
@@ -79,7 +78,7 @@ def test_every_sensitivity_is_that_of_checking_again(folder, found):
     largest = max(abs(row.margin_per_pct_k) for row in rows if row.margin_per_pct_k is not None)
     for row in rows:
         path = row.path.split(".")
-        step = step_of(row)
+        step = moved_by(row)
         high, low = (margin_with(folder, path, row.value + sign * step) for sign in (1, -1))
         by_checking = (high - low) / (2 * step)
         rounding = TOLERANCE * largest * 100 / abs(row.value or 1.0) / 10
