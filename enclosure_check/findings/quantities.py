@@ -7,6 +7,7 @@ from enclosure_check.description.frames import AXIS, OPPOSITE, Vector
 from enclosure_check.description.names import WALL_NAMES, WallName
 from enclosure_check.findings.solved import Solved
 from enclosure_check.findings.turning import Key, Turns
+from enclosure_check.network.builder import LEAST_RESISTANCE
 from enclosure_check.network.covering import shared
 from enclosure_check.network.features import filler_over
 from enclosure_check.network.films import BoxFilm
@@ -279,7 +280,7 @@ class _Collector(Turns):
             return
         grid = self.network.places.grids[host]
         more = replace(grid, sheet=grid.sheet * (1.0 + _SHEET_STEP)).sub_cell(*foot)[0]
-        by_sheet = (more - grid.sub_cell(*foot)[0]) / (_SHEET_STEP * total)
+        by_sheet = (more / total - added) / _SHEET_STEP
         if host in self.case.boards:
             self.turn(("boards", host, "copper"), "copper", "link", knob, -by_sheet, host)
         else:
@@ -377,7 +378,8 @@ def _flat(size: Vector, side: WallName) -> tuple[bool, ...]:
 
 def _is_least(series: dict[str, float], total: float) -> bool:
     """Tell whether a spreading term below zero left no more of a resistance than it may."""
-    return total <= LEAST_SHARE_LEFT * sum(series.values()) * (1.0 + 1e-9)
+    least = max(LEAST_SHARE_LEFT * sum(series.values()), LEAST_RESISTANCE)
+    return total <= least * (1.0 + 1e-9)
 
 
 def _wall(label: LinkLabel) -> WallName:

@@ -171,8 +171,10 @@ class Knobs:
             total -= np.bincount(flat + kind.b[kept], heat, many * size)
             pushed[first : first + many] += total.reshape(many, size)
 
-        for knob, kind in zip(self.link, network.kinds, strict=True):
-            heat = kind.evaluate(rise, network.reference_k)[:, 0]
+        heats = network.heat(rise)
+        ends = np.cumsum([len(kind.a) for kind in network.kinds])[:-1]
+        by_kind = np.split(heats[:, 0], ends)
+        for knob, kind, heat in zip(self.link, network.kinds, by_kind, strict=True):
             push(knob, 0, self.count, kind, heat)
             if isinstance(kind, InsideAir):
                 for index, change in enumerate(self._by_films(kind, rise)):
@@ -186,8 +188,7 @@ class Knobs:
         for index, (number, name) in enumerate(self.parameter):
             kind = network.kinds[number]
             more = kind.with_parameter(name, getattr(kind, name) * (1.0 + _STEP))
-            change = more.evaluate(rise, network.reference_k)
-            change = (change - kind.evaluate(rise, network.reference_k))[:, 0] / _STEP
+            change = (more.evaluate(rise, network.reference_k)[:, 0] - by_kind[number]) / _STEP
             push(_one(kind), parameters + index, 1, kind, change)
         put_in = network.sources.heat(rise[network.sources.node], network.reference_k)[:, 0]
         at = np.full(len(network.labels), -1, dtype=np.intp)
@@ -197,13 +198,13 @@ class Knobs:
         np.add.at(pushed, (sources + own[kept], network.sources.node[kept]), -put_in[kept])
         gradient = -pushed @ weight
         gradient[nodes:-1] = self._by_given(weight, derivatives)
-        gradient[-1] = 1.0 - self._by_reference(rise) @ weight
+        gradient[-1] = 1.0 - self._by_reference(rise, heats) @ weight
         return np.asarray(gradient)
 
-    def _by_reference(self, rise: FloatArray) -> FloatArray:
+    def _by_reference(self, rise: FloatArray, heats: FloatArray) -> FloatArray:
         """Imbalance by the temperature all rises count from [W/K], shape (n,)."""
         warmer = replace(self.network, reference_k=self.network.reference_k + _STEP_K)
-        change = warmer.imbalance(rise) - self.network.imbalance(rise)
+        change = warmer.imbalance(rise) - self.network.imbalance(rise, heats)
         return np.asarray(change[:, 0] / _STEP_K)
 
     def _by_films(self, kind: InsideAir, rise: FloatArray) -> FloatArray:
