@@ -10,6 +10,7 @@ from enclosure_check.description.problems import DocumentError
 from enclosure_check.findings.assess import assess
 from enclosure_check.findings.results import CAUTION, ConditionFinding, PartFinding, Report, worst
 from enclosure_check.findings.solved import Solved
+from enclosure_check.findings.stated import PartListFinding
 from enclosure_check.network.build import build_network
 from enclosure_check.solve.nearby import Known, solve_known
 from enclosure_check.solve.steady import Outcome
@@ -72,6 +73,10 @@ def check(
         version=__version__,
         document=document.file,
         digest=document.digest,
+        part_lists=tuple(
+            PartListFinding(each.name, each.file, each.digest, each.parts)
+            for each in document.part_lists(option)
+        ),
         title=cases[0].title,
         verdict=worst([condition.verdict for condition in found]),
         margin_stated=any(

@@ -23,6 +23,7 @@ class Asked(NamedTuple):
     """A part of it."""
     sensitivities: int = 0
     """How many of the smallest margin."""
+    allowed_folders: Sequence[str] = ()
 
 
 def answer_all(
@@ -76,7 +77,7 @@ def _answer(
 ) -> tuple[Report | NoAnswer, list[str]]:
     document: LoadedDocument | None = None
     try:
-        document = load_document(path)
+        document = load_document(path, allowed_folders=asked.allowed_folders)
         return _report(document, asked, tell), []
     except DocumentError as error:
         lines = [str(problem) for problem in error.problems]

@@ -93,6 +93,13 @@ def add(commands: Any) -> None:
         "--format", choices=FORMATS, default="text", help="of the report (default: %(default)s)"
     )
     check.add_argument(
+        "--allow-folder",
+        action="append",
+        default=[],
+        metavar="PATH",
+        help="part lists may lie there too, besides the document's own folder; may be repeated",
+    )
+    check.add_argument(
         "--output",
         metavar="PATH",
         help="write the report there, at once or not at all (default: standard output)",
@@ -193,6 +200,7 @@ def run(arguments: argparse.Namespace) -> ExitCode:
                 arguments.strict,
                 arguments.explain,
                 arguments.sensitivities,
+                arguments.allow_folder,
             ),
             progress.tell,
         )

@@ -331,6 +331,15 @@ class ToleranceCase:
 
 
 @dataclass(frozen=True)
+class PowerBudgetCase:
+    """Power into the box and out of it in this case."""
+
+    power_in_w: float
+    power_out_w: float
+    tolerance_pct: float
+
+
+@dataclass(frozen=True)
 class Note:
     """A remark on a field of the document: a warning or an assumption made."""
 
@@ -362,6 +371,7 @@ class Case:
     assumptions: tuple[str, ...] = field(default=())
     positions: Positions = field(default=Positions(), compare=False)
     """Where its parts and walls stand in the document."""
+    power_budget: PowerBudgetCase | None = None
 
 
 def _add(a: Vector, b: Vector) -> Vector:

@@ -26,6 +26,7 @@ from enclosure_check.description.yaml_nodes import MappingNode, locate
 
 if TYPE_CHECKING:
     from enclosure_check.description.document import Document
+    from enclosure_check.description.listed import PartLists
 
 # Checking further combinations ends once this many different problems are found.
 MAX_PROBLEMS = 500
@@ -45,8 +46,10 @@ class Checked:
         options: Mapping[str, MappingNode],
         conditions: Mapping[str, MappingNode],
         condition_names: Iterable[str],
+        lists: PartLists | None = None,
     ) -> None:
         self.file = file
+        self.lists = lists
         own = ("options", "conditions")
         self.base = MappingNode(
             {key: value for key, value in node.entries.items() if key not in own},
@@ -80,16 +83,31 @@ class Checked:
 
     def _check_one(self, combination: Combination) -> None:
         option, condition = combination
-        node = self.base
+        patches = []
         if option is not None:
-            node = merge_patch(node, self.options[option])
+            patches.append(self.options[option])
         if condition is not None:
-            node = merge_patch(node, self.conditions[condition])
+            patches.append(self.conditions[condition])
+        node, listed, unread = self.base, None, False
         try:
+            if self.lists is not None:
+                try:
+                    node, listed = self.lists.put_in(node, patches)
+                except DocumentError as error:
+                    for problem in error.problems:
+                        self._note(problem, False, combination)
+                    unread = True
+            for patch in patches:
+                node = merge_patch(node, patch)
+            if unread:  # parts of the document's own may want their listed half
+                kept = {key: each for key, each in node.entries.items() if key != "parts"}
+                node = replace(node, entries=kept)
             document = validated(node, self.file, self.known)
         except DocumentError as error:
             for problem in error.problems:
                 self._note(problem, False, combination)
+            return
+        if unread:
             return
         self.valid.add(combination)
         self.merged.append(node)
@@ -100,11 +118,14 @@ class Checked:
                 )
         problems = list(self._measured(document))
         try:
-            case = resolve(document, condition or BASE, option)
+            case = resolve(document, condition or BASE, option, listed)
         except FieldErrors as error:
             problems += error.problems
         else:
-            case = replace(case, positions=positions(node, case.walls))
+            found = positions(node, case.walls)
+            if self.lists is not None:
+                found = self.lists.placed_positions(found)
+            case = replace(case, positions=found)
             if document.tolerances:
                 from enclosure_check.description.numbers import stated_tolerances
 

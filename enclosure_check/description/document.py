@@ -17,6 +17,8 @@ from enclosure_check.description.board import Board, BoardDefaults
 from enclosure_check.description.box import Box, Wall, WallDefaults
 from enclosure_check.description.names import LimitKind, WallName
 from enclosure_check.description.part import Part, PartType, Percent
+from enclosure_check.description.part_list import PartList
+from enclosure_check.description.power_budget import PowerBudget
 from enclosure_check.description.surroundings import Surroundings
 
 
@@ -128,10 +130,22 @@ class Document(Strict):
     part_types: dict[Name, PartType] = Field(
         default_factory=dict, description="What parts of one kind share, by name."
     )
-    parts: dict[Name, Part] = Field(default_factory=dict, description="Parts by reference.")
+    part_lists: dict[Name, PartList] = Field(
+        default_factory=dict,
+        max_length=20,
+        description="Files that hold parts, by name; joined by reference, below `parts`.",
+    )
+    parts: dict[Name, Part] = Field(
+        default_factory=dict,
+        description="Parts by reference. What stands here is merged into parts of the same "
+        "reference from `part_lists`; null leaves one out.",
+    )
     modes: dict[Name, Mode] = Field(default_factory=dict, description="Operating modes by name.")
     mode: Name | None = Field(
         None, description="The operating mode that applies; full power when left out."
+    )
+    power_budget: PowerBudget | None = Field(
+        None, description="Power put into the box, to compare with the heat of what is listed."
     )
     surroundings: Surroundings = Field(description="What the box stands in.")
     stirred: bool = Field(

@@ -6,6 +6,8 @@ looked at against its normal. Seen so, *up* is z on upright faces and y (the rea
 ones, and *right* follows from it.
 """
 
+import math
+
 from enclosure_check.description.names import WallName
 from enclosure_check.records import dataclass
 
@@ -84,3 +86,26 @@ def point_on_face(
     right = low[frame.right_axis] + at[0] if from_low_right else high[frame.right_axis] - at[0]
     up = low[frame.up_axis] + at[1] if vertical == "lower" else high[frame.up_axis] - at[1]
     return right, up
+
+
+def turned_rectangle(length: float, width: float, turn_deg: float) -> tuple[float, float]:
+    """Give the sides of a rectangle along the axes that stands for a turned one.
+
+    Quarter turns are exact. In between it has the area of the rectangle, which is what conduction
+    and films go by, and the proportions of the smallest rectangle along the axes that encloses
+    it: it goes over into the exact ones without a jump and is a square at 45 deg.
+
+    Parameters
+    ----------
+    length, width
+        Sides of the rectangle, along right and up before the turn [mm].
+    turn_deg
+        Turn, either way round [deg].
+    """
+    quarters, rest = divmod(turn_deg, 90)
+    if rest == 0:
+        return (width, length) if quarters % 2 else (length, width)
+    sine, cosine = abs(math.sin(math.radians(turn_deg))), abs(math.cos(math.radians(turn_deg)))
+    right, up = length * cosine + width * sine, length * sine + width * cosine
+    scale = math.sqrt(length * width / (right * up))
+    return right * scale, up * scale

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import hashlib
 from collections.abc import Iterator, Mapping, Sequence
+from contextlib import suppress
 from itertools import chain, islice
 from typing import TYPE_CHECKING
 
@@ -32,6 +33,7 @@ from enclosure_check.description.yaml_nodes import (
 from enclosure_check.records import dataclass, field
 
 if TYPE_CHECKING:
+    from enclosure_check.description.listed import Listed, ListFile, PartLists
     from enclosure_check.description.variation import Variation
 
 MAX_COMBINATIONS = 200
@@ -43,13 +45,22 @@ class LoadedDocument:
     """A document found valid in every combination of its options and conditions.
 
     ``file`` is its name as given, ``node`` all of it as written, ``digest`` the SHA-256 of its
-    bytes in hexadecimal.
+    bytes in hexadecimal. ``node`` holds the parts of part lists too, below the document's own.
     """
 
     file: str
     node: MappingNode
     digest: str
     _cases: Mapping[Combination, Case] = field(repr=False, compare=False)
+    _written: MappingNode | None = field(default=None, repr=False, compare=False)
+    """The document without the parts of its lists, where it has lists."""
+    _lists: PartLists | None = field(default=None, repr=False, compare=False)
+
+    def place(self, path: Path, *, at_key: bool = True) -> tuple[str, int, int]:
+        """Give file, line and column of what stands at a path: parts may stand in part lists."""
+        line, column = locate(self.node, path, at_key=at_key)
+        file, line = self._lists.place(line) if self._lists is not None else (self.file, line)
+        return file, line, column
 
     def condition_names(self) -> tuple[str, ...]:
         """Give the names of the conditions, in their order; empty when the base itself runs."""
@@ -61,13 +72,32 @@ class LoadedDocument:
 
     def inputs(self, option: str | None = None) -> dict[str, Input]:
         """Give every value stated, with an option applied, by its dotted path."""
-        return document_inputs(self.node, option)
+        return document_inputs(self._under(option, None)[0], option)
+
+    def part_lists(self, option: str | None = None) -> tuple[ListFile, ...]:
+        """Give the part lists read, those of an option in place of the document's own."""
+        listed = self._under(option, None)[1]
+        return () if listed is None else listed.files
+
+    def _under(
+        self, option: str | None, condition: str | None
+    ) -> tuple[MappingNode, Listed | None]:
+        """Give the document with the parts of the lists it has under an option and condition."""
+        if self._lists is None or self._written is None:
+            return self.node, None
+        patches = []
+        for section, name in (("options", option), ("conditions", condition)):
+            patch = _keys(self._written.entries.get(section)).get(name or "")
+            if isinstance(patch, MappingNode):
+                patches.append(patch)
+        return self._lists.put_in(self._written, patches)
 
     def variation(self, case: Case) -> Variation:
         """Give the document of one of its cases, whose numbers can be changed."""
         from enclosure_check.description.variation import Variation
 
-        return Variation(self.node, self.file, case.option, case.condition)
+        node, listed = self._under(case.option, case.condition)
+        return Variation(node, self.file, case.option, case.condition, listed)
 
     def cases(
         self, *, option: str | None = None, conditions: Sequence[str] | None = None
@@ -103,23 +133,32 @@ class LoadedDocument:
         return Problem(self.file, *locate(self.node, (key,), at_key=True), key, message)
 
 
-def load_document(path: str) -> LoadedDocument:
+def load_document(path: str, *, allowed_folders: Sequence[str] = ()) -> LoadedDocument:
     """Read a document and check all of it, in every combination of options and conditions.
 
     An option is patched onto the base, then a condition onto that. The base as it stands is
     checked only when there are no conditions, as it runs only then.
 
+    Parameters
+    ----------
+    path
+        The document.
+    allowed_folders
+        Folders, besides the document's own, that its part lists may lie in.
+
     Raises
     ------
     DocumentError
-        With every problem at once, each at its place in the file.
+        With every problem at once, each at its place in the document or a part list.
     """
     data = _read(path)
     node = read_yaml(data, path)
     problems: list[Problem] = []
     options = _patches(node, "options", path, problems)
     conditions = _patches(node, "conditions", path, problems)
-    problems += islice(_idle_removals(node, options, conditions, path), MAX_PROBLEMS)
+    lists = _part_lists(node, options, conditions, path, allowed_folders)
+    bases = _bases(node, options, conditions, lists)
+    problems += islice(_idle_removals(bases, options, conditions, path), MAX_PROBLEMS)
     combinations: list[Combination] = [
         (option, condition) for option in (None, *options) for condition in conditions or (None,)
     ]
@@ -131,13 +170,15 @@ def load_document(path: str) -> LoadedDocument:
         at = locate(node, ("options",), at_key=True)
         raise DocumentError([*problems, Problem(path, *at, "options", message)])
     all_refused = not conditions and any(_named(node, "conditions"))
-    checked = Checked(path, node, options, conditions, _named(node, "conditions"))
+    checked = Checked(path, node, options, conditions, _named(node, "conditions"), lists)
     if not all_refused:
         checked.check(combinations)
         problems += checked.problems(combinations)
     if problems:
-        raise DocumentError(problems)
-    return LoadedDocument(path, node, hashlib.sha256(data).hexdigest(), checked.cases)
+        raise DocumentError(problems if lists is None else map(lists.placed, problems))
+    digest = hashlib.sha256(data).hexdigest()
+    whole = node if lists is None else lists.put_in(node, ())[0]
+    return LoadedDocument(path, whole, digest, checked.cases, node, lists)
 
 
 def _read(path: str) -> bytes:
@@ -147,6 +188,45 @@ def _read(path: str) -> bytes:
     except (OSError, ValueError) as error:
         reason = error.strerror if isinstance(error, OSError) and error.strerror else str(error)
         raise DocumentError([Problem(path, 1, 1, "", f"cannot be read: {reason}")]) from None
+
+
+# Part lists -------------------------------------------------------------------------------
+
+
+def _part_lists(
+    node: MappingNode,
+    options: Mapping[str, MappingNode],
+    conditions: Mapping[str, MappingNode],
+    file: str,
+    allowed: Sequence[str],
+) -> PartLists | None:
+    """Give the reader of part lists, None for a document without any."""
+    nodes = (node, *options.values(), *conditions.values())
+    if not any("part_lists" in each.entries for each in nodes):
+        return None
+    from enclosure_check.description.listed import Mentioned, PartLists
+
+    return PartLists(file, allowed, Mentioned.of(nodes))
+
+
+def _bases(
+    node: MappingNode,
+    options: Mapping[str, MappingNode],
+    conditions: Mapping[str, MappingNode],
+    lists: PartLists | None,
+) -> list[MappingNode]:
+    """Give the document with the listed parts under every patch of the lists; at least as it is.
+
+    What is wrong with the lists is told when the combinations are checked.
+    """
+    if lists is None:
+        return [node]
+    bases = [node]
+    for patches in ((), *((each,) for each in (*options.values(), *conditions.values()))):
+        if not patches or "part_lists" in patches[0].entries:
+            with suppress(DocumentError):
+                bases.append(lists.put_in(node, patches)[0])
+    return bases
 
 
 # Patches ----------------------------------------------------------------------------------
@@ -202,15 +282,15 @@ def _kind(node: Node) -> str:
 
 
 def _idle_removals(
-    node: MappingNode,
+    bases: Sequence[MappingNode],
     options: Mapping[str, MappingNode],
     conditions: Mapping[str, MappingNode],
     file: str,
 ) -> Iterator[Problem]:
     """Refuse a null in a patch that removes a named thing which is nowhere: it is misspelt."""
     for key, patches, patched in (
-        ("options", options, [node]),
-        ("conditions", conditions, [node, *options.values()]),
+        ("options", options, bases),
+        ("conditions", conditions, [*bases, *options.values()]),
     ):
         for name, patch in patches.items():
             for path in null_paths(patch):

@@ -139,6 +139,11 @@ Checked after the keys themselves, with every option and condition applied:
 - A limit has `max_c`, `min_c` or a derating curve, the lower below the higher; `board` limits only
   for parts on boards. A derating curve has rising temperatures and a load that does not rise; the
   temperature at which it still allows the load is the limit.
+- A part turned between quarter turns counts as a rectangle along the edges of the same area.
+- `part_lists`: what lists may hold, how they are joined and what becomes of parts without power or
+  size is told in [part lists](parts_lists.md).
+- `power_budget`: no more power goes out than in. What stays is compared with the heat of parts,
+  boards and cables; a difference beyond the tolerance is a warning.
 - `mode` and every mode named in a power exist. `tolerances` match at least one number each; of
   several for one number the one with the fewest `*` counts, the last of equals. `measured` names
   parts that exist, and its condition when there are any.

@@ -10,7 +10,6 @@ from enclosure_check.description.base import (
     DistanceMm,
     LengthMm,
     Name,
-    NotBoolean,
     PowerW,
     Strict,
     TemperatureC,
@@ -158,8 +157,12 @@ class Part(PartType):
         description="The corner of the board or wall `at_mm` counts from, as seen from the part's "
         "side.",
     )
-    rotation_deg: Annotated[Literal[0, 90, 180, 270], NotBoolean] = Field(
-        0, description="Turn of the part. [deg]"
+    rotation_deg: float = Field(
+        0.0,
+        ge=-360,
+        le=360,
+        description="Turn of the part; between quarter turns it counts as a rectangle along the "
+        "edges of the same area. [deg]",
     )
     from_walls_mm: dict[WallName, DistanceMm] = Field(
         default_factory=dict,

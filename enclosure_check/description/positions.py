@@ -13,6 +13,8 @@ class Positions:
 
     parts: Mapping[str, Mark] = field(default_factory=dict)
     walls: Mapping[str, Mark] = field(default_factory=dict)
+    files: Mapping[str, str] = field(default_factory=dict)
+    """The part list a part stands in, of those that stand in one."""
 
 
 def positions(node: MappingNode, walls: Iterable[str]) -> Positions:

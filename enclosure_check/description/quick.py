@@ -8,7 +8,7 @@ the models themselves decide, and word what is wrong.
 
 from collections.abc import Callable
 from math import inf
-from typing import TYPE_CHECKING, Any, NoReturn, cast
+from typing import TYPE_CHECKING, Any, NoReturn, TypeVar, cast
 
 from enclosure_check.description.problems import Path
 from enclosure_check.description.quick_models import MODELS
@@ -24,6 +24,10 @@ from enclosure_check.description.yaml_nodes import (
 if TYPE_CHECKING:
     from enclosure_check.description.box import Mounting
     from enclosure_check.description.document import Document
+    from enclosure_check.description.part import Part
+    from enclosure_check.description.part_list import PartList
+
+_Record = TypeVar("_Record", "Document", "Part")
 
 # Parts of a document found valid, by model and identity of the node, which is kept beside them:
 # the documents under two conditions share what neither patch changes.
@@ -82,6 +86,30 @@ def plainly_valid(node: MappingNode, known: Known | None = None) -> "Document | 
         return cast("Document", _model(("model", "Document"), node, {} if known is None else known))
     except _DoubtError:
         return None
+
+
+def valid_list(node: Node) -> "PartList | None":
+    """Give the description of a part list, None when it is not valid."""
+    try:
+        return cast("PartList", _model(("model", "PartList"), node, {}))
+    except _DoubtError:
+        from pydantic import ValidationError
+
+        from enclosure_check.description.part_list import PartList
+
+    try:
+        return PartList.model_validate(to_data(node))
+    except ValidationError:
+        return None
+
+
+def changed(record: _Record, **values: Any) -> _Record:
+    """Give a part of a validated document with some values changed to others as valid."""
+    if not isinstance(record, Plain):
+        return record.model_copy(update=values)
+    held = dict(vars(record))
+    given = held.pop("model_fields_set")
+    return cast(_Record, Plain({**held, **values}, given))
 
 
 def mounting_by_default() -> "Mounting":

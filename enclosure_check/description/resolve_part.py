@@ -19,6 +19,7 @@ from enclosure_check.description.frames import (
     Vector,
     face_frame,
     point_on_face,
+    turned_rectangle,
     wall_pair,
 )
 from enclosure_check.description.names import AIR, WALL_NAMES, LimitKind, WallName
@@ -234,8 +235,7 @@ class PartResolver:
         axis, sign = AXIS[side], SIGN[side]
         frame = face_frame(axis, sign)
         right, up = point_on_face(frame, low, high, (part.at_mm[0], part.at_mm[1]), part.at_from)
-        turned = part.rotation_deg in (90, 270)
-        along_right, along_up = (sizes[1], sizes[0]) if turned else (sizes[0], sizes[1])
+        along_right, along_up = self._turned(path[-1], part, sizes)
         body_low, body_size = [0.0, 0.0, 0.0], [0.0, 0.0, 0.0]
         for body_axis, centre, extent in (
             (frame.right_axis, right, along_right),
@@ -270,10 +270,18 @@ class PartResolver:
                 self.remarks.error(
                     (*path, key), "applies to parts on boards and walls; use `from_walls_mm`"
                 )
-        turned = part.rotation_deg in (90, 270)
-        size = (sizes[1], sizes[0], sizes[2]) if turned else sizes
+        size = (*self._turned(path[-1], part, sizes), sizes[2])
         low = place_between_walls(size, part.from_walls_mm, self.inside, path, self.remarks)
         return None if low is None else ("air", "top", low, size)
+
+    def _turned(self, name: str | int, part: Part, sizes: Vector) -> tuple[float, float]:
+        if part.rotation_deg % 90:
+            self.remarks.assume(
+                "turned between quarter turns: taken as a rectangle along the edges of the same "
+                "area, with the proportions of the rectangle that encloses it",
+                str(name),
+            )
+        return turned_rectangle(sizes[0], sizes[1], part.rotation_deg)
 
     def _distance_to_wall(self, side: WallName, low: Vector, size: Vector) -> float:
         """Give the room between a part's top and the wall it faces [mm]."""

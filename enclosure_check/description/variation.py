@@ -20,6 +20,7 @@ from enclosure_check.description.yaml_nodes import (
 if TYPE_CHECKING:
     from enclosure_check.description.case import Case
     from enclosure_check.description.document import Document
+    from enclosure_check.description.listed import Listed
 
 Key = tuple[str, ...]
 
@@ -27,7 +28,14 @@ Key = tuple[str, ...]
 class Variation:
     """A document under one option and condition, whose numbers can be changed one at a time."""
 
-    def __init__(self, node: MappingNode, file: str, option: str | None, condition: str) -> None:
+    def __init__(
+        self,
+        node: MappingNode,
+        file: str,
+        option: str | None,
+        condition: str,
+        listed: Listed | None = None,
+    ) -> None:
         own = ("options", "conditions")
         merged = MappingNode(
             {key: value for key, value in node.entries.items() if key not in own},
@@ -43,6 +51,7 @@ class Variation:
                     merged = merge_patch(merged, patch)
         self.node = merged
         self._file, self._option, self._condition = file, option, condition
+        self._listed = listed
         self._known: Known = {}
 
     @cached_property
@@ -56,7 +65,7 @@ class Variation:
         assert isinstance(node, MappingNode)
         try:
             document = validated(node, self._file, self._known)
-            return resolve(document, self._condition or BASE, self._option)
+            return resolve(document, self._condition or BASE, self._option, self._listed)
         except (DocumentError, FieldErrors):
             return None
 

@@ -18,6 +18,7 @@ from enclosure_check.findings.parts import (
     part_heat,
     point,
 )
+from enclosure_check.findings.power_budget import budget_warnings, power_budget
 from enclosure_check.findings.ranges import range_findings, range_warnings
 from enclosure_check.findings.readings import reading_bias, reading_findings, reading_node
 from enclosure_check.findings.rebuilt import Rebuild
@@ -48,6 +49,8 @@ def assess(solved: Solved, rebuild: Rebuild | None = None) -> ConditionFinding:
     walls = wall_findings(solved, ranges, own)
     verdicts: list[Verdict] = [part.verdict for part in parts]
     verdicts += [wall.touch_verdict for wall in walls if wall.touch_verdict is not None]
+    balance = heat_balance(solved, walls)
+    budget = power_budget(case, balance.generated_w)
     return ConditionFinding(
         name=case.condition,
         verdict=worst(verdicts),
@@ -63,7 +66,8 @@ def assess(solved: Solved, rebuild: Rebuild | None = None) -> ConditionFinding:
         boards=board_findings(solved),
         air=air_finding(solved, own),
         walls=walls,
-        heat_balance=heat_balance(solved, walls),
+        heat_balance=balance,
+        power_budget=budget,
         headroom=headroom(solved, parts, walls),
         hand_estimate=hand_estimate(solved),
         openings=openings_finding(solved),
@@ -81,6 +85,7 @@ def assess(solved: Solved, rebuild: Rebuild | None = None) -> ConditionFinding:
         warnings=(
             *(_note(note) for note in case.warnings),
             *_missing(case, parts, walls),
+            *budget_warnings(budget),
             *range_warnings(ranges),
             *_unfair(own, check),
         ),

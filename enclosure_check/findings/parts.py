@@ -46,7 +46,7 @@ def _finding(
         margin_k=margin,
         verdict=judge(margin, case.margin_k or 0.0, band, case.confidence_pct),
         local_air_c=float(solved.temperature_c[solved.network.places.parts[part.name].air]),
-        position=position_of(solved.case.positions.parts, part.name),
+        position=position_of(case.positions.parts, part.name, case.positions.files),
         contributions=() if bands is None else bands.contributions(node),
     )
 

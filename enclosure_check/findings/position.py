@@ -5,7 +5,12 @@ from collections.abc import Mapping
 from enclosure_check.findings.results import Position
 
 
-def position_of(marks: Mapping[str, tuple[int, int]], name: str) -> Position | None:
-    """Give where something stands, None for what has no place of its own."""
+def position_of(
+    marks: Mapping[str, tuple[int, int]], name: str, files: Mapping[str, str] | None = None
+) -> Position | None:
+    """Give where something stands, None for what has no place of its own.
+
+    ``files`` tells the file of what does not stand in the document itself.
+    """
     mark = marks.get(name)
-    return None if mark is None else Position(*mark)
+    return None if mark is None else Position(*mark, None if files is None else files.get(name))

@@ -20,6 +20,7 @@ from enclosure_check.findings.certainty import (
     ReadingFinding,
     Sensitivities,
 )
+from enclosure_check.findings.stated import PartListFinding, PowerBudgetFinding
 from enclosure_check.records import dataclass
 
 Verdict = Literal["pass", "marginal", "fail"]
@@ -33,6 +34,7 @@ class Position:
 
     line: Annotated[int, _about("Line.")]
     column: Annotated[int, _about("Column, in characters.")]
+    file: Annotated[str | None, _about("The part list it stands in; null for the document itself.")]
 
 
 @dataclass(frozen=True)
@@ -312,6 +314,9 @@ class ConditionFinding:
     air: Annotated[AirFinding, _about("Inside air.")]
     walls: Annotated[tuple[WallFinding, ...], _about("By wall.")]
     heat_balance: Annotated[HeatBalance, _about("Heat in against heat out.")]
+    power_budget: Annotated[
+        PowerBudgetFinding | None, _about("Power in against power out; null where not stated.")
+    ]
     headroom: Annotated[Headroom, _about("How far ambient and power can rise.")]
     hand_estimate: Annotated[HandEstimate, _about("A hand calculation beside the answer.")]
     openings: Annotated[OpeningsFinding, _about("Flow through openings.")]
@@ -335,6 +340,7 @@ class Report:
     version: Annotated[str, _about("Version of the program.")]
     document: Annotated[str, _about("Path of the document, as given.")]
     digest: Annotated[str, _about("SHA-256 of the document's bytes.")]
+    part_lists: Annotated[tuple[PartListFinding, ...], _about("Part lists it names, as read.")]
     title: Annotated[str, _about("Title of the document.")]
     verdict: Annotated[Verdict, _about("The worst verdict of all conditions.")]
     margin_stated: Annotated[

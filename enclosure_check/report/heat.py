@@ -7,6 +7,7 @@ from enclosure_check.findings.results import (
     PartHeat,
     WallFinding,
 )
+from enclosure_check.findings.stated import PowerBudgetFinding
 from enclosure_check.report.layout import (
     LEAST_W,
     Cell,
@@ -147,9 +148,22 @@ def _balance(page: Page, condition: ConditionFinding) -> None:
     page.gap()
     if sum(into.values()) < LEAST_W:
         page.paragraph("Heat balance: no heat is put in and none passes.")
-        return
-    page.paragraph(_shares(into), first="Heat in:  ", rest="          ")
-    page.paragraph(_shares(out), first="Heat out: ", rest="          ")
+    else:
+        page.paragraph(_shares(into), first="Heat in:  ", rest="          ")
+        page.paragraph(_shares(out), first="Heat out: ", rest="          ")
+    if condition.power_budget is not None:
+        page.paragraph(budget_words(condition.power_budget), first="Power:    ", rest="          ")
+
+
+def budget_words(budget: PowerBudgetFinding) -> str:
+    """Say how power in, power out and the heat listed agree."""
+    verdict = "agrees" if budget.agrees else "DIFFERS"
+    return (
+        f"{watts(budget.power_in_w)} W in - {watts(budget.power_out_w)} W out = "
+        f"{watts(budget.stays_w)} W that stay; {watts(budget.generated_w)} W turn to heat, which "
+        f"{verdict} ({watts(budget.unexplained_w)} W unexplained, {watts(budget.tolerance_w)} W "
+        "allowed)"
+    )
 
 
 def _shares(heats: dict[str, float]) -> str:

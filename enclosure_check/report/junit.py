@@ -72,18 +72,20 @@ def _suite_name(report: Report, condition: ConditionFinding) -> str:
 
 
 def _test(report: Report, each: Judged) -> _Test:
-    line = None if each.position is None else each.position.line
+    line, file = None, report.document
+    if each.position is not None:
+        line, file = each.position.line, each.position.file or file
     said = [in_words(each)]
     if each.lost and report.baseline is not None:
         said.append(loss_in_words(each, report.baseline.allow_loss_k))
     message = "; ".join(said)
     if each.stops:
         kind = "limit_passed" if each.verdict == "fail" else "margin_too_small"
-        return _Test(each.label, report.document, line, "failure", kind, message)
+        return _Test(each.label, file, line, "failure", kind, message)
     if each.lost:
-        return _Test(each.label, report.document, line, "failure", "margin_lost", message)
+        return _Test(each.label, file, line, "failure", "margin_lost", message)
     note = f"{each.verdict}: {message}"
-    return _Test(each.label, report.document, line, detail=note)
+    return _Test(each.label, file, line, detail=note)
 
 
 def _without_answer(each: NoAnswer) -> _Suite:

@@ -166,7 +166,8 @@ def _at(
 ) -> _Result:
     line, column = (None, None) if position is None else (position.line, position.column)
     fingerprint = (report.document, *where)
-    return _Result(rule, message, report.document, line, column, fingerprint, level, properties)
+    file = (position.file if position is not None else None) or report.document
+    return _Result(rule, message, file, line, column, fingerprint, level, properties)
 
 
 def _of_error(each: NoAnswer) -> Iterator[_Result]:

@@ -60,6 +60,13 @@ def document_schema(document: Mapping[str, Any]) -> Schema:
             **root["properties"][name],
             "additionalProperties": {"$ref": f"#/$defs/{PATCH}Document"},
         }
+    # Beside part lists, entries of parts are patches of what is listed.
+    root["properties"]["parts"] = {
+        **root["properties"]["parts"],
+        "additionalProperties": _or_null({"$ref": f"#/$defs/{PATCH}Part"}),
+    }
+    whole = {"properties": {"parts": {"additionalProperties": {"$ref": "#/$defs/Part"}}}}
+    root |= {"if": {"required": ["part_lists"]}, "else": whole}
     return {
         "$schema": DIALECT,
         **root,

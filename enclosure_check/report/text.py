@@ -10,6 +10,7 @@ from enclosure_check.report.layout import (
     Column,
     Page,
     Shown,
+    counted,
     digits,
     listed,
     right,
@@ -43,6 +44,13 @@ def write_text(report: Report, options: WriterOptions) -> str:
         several = len(conditions) > 1
         page.heading("Assumed in every condition" if several else "Assumed, because not stated")
         page.bullets(page.clean(line) for line in shared)
+    if report.part_lists:
+        page.gap()
+        page.heading("Part lists, with their SHA-256")
+        page.bullets(
+            f"{page.clean(each.file)}, {counted(each.part_count, 'part')}: {each.digest}"
+            for each in report.part_lists
+        )
     page.gap()
     page.paragraph(f"Caution: {report.caution}")
     page.paragraph(f"enclosure-check {report.version}; the document's SHA-256:")

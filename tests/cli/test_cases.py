@@ -1,6 +1,6 @@
 """Whole runs: command, exit code, standard output and standard error, held together in a file.
 
-A case is a folder with ``cmd`` (one line), the documents and folders it names, and ``expected.txt``. Write a
+A case is a folder with ``cmd`` (one line), the documents, lists and folders it names, and ``expected.txt``. Write a
 new ``expected.txt`` with ``pytest tests/cli --update-expected`` and review it.
 """
 
@@ -39,7 +39,7 @@ def test_case(folder: Path, run, tmp_path: Path, request: pytest.FixtureRequest)
     for path in folder.iterdir():
         if path.is_dir():
             shutil.copytree(path, tmp_path / path.name)
-        elif path.suffix in (".yaml", ".json"):
+        elif path.name not in ("cmd", "expected.txt"):
             shutil.copy(path, tmp_path)
     program, *arguments = shlex.split(command)
     assert program == PROGRAM

@@ -13,6 +13,7 @@ from enclosure_check.description.frames import (
     SIGN,
     face_frame,
     point_on_face,
+    turned_rectangle,
     wall_pair,
 )
 from enclosure_check.description.names import WALL_NAMES
@@ -169,3 +170,36 @@ def test_up_is_what_two_turns_of_the_box_make_of_it(lean, roll):
     # The room's up, seen in the frame of the turned box.
     assert up(lean, roll) == pytest.approx(tuple(turned.T @ [0, 0, 1]), abs=1e-15)
     assert math.hypot(*up(lean, roll)) == pytest.approx(1, abs=1e-15)
+
+
+# Parts turned between quarter turns --------------------------------------------------------
+
+
+@pytest.mark.parametrize(
+    ("turn", "sides"),
+    [(0, (8, 2)), (90, (2, 8)), (180, (8, 2)), (270, (2, 8)), (-90, (2, 8)), (360, (8, 2))],
+)
+def test_quarter_turns_are_exact(turn, sides):
+    assert turned_rectangle(8, 2, turn) == sides
+
+
+def test_a_turned_rectangle_keeps_its_area_and_is_a_square_halfway():
+    for turn in range(-360, 361, 5):
+        right, up = turned_rectangle(8, 2, turn)
+        assert right * up == pytest.approx(16)
+    assert turned_rectangle(8, 2, 45) == pytest.approx((4, 4))
+
+
+def test_a_turned_rectangle_goes_over_into_quarter_turns_without_a_jump():
+    for turn in (0, 90, 180, 270):
+        near = turned_rectangle(8, 2, turn + 1e-6)
+        assert near == pytest.approx(turned_rectangle(8, 2, turn), rel=1e-6)
+        assert turned_rectangle(8, 2, turn - 1e-6) == pytest.approx(near, rel=1e-6)
+
+
+def test_a_turned_rectangle_has_the_proportions_of_what_encloses_it():
+    # 3, 4, 5: a square of 10 turned by the angle whose sine is 0.6 is enclosed by one of 14.
+    right, up = turned_rectangle(10, 10, 36.86989764584402)
+    assert (right, up) == pytest.approx((10, 10))
+    right, up = turned_rectangle(10, 5, 36.86989764584402)
+    assert right / up == pytest.approx((10 * 0.8 + 5 * 0.6) / (10 * 0.6 + 5 * 0.8))

@@ -84,7 +84,7 @@ def test_every_combination_is_resolved_once(load, monkeypatch):
     calls = []
     resolve = combinations.resolve
 
-    def counted(document, condition, option):
+    def counted(document, condition, option, listed):
         calls.append((option, condition))
         return resolve(document, condition, option)
 

@@ -130,11 +130,19 @@ def test_the_whole_line():
             "bolted_to or insulated; did you mean 'bolted_to'?",
         ),
         (
-            "parts: {U1: {place: b, rotation_deg: 45}}\n",
-            "given 45 (a number), allowed: 0, 90, 180 or 270",
+            "parts: {U1: {place: b, rotation_deg: 400}}\n",
+            "given 400, allowed: a number from -360 to 360 deg",
         ),
         (
             "parts: {U1: {place: b, rotation_deg: false}}\n",
+            "given false (true or false), allowed: a number from -360 to 360 deg",
+        ),
+        (
+            "part_lists: {a: {file: a.csv, columns: {reference: R}, turned_deg: 45}}\n",
+            "given 45 (a number), allowed: 0, 90, 180 or 270",
+        ),
+        (
+            "part_lists: {a: {file: a.csv, columns: {reference: R}, turned_deg: false}}\n",
             "given false (true or false), allowed: 0, 90, 180 or 270",
         ),
         (

@@ -162,6 +162,17 @@ def test_a_whole_document_lacks_nothing():
     assert faults(DOCUMENT, document)
 
 
+def test_parts_beside_part_lists_may_be_patches_and_others_not():
+    document = copy.deepcopy(SMALL)
+    document["parts"] = {"X1": {"power_w": 3}, "X2": None}
+    found = {each.split(":")[0] for each in faults(DOCUMENT, document)}
+    assert found == {"parts.X1", "parts.X2"}
+    document["part_lists"] = {"all": {"file": "a.csv", "columns": {"reference": "Ref"}}}
+    assert faults(DOCUMENT, document) == []
+    document["parts"]["X1"] = {"power": 3}
+    assert faults(DOCUMENT, document)
+
+
 def test_schema_of_the_model_is_left_as_it_was():
     model = Document.model_json_schema()
     before = copy.deepcopy(model)
