@@ -5,6 +5,7 @@ from dataclasses import replace
 
 import pytest
 from jsonschema import Draft202012Validator
+from support.gate import LOST_RUN
 from support.reports import report_of
 
 from enclosure_check.findings.run import NoAnswer, ProblemFinding, Run, run_of, stops
@@ -12,7 +13,7 @@ from enclosure_check.report.json_report import write_json
 from enclosure_check.report.layout import cells_of
 from enclosure_check.report.options import WriterOptions
 from enclosure_check.report.run_text import verdict_line, write_run
-from enclosure_check.report.schema import DIALECT, run_schema
+from enclosure_check.report.schema import DIALECT, report_schema, run_schema
 
 NONE = NoAnswer(
     "bad\x1b[31m.yaml",
@@ -100,3 +101,14 @@ def test_every_field_of_a_run_is_described():
         assert sorted(record["required"]) == sorted(record["properties"])
         assert all(each["description"] for each in record["properties"].values())
     assert all("description" in each for each in schema["properties"].values())
+
+
+def test_a_baseline_in_a_report_follows_the_schema(tmp_path):
+    run = LOST_RUN(tmp_path)
+    assert run.documents[0].baseline.limits
+    data = json.loads(write_json(run, WriterOptions()))
+    assert list(Draft202012Validator(run_schema()).iter_errors(data)) == []
+    (document,) = data["documents"]
+    assert list(Draft202012Validator(report_schema()).iter_errors(document)) == []
+    del document["baseline"]["limits"][0]["lost"]
+    assert list(Draft202012Validator(report_schema()).iter_errors(document))
