@@ -122,10 +122,9 @@ def about_inputs(baseline: Baseline, report: Report, shown: Callable[[str], str]
         )
     if not baseline.inputs_known:
         lines.append("The baseline does not list what its document stated.")
-    elif baseline.same_document:
-        lines.append("The document is the same.")
     elif not baseline.inputs:
-        lines.append("No value of the document changed.")
+        same = baseline.same_document
+        lines.append("The document is the same." if same else "No value of the document changed.")
     return lines
 
 

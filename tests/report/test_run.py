@@ -9,6 +9,7 @@ from support.gate import LOST_RUN
 from support.reports import report_of
 
 from enclosure_check.findings.run import NoAnswer, ProblemFinding, Run, run_of, stops
+from enclosure_check.report.changes import about_inputs
 from enclosure_check.report.json_report import write_json
 from enclosure_check.report.layout import cells_of
 from enclosure_check.report.options import WriterOptions
@@ -112,3 +113,27 @@ def test_a_baseline_in_a_report_follows_the_schema(tmp_path):
     assert list(Draft202012Validator(report_schema()).iter_errors(document)) == []
     del document["baseline"]["limits"][0]["lost"]
     assert list(Draft202012Validator(report_schema()).iter_errors(document))
+
+
+@pytest.mark.parametrize(
+    ("changes", "line"),
+    [
+        ({"inputs": (), "same_document": True}, "The document is the same."),
+        ({"inputs": (), "same_document": False}, "No value of the document changed."),
+        ({"inputs_known": False}, "The baseline does not list what its document stated."),
+        ({"old_option": "<fins>"}, "Option: then (<fins>), now none."),
+        ({"same_document": True}, None),  # its values changed all the same, by an option
+    ],
+)
+def test_what_a_list_of_changed_values_does_not_show(tmp_path, changes, line):
+    (report,) = LOST_RUN(tmp_path).documents
+    baseline = replace(report.baseline, old_version=report.version, **changes)
+    lines = about_inputs(baseline, report, lambda text: f"({text})")
+    assert lines == ([] if line is None else [line])
+
+
+def test_another_version_of_the_program_is_told(tmp_path):
+    (report,) = LOST_RUN(tmp_path).documents
+    baseline = replace(report.baseline, old_version="0.0.1")
+    (line,) = about_inputs(baseline, report, lambda text: f"({text})")
+    assert line.startswith(f"Program: then version (0.0.1), now {report.version};")
