@@ -19,6 +19,8 @@ class Judged(NamedTuple):
     temperature_c: float
     limit_c: float
     margin_k: float
+    band_k: float | None
+    """Half-width of the temperature's band at about 95 %, None where none could be found."""
     verdict: Verdict
     stops: bool
     """Whether the verdict stops a build."""
@@ -54,7 +56,7 @@ def judged_under(report: Report, condition: ConditionFinding, *, strict: bool) -
         _judged(
             condition.name,
             (part.name, part.limit_kind, part.limit_side),
-            (part.temperature_c, part.limit_c, part.margin_k),
+            (part.temperature_c, part.limit_c, part.margin_k, part.band_k),
             part.verdict,
             stops(part.verdict, report, strict=strict),
             part.position,
@@ -69,7 +71,7 @@ def judged_under(report: Report, condition: ConditionFinding, *, strict: bool) -
                 _judged(
                     condition.name,
                     (wall.name, "touch", "max"),
-                    (wall.outside_max_c, limit, margin),
+                    (wall.outside_max_c, limit, margin, wall.outside_max_band_k),
                     verdict,
                     stops(verdict, report, strict=strict),
                     wall.position,
@@ -85,13 +87,25 @@ _Key = tuple[str, str, str]
 def _judged(
     condition: str,
     key: _Key,
-    numbers: tuple[float, float, float],
+    numbers: tuple[float, float, float, float | None],
     verdict: Verdict,
     stopping: bool,
     position: Position | None,
     changes: Mapping[_Key, LimitChange],
 ) -> Judged:
-    return Judged(condition, *key, *numbers, verdict, stopping, position, changes.get(key))
+    temperature, limit, margin, band = numbers
+    return Judged(
+        condition,
+        *key,
+        temperature,
+        limit,
+        margin,
+        band,
+        verdict,
+        stopping,
+        position,
+        changes.get(key),
+    )
 
 
 def _changes(report: Report, condition: ConditionFinding) -> dict[_Key, LimitChange]:
@@ -105,11 +119,17 @@ def _changes(report: Report, condition: ConditionFinding) -> dict[_Key, LimitCha
 
 
 def in_words(each: Judged) -> str:
-    """Say where a limit stands: temperature, limit and margin."""
+    """Say where a limit stands: temperature with its band, limit and margin."""
     return (
-        f"{tenths(each.temperature_c)} C against {each.side} {tenths(each.limit_c)} C, "
+        f"{with_band(each)} C against {each.side} {tenths(each.limit_c)} C, "
         f"margin {tenths(each.margin_k)} K"
     )
+
+
+def with_band(each: Judged) -> str:
+    """Give the temperature with its band, where there is one."""
+    band = "" if each.band_k is None else f" +-{tenths(each.band_k)}"
+    return tenths(each.temperature_c) + band
 
 
 def loss_in_words(each: Judged, allow_loss_k: float) -> str:

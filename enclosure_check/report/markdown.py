@@ -18,7 +18,7 @@ from enclosure_check.report.changes import (
     shown_limits,
     value_words,
 )
-from enclosure_check.report.judged import Judged, judged
+from enclosure_check.report.judged import Judged, judged, with_band
 from enclosure_check.report.layout import clean, counted, cut, tenths
 from enclosure_check.report.limits import smallest_of
 from enclosure_check.report.options import WriterOptions
@@ -127,7 +127,7 @@ def _wrong(wrong: Sequence[Judged]) -> list[str]:
         [
             code(each.label),
             code(each.condition),
-            tenths(each.temperature_c),
+            with_band(each),
             tenths(each.limit_c),
             tenths(each.margin_k),
             _WORDS[each.verdict],

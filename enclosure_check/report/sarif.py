@@ -27,8 +27,8 @@ RULES: dict[str, tuple[str, str, str]] = {
     "margin-too-small": (
         "warning",
         "A margin is smaller than wanted.",
-        "The limit is kept, but not with the margin the document asks for. An error where that "
-        "stops a build.",
+        "The limit is kept, but the margin wanted, or the band of the temperature, reaches past "
+        "it. An error where that stops a build.",
     ),
     "margin-lost": (
         "error",
@@ -129,6 +129,7 @@ def _of_limit(report: Report, each: Judged) -> Iterator[_Result]:
         "temperature_c": each.temperature_c,
         "limit_c": each.limit_c,
         "margin_k": each.margin_k,
+        **({} if each.band_k is None else {"band_k": each.band_k}),
     }
     if each.verdict != "pass":
         rule = "limit-passed" if each.verdict == "fail" else "margin-too-small"
