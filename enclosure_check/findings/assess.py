@@ -44,7 +44,7 @@ def assess(solved: Solved, rebuild: Rebuild | None = None) -> ConditionFinding:
     own = bands(solved, reported_nodes(solved), rebuild)
     parts = part_findings(solved, own)
     readings = reading_findings(solved, own)
-    check = _band_check(solved, own, parts)
+    check, band_doubts = _band_check(solved, own, parts)
     ranges = range_findings(solved)
     walls = wall_findings(solved, ranges, own)
     verdicts: list[Verdict] = [part.verdict for part in parts]
@@ -88,6 +88,7 @@ def assess(solved: Solved, rebuild: Rebuild | None = None) -> ConditionFinding:
             *budget_warnings(budget),
             *range_warnings(ranges),
             *_unfair(own, check),
+            *band_doubts,
         ),
         assumptions=case.assumptions,
     )
@@ -130,19 +131,25 @@ def reported_nodes(solved: Solved) -> list[int]:
 
 def _band_check(
     solved: Solved, own: Bands | None, parts: tuple[PartFinding, ...]
-) -> BandCheck | None:
-    """Give the ends of the band of the smallest margin's part to second order."""
+) -> tuple[BandCheck | None, list[str]]:
+    """Give the ends of the band of the smallest margin's part to second order, or say why not."""
     if own is None or not parts:
-        return None
+        return None, []
     worst_part = parts[0]
     band = worst_part.band_k
     if band is None or band < LEAST_CHECKED_BAND_K:
-        return None
-    low, high = own.ends(point(solved, worst_part.name, worst_part.limit_kind))
+        return None, []
+    ends = own.ends(point(solved, worst_part.name, worst_part.limit_kind))
+    if ends is None:
+        at = f"{worst_part.name} {worst_part.limit_kind}"
+        return None, [
+            f"the band of {at}, +-{band:.1f} K, holds to first order only: its ends could not be "
+            "followed"
+        ]
+    low, high = ends
     off = max(abs(high - band), abs(low + band))
-    return BandCheck(
-        worst_part.name, worst_part.limit_kind, band, low, high, off <= FAIR_SHARE * band
-    )
+    fair = off <= FAIR_SHARE * band
+    return BandCheck(worst_part.name, worst_part.limit_kind, band, low, high, fair), []
 
 
 def _unfair(own: Bands | None, check: BandCheck | None) -> list[str]:

@@ -97,11 +97,12 @@ class Bands:
             if effect[index] != 0
         )
 
-    def ends(self, node: int) -> tuple[float, float]:
+    def ends(self, node: int) -> tuple[float, float] | None:
         """Change of a node's temperature where all causes go together to the ends of its band [K].
 
         To first order that is minus and plus the band. Both ends are found by steps of the known
-        inverse and a correction by the adjoint, which is right to second order and better.
+        inverse and a correction by the adjoint, which is right to second order and better. None
+        where these steps lead away from any state there could be.
         """
         solved, place = self.solved, self._places[node]
         effect = self.effects[: len(self.causes), place]
@@ -112,9 +113,12 @@ class Bands:
         moved = self.knobs.moved(amount[:, None] * np.array([-1.0, 1.0]))
         rise = np.where(moved.fixed[:, None], moved.fixed_rise, solved.solution.rise)
         unknown = moved.unknown
-        for _ in range(_STEPS_TO_ENDS):
-            rise[unknown] -= solved.inverse.apply(moved.imbalance(rise)[unknown])
-        corrected = rise[node] - self.adjoint.weight[:, place] @ moved.imbalance(rise)
+        with np.errstate(all="ignore"):
+            for _ in range(_STEPS_TO_ENDS):
+                rise[unknown] -= solved.inverse.apply(moved.imbalance(rise)[unknown])
+            corrected = rise[node] - self.adjoint.weight[:, place] @ moved.imbalance(rise)
+        if not np.isfinite(corrected).all():
+            return None
         warmer = moved.reference_k - solved.network.reference_k
         low, high = (corrected + warmer - solved.solution.rise[node, 0]).tolist()
         return low, high

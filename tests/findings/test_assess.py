@@ -4,6 +4,7 @@ import re
 
 import pytest
 from support.cases import NODE_SHARE, board, box, case_of, checked, part, patched, solved
+from support.reports import SMALL, report_of
 
 from enclosure_check.findings.assess import assess
 
@@ -75,3 +76,24 @@ def test_laws_outside_their_range_are_warned_of():
     )
     outside = {row.correlation for row in checked(big).ranges if not row.inside_range}
     assert outside <= {"box_shelter", "yovanovich_cuboid"}
+
+
+def test_a_band_whose_ends_lead_nowhere_is_said_to_be_of_first_order(tmp_path, monkeypatch):
+    monkeypatch.setattr("enclosure_check.findings.confidence.Bands.ends", lambda *_: None)
+    (condition,) = report_of(tmp_path, SMALL).conditions
+    assert condition.parts[0].band_k > 0
+    assert condition.band_check is None
+    assert [line for line in condition.warnings if "X1 case, +-" in line]
+
+
+def test_steps_to_the_ends_that_find_no_state_end_quietly(tmp_path):
+    """Two parts in the air of a small box; warnings of arithmetic would fail this test."""
+    part = SMALL["parts"]["X1"]
+    document = {
+        **SMALL,
+        "parts": {"X1": {**part, "power_w": 2.0}, "X2": {**part, "power_w": 0.5}},
+        "surroundings": {"air_c": 30},
+    }
+    (condition,) = report_of(tmp_path, document).conditions
+    followed = condition.band_check is not None
+    assert followed != any("holds to first order only" in line for line in condition.warnings)
