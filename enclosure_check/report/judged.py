@@ -118,6 +118,13 @@ def _changes(report: Report, condition: ConditionFinding) -> dict[_Key, LimitCha
     }
 
 
+def file_of(report: Report, position: Position | None) -> str:
+    """Give the file a position lies in: the document, or one of its part lists."""
+    if position is None or position.file is None:
+        return report.document
+    return position.file
+
+
 def in_words(each: Judged) -> str:
     """Say where a limit stands: temperature with its band, limit and margin."""
     return (
