@@ -8,7 +8,7 @@ from typing import Any, NamedTuple
 
 from enclosure_check.findings.results import Position, Report
 from enclosure_check.findings.run import NoAnswer, Run
-from enclosure_check.report.judged import Judged, in_words, judged, loss_in_words
+from enclosure_check.report.judged import Judged, file_of, in_words, judged, loss_in_words
 from enclosure_check.report.layout import clean
 from enclosure_check.report.options import WriterOptions
 
@@ -167,7 +167,7 @@ def _at(
 ) -> _Result:
     line, column = (None, None) if position is None else (position.line, position.column)
     fingerprint = (report.document, *where)
-    file = (position.file if position is not None else None) or report.document
+    file = file_of(report, position)
     return _Result(rule, message, file, line, column, fingerprint, level, properties)
 
 

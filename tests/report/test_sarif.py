@@ -11,6 +11,8 @@ from urllib.parse import unquote
 import pytest
 from support.gate import EVIL, EVIL_RUN, LOST_RUN, MARGINAL, PLAIN_RUN, with_errors
 
+from enclosure_check.findings.results import Position
+from enclosure_check.report.junit import write_junit
 from enclosure_check.report.options import WriterOptions
 from enclosure_check.report.sarif import RULES, write_sarif
 
@@ -192,6 +194,22 @@ def test_paths_become_uris(tmp_path, path, uri):
     base = {} if path.startswith("/") else {"uriBaseId": "%SRCROOT%"}
     assert location == {"uri": uri, **base}
     assert faults(log) == []
+
+
+def test_a_part_of_a_part_list_is_marked_there(tmp_path):
+    run = PLAIN_RUN(tmp_path)
+    (report,) = run.documents
+    listed = Position(12, 4, "lists/placement.csv")
+    conditions = tuple(
+        replace(each, parts=tuple(replace(part, position=listed) for part in each.parts))
+        for each in report.conditions
+    )
+    run = replace(run, documents=(replace(report, conditions=conditions),))
+    (found,) = [each for each in results(read(run)) if each["ruleId"] == "limit-passed"]
+    place = found["locations"][0]["physicalLocation"]
+    assert place["artifactLocation"]["uri"] == "lists/placement.csv"
+    assert place["region"] == {"startLine": 12, "startColumn": 4}
+    assert 'file="lists/placement.csv" line="12"' in write_junit(run, WriterOptions())
 
 
 def test_every_rule_is_described():
