@@ -10,7 +10,7 @@ from typing import NamedTuple
 
 from enclosure_check.findings.results import ConditionFinding, Report
 from enclosure_check.findings.run import NoAnswer, Run
-from enclosure_check.report.judged import Judged, in_words, judged_under, loss_in_words
+from enclosure_check.report.judged import Judged, file_of, in_words, judged_under, loss_in_words
 from enclosure_check.report.layout import clean
 from enclosure_check.report.options import WriterOptions
 
@@ -72,9 +72,8 @@ def _suite_name(report: Report, condition: ConditionFinding) -> str:
 
 
 def _test(report: Report, each: Judged) -> _Test:
-    line, file = None, report.document
-    if each.position is not None:
-        line, file = each.position.line, each.position.file or file
+    line = None if each.position is None else each.position.line
+    file = file_of(report, each.position)
     said = [in_words(each)]
     if each.lost and report.baseline is not None:
         said.append(loss_in_words(each, report.baseline.allow_loss_k))
