@@ -27,6 +27,7 @@ def build_network(case: Case, options: GridOptions | None = None) -> Network:
     covers = build_features(case, site)
     build_parts(case, site, covers)
     build_cables(case, site)
+    site.spots.join()
     build_inside_radiation(site)
     build_inside_air(site)
     build_openings(case, site)

@@ -16,7 +16,7 @@ from enclosure_check.network.links import (
     PatchExchange,
     Radiation,
 )
-from enclosure_check.network.network import Network, Places, Sources
+from enclosure_check.network.network import Network, Places, Readings, Sources
 from enclosure_check.physics.box import BoxGeometry
 from enclosure_check.records import dataclass, field
 
@@ -89,6 +89,7 @@ class NetworkBuilder:
         self._radiation = Blocks((*_ENDS, "x", "y"), Radiation.PARAMETERS)
         self._exchange = Blocks((*_ENDS, "c", "d"), PatchExchange.PARAMETERS)
         self._made: list[LinkKind] = []
+        self._readings = Blocks(("node", "of"), ("weight",))
         self._sources = Blocks(("node", "label"), ("power", "stated_at_k", "slope", "doublings"))
         self.nowhere = self.node("no place", self.reference_k)
 
@@ -117,6 +118,13 @@ class NetworkBuilder:
         self._conduction.add(flat.size, (node, self.nowhere, row, node, flat), (share,))
         return node
 
+    def read(self, node: int, nodes: IntArray, weights: FloatArray) -> None:
+        """Let a node show the weighted mean of others; no link may depend on it.
+
+        It takes no part in the balance: its temperature is read off when those are known.
+        """
+        self._readings.add(nodes.size, (node, nodes), (weights / weights.sum(),))
+
     # Links -------------------------------------------------------------------------------
 
     def conduct(self, a: ArrayLike, b: ArrayLike, conductance: ArrayLike, label: LinkLabel) -> None:
@@ -124,6 +132,18 @@ class NetworkBuilder:
         a, b, conductance = np.ravel(a), np.ravel(b), np.ravel(conductance)
         length = max(a.size, b.size)
         self._conduction.add(length, (a, b, self.label(label), a, b), (conductance,))
+
+    def conduct_by(
+        self,
+        a: ArrayLike,
+        b: ArrayLike,
+        x: ArrayLike,
+        y: ArrayLike,
+        conductance: FloatArray,
+        label: LinkLabel,
+    ) -> None:
+        """Let heat from a to b follow the difference of two other nodes x and y [W/K]."""
+        self._conduction.add(conductance.size, (a, b, self.label(label), x, y), (conductance,))
 
     def resist(self, a: int, b: int, resistance: float, label: LinkLabel) -> None:
         """Join two nodes by a resistance [K/W]; one of nothing by the least there is."""
@@ -244,6 +264,7 @@ class NetworkBuilder:
             labels=tuple(self._labels),
             kinds=(*kinds, *self._made),
             sources=Sources(**self._sources.columns()),
+            readings=Readings(**self._readings.columns()),
             places=places,
         )
 

@@ -101,7 +101,7 @@ class Covers:
         resistance = filler_over(part, filler)
         wall = self.site.wall_inside[filler.side]
         label = LinkLabel(f"part:{part.name}", "filler")
-        self.site.spot(node, resistance, filler.side, wall, *shared(part, filler), label)
+        self.site.join(node, resistance, filler.side, wall, *shared(part, filler), label)
 
 
 def filler_over(part: PartCase, filler: FillerCase) -> float:
@@ -188,7 +188,7 @@ def _build_stand_off(board: BoardCase, stand_off: StandOffCase, site: Site) -> N
         (board.name, site.boards[board.name], "to_board"),
         (wall, site.wall_inside[wall], "to_wall"),
     ):
-        site.spot(middle, resistance / 2, host, plate, *foot, LinkLabel(owner, role))
+        site.join(middle, resistance / 2, host, plate, *foot, LinkLabel(owner, role))
 
 
 def _build_edge_clamp(board: BoardCase, clamp: EdgeClampCase, site: Site) -> None:
@@ -291,6 +291,9 @@ def _build_can(board: BoardCase, can: ShieldCanCase, parts: Sequence[PartCase], 
     pieces = list(outline_segments(grid, low, size))
     labels = LinkLabel(owner, "frame"), LinkLabel(f"board:{board.name}", "along")
     join_pieces(builder, cells, pieces, node, can.frame_conductance_w_per_mk, labels)
+    site.spots.add_line(
+        node, can.frame_conductance_w_per_mk, grid, site.boards[board.name], pieces, labels[0]
+    )
     first, second = (size[axis] for axis in grid.axes)
     outside = first * second + 2.0 * (first + second) * metres(can.height_mm)
     face = site.board_faces[board.name, can.side]

@@ -5,7 +5,7 @@ from functools import cached_property, lru_cache
 import numpy as np
 
 from enclosure_check.description.frames import Vector
-from enclosure_check.network.links import FloatArray
+from enclosure_check.network.links import FloatArray, IntArray
 from enclosure_check.physics.conduction import plate_source_rise, spreading_resistance
 from enclosure_check.records import dataclass
 
@@ -18,7 +18,7 @@ SPREADING_FILM_W_PER_M2K = 20.0
 class GridOptions:
     """How finely plates are divided: cells per plate, near enough."""
 
-    board_cells: int = 144
+    board_cells: int = 64
     wall_cells: int = 16
 
 
@@ -75,16 +75,36 @@ class PlateGrid:
 
     def overlap(self, low: Vector, size: Vector) -> FloatArray:
         """Area of a rectangle that lies on each cell [m2], shape ``counts``."""
-        lengths = []
-        for axis, edge in zip(self.axes, self.edges, strict=True):
-            from_, to = low[axis], low[axis] + size[axis]
-            lengths.append(np.maximum(np.minimum(edge[1:], to) - np.maximum(edge[:-1], from_), 0.0))
-        return np.outer(lengths[0], lengths[1])
+        first, second = self._lengths(low, size)
+        return np.outer(first, second)
 
     def shares(self, low: Vector, size: Vector) -> FloatArray:
         """Share of a rectangle that lies on each cell, summing to one, shape ``counts``."""
         area = self.overlap(low, size)
         return np.asarray(area / area.sum())
+
+    def taken(self, low: Vector, size: Vector) -> FloatArray:
+        """Share of the heat of a rectangle that each cell takes, summing to one, shape ``counts``.
+
+        Those of its area, 1/12 of the second differences added along either axis: the right side
+        of the compact difference scheme of fourth order (L. Collatz, The Numerical Treatment of
+        Differential Equations, 3rd ed., 1960, from memory). Heat put in by area alone arrives too
+        weak far from a source as narrow as a cell, by an eighth of ``h s**2 / (k t)``.
+        """
+        first, second = (
+            length + np.diff(np.diff(length) / 12.0, prepend=0.0, append=0.0)
+            for length in self._lengths(low, size)
+        )
+        share = np.outer(first, second)
+        return np.asarray(share / share.sum())
+
+    def _lengths(self, low: Vector, size: Vector) -> list[FloatArray]:
+        """Length of a rectangle on each row of cells, by axis [m]."""
+        lengths = []
+        for axis, edge in zip(self.axes, self.edges, strict=True):
+            from_, to = low[axis], low[axis] + size[axis]
+            lengths.append(np.maximum(np.minimum(edge[1:], to) - np.maximum(edge[:-1], from_), 0.0))
+        return lengths
 
     def sub_cell(self, low: Vector, size: Vector) -> tuple[float, float]:
         """Resistances a source adds to what the cells tell of it [K/W].
@@ -110,20 +130,38 @@ class PlateGrid:
             mean,
         )
         exact, peak = _exact(*(float(value) for value in shape))
-        return exact - self._on_grid(shares, kt[0], kt[1]), peak - exact
+        taken = self.taken(low, size)
+        told = self.told(taken[None], np.array([kt]), *np.zeros((2, 1), dtype=np.intp))
+        return exact - float(told[0]), peak - exact
 
-    def _on_grid(self, shares: FloatArray, kt_first: float, kt_second: float) -> float:
-        """Mean rise over a source above that of the plate, per watt, on the cells themselves."""
+    def told(
+        self, shares: FloatArray, along: FloatArray, first: IntArray, second: IntArray
+    ) -> FloatArray:
+        """Rise over one source above that of the plate per watt into another, as cells tell it.
+
+        Parameters
+        ----------
+        shares
+            Shares of the sources on the cells, shape (sources, n, m).
+        along
+            Sheet conductance between the two along either axis [W/K], shape (pairs, 2).
+        first, second
+            Which sources, shape (pairs,).
+
+        Returns
+        -------
+        ndarray
+            Resistances of the plate on these cells [K/W], shape (pairs,).
+        """
         n, m = self.counts
         step_first, step_second = self.steps
-        rows, columns = _cosines(n), _cosines(m)
-        spectrum = rows @ shares @ columns.T
-        along_first = kt_first * step_second / step_first * _eigenvalues(n)
-        along_second = kt_second * step_first / step_second * _eigenvalues(m)
-        loss = along_first[:, None] + along_second[None, :]
+        spectrum = _cosines(n) @ shares @ _cosines(m).T
+        spectrum[:, 0, 0] = 0.0
+        along_first = along[:, :1] * (step_second / step_first * _eigenvalues(n))
+        along_second = along[:, 1:] * (step_first / step_second * _eigenvalues(m))
+        loss = along_first[:, :, None] + along_second[:, None, :]
         loss = loss + SPREADING_FILM_W_PER_M2K * self.cell_area
-        spectrum[0, 0] = 0.0
-        return float(np.sum(spectrum * spectrum / loss))
+        return np.asarray(np.sum(spectrum[first] * spectrum[second] / loss, axis=(1, 2)))
 
 
 @lru_cache(maxsize=4096)

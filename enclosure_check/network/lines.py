@@ -12,6 +12,9 @@ from enclosure_check.network.builder import NetworkBuilder
 from enclosure_check.network.grid import SPREADING_FILM_W_PER_M2K, PlateGrid
 from enclosure_check.network.links import FloatArray, IntArray, LinkLabel
 
+# How wide a line is taken where the rise around it matters. (common practice, no source) [m]
+LINE_WIDTH = 1e-3
+
 
 class Segment(NamedTuple):
     """A piece of a line on a plate, between two rows of cells: their places and its shares."""
@@ -24,6 +27,8 @@ class Segment(NamedTuple):
     """What the plate holds between the cells' mean and the piece, times its length [K m/W]."""
     between: float
     """Conductance of the plate from the one cell to the other along the piece [W/K]."""
+    ends: tuple[tuple[float, float], tuple[float, float]]
+    """A strip as narrow as lines are, by the plate's axes from its corner [m]."""
 
 
 def line_segments(
@@ -60,15 +65,24 @@ def line_segments(
     first = min(max(math.floor(place), 0), centres.size - 2)
     share = min(max(place - first, 0.0), 1.0)
     beyond = max(first - place, place - first - 1.0, 0.0)
+    corner = [grid.low[grid.axes[index]] for index in (across, 1 - across)]
+    middle = min(max(at - corner[0], LINE_WIDTH / 2), grid.size[grid.axes[across]] - LINE_WIDTH / 2)
+    strip = middle - LINE_WIDTH / 2, middle + LINE_WIDTH / 2
     for cell in np.flatnonzero(lengths > 0).tolist():
         kt = float((1.0 - share) * sheet[first, cell] + share * sheet[first + 1, cell])
         one, other = (first, cell), (first + 1, cell)
+        edges = grid.edges[1 - across][cell : cell + 2]
+        ends = (
+            strip,
+            (max(float(edges[0]), start) - corner[1], min(float(edges[1]), end) - corner[1]),
+        )
         yield Segment(
             (one, other) if across == 0 else (one[::-1], other[::-1]),
             (1.0 - share, share),
             float(lengths[cell]),
             line_held(kt, step, share, film, beyond),
             kt / step * float(lengths[cell]),
+            ends if across == 0 else ends[::-1],
         )
 
 

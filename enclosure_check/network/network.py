@@ -86,6 +86,30 @@ class Sources:
         return unit.heat(rise, reference_k)
 
 
+@dataclass(frozen=True, eq=False)
+class Readings:
+    """Nodes that show weighted means of others and take no part in the balance, row by row."""
+
+    node: IntArray
+    of: IntArray
+    weight: FloatArray
+    """Shape (r, 1)."""
+
+    @cached_property
+    def nodes(self) -> IntArray:
+        """The nodes that show something, in rising order."""
+        return np.array(sorted(set(self.node.tolist())), dtype=np.intp)
+
+    @cached_property
+    def _place(self) -> IntArray:
+        """Place of each row's node among them, shape (r,)."""
+        return np.searchsorted(self.nodes, self.node)
+
+    def rise(self, rise: FloatArray) -> FloatArray:
+        """Rises that the nodes show, from those of all others (n, v), shape (nodes, v)."""
+        return _summed(self._place, self.weight * rise[self.of], self.nodes.size)
+
+
 @dataclass(frozen=True)
 class PartNodes:
     """Nodes of a part; several are one and the same where nothing lies between them.
@@ -160,6 +184,8 @@ class Network:
     """The labels that links and sources refer to by number."""
     kinds: tuple[LinkKind, ...]
     sources: Sources
+    readings: Readings
+    """Nodes read off the others."""
     places: Places
 
     @property
@@ -170,7 +196,9 @@ class Network:
     @cached_property
     def unknown(self) -> IntArray:
         """Nodes whose temperature is to be found, shape (u,)."""
-        return np.flatnonzero(~self.fixed)
+        shown = np.zeros(self.size, dtype=bool)
+        shown[self.readings.nodes] = True
+        return np.flatnonzero(~self.fixed & ~shown)
 
     @cached_property
     def size(self) -> int:
@@ -225,7 +253,24 @@ class Network:
         """Fill the given rises in: from shape (u, v) to (n, v)."""
         rise = self.fixed_rise.copy()
         rise[self.unknown] = unknown_rise
+        if self.readings.node.size:
+            rise[self.readings.nodes] = self.readings.rise(rise)
         return rise
+
+    def shown(self, nodes: IntArray) -> FloatArray:
+        """Weights of all nodes in what some show: of themselves, or those they are read off.
+
+        Shape (n, nodes).
+        """
+        weights = np.zeros((self.size, len(nodes)))
+        weights[nodes, np.arange(len(nodes))] = 1.0
+        readings = self.readings
+        for column, node in enumerate(nodes.tolist()):
+            own = readings.node == node
+            if own.any():
+                weights[node, column] = 0.0
+                np.add.at(weights[:, column], readings.of[own], readings.weight[own, 0])
+        return weights
 
     def heat(self, rise: FloatArray) -> FloatArray:
         """Heat through every link from its ``a`` to its ``b`` [W], shape (links, v)."""

@@ -7,7 +7,8 @@ from enclosure_check.description.frames import AXIS, OPPOSITE, SIGN
 from enclosure_check.network.features import Covers
 from enclosure_check.network.links import LinkLabel
 from enclosure_check.network.network import PartNodes
-from enclosure_check.network.site import InsideSurface, Site, Spot, footprint
+from enclosure_check.network.site import InsideSurface, Site, footprint
+from enclosure_check.network.spots import Spot
 from enclosure_check.network.units import kelvin, metres, metres_3
 from enclosure_check.physics.bodies import cuboid_gravity_function_tilted
 
@@ -61,7 +62,7 @@ def _join_board(part: PartCase, junction: int, site: Site) -> Spot:
     resistance = sum(resistances(part, site.air_conductivity).values())
     low, size = metres_3(part.low_mm), metres_3(part.size_mm)
     label = LinkLabel(f"part:{part.name}", "to_board")
-    return site.spot(junction, resistance, part.host, site.boards[part.host], low, size, label)
+    return site.join(junction, resistance, part.host, site.boards[part.host], low, size, label)
 
 
 def _join_wall(part: PartCase, junction: int, site: Site) -> None:
@@ -72,7 +73,7 @@ def _join_wall(part: PartCase, junction: int, site: Site) -> None:
     foot = part if part.pad is None else part.pad
     low, size = metres_3(foot.low_mm), metres_3(foot.size_mm)
     label = LinkLabel(f"part:{part.name}", "to_wall")
-    site.spot(junction, resistance, wall, site.wall_inside[wall], low, size, label)
+    site.join(junction, resistance, wall, site.wall_inside[wall], low, size, label)
 
 
 def resistances(part: PartCase, air_conductivity: float) -> dict[str, float]:
@@ -155,4 +156,4 @@ def _join_pad(part: PartCase, pad: PadCase, case: int, site: Site) -> None:
     resistance = sum(pad_resistances(pad).values())
     low, size = metres_3(pad.low_mm), metres_3(pad.size_mm)
     label = LinkLabel(owner, "pad")
-    site.spot(case, resistance, pad.wall, site.wall_inside[pad.wall], low, size, label)
+    site.join(case, resistance, pad.wall, site.wall_inside[pad.wall], low, size, label)

@@ -5,11 +5,12 @@ import numpy as np
 from enclosure_check.description.case import Case, PartCase
 from enclosure_check.description.frames import AXIS, Vector
 from enclosure_check.network.air import AIR_NODES, AirSite, Film, Top
-from enclosure_check.network.builder import LEAST_RESISTANCE, NetworkBuilder, PlaneFace
+from enclosure_check.network.builder import NetworkBuilder, PlaneFace
 from enclosure_check.network.grid import GridOptions, PlateGrid
 from enclosure_check.network.links import FloatArray, IntArray, LinkLabel
 from enclosure_check.network.network import PartNodes, PlateNodes
 from enclosure_check.network.patches import Patches
+from enclosure_check.network.spots import Spot, Spots
 from enclosure_check.network.units import kelvin, metres_3
 from enclosure_check.physics.air import air, pressure_at_altitude
 from enclosure_check.physics.plates import fall_length
@@ -28,14 +29,6 @@ class InsideSurface:
     label: LinkLabel
 
 
-@dataclass(frozen=True)
-class Spot:
-    """Where a source meets a plate: its node, and how much hotter its middle is per watt."""
-
-    node: int
-    peak_k_per_w: float
-
-
 @dataclass
 class Site:
     """The network being made, with the nodes every builder needs."""
@@ -51,6 +44,7 @@ class Site:
     air_nodes: IntArray
     air_site: AirSite
     air_conductivity: float
+    spots: Spots
     surfaces: list[InsideSurface] = field(default_factory=list)
     patches: Patches = field(default_factory=Patches)
     grids: dict[str, PlateGrid] = field(default_factory=dict)
@@ -86,6 +80,7 @@ class Site:
             air_nodes=air_nodes,
             air_site=AirSite(case.up, inside),
             air_conductivity=float(air(air_k, pressure).conductivity),
+            spots=Spots(builder),
         )
 
     def plane_face(self, size: Vector, axis: int, sign: int) -> PlaneFace:
@@ -113,10 +108,12 @@ class Site:
         self.builder.conduct(self.air_nodes, node, conductance * AIR_SHARES, label)
 
     def air_at(self, point: Vector, label: str) -> int:
-        """Give a node that keeps the temperature of the inside air at a point of the box frame."""
+        """Give a node that shows the temperature of the inside air at a point of the box frame."""
         share = self.air_site.share(self.air_site.heights(np.array([point])))[0]
         near = share > 0
-        return self.builder.mean(label, self.air_nodes[near], share[near])
+        node = self.builder.node(label)
+        self.builder.read(node, self.air_nodes[near], share[near])
+        return node
 
     def convect_body(
         self,
@@ -186,7 +183,7 @@ class Site:
             between = 2.0 * sheet[1:] * sheet[:-1] / (sheet[1:] + sheet[:-1])
             self.builder.conduct(nodes[:-1], nodes[1:], share * between * across / along, label)
 
-    def spot(
+    def join(
         self,
         node: int,
         resistance: float,
@@ -196,48 +193,11 @@ class Site:
         size: Vector,
         label: LinkLabel,
     ) -> Spot:
-        """Join a node to the cells under it by a resistance over an area of a plate.
-
-        Each cell takes its share of the area, with the resistance and what the cells do not
-        resolve of the spreading in series.
-
-        Parameters
-        ----------
-        node
-            Where the heat comes from.
-        resistance
-            From there to the plate [K/W].
-        host
-            Name of the wall or board.
-        plate
-            The face of it.
-        low, size
-            Extent of the area in the box frame [m].
-        label
-            Of the links.
-
-        Returns
-        -------
-        Spot
-            A node that keeps the plate's mean temperature under the area.
-        """
-        grid = self.grids[host]
-        shares = grid.shares(low, size)
-        hit = shares > 0
-        cells, share = plate.cells[hit], shares[hit]
-        added, peak = grid.sub_cell(low, size)
-        # Where the cells tell too high a temperature for a source, that is given back, within what
-        # leaves a resistance.
-        total = max(resistance + added, LEAST_SHARE_LEFT * resistance, LEAST_RESISTANCE)
-        self.builder.conduct(node, cells, share / total, label)
-        beyond = (total - resistance) / total
+        """Join a node to a face of a wall or board over an area; see `Spots.add`."""
         name = f"{host} under {label.owner.split(':', 1)[1]}"
-        weights = np.append((1.0 - beyond) * share, beyond)
-        return Spot(self.builder.mean(name, np.append(cells, node), weights), peak)
+        return self.spots.add(node, resistance, self.grids[host], plate, low, size, label, name)
 
 
-# What of a resistance is left at the least where a spreading term is taken off it. [-]
-LEAST_SHARE_LEFT = 0.1
 # Shares of the air nodes in the mean of a profile that is linear between them. [-]
 AIR_SHARES = np.full(AIR_NODES, 1.0 / (AIR_NODES - 1))
 AIR_SHARES[[0, -1]] *= 0.5

@@ -41,11 +41,7 @@ def adjoint(network: Network, rise: FloatArray, nodes: IntArray) -> Adjoint:
         When the balance does not determine the temperatures.
     """
     unknown = network.unknown
-    place = np.full(network.size, -1, dtype=np.intp)
-    place[unknown] = np.arange(len(unknown))
-    target = np.zeros((len(unknown), len(nodes)))
-    asked = np.flatnonzero(place[nodes] >= 0)
-    target[place[nodes[asked]], asked] = 1.0
+    target = network.shown(nodes)[unknown]
     weight = np.zeros((network.size, len(nodes)))
     values = network.derivatives(rise)[:, 0]
     weight[unknown] = network.factor(values).solve_transposed(target)

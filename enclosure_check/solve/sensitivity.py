@@ -32,7 +32,7 @@ def sensitivities(network: Network, solution: Solution, node: int) -> Sensitivit
     solution
         Its steady state.
     node
-        An unknown node.
+        A node whose temperature is not given.
 
     Raises
     ------
@@ -42,18 +42,16 @@ def sensitivities(network: Network, solution: Solution, node: int) -> Sensitivit
     unknown = network.unknown
     if network.variants != 1:
         raise ValueError("sensitivities are taken of one variant")
-    place = np.flatnonzero(unknown == node)
-    if len(place) != 1:
+    if network.fixed[node]:
         raise ValueError(f"the temperature of {network.node_labels[node]!r} is given")
     rise, reference = solution.rise, network.reference_k
-    target = np.zeros((len(unknown), 1))
-    target[place[0]] = 1.0
+    target = network.shown(np.array([node]))[:, 0]
     weight = np.zeros(network.size)
     factor = network.factor(network.derivatives(rise)[:, 0])
-    weight[unknown] = factor.solve_transposed(target)[:, 0]
+    weight[unknown] = factor.solve_transposed(target[unknown, None])[:, 0]
     sources = network.sources
     unit = sources.heat_by_power(rise[sources.node], reference)[:, 0]
-    by_node = np.zeros(network.size)
+    by_node = np.where(network.fixed, target, 0.0)
     by_parameter = []
     for kind in network.kinds:
         between = weight[kind.a] - weight[kind.b]

@@ -4,7 +4,7 @@ import math
 
 import numpy as np
 import pytest
-from support.balances import cells_spreading
+from support.balances import cells_spreading, taken
 from support.cases import board, box, network_of, part, patched, solved, temperatures
 from support.networks import AMBIENT_K, LABEL, finished, started
 
@@ -119,23 +119,16 @@ SHEET = 138 * 0.002
 
 
 def under(answer: Solved, low: tuple[float, float], size: tuple[float, float]) -> float:
-    """Mean of the cells of the back wall under a rectangle of it, seen from inside [C, in m].
+    """What the cells of the back wall tell of a rectangle of it, seen from inside [C, in m].
 
     Its x runs against the box's, as the back wall is seen from the front: from the left wall.
     """
     cells = answer.network.places.wall_inside["back"].cells
-    edges = [
-        np.linspace(0, length, count + 1)
-        for length, count in zip((0.2, 0.15), cells.shape, strict=True)
-    ]
-    mean = 0.0
-    for i, j in np.ndindex(cells.shape):
-        part_of = 1.0
-        for at, row, start, extent in zip((i, j), edges, low, size, strict=True):
-            shared = min(row[at + 1], start + extent) - max(row[at], start)
-            part_of *= max(shared, 0.0) / extent
-        mean += part_of * answer.at(int(cells[i, j]))
-    return mean
+    steps = 0.2 / cells.shape[0], 0.15 / cells.shape[1]
+    return sum(
+        taken((i, j), cells.shape, steps, low, size) * answer.at(int(cells[i, j]))
+        for i, j in np.ndindex(cells.shape)
+    )
 
 
 @pytest.mark.parametrize(

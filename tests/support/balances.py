@@ -262,10 +262,26 @@ def cells_spreading(
                     matrix[other, other] += along
                     matrix[own, other] -= along
                     matrix[other, own] -= along
-            part_of = 1.0
-            for at, step, start, extent_ in zip((i, j), steps, low, size, strict=True):
-                shared = min((at + 1) * step, start + extent_) - max(at * step, start)
-                part_of *= max(shared, 0.0) / extent_
-            share[own] = part_of
+            share[own] = taken((i, j), counts, steps, low, size)
     rise = np.linalg.solve(matrix, share)
     return float(share @ rise - 1.0 / (20.0 * plate[0] * plate[1]))
+
+
+def taken(
+    place: tuple[int, int],
+    counts: tuple[int, int],
+    steps: tuple[float, float],
+    low: tuple[float, float],
+    size: tuple[float, float],
+) -> float:
+    """Share of a source that a cell takes: of its area, a twelfth passed to and from either side."""
+    share = 1.0
+    for at, count, step, start, extent in zip(place, counts, steps, low, size, strict=True):
+
+        def lies(row: int, step=step, start=start, extent=extent) -> float:
+            shared = min((row + 1) * step, start + extent) - max(row * step, start)
+            return max(shared, 0.0) / extent
+
+        sides = [row for row in (at - 1, at + 1) if 0 <= row < count]
+        share *= lies(at) + sum(lies(row) - lies(at) for row in sides) / 12
+    return share

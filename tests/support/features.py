@@ -17,7 +17,7 @@ from enclosure_check.solve.steady import LEAST_HEAT_W, solve_steady
 # Rounding of a balance, of the heat that flows. [-]
 CLOSES = 1e-6
 # Half as wide cells as the default.
-HALVED = GridOptions(board_cells=576, wall_cells=64)
+HALVED = GridOptions(board_cells=256, wall_cells=64)
 
 STAND_OFF = {"to": "back", "at_mm": [10, 10], "diameter_mm": 6, "material": "brass"}
 CLAMP = {"conductance_w_per_mk": 20}
@@ -67,10 +67,13 @@ def node(solved, label):
 
 
 def links(solved, owner, role):
-    """Ends and conductances of the conduction links under a label [W/K]."""
+    """Ends and conductances of the conduction links under a label [W/K].
+
+    Without what contacts close by add, which follows other temperatures.
+    """
     number = list(solved.network.labels).index(LinkLabel(owner, role))
     (kind,) = (each for each in solved.network.kinds if isinstance(each, Conduction))
-    mine = kind.label == number
+    mine = (kind.label == number) & (kind.a == kind.x) & (kind.b == kind.y)
     return kind.a[mine], kind.b[mine], kind.conductance[mine, 0]
 
 

@@ -7,6 +7,7 @@ from enclosure_check.network.grid import GridOptions, PlateGrid, cell_counts
 from enclosure_check.network.links import LinkLabel
 from enclosure_check.network.network import Places
 from enclosure_check.network.site import Site
+from enclosure_check.network.spots import Spots
 from enclosure_check.solve.steady import solve_steady
 
 REFERENCE_K = 298.15
@@ -17,11 +18,12 @@ HEAT = 1e-3
 class Plates:
     """Plates that lose heat evenly to one node; built as the box's own are."""
 
-    plate, conduct_along, spot = Site.plate, Site.conduct_along, Site.spot
+    plate, conduct_along = Site.plate, Site.conduct_along
 
     def __init__(self):
         self.builder = NetworkBuilder(REFERENCE_K, 101325.0)
         self.ambient = self.builder.node("ambient", REFERENCE_K)
+        self.spots = Spots(self.builder)
         self.grids, self.nodes = {}, {}
         self.wall_outside, self.wall_inside = {}, {}
 
@@ -43,13 +45,15 @@ class Plates:
         # Behind a resistance so large that its heat is even over the area; see `HEAT`.
         node = self.builder.node("source")
         label = LinkLabel("part:S", "to_plate")
-        spot = self.spot(node, 1e6, name, self.nodes[name], low, size, label)
+        grid, plate = self.grids[name], self.nodes[name]
+        spot = self.spots.add(node, 1e6, grid, plate, low, size, label, f"under {node}")
         self.heat(node, watts)
         return spot
 
     def rise(self):
         """Rises of all nodes [K]; conduction is linear."""
         ambient = self.ambient
+        self.spots.join()
         places = Places(
             ambient=ambient,
             air=ambient,

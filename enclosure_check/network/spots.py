@@ -1,0 +1,280 @@
+"""Where heat enters plates over areas smaller than cells tell apart: joined so that it counts once.
+
+A contact gives its heat evenly to the area it covers; the cells tell the mean rise there, and what
+they do not resolve of it, its own or that of contacts close by, is added: see `Spots.join`.
+"""
+
+from collections.abc import Sequence
+from dataclasses import dataclass, field
+
+import numpy as np
+
+from enclosure_check.description.frames import Vector
+from enclosure_check.network.builder import LEAST_RESISTANCE, NetworkBuilder
+from enclosure_check.network.grid import SPREADING_FILM_W_PER_M2K, PlateGrid
+from enclosure_check.network.lines import Segment
+from enclosure_check.network.links import FloatArray, IntArray, LinkLabel
+from enclosure_check.network.network import PlateNodes
+from enclosure_check.physics.mutual import mutual_rise
+
+# What of a resistance is left at the least where a spreading term is taken off it. [-]
+LEAST_SHARE_LEFT = 0.1
+# Contacts further apart than this are told each other's rise by the cells alone. [cells]
+FARTHEST_CELLS = 3.0
+# Largest part of the contacts' own resistances that mutual ones may take away. [-]
+MOST_TAKEN = 0.9
+# Links below this share of the contact's own are left out. [-]
+LEAST_LINK = 1e-7
+
+
+@dataclass(frozen=True)
+class Spot:
+    """Where a source meets a plate: its node, and how much hotter its middle is per watt."""
+
+    node: int
+    peak_k_per_w: float
+
+
+@dataclass(frozen=True, eq=False)
+class Contact:
+    """Where heat from a node enters a plate.
+
+    ``resistance`` in all, of which ``held`` is what the cells do not resolve [K/W]; the ``places``
+    of the cells that take it, as indices (2, k), and their ``shares``; its rectangle on the plate,
+    ends by axis [m]. Contacts of one ``line`` know of each other already. ``spot`` shows the
+    plate's temperature under it.
+    """
+
+    node: int
+    resistance: float
+    held: float
+    places: tuple[IntArray, IntArray]
+    shares: FloatArray
+    ends: tuple[tuple[float, float], tuple[float, float]]
+    label: LinkLabel
+    line: str | None = None
+    spot: int | None = None
+
+
+@dataclass
+class Spots:
+    """Contacts being collected, plate by plate."""
+
+    builder: NetworkBuilder
+    _plates: dict[int, tuple[PlateGrid, PlateNodes, list[Contact]]] = field(default_factory=dict)
+
+    def add(
+        self,
+        node: int,
+        resistance: float,
+        grid: PlateGrid,
+        plate: PlateNodes,
+        low: Vector,
+        size: Vector,
+        label: LinkLabel,
+        name: str,
+    ) -> Spot:
+        """Join a node to the cells under it by a resistance over an area of a plate.
+
+        The resistance and what the cells do not resolve of the spreading are in series.
+
+        Parameters
+        ----------
+        node
+            Where the heat comes from.
+        resistance
+            From there to the plate [K/W].
+        grid, plate
+            The wall or board, and the face of it.
+        low, size
+            Extent of the area in the box frame [m].
+        label
+            Of the links.
+        name
+            Of the node that shows the plate's mean temperature under the area.
+
+        Returns
+        -------
+        Spot
+            That node.
+        """
+        shares = grid.taken(low, size)
+        places = np.nonzero(shares)
+        share = shares[places]
+        added, peak = grid.sub_cell(low, size)
+        # Where the cells tell too high a temperature for a source, that is given back, within what
+        # leaves a resistance.
+        total = max(resistance + added, LEAST_SHARE_LEFT * resistance, LEAST_RESISTANCE)
+        first, second = (
+            (low[axis] - start, low[axis] + size[axis] - start)
+            for axis, start in ((axis, grid.low[axis]) for axis in grid.axes)
+        )
+        spot = self.builder.node(name)
+        self._add_contact(
+            grid,
+            plate,
+            Contact(
+                node,
+                total,
+                total - resistance,
+                (places[0], places[1]),
+                share,
+                (first, second),
+                label,
+                spot=spot,
+            ),
+        )
+        return Spot(spot, peak)
+
+    def add_line(
+        self,
+        node: int,
+        per_metre: float,
+        grid: PlateGrid,
+        plate: PlateNodes,
+        pieces: Sequence[Segment],
+        label: LinkLabel,
+    ) -> None:
+        """Add the pieces of a line that joins a node to a plate, whose own links are made."""
+        for piece in pieces:
+            resistance = (1.0 / per_metre + piece.held) / piece.length
+            one, other = piece.places
+            places = np.array([one[0], other[0]]), np.array([one[1], other[1]])
+            shares = np.array(piece.shares)
+            contact = Contact(
+                node,
+                resistance,
+                piece.held / piece.length,
+                places,
+                shares,
+                piece.ends,
+                label,
+                line=label.owner,
+            )
+            self._add_contact(grid, plate, contact)
+
+    def _add_contact(self, grid: PlateGrid, plate: PlateNodes, contact: Contact) -> None:
+        self._plates.setdefault(plate.mean, (grid, plate, []))[2].append(contact)
+
+    def join(self) -> None:
+        """Join all contacts to their cells, and let their spots show the temperatures there.
+
+        With the resistances ``D`` of the contacts and the mutual ones ``C`` that the cells do not
+        resolve, ``D Q + C Q = T - S T_cells``, S the shares: the heat is ``Q = (D + C)^-1 (T - S
+        T_cells)``, which the cells take by their shares.
+        """
+        for grid, plate, contacts in self._plates.values():
+            self._join_plate(grid, plate, contacts)
+
+    def _join_plate(self, grid: PlateGrid, plate: PlateNodes, contacts: list[Contact]) -> None:
+        count, cells = len(contacts), plate.cells
+        shares = np.zeros((count, *grid.counts))
+        for row, contact in zip(shares, contacts, strict=True):
+            row[contact.places] = contact.shares
+        own = np.array([contact.resistance for contact in contacts])
+        mutual = _bounded(_mutual(grid, contacts, shares), own)
+        heat = np.linalg.inv(np.diag(own) + mutual)
+        small = np.abs(heat) < LEAST_LINK / np.sqrt(np.outer(own, own))
+        heat[small & ~np.eye(count, dtype=bool)] = 0.0
+        told = [self._told(contact, cells[contact.places]) for contact in contacts]
+        # What the cells do not resolve of the rise at a spot, by the differences that drive heat.
+        held = (mutual + np.diag([contact.held for contact in contacts])) @ heat
+        for index, contact in enumerate(contacts):
+            links = heat[index].copy()
+            if contact.line is not None:
+                # The links of a line's pieces alone are made.
+                links[index] -= 1.0 / contact.resistance
+            self._add_links(contact, cells[contact.places], links, contacts, told)
+            if contact.spot is not None:
+                self._show_spot(contact.spot, index, held[index], contacts, told)
+
+    def _told(self, contact: Contact, cells: IntArray) -> tuple[IntArray, FloatArray]:
+        """Give nodes and shares whose mean is what the cells tell of the plate under a contact."""
+        if len(cells) <= _FEW:
+            return cells, contact.shares
+        name = f"cells under {contact.label.owner.split(':', 1)[1]}, {contact.label.role}"
+        return np.array([self.builder.mean(name, cells, contact.shares)]), np.ones(1)
+
+    def _add_links(
+        self,
+        contact: Contact,
+        cells: IntArray,
+        links: FloatArray,
+        contacts: Sequence[Contact],
+        told: Sequence[tuple[IntArray, FloatArray]],
+    ) -> None:
+        """Add the heat ``share (links (T - S T_cells))`` of a contact to each of its cells."""
+        for other in np.flatnonzero(links).tolist():
+            nodes, shares = told[other]
+            self.builder.conduct_by(
+                contact.node,
+                np.repeat(cells, nodes.size),
+                contacts[other].node,
+                np.tile(nodes, cells.size),
+                np.outer(contact.shares, links[other] * shares).ravel(),
+                contact.label,
+            )
+
+    def _show_spot(
+        self,
+        spot: int,
+        index: int,
+        held: FloatArray,
+        contacts: Sequence[Contact],
+        told: Sequence[tuple[IntArray, FloatArray]],
+    ) -> None:
+        """Let a spot show the cells' mean and what they do not resolve of all rises there."""
+        nodes, weights = [told[index][0]], [told[index][1]]
+        for other in np.flatnonzero(held).tolist():
+            nodes += [np.array([contacts[other].node]), told[other][0]]
+            weights += [held[[other]], -held[other] * told[other][1]]
+        self.builder.read(spot, np.concatenate(nodes), np.concatenate(weights))
+
+
+# Up to so many cells are followed one by one, more by a node that keeps their mean.
+_FEW = 2
+
+
+def _mutual(grid: PlateGrid, contacts: Sequence[Contact], shares: FloatArray) -> FloatArray:
+    """Rise under one contact per watt into another that the cells do not resolve [K/W], (c, c)."""
+    count = len(contacts)
+    total = np.zeros((count, count))
+    ends = np.array([contact.ends for contact in contacts])
+    first, second = np.triu_indices(count, 1)
+    apart = np.maximum(
+        ends[first, :, 0] - ends[second, :, 1], ends[second, :, 0] - ends[first, :, 1]
+    )
+    near = (apart < FARTHEST_CELLS * np.array(grid.steps)).all(axis=1)
+    lines = [contact.line for contact in contacts]
+    near &= np.array(
+        [lines[i] is None or lines[i] != lines[j] for i, j in zip(first, second, strict=True)],
+        dtype=bool,
+    )
+    first, second = first[near], second[near]
+    if not first.size:
+        return total
+    sheet = np.einsum("aij,cij->ca", grid.sheet, shares)
+    # Between two places of unlike copper, the mean of both.
+    along = np.sqrt(sheet[first] * sheet[second])
+    mean = np.sqrt(along[:, :1] * along[:, 1:])
+    stretch = np.sqrt(mean / along)
+    plate = np.array([grid.size[axis] for axis in grid.axes])
+    exact = mutual_rise(
+        ends[first] * stretch[:, :, None],
+        ends[second] * stretch[:, :, None],
+        plate * stretch,
+        mean[:, 0],
+        SPREADING_FILM_W_PER_M2K,
+    )
+    told = grid.told(shares, along, first, second)
+    total[first, second] = total[second, first] = exact - told
+    return total
+
+
+def _bounded(mutual: FloatArray, own: FloatArray) -> FloatArray:
+    """Take mutual resistances down where they would leave too little of the contacts' own."""
+    if len(own) < 2 or not mutual.any():
+        return mutual
+    root = np.sqrt(own)
+    least = float(np.linalg.eigvalsh(mutual / np.outer(root, root))[0])
+    return mutual * min(1.0, MOST_TAKEN / max(-least, 1e-300))
