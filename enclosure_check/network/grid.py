@@ -91,12 +91,13 @@ class PlateGrid:
         Differential Equations, 3rd ed., 1960, from memory). Heat put in by area alone arrives too
         weak far from a source as narrow as a cell, by an eighth of ``h s**2 / (k t)``.
         """
-        first, second = (
-            length + np.diff(np.diff(length) / 12.0, prepend=0.0, append=0.0)
-            for length in self._lengths(low, size)
-        )
-        share = np.outer(first, second)
-        return np.asarray(share / share.sum())
+        lengths = self._lengths(low, size)
+        for length in lengths:
+            passed = (length[1:] - length[:-1]) / 12.0
+            length[:-1] += passed
+            length[1:] -= passed
+            length /= length.sum()
+        return np.asarray(lengths[0][:, None] * lengths[1])
 
     def _lengths(self, low: Vector, size: Vector) -> list[FloatArray]:
         """Length of a rectangle on each row of cells, by axis [m]."""

@@ -5,7 +5,6 @@ they do not resolve of it, its own or that of contacts close by, is added: see `
 """
 
 from collections.abc import Sequence
-from dataclasses import dataclass, field
 
 import numpy as np
 
@@ -16,6 +15,7 @@ from enclosure_check.network.lines import Segment
 from enclosure_check.network.links import FloatArray, IntArray, LinkLabel
 from enclosure_check.network.network import PlateNodes
 from enclosure_check.physics.mutual import mutual_rise
+from enclosure_check.records import dataclass, field
 
 # What of a resistance is left at the least where a spreading term is taken off it. [-]
 LEAST_SHARE_LEFT = 0.1
@@ -204,16 +204,22 @@ class Spots:
         told: Sequence[tuple[IntArray, FloatArray]],
     ) -> None:
         """Add the heat ``share (links (T - S T_cells))`` of a contact to each of its cells."""
-        for other in np.flatnonzero(links).tolist():
-            nodes, shares = told[other]
-            self.builder.conduct_by(
-                contact.node,
-                np.repeat(cells, nodes.size),
-                contacts[other].node,
-                np.tile(nodes, cells.size),
-                np.outer(contact.shares, links[other] * shares).ravel(),
-                contact.label,
-            )
+        others = np.flatnonzero(links).tolist()
+        if not others:
+            return
+        pull = np.concatenate([links[other] * told[other][1] for other in others])
+        nodes = np.concatenate([told[other][0] for other in others])
+        from_ = np.repeat(
+            [contacts[other].node for other in others], [told[other][0].size for other in others]
+        )
+        self.builder.conduct_by(
+            contact.node,
+            np.repeat(cells, pull.size),
+            np.tile(from_, cells.size),
+            np.tile(nodes, cells.size),
+            (contact.shares[:, None] * pull).ravel(),
+            contact.label,
+        )
 
     def _show_spot(
         self,
