@@ -283,6 +283,11 @@ def test_renumbering_the_nodes_leaves_the_answer():
         nowhere=int(place[network.nowhere]),
         kinds=tuple(relabelled(kind, place) for kind in network.kinds),
         sources=sources,
+        readings=replace(
+            network.readings,
+            node=place[network.readings.node],
+            of=place[network.readings.of],
+        ),
     )
     one, other = solve_steady(network), solve_steady(shuffled)
     assert one.converged
