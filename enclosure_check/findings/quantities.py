@@ -16,7 +16,7 @@ from enclosure_check.network.knobs import Knobs
 from enclosure_check.network.links import Conduction, LinkLabel, Radiation
 from enclosure_check.network.outer_gap import OuterGap
 from enclosure_check.network.parts import pad_resistances, resistances
-from enclosure_check.network.site import LEAST_SHARE_LEFT
+from enclosure_check.network.spots import FELT, LEAST_SHARE_LEFT
 from enclosure_check.network.units import metres_3
 from enclosure_check.network.wind import BoxFilmInWind
 from enclosure_check.physics.radiation import sky_temperature_clear
@@ -179,7 +179,9 @@ class _Collector(Turns):
 
     def _conduction(self, label: LinkLabel, knob: int, total: float) -> None:
         what, _, name = label.owner.partition(":")
-        role = label.role
+        role = label.role.removesuffix(FELT)
+        if role != label.role:
+            self._felt(LinkLabel(label.owner, role), knob)
         if what == "part":
             self._part(self.case.parts[name], role, knob, 1.0 / total)
         elif what == "stand_off":
@@ -203,6 +205,26 @@ class _Collector(Turns):
             self.turn(key, "contact_w_per_m2k", "link", knob, 1.0, name, value)
         elif what == "wall":
             self._material(self.case.walls[_wall(label)], knob, 1.0)
+
+    def _felt(self, label: LinkLabel, knob: int) -> None:
+        """Let a plate turn what contacts make each other feel below its cells."""
+        spots = self.network.places.spots
+        assert spots is not None
+        what, _, name = label.owner.partition(":")
+        host = name.partition("/")[0]
+        if what == "part":
+            part = self.case.parts[name]
+            wall = part.pad.wall if label.role == "pad" and part.pad else OPPOSITE[part.side]
+            if label.role == "filler":
+                wall = part.side
+            host = part.host if label.role == "to_board" else wall
+        elif label.role == "to_wall":
+            return
+        share = spots.felt_by_sheet(label)
+        if host in self.case.boards:
+            self.turn(("boards", host, "copper"), "copper", "link", knob, share, host)
+        else:
+            self._material(self.case.walls[_named(host)], knob, share)
 
     def _material(self, wall: WallCase, knob: int, share: float) -> None:
         name, value = wall.material.name, wall.material.conductivity_w_per_mk

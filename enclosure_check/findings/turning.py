@@ -8,6 +8,7 @@ from enclosure_check.findings.solved import Solved
 from enclosure_check.network.inside_air import InsideAir
 from enclosure_check.network.knobs import Knobs, emitters_of
 from enclosure_check.network.links import Conduction, FloatArray, IntArray, LinkLabel
+from enclosure_check.network.spots import FELT
 from enclosure_check.network.units import kelvin
 from enclosure_check.physics.air import air, pressure_at_altitude
 from enclosure_check.records import dataclass, field
@@ -79,11 +80,18 @@ class Turns:
                 knob_of[index] = self.count
                 self.count += 1
         self.link[kind] = knob_of[labels]
-        weights = links.conductance[:, 0] if isinstance(links, Conduction) else None
+        weights = None
+        if isinstance(links, Conduction):
+            # Without the heat that contacts take from each other, which follows other nodes.
+            weights = np.where(links.x == links.a, links.conductance[:, 0], 0.0)
         total = np.bincount(labels, weights, len(self.network.labels)).astype(np.float64)
+        place = {label: index for index, label in enumerate(self.network.labels)}
         for index in present.tolist():
             if knob_of[index] >= 0:
-                yield self.network.labels[index], int(knob_of[index]), float(total[index])
+                owner, role = label = self.network.labels[index]
+                # What is felt of a contact goes with its heat.
+                own = place[LinkLabel(owner, role.removesuffix(FELT))]
+                yield label, int(knob_of[index]), float(total[own])
 
     def knobs(self) -> Knobs:
         """Give the knobs found."""

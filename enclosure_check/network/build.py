@@ -42,6 +42,7 @@ def build_network(case: Case, options: GridOptions | None = None) -> Network:
             boards=site.boards,
             parts=site.parts,
             grids=site.grids,
+            spots=site.spots,
         )
     )
     return network.stirred(STIRRED) if case.stirred else network

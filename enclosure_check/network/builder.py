@@ -112,11 +112,15 @@ class NetworkBuilder:
     def mean(self, label: str, cells: IntArray, weights: ArrayLike) -> int:
         """Give a node that keeps the weighted mean of cells, which is no heat."""
         node = self.node(label)
-        row = self.label(LinkLabel(label, "mean"))
+        self.keep_mean(node, cells, weights)
+        return node
+
+    def keep_mean(self, node: int, cells: IntArray, weights: ArrayLike) -> None:
+        """Let a node keep the weighted mean of cells, which is no heat."""
+        row = self.label(LinkLabel(self._node_labels[node], "mean"))
         share = np.ravel(weights) / np.sum(weights)
         flat = cells.ravel()
         self._conduction.add(flat.size, (node, self.nowhere, row, node, flat), (share,))
-        return node
 
     def read(self, node: int, nodes: IntArray, weights: FloatArray) -> None:
         """Let a node show the weighted mean of others; no link may depend on it.

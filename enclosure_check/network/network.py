@@ -1,6 +1,7 @@
 """The network as arrays, and its heat balance and Jacobian by array operations."""
 
 from functools import cached_property
+from typing import TYPE_CHECKING
 
 import numpy as np
 import numpy.typing as npt
@@ -9,6 +10,9 @@ from enclosure_check.network.grid import PlateGrid
 from enclosure_check.network.linear import Factor, dense, factorise
 from enclosure_check.network.links import FloatArray, IntArray, LinkKind, LinkLabel
 from enclosure_check.records import dataclass, field, replace
+
+if TYPE_CHECKING:
+    from enclosure_check.network.spots import Spots
 
 BoolArray = npt.NDArray[np.bool_]
 
@@ -150,6 +154,8 @@ class Places:
     parts: dict[str, PartNodes]
     grids: dict[str, PlateGrid] = field(default_factory=dict)
     """Cells of walls and boards, by name."""
+    spots: "Spots | None" = None
+    """Contacts on them."""
 
 
 @dataclass(frozen=True, eq=False)

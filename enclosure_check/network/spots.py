@@ -15,7 +15,7 @@ from enclosure_check.network.lines import Segment
 from enclosure_check.network.links import FloatArray, IntArray, LinkLabel
 from enclosure_check.network.network import PlateNodes
 from enclosure_check.physics.mutual import mutual_rise
-from enclosure_check.records import dataclass, field
+from enclosure_check.records import dataclass, field, replace
 
 # What of a resistance is left at the least where a spreading term is taken off it. [-]
 LEAST_SHARE_LEFT = 0.1
@@ -23,8 +23,9 @@ LEAST_SHARE_LEFT = 0.1
 FARTHEST_CELLS = 3.0
 # Largest part of the contacts' own resistances that mutual ones may take away. [-]
 MOST_TAKEN = 0.9
-# Links below this share of the contact's own are left out. [-]
-LEAST_LINK = 1e-7
+_SHEET_STEP = 1e-3
+# Ending of the role of what makes the heat of one contact felt under others.
+FELT = ", felt"
 
 
 @dataclass(frozen=True)
@@ -99,6 +100,7 @@ class Spots:
             That node.
         """
         shares = grid.taken(low, size)
+        self.builder.label(label)
         places = np.nonzero(shares)
         share = shares[places]
         added, peak = grid.sub_cell(low, size)
@@ -160,85 +162,65 @@ class Spots:
         """Join all contacts to their cells, and let their spots show the temperatures there.
 
         With the resistances ``D`` of the contacts and the mutual ones ``C`` that the cells do not
-        resolve, ``D Q + C Q = T - S T_cells``, S the shares: the heat is ``Q = (D + C)^-1 (T - S
-        T_cells)``, which the cells take by their shares.
+        resolve, ``D Q + C Q = T - S T_cells``, S the shares. A node under each contact keeps ``S
+        T_cells + C Q``; its heat is ``Q = (T - T_under) / D``, taken by the cells' shares.
         """
         for grid, plate, contacts in self._plates.values():
             self._join_plate(grid, plate, contacts)
 
+    def felt_by_sheet(self, label: LinkLabel) -> float:
+        """Relative change of what is felt of a contact per that of its plate's conductance [-].
+
+        The mean over the contacts that feel it.
+        """
+        for grid, _, contacts in self._plates.values():
+            own = next((i for i, each in enumerate(contacts) if each.label == label), None)
+            if own is None:
+                continue
+            shares = np.zeros((len(contacts), *grid.counts))
+            for row, contact in zip(shares, contacts, strict=True):
+                row[contact.places] = contact.shares
+            more = replace(grid, sheet=grid.sheet * (1.0 + _SHEET_STEP))
+            one, other = (_mutual(each, contacts, shares)[:, own] for each in (grid, more))
+            whole = float(np.abs(one).sum())
+            change = float(np.sum(np.sign(one) * (other - one)))
+            return change / (_SHEET_STEP * whole) if whole > 0 else 0.0
+        return 0.0
+
     def _join_plate(self, grid: PlateGrid, plate: PlateNodes, contacts: list[Contact]) -> None:
-        count, cells = len(contacts), plate.cells
+        count, builder = len(contacts), self.builder
         shares = np.zeros((count, *grid.counts))
         for row, contact in zip(shares, contacts, strict=True):
             row[contact.places] = contact.shares
         own = np.array([contact.resistance for contact in contacts])
         mutual = _bounded(_mutual(grid, contacts, shares), own)
-        heat = np.linalg.inv(np.diag(own) + mutual)
-        small = np.abs(heat) < LEAST_LINK / np.sqrt(np.outer(own, own))
-        heat[small & ~np.eye(count, dtype=bool)] = 0.0
-        told = [self._told(contact, cells[contact.places]) for contact in contacts]
-        # What the cells do not resolve of the rise at a spot, by the differences that drive heat.
-        held = (mutual + np.diag([contact.held for contact in contacts])) @ heat
-        for index, contact in enumerate(contacts):
-            links = heat[index].copy()
-            if contact.line is not None:
-                # The links of a line's pieces alone are made.
-                links[index] -= 1.0 / contact.resistance
-            self._add_links(contact, cells[contact.places], links, contacts, told)
+        # A node under each contact but for lines that nothing is close to.
+        under = {
+            index: builder.node(f"under {each.label.owner.split(':', 1)[1]}, {each.label.role}")
+            for index, each in enumerate(contacts)
+            if each.line is None or mutual[index].any()
+        }
+        for index, node in under.items():
+            contact = contacts[index]
+            cells = plate.cells[contact.places]
+            builder.keep_mean(node, cells, contact.shares)
+            for other in np.flatnonzero(mutual[index]).tolist():
+                each = contacts[other]
+                felt = LinkLabel(each.label.owner, each.label.role + FELT)
+                weight = np.array([-mutual[index, other] / each.resistance])
+                builder.conduct_by(node, builder.nowhere, each.node, under[other], weight, felt)
+            taken = contact.shares / contact.resistance
+            if contact.line is None:
+                builder.conduct_by(contact.node, cells, contact.node, node, taken, contact.label)
+            else:
+                # The links of a line's pieces alone are made: by what the cells tell under them.
+                for cell, share in zip(cells, contact.shares, strict=True):
+                    part = share * taken
+                    builder.conduct_by(contact.node, cells, cell, node, part, contact.label)
             if contact.spot is not None:
-                self._show_spot(contact.spot, index, held[index], contacts, told)
-
-    def _told(self, contact: Contact, cells: IntArray) -> tuple[IntArray, FloatArray]:
-        """Give nodes and shares whose mean is what the cells tell of the plate under a contact."""
-        if len(cells) <= _FEW:
-            return cells, contact.shares
-        name = f"cells under {contact.label.owner.split(':', 1)[1]}, {contact.label.role}"
-        return np.array([self.builder.mean(name, cells, contact.shares)]), np.ones(1)
-
-    def _add_links(
-        self,
-        contact: Contact,
-        cells: IntArray,
-        links: FloatArray,
-        contacts: Sequence[Contact],
-        told: Sequence[tuple[IntArray, FloatArray]],
-    ) -> None:
-        """Add the heat ``share (links (T - S T_cells))`` of a contact to each of its cells."""
-        others = np.flatnonzero(links).tolist()
-        if not others:
-            return
-        pull = np.concatenate([links[other] * told[other][1] for other in others])
-        nodes = np.concatenate([told[other][0] for other in others])
-        from_ = np.repeat(
-            [contacts[other].node for other in others], [told[other][0].size for other in others]
-        )
-        self.builder.conduct_by(
-            contact.node,
-            np.repeat(cells, pull.size),
-            np.tile(from_, cells.size),
-            np.tile(nodes, cells.size),
-            (contact.shares[:, None] * pull).ravel(),
-            contact.label,
-        )
-
-    def _show_spot(
-        self,
-        spot: int,
-        index: int,
-        held: FloatArray,
-        contacts: Sequence[Contact],
-        told: Sequence[tuple[IntArray, FloatArray]],
-    ) -> None:
-        """Let a spot show the cells' mean and what they do not resolve of all rises there."""
-        nodes, weights = [told[index][0]], [told[index][1]]
-        for other in np.flatnonzero(held).tolist():
-            nodes += [np.array([contacts[other].node]), told[other][0]]
-            weights += [held[[other]], -held[other] * told[other][1]]
-        self.builder.read(spot, np.concatenate(nodes), np.concatenate(weights))
-
-
-# Up to so many cells are followed one by one, more by a node that keeps their mean.
-_FEW = 2
+                held = contact.held / contact.resistance
+                nodes, weights = np.array([node, contact.node]), np.array([1.0 - held, held])
+                builder.read(contact.spot, nodes, weights)
 
 
 def _mutual(grid: PlateGrid, contacts: Sequence[Contact], shares: FloatArray) -> FloatArray:

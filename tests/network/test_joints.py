@@ -46,7 +46,7 @@ def test_stand_off_without_resistance_leaves_the_spreading():
     flow, fall = carried(solved, "front")
     assert fall == pytest.approx(0, abs=1e-3)
     assert flow > 0.1
-    around = node(solved, "cells under main/a, to_board")
+    around = node(solved, "under main/a, to_board")
     assert around > node(solved, "main under main/a") + 1
 
 
