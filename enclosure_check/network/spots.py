@@ -63,6 +63,7 @@ class Spots:
 
     builder: NetworkBuilder
     _plates: dict[int, tuple[PlateGrid, PlateNodes, list[Contact]]] = field(default_factory=dict)
+    _by_sheet: dict[LinkLabel, float] = field(default_factory=dict)
 
     def add(
         self,
@@ -173,19 +174,18 @@ class Spots:
 
         The mean over the contacts that feel it.
         """
-        for grid, _, contacts in self._plates.values():
-            own = next((i for i, each in enumerate(contacts) if each.label == label), None)
-            if own is None:
-                continue
-            shares = np.zeros((len(contacts), *grid.counts))
-            for row, contact in zip(shares, contacts, strict=True):
-                row[contact.places] = contact.shares
-            more = replace(grid, sheet=grid.sheet * (1.0 + _SHEET_STEP))
-            one, other = (_mutual(each, contacts, shares)[:, own] for each in (grid, more))
-            whole = float(np.abs(one).sum())
-            change = float(np.sum(np.sign(one) * (other - one)))
-            return change / (_SHEET_STEP * whole) if whole > 0 else 0.0
-        return 0.0
+        if not self._by_sheet:
+            for grid, _, contacts in self._plates.values():
+                shares = np.zeros((len(contacts), *grid.counts))
+                for row, contact in zip(shares, contacts, strict=True):
+                    row[contact.places] = contact.shares
+                more = replace(grid, sheet=grid.sheet * (1.0 + _SHEET_STEP))
+                one, other = (_mutual(each, contacts, shares) for each in (grid, more))
+                whole = np.maximum(np.abs(one).sum(axis=0), 1e-300)
+                change = np.sum(np.sign(one) * (other - one), axis=0) / (_SHEET_STEP * whole)
+                found = {each.label: float(own) for each, own in zip(contacts, change, strict=True)}
+                self._by_sheet.update(found)
+        return self._by_sheet.get(label, 0.0)
 
     def _join_plate(self, grid: PlateGrid, plate: PlateNodes, contacts: list[Contact]) -> None:
         count, builder = len(contacts), self.builder
