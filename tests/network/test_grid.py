@@ -9,7 +9,7 @@ from pathlib import Path
 
 import numpy as np
 import pytest
-from support.plates import Plates, at_edge, default_counts, flat, on_edges
+from support.plates import Plates, at_edge, flat, on_edges
 
 from enclosure_check.description.load import load_document
 from enclosure_check.network.build import build_network

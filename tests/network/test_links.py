@@ -171,8 +171,8 @@ def test_heat_goes_from_warm_to_cold(network, kind):
     if isinstance(kind, Conduction | Radiation):
         difference = rise[kind.x] - rise[kind.y]
         # Contacts close by on a plate take from each other: all of them dissipate, not each.
-        mutual = (kind.a != kind.x) | (kind.b != kind.y)
-        difference[mutual & (kind.b != network.nowhere)] = 0.0
+        mutual = (kind.a != kind.x) | ((kind.b != kind.y) & (kind.b != network.nowhere))
+        difference[mutual] = 0.0
     elif isinstance(kind, BoxFilm | OuterGap):
         difference = rise[kind.a] - rise[kind.b]
     elif isinstance(kind, PatchExchange):
