@@ -72,8 +72,8 @@ def _touch(wall: WallFinding) -> str | Cell:
     return Cell(f"{tenths(wall.touch_margin_k)} {WORDS[wall.touch_verdict]}", wall.touch_verdict)
 
 
-_WALLS = (
-    Shown[WallFinding](Column("Wall"), lambda wall: wall.name),
+_WALL = Shown[WallFinding](Column("Wall"), lambda wall: wall.name)
+_WALL_TEMPERATURES = (
     Shown[WallFinding](
         Column("Faces", yields=True),
         lambda wall: wall.wind_regime or _FACES.get(wall.mounting, wall.mounting.replace("_", " ")),
@@ -85,6 +85,8 @@ _WALLS = (
         lambda wall: wall.outside_max_c - wall.outside_c >= _SAME_K,
     ),
     Shown[WallFinding](right("In C"), lambda wall: tenths(wall.inside_c)),
+)
+_WALL_HEATS = (
     Shown[WallFinding](right("Conv. W"), lambda wall: watts(wall.convection_w)),
     Shown[WallFinding](right("Rad. W"), lambda wall: watts(wall.radiation_w)),
     Shown[WallFinding](
@@ -107,7 +109,9 @@ _WALLS = (
         lambda wall: watts(wall.sun_w),
         lambda wall: abs(wall.sun_w) >= LEAST_W,
     ),
-    Shown[WallFinding](right("Touch K"), _touch, lambda wall: wall.touch_verdict is not None),
+)
+_WALL_TOUCH = Shown[WallFinding](
+    right("Touch K"), _touch, lambda wall: wall.touch_verdict is not None
 )
 
 
@@ -121,7 +125,12 @@ def _walls(page: Page, condition: ConditionFinding) -> None:
         + ("; forced, mixed, natural: convection of open air in wind)" if windy else ")"),
         style="bold",
     )
-    page.records(_WALLS, condition.walls)
+    whole = (_WALL, *_WALL_TEMPERATURES, *_WALL_HEATS, _WALL_TOUCH)
+    if page.holds(whole, condition.walls):
+        page.records(whole, condition.walls)
+    else:
+        page.records((_WALL, *_WALL_TEMPERATURES, _WALL_TOUCH), condition.walls)
+        page.records((_WALL, *_WALL_HEATS), condition.walls)
 
 
 # Balance ----------------------------------------------------------------------------------

@@ -114,11 +114,15 @@ class Page:
 
     def records(self, shown: Sequence[Shown[Record]], records: Sequence[Record]) -> None:
         """Put in a table of records, without the columns no record gives reason to show."""
-        kept = [each for each in shown if any(each.wanted(record) for record in records)]
+        kept = _wanted(shown, records)
         self.table(
             [each.column for each in kept],
             ([each.cell(record) for each in kept] for record in records),
         )
+
+    def holds(self, shown: Sequence[Shown[Record]], records: Sequence[Record]) -> bool:
+        """Tell whether `records` would have to cut nothing short."""
+        return self.room_beside(_wanted(shown, records), records) + GAP >= 0
 
     def room_beside(self, shown: Sequence[Shown[Record]], records: Sequence[Record]) -> int:
         """Give the cells that are left for one column more, negative where there are none."""
@@ -148,6 +152,10 @@ class Page:
             parts.append(pending + before + self.painted(shown, style))
             pending = after + gap
         return "".join(parts).rstrip()
+
+
+def _wanted(shown: Sequence[Shown[Record]], records: Sequence[Record]) -> list[Shown[Record]]:
+    return [each for each in shown if any(each.wanted(record) for record in records)]
 
 
 def _fitted(widths: list[int], columns: Sequence[Column], room: int) -> tuple[int, int]:

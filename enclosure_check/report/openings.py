@@ -13,14 +13,13 @@ def _grams(flow: float) -> str:
 
 _OPENINGS = (
     Shown[OpeningFinding](Column("Opening", yields=True), lambda row: f"{row.wall} {row.name}"),
-    Shown[OpeningFinding](right("Height mm"), lambda row: f"{row.height_mm:.0f}"),
+    Shown[OpeningFinding](right("At mm"), lambda row: f"{row.height_mm:.0f}"),
     Shown[OpeningFinding](right("Free cm2"), lambda row: digits(row.free_area_mm2 / 100)),
     Shown[OpeningFinding](right("In g/s"), lambda row: _grams(row.inflow_g_per_s)),
     Shown[OpeningFinding](right("Out g/s"), lambda row: _grams(row.outflow_g_per_s)),
     Shown[OpeningFinding](
         right("Out C"), lambda row: "-" if row.air_out_c is None else tenths(row.air_out_c)
     ),
-    Shown[OpeningFinding](right("m/s"), lambda row: digits(row.velocity_m_per_s)),
     Shown[OpeningFinding](right("Re"), lambda row: digits(row.reynolds)),
     Shown[OpeningFinding](right("Loss K"), lambda row: digits(row.loss_coefficient)),
     Shown[OpeningFinding](right("Heat W"), lambda row: watts(row.heat_w)),
@@ -34,7 +33,7 @@ def write_openings(page: Page, condition: ConditionFinding) -> None:
         return
     page.gap()
     page.paragraph(
-        "Openings (flow of air in and out; loss in velocity heads in the free area)", style="bold"
+        "Openings (at: height of the middle; air in and out; loss in velocity heads)", style="bold"
     )
     page.records(_OPENINGS, openings.each)
     page.paragraph(_words(condition), first="  ", rest="  ")

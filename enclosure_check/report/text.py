@@ -141,7 +141,7 @@ _SUMMARY = (
         ),
     ),
     Shown[ConditionFinding](
-        right("Power to %"),
+        right("Power %"),
         lambda each: "-" if each.headroom.power_pct is None else digits(each.headroom.power_pct),
     ),
 )
@@ -158,7 +158,7 @@ def _summary(page: Page, conditions: Sequence[ConditionFinding]) -> None:
     page.records(_SUMMARY, conditions)
     page.paragraph(
         "Up to: surrounding air, all surroundings rising together, at which a highest limit is "
-        "met. Power to: percent of the power here at which one is met. Each alone, with the "
+        "met. Power: percent of the power here at which one is met. Each alone, with the "
         "margin wanted kept.",
         first="  ",
         rest="  ",

@@ -137,7 +137,7 @@ def test_schema(of, capsys):
 
 
 def test_interrupted(tmp_path, monkeypatch, capsys):
-    def interrupt(*_):
+    def interrupt(*_, **__):
         raise KeyboardInterrupt
 
     monkeypatch.setattr("enclosure_check.cli.answers.load_document", interrupt)
