@@ -1,11 +1,14 @@
 """Builds the air inside: its nodes along gravity, the films, gaps and streams of every surface."""
 
+from collections.abc import Hashable
+from functools import lru_cache
 from typing import Any
 
 import numpy as np
 from numpy.typing import ArrayLike
 
 from enclosure_check.description.frames import Vector
+from enclosure_check.network.air_films import Film, Top
 from enclosure_check.network.air_records import Pairs, Surfaces
 from enclosure_check.network.board_films import board_shelter, rim_film
 from enclosure_check.network.builder import PlaneFace
@@ -23,44 +26,6 @@ from enclosure_check.records import dataclass, field
 AIR_NODES = 8
 # Heights on a surface at which its mean film looks at the air.
 SAMPLES = 6
-
-
-@dataclass(frozen=True, eq=False)
-class Film:
-    """A surface that convects inside the box, as the builders hand it over."""
-
-    node: int
-    name: str
-    label: int
-    cells: IntArray
-    centres: FloatArray
-    """Of its cells in the box frame [m], shape (cells, 3)."""
-    area: FloatArray
-    """What convects outside any gap [m2], shape (cells,)."""
-    low: Vector
-    high: Vector
-    face: PlaneFace
-    warm: float = 1.0
-    cold: float = 1.0
-    edges: tuple[float, float] = (np.inf, np.inf)
-    stratified: float = 0.0
-    body: tuple[float, float] | None = None
-    stream_length: float | None = None
-    """Length of its stream [m], that of the face when left out."""
-
-
-@dataclass(frozen=True)
-class Top:
-    """The top of a part, which looks at a face across the air."""
-
-    surface: int
-    node: int
-    area: float
-    axis: int
-    sign: int
-    at: float
-    centre: Vector
-    length: float
 
 
 @dataclass
@@ -188,6 +153,22 @@ class AirSite:
         self, air_nodes: IntArray, reference_k: float, pressure_pa: float, labels: dict[str, int]
     ) -> InsideAir:
         """Make the links."""
+        spacing = self.height / (AIR_NODES - 1)
+        conductivity = float(air(reference_k, pressure_pa).conductivity)
+        section = float(np.prod(self.inside)) / self.height
+        return InsideAir(
+            air=air_nodes,
+            conduct_w_per_k=conductivity * section / spacing,
+            spacing=spacing,
+            lift_label=labels["lift"],
+            mixing_label=labels["mixing"],
+            pressure_pa=pressure_pa,
+            factor=np.ones((len(self.films), 1)),
+            **_shapes(_Alike(self)),
+        )
+
+    def shapes(self) -> dict[str, Any]:
+        """Make what the links have by the shape of the inside alone."""
         columns = find_columns(self.faces)
         tops = [
             (top, face)
@@ -200,22 +181,21 @@ class AirSite:
         for number, (top, _) in enumerate(tops, start=len(columns)):
             entries.add_top(number, top)
         entries.add_free()
-        spacing = self.height / (AIR_NODES - 1)
-        conductivity = float(air(reference_k, pressure_pa).conductivity)
-        section = float(np.prod(self.inside)) / self.height
-        count = len(self.films)
-        return InsideAir(
-            air=air_nodes,
-            conduct_w_per_k=conductivity * section / spacing,
-            spacing=spacing,
-            surfaces=self._surfaces(),
-            pairs=self._pairs(columns, tops),
-            lift_label=labels["lift"],
-            mixing_label=labels["mixing"],
-            pressure_pa=pressure_pa,
-            factor=np.ones((count, 1)),
+        return {
+            "surfaces": self._surfaces(),
+            "pairs": self._pairs(columns, tops),
             **entries.columns(),
             **self._straight(columns, tops),
+        }
+
+    def key(self) -> tuple[Hashable, ...]:
+        """Give all that `shapes` depends on."""
+        return (
+            self.up,
+            self.inside,
+            tuple(_values(film) for film in self.films),
+            tuple(_values(face) for face in self.faces),
+            tuple(self.tops),
         )
 
     def _surfaces(self) -> Surfaces:
@@ -351,6 +331,33 @@ class AirSite:
             "straight_area": np.concatenate(area)[:, None],
             "straight_label": np.concatenate(label).astype(np.intp),
         }
+
+
+def _values(record: Film | Face) -> tuple[Hashable, ...]:
+    """Give the values of a record, arrays as their bytes."""
+    return tuple(
+        value.tobytes() if isinstance(value, np.ndarray) else value
+        for value in vars(record).values()
+    )
+
+
+class _Alike:
+    """A site that equals every other with the same films and faces."""
+
+    def __init__(self, site: AirSite) -> None:
+        self.site, self.key = site, site.key()
+
+    def __eq__(self, other: object) -> bool:
+        return isinstance(other, _Alike) and self.key == other.key
+
+    def __hash__(self) -> int:
+        return hash(self.key)
+
+
+@lru_cache(maxsize=8)
+def _shapes(alike: _Alike) -> dict[str, Any]:
+    """Kept, as the same inside comes again under every condition."""
+    return alike.site.shapes()
 
 
 def _cell_at(face: Face, point: Vector) -> int:

@@ -1,14 +1,12 @@
 """Builds the boards: one layer of cells each, with the films of both sides."""
 
-from dataclasses import replace
-
 import numpy as np
 
 from enclosure_check.description.case import BoardCase, Case, ZoneCase
 from enclosure_check.description.frames import SIGN, wall_pair
 from enclosure_check.network.covering import bare_board
 from enclosure_check.network.features import painted
-from enclosure_check.network.grid import PlateGrid, cell_counts
+from enclosure_check.network.grid import PlateGrid, cell_counts, shared_grid
 from enclosure_check.network.links import FloatArray, LinkLabel
 from enclosure_check.network.site import InsideSurface, Site
 from enclosure_check.network.units import metres, metres_3
@@ -55,10 +53,10 @@ def _build_board(case: Case, board: BoardCase, site: Site) -> None:
     options = site.options
     counts = cell_counts(size[first], size[second], options.board_cells)
     sheet = np.full((2, *counts), board_conductivity(board) * size[board.axis])
-    grid = PlateGrid((first, second), metres_3(board.low_mm), size, counts, sheet)
+    grid = shared_grid((first, second), metres_3(board.low_mm), size, counts, sheet)
     if board.zones:
         zoned = _sheet(board, grid)
-        grid = replace(grid, sheet=np.stack((zoned, zoned)))
+        grid = shared_grid(grid.axes, grid.low, size, counts, np.stack((zoned, zoned)))
     plate = site.plate(f"board {board.name}", grid)
     site.grids[board.name], site.boards[board.name] = grid, plate
     site.conduct_along(plate.cells, grid, 1.0, LinkLabel(owner, "along"))

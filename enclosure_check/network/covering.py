@@ -67,7 +67,7 @@ def between_parts(grid: PlateGrid, cover: Body, parts: Iterable[PartCase]) -> Fl
     """Area under a cover that no part stands on, by cell of its plate [m2], shape ``counts``."""
     area = outline(grid, cover)
     for part in parts:
-        area -= grid.overlap(*shared(part, cover))
+        area = area - grid.overlap(*shared(part, cover))
     return np.asarray(np.maximum(area, 0.0))
 
 

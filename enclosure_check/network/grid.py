@@ -74,9 +74,8 @@ class PlateGrid:
         return first * second
 
     def overlap(self, low: Vector, size: Vector) -> FloatArray:
-        """Area of a rectangle that lies on each cell [m2], shape ``counts``."""
-        first, second = self._lengths(low, size)
-        return np.outer(first, second)
+        """Area of a rectangle that lies on each cell [m2], shape ``counts``, not to be written."""
+        return _overlap(self, low, size)
 
     def shares(self, low: Vector, size: Vector) -> FloatArray:
         """Share of a rectangle that lies on each cell, summing to one, shape ``counts``."""
@@ -86,26 +85,13 @@ class PlateGrid:
     def taken(self, low: Vector, size: Vector) -> FloatArray:
         """Share of the heat of a rectangle that each cell takes, summing to one, shape ``counts``.
 
-        Those of its area, 1/12 of the second differences added along either axis: the right side
-        of the compact difference scheme of fourth order (L. Collatz, The Numerical Treatment of
-        Differential Equations, 3rd ed., 1960, from memory). Heat put in by area alone arrives too
-        weak far from a source as narrow as a cell, by an eighth of ``h s**2 / (k t)``.
+        Not to be written. Those of its area, 1/12 of the second differences added along either
+        axis: the right side of the compact difference scheme of fourth order (L. Collatz, The
+        Numerical Treatment of Differential Equations, 3rd ed., 1960, from memory). Heat put in by
+        area alone arrives too weak far from a source as narrow as a cell, by an eighth of
+        ``h s**2 / (k t)``.
         """
-        lengths = self._lengths(low, size)
-        for length in lengths:
-            passed = (length[1:] - length[:-1]) / 12.0
-            length[:-1] += passed
-            length[1:] -= passed
-            length /= length.sum()
-        return np.asarray(lengths[0][:, None] * lengths[1])
-
-    def _lengths(self, low: Vector, size: Vector) -> list[FloatArray]:
-        """Length of a rectangle on each row of cells, by axis [m]."""
-        lengths = []
-        for axis, edge in zip(self.axes, self.edges, strict=True):
-            from_, to = low[axis], low[axis] + size[axis]
-            lengths.append(np.maximum(np.minimum(edge[1:], to) - np.maximum(edge[:-1], from_), 0.0))
-        return lengths
+        return _taken(self, low, size)
 
     def sub_cell(self, low: Vector, size: Vector) -> tuple[float, float]:
         """Resistances a source adds to what the cells tell of it [K/W].
@@ -115,25 +101,7 @@ class PlateGrid:
         hotter the middle of the source is than its mean. The first can be negative, where the
         source just fills cells that hold it concentrated in their centres.
         """
-        first, second = self.axes
-        shares = self.shares(low, size)
-        kt = [float(np.sum(sheet * shares)) for sheet in self.sheet]
-        mean = (kt[0] * kt[1]) ** 0.5
-        # An orthotropic plate is an isotropic one with its lengths scaled.
-        stretch = ((mean / kt[0]) ** 0.5, (mean / kt[1]) ** 0.5)
-        shape = (
-            size[first] * stretch[0],
-            size[second] * stretch[1],
-            (low[first] + size[first] / 2 - self.low[first]) * stretch[0],
-            (low[second] + size[second] / 2 - self.low[second]) * stretch[1],
-            self.size[first] * stretch[0],
-            self.size[second] * stretch[1],
-            mean,
-        )
-        exact, peak = _exact(*(float(value) for value in shape))
-        taken = self.taken(low, size)
-        told = self.told(taken[None], np.array([kt]), *np.zeros((2, 1), dtype=np.intp))
-        return exact - float(told[0]), peak - exact
+        return _sub_cell(self, low, size)
 
     def told(
         self, shares: FloatArray, along: FloatArray, first: IntArray, second: IntArray
@@ -163,6 +131,82 @@ class PlateGrid:
         loss = along_first[:, :, None] + along_second[:, None, :]
         loss = loss + SPREADING_FILM_W_PER_M2K * self.cell_area
         return np.asarray(np.sum(spectrum[first] * spectrum[second] / loss, axis=(1, 2)))
+
+
+def shared_grid(
+    axes: tuple[int, int], low: Vector, size: Vector, counts: tuple[int, int], sheet: FloatArray
+) -> PlateGrid:
+    """Give the grid of these values; see `PlateGrid`.
+
+    The same one whenever they come again, as under every condition, so that what was found on it
+    before serves again.
+    """
+    return _grid(axes, low, size, counts, sheet.tobytes())
+
+
+@lru_cache(maxsize=128)
+def _grid(
+    axes: tuple[int, int], low: Vector, size: Vector, counts: tuple[int, int], sheet: bytes
+) -> PlateGrid:
+    return PlateGrid(axes, low, size, counts, np.frombuffer(sheet).reshape(2, *counts))
+
+
+def kept(values: FloatArray) -> FloatArray:
+    """Give an array that is kept for later, made safe from being written to."""
+    values.flags.writeable = False
+    return values
+
+
+def _lengths(grid: PlateGrid, low: Vector, size: Vector) -> list[FloatArray]:
+    """Length of a rectangle on each row of cells, by axis [m]."""
+    lengths = []
+    for axis, edge in zip(grid.axes, grid.edges, strict=True):
+        from_, to = low[axis], low[axis] + size[axis]
+        lengths.append(np.maximum(np.minimum(edge[1:], to) - np.maximum(edge[:-1], from_), 0.0))
+    return lengths
+
+
+# What is found about a rectangle on a grid is kept, as the same come again under every condition.
+
+
+@lru_cache(maxsize=4096)
+def _overlap(grid: PlateGrid, low: Vector, size: Vector) -> FloatArray:
+    first, second = _lengths(grid, low, size)
+    return kept(first[:, None] * second)
+
+
+@lru_cache(maxsize=4096)
+def _taken(grid: PlateGrid, low: Vector, size: Vector) -> FloatArray:
+    lengths = _lengths(grid, low, size)
+    for length in lengths:
+        passed = (length[1:] - length[:-1]) / 12.0
+        length[:-1] += passed
+        length[1:] -= passed
+        length /= length.sum()
+    return kept(np.asarray(lengths[0][:, None] * lengths[1]))
+
+
+@lru_cache(maxsize=4096)
+def _sub_cell(grid: PlateGrid, low: Vector, size: Vector) -> tuple[float, float]:
+    first, second = grid.axes
+    shares = grid.shares(low, size)
+    kt = [float(np.sum(sheet * shares)) for sheet in grid.sheet]
+    mean = (kt[0] * kt[1]) ** 0.5
+    # An orthotropic plate is an isotropic one with its lengths scaled.
+    stretch = ((mean / kt[0]) ** 0.5, (mean / kt[1]) ** 0.5)
+    shape = (
+        size[first] * stretch[0],
+        size[second] * stretch[1],
+        (low[first] + size[first] / 2 - grid.low[first]) * stretch[0],
+        (low[second] + size[second] / 2 - grid.low[second]) * stretch[1],
+        grid.size[first] * stretch[0],
+        grid.size[second] * stretch[1],
+        mean,
+    )
+    exact, peak = _exact(*(float(value) for value in shape))
+    taken = grid.taken(low, size)
+    told = grid.told(taken[None], np.array([kt]), *np.zeros((2, 1), dtype=np.intp))
+    return exact - float(told[0]), peak - exact
 
 
 @lru_cache(maxsize=4096)

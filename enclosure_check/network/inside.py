@@ -5,9 +5,11 @@ on a patch gives ``e A (sigma T^4 - H)`` to H; patches exchange their radiositie
 ``(1 - e) H + e E`` over the exchange areas of their view factors.
 """
 
+from itertools import pairwise
+
 import numpy as np
 
-from enclosure_check.network.links import FloatArray, LinkLabel
+from enclosure_check.network.links import FloatArray, IntArray, LinkLabel
 from enclosure_check.network.site import Site
 
 # A patch that is hidden altogether takes no part. [m2]
@@ -30,25 +32,24 @@ def build_inside_radiation(site: Site) -> None:
     outline = np.minimum(1.0, area / np.maximum(on_patch, 1e-300))
     sees = area > LEAST_AREA
     emitting = np.zeros(count)
-    cells: list[list[FloatArray]] = [[] for _ in range(count)]
     irradiation = builder.nodes("irradiation of patch", (count,))
+    found: list[tuple[IntArray, IntArray, FloatArray, FloatArray]] = []
     for surface in site.surfaces:
         bare = (np.ravel(surface.area) > 0) & sees[np.ravel(surface.patch)]
         nodes, patch = np.ravel(surface.cells)[bare], np.ravel(surface.patch)[bare]
         seen = np.ravel(surface.area)[bare] * outline[patch]
         builder.radiate(nodes, irradiation[patch], seen, seen, surface.emissivity, surface.label)
         np.add.at(emitting, patch, surface.emissivity * seen)
-        weight = np.full(nodes.size, max(surface.emissivity, _MIRROR))
-        # Not by `numpy.unique`, which loads masked arrays.
-        for index in sorted(set(patch.tolist())):
-            here = patch == index
-            cells[index].append(np.stack((nodes[here], seen[here], weight[here])))
+        found.append((patch, nodes, seen, np.full(nodes.size, max(surface.emissivity, _MIRROR))))
     emission = irradiation.copy()
-    for index, found in enumerate(cells):
-        if found:
-            nodes, seen, weight = np.concatenate(found, axis=1)
+    patch, nodes, seen, weight = (np.concatenate(column) for column in zip(*found, strict=True))
+    order = np.argsort(patch, kind="stable")
+    bounds = np.searchsorted(patch[order], np.arange(count + 1)).tolist()
+    for index, (start, end) in enumerate(pairwise(bounds)):
+        if end > start:
+            here = order[start:end]
             label = f"emission of patch {index + 1}"
-            emission[index] = builder.mean_emission(label, nodes.astype(np.intp), seen, weight)
+            emission[index] = builder.mean_emission(label, nodes[here], seen[here], weight[here])
     mean = emitting / np.where(sees, area, 1.0)
     first, second = np.nonzero(np.triu(exchange > LEAST_SHARE * area.min(), 1))
     builder.exchange(

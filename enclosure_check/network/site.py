@@ -4,7 +4,8 @@ import numpy as np
 
 from enclosure_check.description.case import Case, PartCase
 from enclosure_check.description.frames import AXIS, Vector
-from enclosure_check.network.air import AIR_NODES, AirSite, Film, Top
+from enclosure_check.network.air import AIR_NODES, AirSite
+from enclosure_check.network.air_films import Film, Top
 from enclosure_check.network.builder import NetworkBuilder, PlaneFace
 from enclosure_check.network.grid import GridOptions, PlateGrid
 from enclosure_check.network.links import FloatArray, IntArray, LinkLabel

@@ -5,12 +5,13 @@ they do not resolve of it, its own or that of contacts close by, is added: see `
 """
 
 from collections.abc import Sequence
+from functools import lru_cache
 
 import numpy as np
 
 from enclosure_check.description.frames import Vector
 from enclosure_check.network.builder import LEAST_RESISTANCE, NetworkBuilder
-from enclosure_check.network.grid import SPREADING_FILM_W_PER_M2K, PlateGrid
+from enclosure_check.network.grid import SPREADING_FILM_W_PER_M2K, PlateGrid, kept
 from enclosure_check.network.lines import Segment
 from enclosure_check.network.links import FloatArray, IntArray, LinkLabel
 from enclosure_check.network.network import PlateNodes
@@ -26,6 +27,8 @@ MOST_TAKEN = 0.9
 _SHEET_STEP = 1e-3
 # Ending of the role of what makes the heat of one contact felt under others.
 FELT = ", felt"
+
+_Ends = tuple[tuple[float, float], tuple[float, float]]
 
 
 @dataclass(frozen=True)
@@ -51,7 +54,7 @@ class Contact:
     held: float
     places: tuple[IntArray, IntArray]
     shares: FloatArray
-    ends: tuple[tuple[float, float], tuple[float, float]]
+    ends: _Ends
     label: LinkLabel
     line: str | None = None
     spot: int | None = None
@@ -225,22 +228,33 @@ class Spots:
 
 def _mutual(grid: PlateGrid, contacts: Sequence[Contact], shares: FloatArray) -> FloatArray:
     """Rise under one contact per watt into another that the cells do not resolve [K/W], (c, c)."""
-    count = len(contacts)
+    ends = tuple(contact.ends for contact in contacts)
+    lines = tuple(contact.line for contact in contacts)
+    return _unresolved(grid, ends, lines, shares.tobytes())
+
+
+@lru_cache(maxsize=64)
+def _unresolved(
+    grid: PlateGrid, all_ends: tuple[_Ends, ...], lines: tuple[str | None, ...], all_shares: bytes
+) -> FloatArray:
+    """See `_mutual`; kept, as the same contacts come again under every condition."""
+    count = len(lines)
     total = np.zeros((count, count))
-    ends = np.array([contact.ends for contact in contacts])
+    ends, shares = np.array(all_ends), np.frombuffer(all_shares).reshape(count, *grid.counts)
     first, second = np.triu_indices(count, 1)
     apart = np.maximum(
         ends[first, :, 0] - ends[second, :, 1], ends[second, :, 0] - ends[first, :, 1]
     )
     near = (apart < FARTHEST_CELLS * np.array(grid.steps)).all(axis=1)
-    lines = [contact.line for contact in contacts]
-    near &= np.array(
-        [lines[i] is None or lines[i] != lines[j] for i, j in zip(first, second, strict=True)],
-        dtype=bool,
+    # Contacts by themselves each count as a line of their own.
+    numbers = {line: number for number, line in enumerate(dict.fromkeys(lines))}
+    line = np.array(
+        [-1 - index if name is None else numbers[name] for index, name in enumerate(lines)]
     )
+    near &= line[first] != line[second]
     first, second = first[near], second[near]
     if not first.size:
-        return total
+        return kept(total)
     sheet = np.einsum("aij,cij->ca", grid.sheet, shares)
     # Between two places of unlike copper, the mean of both.
     along = np.sqrt(sheet[first] * sheet[second])
@@ -256,7 +270,7 @@ def _mutual(grid: PlateGrid, contacts: Sequence[Contact], shares: FloatArray) ->
     )
     told = grid.told(shares, along, first, second)
     total[first, second] = total[second, first] = exact - told
-    return total
+    return kept(total)
 
 
 def _bounded(mutual: FloatArray, own: FloatArray) -> FloatArray:

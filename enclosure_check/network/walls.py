@@ -11,7 +11,7 @@ from enclosure_check.description.frames import AXIS, SIGN, Vector
 from enclosure_check.description.names import WALL_NAMES, WallName
 from enclosure_check.network.air import channel_shape
 from enclosure_check.network.covering import bare_wall
-from enclosure_check.network.grid import PlateGrid, cell_counts
+from enclosure_check.network.grid import PlateGrid, cell_counts, shared_grid
 from enclosure_check.network.links import IntArray, LinkLabel
 from enclosure_check.network.network import PlateNodes
 from enclosure_check.network.outer_gap import OuterGap
@@ -68,7 +68,8 @@ def _build_wall(case: Case, name: WallName, inside: Vector, outside: Vector, sit
     options = site.options
     counts = cell_counts(inside[first], inside[second], options.wall_cells)
     sheet = wall.material.in_plane_conductivity_w_per_mk * thickness
-    grid = PlateGrid((first, second), (0.0, 0.0, 0.0), inside, counts, np.full((2, *counts), sheet))
+    sheets = np.full((2, *counts), sheet)
+    grid = shared_grid((first, second), (0.0, 0.0, 0.0), inside, counts, sheets)
     through = wall.material.conductivity_w_per_mk * math.sqrt(inside_area * outside_area)
     outer = site.plate(f"{name} wall outside", grid)
     even = through / thickness / inside_area > EVEN_WALL_W_PER_M2K
