@@ -172,8 +172,8 @@ def _points_away(
     return np.maximum(root * root - near, 0.0), root * span
 
 
-# Starts and lengths along the axes, (3, k, rays), and weights, (k, rays).
-_Rays = tuple[FloatArray, FloatArray, FloatArray]
+# Starts and lengths, one array an axis, (k, rays) or (k, 1), and weights, (k, rays).
+_Rays = tuple[tuple[FloatArray, ...], tuple[FloatArray, ...], FloatArray]
 
 
 def _parallel_rays(ends: FloatArray, points: FloatArray) -> _Rays:
@@ -183,7 +183,7 @@ def _parallel_rays(ends: FloatArray, points: FloatArray) -> _Rays:
     p, dp, p_weight = _points_along(ends[..., 0], z, a, b)
     q, dq, q_weight = _points_along(ends[..., 1], z, c, d)
     weight = p_weight * q_weight / np.square(dp * dp + dq * dq + z * z)
-    return np.stack((p, q, 0.0 * p)), np.stack((dp, dq, z + 0.0 * p)), weight
+    return (p, q, 0.0 * z), (dp, dq, z), weight
 
 
 def _perpendicular_rays(ends: FloatArray, points: FloatArray) -> _Rays:
@@ -195,7 +195,7 @@ def _perpendicular_rays(ends: FloatArray, points: FloatArray) -> _Rays:
     r2 = x * x + y * y
     p, dp, p_weight = _points_along(ends[..., 0], np.sqrt(r2), a, b)
     weight = p_weight * x_weight * y_weight * x * y / np.square(dp * dp + r2)
-    return np.stack((p, x, 0.0 * x)), np.stack((dp, -x, y)), weight
+    return (p, x, 0.0 * near), (dp, -x, y), weight
 
 
 class _Kind(NamedTuple):
@@ -216,6 +216,14 @@ def _may_obstruct(ends: FloatArray, boxes: FloatArray, rounding: float) -> BoolA
     return np.asarray(meets.all(axis=2))
 
 
+def _slab(
+    faces: FloatArray, start: FloatArray, inverse: FloatArray
+) -> tuple[FloatArray, FloatArray]:
+    """Where rays enter and leave the space between two planes (k, 2), as shares of the rays."""
+    one, two = (faces[:, :1] - start) * inverse, (faces[:, 1:] - start) * inverse
+    return np.minimum(one, two), np.maximum(one, two)
+
+
 def _visible_share(
     kind: _Kind, ends: FloatArray, boxes: FloatArray, candidates: BoolArray, rays: int
 ) -> FloatArray:
@@ -231,14 +239,15 @@ def _visible_share(
     for begin in range(0, share.size, step):
         part = slice(begin, begin + step)
         start, along, weight = kind.rays(ends[part], points)
-        inverse = 1.0 / np.where(np.abs(along) < _TINY, _TINY, along)
+        inverse = [1.0 / np.where(np.abs(each) < _TINY, _TINY, each) for each in along]
         cut = np.zeros(weight.shape, dtype=np.bool_)
         for box in np.flatnonzero(candidates[part].any(axis=0)):
             k = np.flatnonzero(candidates[part, box])
-            faces = boxes[part][k, box].transpose(1, 2, 0)[..., None]
-            one, two = (faces - start[:, k]) * inverse[:, k]
-            enter = np.minimum(one, two).max(axis=0)
-            leave = np.maximum(one, two).min(axis=0)
+            faces = boxes[part][k, box]
+            enter, leave = _slab(faces[:, :, 0], start[0][k], inverse[0][k])
+            for axis in (1, 2):
+                near, far = _slab(faces[:, :, axis], start[axis][k], inverse[axis][k])
+                enter, leave = np.maximum(enter, near), np.minimum(leave, far)
             cut[k] |= (enter <= leave) & (leave > _ROUNDING) & (enter < 1.0 - _ROUNDING)
         share[part] = 1.0 - np.sum(weight * cut, axis=1) / weight.sum(axis=1)
     return np.clip(share, 0.0, 1.0)
