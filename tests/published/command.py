@@ -10,6 +10,7 @@ from enclosure_check.check import solve_case
 from enclosure_check.cli import main
 from enclosure_check.description.load import load_document
 from enclosure_check.findings.confidence import bands
+from enclosure_check.findings.solved import Solved
 
 DOCUMENTS = Path(__file__).parent / "documents"
 
@@ -37,11 +38,16 @@ def wall(found: dict[str, Any], which: str) -> dict[str, Any]:
     return next(each for each in found["walls"] if each["name"] == which)
 
 
-def board_band_k(name: str, board: str) -> float:
-    """Band of the mean of a board of a document without conditions [K]; no report has it."""
+@cache
+def solved(name: str) -> Solved:
+    """A document without conditions, solved, for what no report has."""
     (case,) = load_document(str(DOCUMENTS / f"{name}.yaml")).cases()
-    solved, _ = solve_case(case)
-    node = solved.network.places.boards[board].mean
-    found = bands(solved, [node])
+    return solve_case(case)[0]
+
+
+def board_band_k(name: str, board: str) -> float:
+    """Band of the mean of a board of such a document [K]."""
+    node = solved(name).network.places.boards[board].mean
+    found = bands(solved(name), [node])
     assert found is not None
     return found.band_k(node)

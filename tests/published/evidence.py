@@ -94,7 +94,6 @@ NOT_HERE = """## What is not here
   cards measured or modelled, whose sizes, powers and temperatures together could not be seen. Of the
   first only a share of radiation is used.
 - The vented card box of 1997: only its sizes and its formula were seen, not its measurements.
-- The two sides and the rim of the boards of C and D apart: the program reports a board as one.
 - A board alone in open air as a document: a document is a box.
 """
 
@@ -114,9 +113,9 @@ def every_row() -> tuple[Row, ...]:
 
 
 def digits(value: float) -> str:
-    """Give a number with four significant digits; what rounds to nothing has no sign."""
+    """Give a number with four significant digits, a tiny one with one."""
     if abs(value) < 5e-4:
-        return f"{abs(value):.2g}" if abs(value) >= 5e-5 else "0"
+        return f"{value:.1g}" if abs(value) >= 5e-5 else "0"
     places = max(0, 3 - int(f"{value:.3e}".partition("e")[2]))
     return f"{value:.{places}f}"
 

@@ -8,8 +8,9 @@ from typing import Any
 
 import numpy as np
 from published import sources as by
-from published.command import board_band_k, condition, reported, wall
+from published.command import board_band_k, condition, reported, solved, wall
 from published.evidence_row import Kind, Row, Seen, Source, accuracy, row
+from published.slices import slice_of_vented
 
 from enclosure_check.physics.air import GRAVITY, air
 
@@ -48,13 +49,13 @@ def _row(
 
 
 def isothermal_rows() -> list[Row]:
-    """Boxes of one wall temperature: W8, W9, X as wall rises at the power of the source."""
+    """Boxes of one wall temperature: wall rises at the power of the source."""
     mean = "mean rise of the walls, K"
     rows = [
-        _row("worked example", "W8: duct 0.75 x 0.30 m, 246 W/m", by.INCROPERA, "example 9.3",
+        _row("worked example", "duct 0.75 x 0.30 m, 246 W/m", by.INCROPERA, "example 9.3",
              "seen", mean, 30.0, wall_rise(condition("duct_of_two_dimensions")),
              "the book sums isolated plates; on a box the top stands in the plume of the sides"),
-        _row("worked example", "W9: cube 0.2 m, 51.8 W", by.HOLMAN, "example 7-6", "seen", mean,
+        _row("worked example", "cube 0.2 m, 51.8 W", by.HOLMAN, "example 7-6", "seen", mean,
              50.0, wall_rise(condition("cube", "book"))),
     ]  # fmt: skip
     for case, document, which, theirs in (
@@ -72,29 +73,29 @@ def isothermal_rows() -> list[Row]:
 
 
 def oven_rows() -> list[Row]:
-    """W10: one side and the top of an oven, as they stand on a box."""
+    """one side and the top of an oven, as they stand on a box."""
     found = condition("oven")
     side, top = wall(found, "left")["convection_w"], wall(found, "top")["convection_w"]
     return [
-        _row("worked example", "W10: side of an oven 2 x 2 ft, 40 F", by.JANNA, "example 8.5",
+        _row("worked example", "side of an oven 2 x 2 ft, 40 F", by.JANNA, "example 8.5",
              "seen", "heat, W", 27.5, (side, side * accuracy("box_shelter") / 100),
              "the book has a plate alone; on a box a side gives 0.9 of that"),
-        _row("worked example", "W10: top of an oven 2 x 2 ft, 40 F", by.JANNA, "example 8.5",
+        _row("worked example", "top of an oven 2 x 2 ft, 40 F", by.JANNA, "example 8.5",
              "seen", "heat, W", 40.4, (top, top * 0.35),
              "the book has a plate alone; on a box the top stands in the plume of the sides"),
     ]  # fmt: skip
 
 
 def heated_rows() -> list[Row]:
-    """W7, W11 and W12: boxes with their power given."""
+    """Boxes with their power given."""
     code, report = reported("housing_600_w")
     hot = max(each["outside_max_c"] for each in report["conditions"][0]["walls"])
     panel = wall_rise(condition("floor_panel"))
     rows = [
-        _row("worked example", "W7: panel 4 x 8 x 2 ft on the floor, 2 kW", by.WILDI,
+        _row("worked example", "panel 4 x 8 x 2 ft on the floor, 2 kW", by.WILDI,
              "problem 3-27 (relations from memory)", "computed", "mean rise of the walls, K", 16.9,
              panel, "his 3 A dT^1.25 for convection is twice the law of a plate 2.4 m high"),
-        row(4, "worked example", "W11: housing 400 x 400 x 500 mm, 600 W, 40 C asked",
+        row(4, "worked example", "housing 400 x 400 x 500 mm, 600 W, 40 C asked",
             by.HOUSING_2021, "inputs seen, answer not", "seen",
             "hottest wall, C, flagged by exit code 1", 40.0, hot if code == 1 else 0.0, flag=True),
     ]  # fmt: skip
@@ -104,7 +105,7 @@ def heated_rows() -> list[Row]:
         # Film law 10 % and emissivity 0.05 of 0.8, both ways.
         band = share * (1 - share) * float(np.hypot(accuracy("box_shelter") / 100, 0.05 / 0.8))
         rows.append(
-            _row("measured", f"W12: bare anodised box on a wall, {power} W", by.TAMAYOL, "abstract",
+            _row("measured", f"bare anodised box on a wall, {power} W", by.TAMAYOL, "abstract",
                  "seen", "share of radiation", (0.4, 0.6), (share, band),
                  "about 50 % is said, read as 0.4 to 0.6; sizes are ours", scale=1.0)
         )  # fmt: skip
@@ -112,16 +113,16 @@ def heated_rows() -> list[Row]:
 
 
 def cabinet_rows() -> list[Row]:
-    """W6: worked numbers of the area method, and six cabinets beside it and IEC TR 60890."""
+    """worked numbers of the area method, and six cabinets beside it and IEC TR 60890."""
     from published.cabinets import CABINETS, RISE_K, iec_rise_k
 
     rows = []
     for case, document, which, theirs in (
-        ("W6: cabinet 1.2 x 2.0 x 0.6 m on a wall, 179.5 W", "cabinet_worked_wall", "base", 5.0),
-        ("W6: free cabinet 0.6 x 2.0 x 0.5 m, 242 W", "cabinet_worked_free", "base", 10.0),
-        ("W6: free cabinet of 3.96 m2, 350 W", "cabinet_worked_three_powers", "w350", 16.0),
-        ("W6: free cabinet of 3.96 m2, 653 W", "cabinet_worked_three_powers", "w653", 30.0),
-        ("W6: free cabinet of 3.96 m2, 1000 W", "cabinet_worked_three_powers", "w1000", 46.0),
+        ("cabinet 1.2 x 2.0 x 0.6 m on a wall, 179.5 W", "cabinet_worked_wall", "base", 5.0),
+        ("free cabinet 0.6 x 2.0 x 0.5 m, 242 W", "cabinet_worked_free", "base", 10.0),
+        ("free cabinet of 3.96 m2, 350 W", "cabinet_worked_three_powers", "w350", 16.0),
+        ("free cabinet of 3.96 m2, 653 W", "cabinet_worked_three_powers", "w653", 30.0),
+        ("free cabinet of 3.96 m2, 1000 W", "cabinet_worked_three_powers", "w1000", 46.0),
     ):
         found = mean_air(condition(document, which))
         far = abs(found[0] - theirs) > found[1]
@@ -159,11 +160,27 @@ def _outlet(found: dict[str, Any], name: str) -> tuple[float, float]:
     return opening["air_out_c"] - found["surrounding_air_c"], band
 
 
+_F_INSIDE = (0.100, 0.152, 0.254)
+_F_BOARD = {"along": 0.140, "thickness": 0.002, "low": 0.027, "high": 0.227}
+_F_STEADY = "ours warms steadily up the box; theirs stays nearly cold to mid height"
+_F_WHY = {
+    0.5: _F_STEADY,
+    0.75: _F_STEADY,
+    0.9: "the plume over the board is not counted in our slice",
+}
 _F_HEIGHTS = ((0.1, 0.43), (0.25, 2.37), (0.5, 3.76), (0.75, 12.8), (0.9, 25.1))
 
 
+def _head(found: dict[str, Any]) -> tuple[float, float]:
+    """Integral of g dT/T over the height between the slots of F, and its band [m2/s2]."""
+    shares = np.linspace(15 / 254, 239 / 254, 200)
+    rise, band = np.array([air_at(found, share) for share in shares]).T.mean(axis=1)
+    per_kelvin = GRAVITY / 300.0 * 0.224
+    return float(per_kelvin * rise), float(per_kelvin * band)
+
+
 def vented_rows() -> list[Row]:
-    """F, V1 and V3: boxes with openings."""
+    """Boxes with openings."""
     found = condition("vented_board")
     flow, loss = found["openings"]["flow_g_per_s"], accuracy("perforated_plate")
     board = found["boards"][0]["mean_c"] - found["surrounding_air_c"]
@@ -179,17 +196,16 @@ def vented_rows() -> list[Row]:
              "our air beside the upper half of the board is warmer than theirs, and so is the board"),
         _row("numerical experiment", f"F: {about}", by.EXPERIMENT, "F", "seen",
              "air, mean rise, K", 8.35, mean_air(found)),
+        _row("numerical experiment", f"F: {about}", by.EXPERIMENT, "F", "seen",
+             "head of the air between the slots, m2/s2", 0.0532, _head(found)),
     ]  # fmt: skip
     for share, theirs in _F_HEIGHTS:
-        ours = air_at(found, share)
-        why = (
-            "theirs is the mean of a slice, the films and plume of the board counted; ours is the "
-            "air away from them"
-        )
+        _, band = air_at(found, share)
+        ours = slice_of_vented(solved("vented_board"), _F_INSIDE, _F_BOARD, share)
         rows.append(
             _row("numerical experiment", f"F: {about}", by.EXPERIMENT, "F", "seen",
-                 f"air at {share:g} of the height, rise, K", theirs, ours,
-                 why if abs(ours[0] - theirs) > ours[1] else "", scale=23.05)
+                 f"slice of air at {share:g} of the height, rise, K", theirs, (ours, band),
+                 _F_WHY.get(share, ""), scale=23.05)
         )  # fmt: skip
     for which, case, theirs in (
         ("w20", "20 W, 20 cm2 each, 0.25 m", 30.19),
@@ -197,7 +213,7 @@ def vented_rows() -> list[Row]:
         ("w100", "100 W, 100 cm2 each, 1.0 m", 18.68),
     ):
         rows.append(
-            _row("worked example", f"V3: two vents, air mixed, {case}", by.MIXED_BOX, "balance",
+            _row("worked example", f"two vents, air mixed, {case}", by.MIXED_BOX, "balance",
                  "computed", "rise of the air, K", theirs, mean_air(condition("two_vents", which)))
         )  # fmt: skip
     rises = []
@@ -206,13 +222,13 @@ def vented_rows() -> list[Row]:
         ours = _outlet(found, "outlet")
         rises.append(ours[0])
         rows.append(
-            _row("practice rule", f"V1: six upright cards, {power} W, slots low and high",
+            _row("practice rule", f"six upright cards, {power} W, slots low and high",
                  by.VENTED_CARDS, "formula", "computed", "rise of the air that leaves, K",
                  _cards(found["heat_balance"]["openings_w"], ours[0]), ours,
                  "the formula takes the air to warm evenly from inlet to outlet")
         )  # fmt: skip
     rows.append(
-        _row("practice rule", "V1: six upright cards, 40 W over 10 W", by.VENTED_CARDS, "formula",
+        _row("practice rule", "six upright cards, 40 W over 10 W", by.VENTED_CARDS, "formula",
              "seen", "ratio of rises", 4 ** (2 / 3), (rises[2] / rises[0],
              rises[2] / rises[0] * loss / 300),
              "viscosity in the slots and warmer air: the rise grows with less than the 2/3 power"
@@ -241,7 +257,7 @@ _PACKAGES = (
 
 
 def package_rows() -> list[Row]:
-    """S10: typical junction-to-ambient resistances, a range of 40 % either way."""
+    """typical junction-to-ambient resistances, a range of 40 % either way."""
     rows = []
     for which, name, typical, power, part in _PACKAGES:
         found = condition("still_air_box", which)
@@ -250,7 +266,7 @@ def package_rows() -> list[Row]:
         beside, _ = air_at(found, 0.5 - 25 / 305)
         ours = (junction["temperature_c"] - found["surrounding_air_c"] - beside) / power
         rows.append(
-            _row("practice rule", f"S10: {name} in a still-air box", by.JEDEC, "typical", "memory",
+            _row("practice rule", f"{name} in a still-air box", by.JEDEC, "typical", "memory",
                  "theta JA, K/W", (0.6 * typical, 1.4 * typical),
                  (ours, junction["band_k"] / power),
                  "hangs without leads; in a test board its leads carry heat away"

@@ -10,6 +10,7 @@ from published.evidence_row import Row, accuracy, row
 from published.experiments_inside import CASES, HEIGHTS, Sealed, ours, solved
 from published.experiments_outside import CASES as BOXES
 from published.experiments_outside import parts
+from published.faces import heat_by_face
 
 from enclosure_check.findings.confidence import bands
 
@@ -48,6 +49,16 @@ def _theirs(case: Sealed) -> dict[str, float]:
     }
 
 
+# Heat of the sides of flat boards and their rim, with the accuracy of their film.
+_DOWN, _UP, _RIM = (
+    accuracy(key)
+    for key in ("raithby_hollands_hot_down", "lloyd_moran_hot_up", "yovanovich_cuboid")
+)
+_SIDES = {
+    "C": {"bottom side": (1.43, _DOWN), "top side": (1.04, _UP), "rim": (0.24, _RIM)},
+    "D": {"bottom side": (0.616, _DOWN), "top side": (0.407, _UP), "rim": (0.159, _RIM)},
+}
+_SPLIT = "the film of a board as a body gives its rim too much and its top too little"
 _PLUME = "the plume over the board is not counted in our slice, and our air there is colder"
 _NARROW = (
     "ours lets more heat rise out of gaps of 10 mm than the experiment, and less straight across"
@@ -65,6 +76,10 @@ _WHY = {
     ("C", "0.75"): _PLUME,
     ("C", "0.9"): _PLUME,
     ("C", "mean"): _PLUME,
+    ("C", "top side"): _SPLIT,
+    ("C", "rim"): _SPLIT,
+    ("D", "top side"): _SPLIT,
+    ("D", "rim"): _SPLIT,
     ("D", "ceiling"): _LOW,
     ("D", "other walls"): _LOW,
 }
@@ -101,6 +116,13 @@ def inside_rows() -> list[Row]:
                 row(4, "numerical experiment", name, by.EXPERIMENT, case.name, "seen",
                     f"share, {wall}", theirs, shares[wall], band=SHARE, scale=1.0,
                     why=_why(case.name, wall))
+            )  # fmt: skip
+        faces = heat_by_face(answer)
+        for side, (theirs, pct) in _SIDES.get(case.name, {}).items():
+            found = faces[f"board board, {side}"]
+            rows.append(
+                row(4, "numerical experiment", name, by.EXPERIMENT, case.name, "seen",
+                    f"{side} of the board, W", theirs, found, pct=pct, why=_why(case.name, side))
             )  # fmt: skip
         if case.profile_k is None:
             continue

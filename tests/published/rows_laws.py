@@ -24,7 +24,7 @@ def _rayleigh(film_k: float, rise: float, length: float, nu: float, alpha: float
 
 
 def plate_rows() -> list[Row]:
-    """Upright and level plates, C2 and C4."""
+    """Upright and level plates."""
     rows = []
     for case, source, place, law, film, rise, height, nu, alpha, k, area, nusselt, watts in (
         ("plate 0.71 m, 232/23 C", by.INCROPERA, "example 9.2", plates.churchill_chu,
@@ -70,7 +70,7 @@ def _seen(text: str) -> Seen:
 
 
 def cylinder_rows() -> list[Row]:
-    """Horizontal cylinders, C6."""
+    """Horizontal cylinders."""
     rows = []
     for case, source, place, seen, theirs, ours in (
         ("cylinder, Ra 1.867e6", by.CENGEL, "example 9-1", "memory", 17.4,
@@ -110,7 +110,7 @@ _ELSHERBINY = (
 
 
 def cavity_rows() -> list[Row]:
-    """Closed gaps, C8: laws recalled, their numbers worked apart from the program."""
+    """Closed gaps: laws recalled, their numbers worked apart from the program."""
     rows = []
     for ra, numbers in _HOLLANDS:
         for tilt, theirs in zip((0, 30, 60), numbers, strict=True):
@@ -148,7 +148,7 @@ def channel_nusselt(elenbaas: float) -> float:
 
 
 def channel_rows() -> list[Row]:
-    """Parallel upright plates, C9."""
+    """Parallel upright plates."""
     rows = []
     for elenbaas, theirs, measured in (
         (1.0, 0.0416, 0.0417), (10.0, 0.387, 0.407), (54.3, 1.307, 1.295), (100.0, 1.703, 1.669),
@@ -181,7 +181,7 @@ def channel_rows() -> list[Row]:
 
 
 def radiation_rows() -> list[Row]:
-    """Radiation between two surfaces, C13."""
+    """Radiation between two surfaces."""
     hot, cold = 333.15, 303.15
     return [
         row(1, "worked example", case, by.RADIATION, "formula", "computed", quantity, theirs, got,
@@ -258,7 +258,7 @@ _COPPER_PCT = 10.0
 
 
 def board_rows() -> list[Row]:
-    """Conductivity of boards in their plane, P1."""
+    """Conductivity of boards in their plane."""
     rows = []
     for name, copper_um, coverage, sums, fit in _BOARDS:
         copper = np.array(copper_um) * 1e-6

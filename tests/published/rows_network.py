@@ -6,7 +6,12 @@ from published.evidence_row import SAME_LAW_PCT, Row, Source, row
 from support.networks import LABEL, finished, started
 from support.plates import Plates, at_edge, flat, on_edges
 
-from enclosure_check.physics.conduction import contact, slab
+from enclosure_check.physics.conduction import (
+    contact,
+    disc_source_on_infinite_plate,
+    plate_source_rise,
+    slab,
+)
 from enclosure_check.solve.steady import solve_steady
 
 ZERO = 273.15
@@ -22,7 +27,7 @@ _CENTRAL = (
 
 
 def plate_rows() -> list[Row]:
-    """Plates on cells, P2 to P4; the rise at the centre is cells and sub-cell spreading."""
+    """Plates on cells; the rise at the centre is cells and sub-cell spreading."""
     rows = []
     for words, kt, film, exact in _CENTRAL:
         plates = Plates()
@@ -68,6 +73,23 @@ def plate_rows() -> list[Row]:
     return rows
 
 
+def closed_rows() -> list[Row]:
+    """The closed forms that spreading terms rest on."""
+    case = "plate with an offset source of 2 W, closed form"
+    place = (0.02, 0.01, 0.03, 0.025, 0.1, 0.1, 0.032, 20.0, 2.0)
+    at = plate_source_rise([0.03, 0.1], [0.025, 0.1], *place)
+    rows = [
+        _exact(case, by.SERIES, f"centre of the source, {KELVIN}", 28.900, at[0]),
+        _exact(case, by.SERIES, f"far corner, {KELVIN}", 3.938, at[1]),
+    ]
+    for k, centre, edge in ((20.0, 13.439, 11.003), (40.0, 7.574, 6.345)):
+        found = disc_source_on_infinite_plate(5e-3, k * 1.6e-3, 20.0)
+        case = f"disc source of 5 mm radius, 1 W, k {k:g}, 1.6 mm, h 20, closed form"
+        rows.append(_exact(case, by.DISC, f"centre, {KELVIN}", centre, found[0]))
+        rows.append(_exact(case, by.DISC, f"edge, {KELVIN}", edge, found[1]))
+    return rows
+
+
 def _exact(case: str, source: Source, quantity: str, theirs: float, ours: float) -> Row:
     return row(3, "worked example", case, source, "formula", "computed", quantity, theirs, ours,
                pct=SAME_LAW_PCT)  # fmt: skip
@@ -93,7 +115,7 @@ def _rise(builder) -> np.ndarray:
 
 
 def joint_rows() -> list[Row]:
-    """Joints, and resistances in a row, C11."""
+    """Joints, and resistances in a row."""
     area = 0.01
     plate = (1 / (42000 * 8e-4), 0.01 / (386 * area), 1 / (25 * area))
     transistor, drops = chain(plate, 50.0)
@@ -146,7 +168,7 @@ def joint_rows() -> list[Row]:
 
 
 def sun_rows() -> list[Row]:
-    """Surfaces in the sun, C12."""
+    """Surfaces in the sun."""
     rows = []
     for paint, absorbed, emissivity, theirs in (
         ("white paint", 0.12, 0.90, 14.5), ("flat black lacquer", 0.96, 0.95, 79.8),
@@ -173,4 +195,4 @@ def sun_rows() -> list[Row]:
 
 def network_rows() -> list[Row]:
     """All rows of this file."""
-    return [*plate_rows(), *joint_rows(), *sun_rows()]
+    return [*plate_rows(), *closed_rows(), *joint_rows(), *sun_rows()]

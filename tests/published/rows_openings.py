@@ -25,7 +25,7 @@ _IDELCHIK_4_19 = (
 
 
 def loss_rows() -> list[Row]:
-    """Plates, holes and meshes, V4."""
+    """Plates, holes and meshes."""
     pct, rows = accuracy("perforated_plate"), []
     for free, theirs in _IDELCHIK_8_1.items():
         ours = plate_loss(free) / free**2
@@ -64,7 +64,7 @@ def loss_rows() -> list[Row]:
 
 
 def stack_rows() -> list[Row]:
-    """Flow of a warm column, V3."""
+    """Flow of a warm column."""
     one = stack_flow(0.010, 0.65, 0.40, 20.0, 318.15)
     equal = stack_flow(area_in_series(0.010, 0.010), 0.61, 0.40, 20.0, 308.15)
     larger = stack_flow(area_in_series(0.010, 0.020), 0.61, 0.40, 20.0, 308.15)

@@ -48,7 +48,7 @@ def root(too_little: Callable[[float], bool], low: float, high: float) -> float:
 
 
 def upright_rows() -> list[Row]:
-    """Upright plates, C2 and C3."""
+    """Upright plates."""
     both = [(vertical(110.0, 348.15, height) + 8.5) * area * 110.0
             for height, area in ((0.15, 0.03), (4.5, 0.9))]  # fmt: skip
     film = [watts - 8.5 * area * 110.0 for watts, area in zip(both, (0.03, 0.9), strict=True)]
@@ -89,7 +89,7 @@ def upright_rows() -> list[Row]:
 
 
 def level_rows() -> list[Row]:
-    """Level plates, C4."""
+    """Level plates."""
     properties = air(400.15, PRESSURE)
     ra = rayleigh_number(200.0, 0.25, properties)
     per_nu = properties.conductivity / 0.25 * 200.0
@@ -155,7 +155,7 @@ def board_rows() -> list[Row]:
 
 
 def tilted_rows() -> list[Row]:
-    """A roof at 45 degrees, C5."""
+    """A roof at 45 degrees."""
     rows = []
     for length, theirs in ((0.02, 9.32), (0.04, 7.52), (0.1, 6.39), (1.0, 4.99), (5.0, 4.66)):
         film = inclined_plate(45.0, 315.65, PRESSURE, length, length / 4, np.sqrt(0.5)).coefficient
@@ -170,7 +170,7 @@ def tilted_rows() -> list[Row]:
 
 
 def cylinder_rows() -> list[Row]:
-    """Horizontal cylinders, C6, and one in a slow stream, C10."""
+    """Horizontal cylinders, and one in a slow stream."""
     rows = []
     for case, source, place, seen, d, length, hot, cold, eps, theirs in (
         ("pipe 0.1 m, 165/23 C, with radiation", by.INCROPERA, "example 9.4", "seen",
@@ -211,7 +211,7 @@ def _across(width: float, height: float, hot: float, cold: float, area: float, b
 
 
 def gap_rows() -> list[Row]:
-    """Closed gaps in our own air, C8."""
+    """Closed gaps in our own air."""
     window = _across(0.02, 0.8, 12.0, 2.0, 1.6, 0.0)
     tall = _across(0.015, 0.5, 100.0, 40.0, 0.25, 0.0)
     flat = _across(0.01, 0.2, 100.0, 40.0, 0.04, 1.0)
@@ -235,7 +235,7 @@ def gap_rows() -> list[Row]:
 
 
 def cube_rows() -> list[Row]:
-    """A cube by another law for whole bodies, C7 and W9."""
+    """A cube by another law for whole bodies."""
     nu, k, pr, beta, rise, area = 17.47e-6, 0.02685, 0.70, 3.25e-3, 50.0, 0.24
     ra = 9.81 * beta * rise * area**1.5 / nu**2 * pr
     ours = cuboid_nusselt(ra, pr, cuboid_gravity_function(1.0, 1.0, 1.0)) * k * area**0.5 * rise
@@ -247,7 +247,7 @@ def cube_rows() -> list[Row]:
 
 
 def oven_rows() -> list[Row]:
-    """Faces of an oven, each alone, W10."""
+    """Faces of an oven, each alone."""
     rise, edge, mean = 40 / 1.8, 0.6096, 299.82
     side, top = inclined_plate(rise, mean, PRESSURE, edge, edge / 4, [0.0, 1.0]).coefficient
     heat = edge**2 * rise
@@ -273,7 +273,7 @@ _SIMPLIFIED = (
 
 
 def simplified_rows() -> list[Row]:
-    """Simplified relations, C1; their length 4 A/P is the edge of a square."""
+    """Simplified relations; their length 4 A/P is the edge of a square."""
     rows = []
     for name, constant, up, pct, why in _SIMPLIFIED:
         ours = inclined_plate(30.0, 313.15, PRESSURE, 0.15, 0.15 / 4, up).coefficient

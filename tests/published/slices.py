@@ -9,6 +9,7 @@ model's gaps are. Plumes over a board's upper edge are not counted.
 
 import numpy as np
 
+from enclosure_check.findings.solved import Solved
 from enclosure_check.network.inside_air import InsideAir
 from enclosure_check.network.network import Network
 from enclosure_check.physics.air import air
@@ -90,3 +91,31 @@ def slice_mean(
     beyond = board["along"] * gap
     total = beside * between + beyond * (one + other) + sides
     return total / (beside + 2 * beyond)
+
+
+def slice_of_vented(
+    solved: Solved, inside: tuple[float, float, float], board: dict[str, float], height: float
+) -> float:
+    """Mean rise of the air in a slice of a box whose walls let no heat through [K].
+
+    Such walls are as warm as their air at every height and hold no film. The board, parallel to
+    left and right, has its own temperature at every height.
+
+    Parameters
+    ----------
+    solved
+        The box with one board named ``board``.
+    inside, board, height
+        As `slice_mean`, the board ``along`` the depth.
+    """
+    slices = Slices(solved.network, solved.solution)
+    width, depth, tall = inside
+    core, at = slices.core(height), height * tall
+    if not board["low"] <= at <= board["high"]:
+        return core
+    rows = solved.solution.rise[solved.network.places.boards["board"].cells, 0].mean(axis=0)
+    steps = (np.arange(rows.size) + 0.5) / rows.size
+    face = np.interp((at - board["low"]) / (board["high"] - board["low"]), steps, rows)
+    thickness = sum(slices.thickness[f"board board, {side} side"] for side in ("left", "right"))
+    area = width * depth - board["along"] * board["thickness"]
+    return float(core + board["along"] * thickness * (face - core) / area)

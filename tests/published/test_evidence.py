@@ -7,7 +7,11 @@ import sys
 from pathlib import Path
 
 import pytest
+from published.command import solved as vented
 from published.evidence_row import Source, count, row
+from published.experiments_inside import CASES, solved
+from published.faces import heat_by_face
+from published.slices import Slices, slice_of_vented
 
 ROOT = Path(__file__).parents[2]
 PAGE = ROOT / "docs" / "evidence.md"
@@ -74,7 +78,16 @@ def test_textbook_numbers_are_close_or_say_which_law_differs(rows):
 def test_all_experiments_and_boxes_are_there(rows):
     cases = " ".join(each["case"] for each in rows)
     named = ("X1", "X2", "X3", "X5", "X6", "G,", "B:", "B20:", "B10:", "C:", "D:", "F:")
-    named += ("W6:", "W7:", "W8:", "W9:", "W10:", "W11:", "W12:", "V1:", "V3:", "S10:")
+    named += (
+        "1.2 x 2.0 x 0.6 m",
+        "panel 4 x 8 x 2 ft",
+        "duct",
+        "cube",
+        "oven",
+        "600 W",
+        "anodised",
+    )
+    named += ("vents", "cards", "still-air", "cabinet 0.3", "board 15 x 20 cm", "disc", "fin ")
     assert [each for each in named if each not in cases] == []
 
 
@@ -139,3 +152,21 @@ def test_counts():
     assert found.rms_pct == pytest.approx(((100 + 1600) / 2) ** 0.5)
     assert found.worst is not None
     assert found.worst.ours == 6.0
+
+
+def test_heat_of_faces_adds_up():
+    """What the sides and the rim of a board give off is its power, and all walls take it."""
+    case = next(each for each in CASES if each.name == "C")
+    faces = heat_by_face(solved(case, 2.5))
+    board = sum(heat for face, heat in faces.items() if face.startswith("board"))
+    assert board == pytest.approx(2.5, rel=1e-6)
+    assert sum(faces.values()) == pytest.approx(0.0, abs=1e-6)
+
+
+def test_a_slice_of_the_vented_box_holds_the_films_of_its_board():
+    inside = (0.100, 0.152, 0.254)
+    board = {"along": 0.140, "thickness": 0.002, "low": 0.027, "high": 0.227}
+    found = vented("vented_board")
+    air = Slices(found.network, found.solution)
+    assert slice_of_vented(found, inside, board, 0.05) == air.core(0.05)
+    assert 0.5 < slice_of_vented(found, inside, board, 0.5) - air.core(0.5) < 5.0
