@@ -6,12 +6,17 @@ import numpy as np
 
 from enclosure_check.description.frames import Vector
 from enclosure_check.network.builder import PlaneFace
+from enclosure_check.network.links import FloatArray
 from enclosure_check.physics.bodies import cuboid_film
-from enclosure_check.physics.box import box_film, box_geometry
+from enclosure_check.physics.box import BoxGeometry, box_film, box_geometry
 from enclosure_check.physics.plates import inclined_plate
 
 # Rise at which the shelter of a board by its own sides is taken. [K]
 SHELTER_RISE_K = 10.0
+# Of the air there. [K]
+AIR_K = 305.0
+# Warm and cold.
+_SIGNS = (1.0, -1.0)
 
 
 @lru_cache(maxsize=256)
@@ -24,22 +29,18 @@ def board_shelter(
     outside (see `physics.box`), taken isothermal at a nominal rise. Kept, as the same come again
     under every condition.
     """
-    geometry = box_geometry(size, up, np.ones(6, dtype=bool))
     index = 2 * axis + (1 if sign > 0 else 0)
     kept = []
-    for warm in (1.0, -1.0):
-        air_k = 305.0
-        faces = np.full(6, air_k + warm * SHELTER_RISE_K)
-        whole = box_film(faces, air_k, 101325.0, geometry).coefficient[index]
+    for warm, film in zip(_SIGNS, _free_films(size, up)[1], strict=True):
         alone = inclined_plate(
             warm * SHELTER_RISE_K,
-            air_k + 0.5 * warm * SHELTER_RISE_K,
+            AIR_K + 0.5 * warm * SHELTER_RISE_K,
             101325.0,
             face.fall_length,
             face.area_perimeter_length,
             face.up_cosine,
         ).coefficient
-        kept.append(float(whole / alone))
+        kept.append(float(film[index] / alone))
     return kept[0], kept[1]
 
 
@@ -51,16 +52,24 @@ def rim_film(size: Vector, up: Vector, axis: int) -> tuple[float, float, float, 
     round (see `physics.box`), taken isothermal at a nominal rise. Kept as those of
     `board_shelter`.
     """
-    geometry = box_geometry(size, up, np.ones(6, dtype=bool))
+    geometry, films = _free_films(size, up)
     rim = np.array([index // 2 != axis for index in range(6)])
     shares = []
-    for warm in (1.0, -1.0):
-        air_k = 305.0
+    for warm, film in zip(_SIGNS, films, strict=True):
         rise = warm * SHELTER_RISE_K
-        film = box_film(np.full(6, air_k + rise), air_k, 101325.0, geometry).coefficient
         narrow = float(np.sum((film * geometry.area)[rim]) / np.sum(geometry.area[rim]))
         whole = cuboid_film(
-            rise, air_k + 0.5 * rise, 101325.0, geometry.body_area, geometry.gravity_function
+            rise, AIR_K + 0.5 * rise, 101325.0, geometry.body_area, geometry.gravity_function
         )
         shares.append(narrow / float(whole.coefficient))
     return geometry.body_area, geometry.gravity_function, shares[0], shares[1]
+
+
+@lru_cache(maxsize=128)
+def _free_films(size: Vector, up: Vector) -> tuple[BoxGeometry, tuple[FloatArray, ...]]:
+    """Films of a box with air all round [W/(m2 K)], face by face, warm and cold."""
+    geometry = box_geometry(size, up, np.ones(6, dtype=bool))
+    return geometry, tuple(
+        box_film(np.full(6, AIR_K + warm * SHELTER_RISE_K), AIR_K, 101325.0, geometry).coefficient
+        for warm in _SIGNS
+    )

@@ -73,6 +73,16 @@ class PlateGrid:
         first, second = self.steps
         return first * second
 
+    @cached_property
+    def between(self) -> tuple[FloatArray, FloatArray]:
+        """Conductances between neighbouring cells [W/K], (n - 1, m) and, turned, (m - 1, n)."""
+        step_first, step_second = self.steps
+        one, other = self.sheet[0], self.sheet[1].T
+        return (
+            2.0 * one[1:] * one[:-1] / (one[1:] + one[:-1]) * step_second / step_first,
+            2.0 * other[1:] * other[:-1] / (other[1:] + other[:-1]) * step_first / step_second,
+        )
+
     def overlap(self, low: Vector, size: Vector) -> FloatArray:
         """Area of a rectangle that lies on each cell [m2], shape ``counts``, not to be written."""
         return _overlap(self, low, size)

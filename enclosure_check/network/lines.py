@@ -2,6 +2,7 @@
 
 import math
 from collections.abc import Iterator, Sequence
+from functools import lru_cache
 from typing import NamedTuple
 
 import numpy as np
@@ -31,6 +32,7 @@ class Segment(NamedTuple):
     """A strip as narrow as lines are, by the plate's axes from its corner [m]."""
 
 
+@lru_cache(maxsize=4096)
 def line_segments(
     grid: PlateGrid,
     across: int,
@@ -38,12 +40,12 @@ def line_segments(
     start: float,
     end: float,
     film: float = SPREADING_FILM_W_PER_M2K,
-) -> Iterator[Segment]:
+) -> tuple[Segment, ...]:
     """Cut a line along a plate into pieces, one per cell that it runs along.
 
     Its heat is shared out by the distances to the rows of cells on both sides, so that it is met
     where it lies; beyond the last row that row takes it all. What they do not resolve is
-    `line_held`.
+    `line_held`. Kept, as the same lines come again under every condition.
 
     Parameters
     ----------
@@ -68,6 +70,7 @@ def line_segments(
     corner = [grid.low[grid.axes[index]] for index in (across, 1 - across)]
     middle = min(max(at - corner[0], LINE_WIDTH / 2), grid.size[grid.axes[across]] - LINE_WIDTH / 2)
     strip = middle - LINE_WIDTH / 2, middle + LINE_WIDTH / 2
+    pieces = []
     for cell in np.flatnonzero(lengths > 0).tolist():
         kt = float((1.0 - share) * sheet[first, cell] + share * sheet[first + 1, cell])
         one, other = (first, cell), (first + 1, cell)
@@ -76,7 +79,7 @@ def line_segments(
             strip,
             (max(float(edges[0]), start) - corner[1], min(float(edges[1]), end) - corner[1]),
         )
-        yield Segment(
+        piece = Segment(
             (one, other) if across == 0 else (one[::-1], other[::-1]),
             (1.0 - share, share),
             float(lengths[cell]),
@@ -84,6 +87,8 @@ def line_segments(
             kt / step * float(lengths[cell]),
             ends if across == 0 else ends[::-1],
         )
+        pieces.append(piece)
+    return tuple(pieces)
 
 
 def line_held(kt: float, step: float, share: float, film: float, beyond: float = 0.0) -> float:

@@ -1,5 +1,7 @@
 """What the builders share while a network is being made: the surroundings, air and surfaces."""
 
+from functools import lru_cache
+
 import numpy as np
 
 from enclosure_check.description.case import Case, PartCase
@@ -86,13 +88,7 @@ class Site:
 
     def plane_face(self, size: Vector, axis: int, sign: int) -> PlaneFace:
         """Give the shape and attitude of a face of the box frame, its normal into the air."""
-        first, second = (other for other in range(3) if other != axis)
-        a, b = size[first], size[second]
-        return PlaneFace(
-            fall_length=float(fall_length(a, b, self.up[first], self.up[second])),
-            area_perimeter_length=a * b / (2 * (a + b)),
-            up_cosine=sign * self.up[axis],
-        )
+        return _plane_face(size, self.up, axis, sign)
 
     def plate(self, label: str, grid: PlateGrid) -> PlateNodes:
         """Add the cells of a plate's face and their mean, and join the cells along it."""
@@ -177,12 +173,8 @@ class Site:
         self, cells: IntArray, grid: PlateGrid, share: float, label: LinkLabel
     ) -> None:
         """Join neighbouring cells by the share of the plate's sheet conductance they have."""
-        step_first, step_second = grid.steps
-        for axis, across, along in ((0, step_second, step_first), (1, step_first, step_second)):
-            sheet = np.moveaxis(grid.sheet[axis], axis, 0)
-            nodes = np.moveaxis(cells, axis, 0)
-            between = 2.0 * sheet[1:] * sheet[:-1] / (sheet[1:] + sheet[:-1])
-            self.builder.conduct(nodes[:-1], nodes[1:], share * between * across / along, label)
+        for between, nodes in zip(grid.between, (cells, cells.T), strict=True):
+            self.builder.conduct(nodes[:-1], nodes[1:], share * between, label)
 
     def join(
         self,
@@ -202,6 +194,18 @@ class Site:
 # Shares of the air nodes in the mean of a profile that is linear between them. [-]
 AIR_SHARES = np.full(AIR_NODES, 1.0 / (AIR_NODES - 1))
 AIR_SHARES[[0, -1]] *= 0.5
+
+
+@lru_cache(maxsize=512)
+def _plane_face(size: Vector, up: Vector, axis: int, sign: int) -> PlaneFace:
+    """See `Site.plane_face`; kept, as the same come again under every condition."""
+    first, second = (other for other in range(3) if other != axis)
+    a, b = size[first], size[second]
+    return PlaneFace(
+        fall_length=float(fall_length(a, b, up[first], up[second])),
+        area_perimeter_length=a * b / (2 * (a + b)),
+        up_cosine=sign * up[axis],
+    )
 
 
 def footprint(part: PartCase) -> float:
