@@ -97,7 +97,7 @@ class Readings:
     node: IntArray
     of: IntArray
     weight: FloatArray
-    """Shape (r, 1)."""
+    """Shape (r, 1) or (r, v)."""
 
     @cached_property
     def nodes(self) -> IntArray:

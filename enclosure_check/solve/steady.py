@@ -169,6 +169,13 @@ def _reach(network: Network, start: FloatArray, options: SolveOptions) -> Soluti
     solution = _newton(network, start, options)
     if solution.converged or not options.by_stirring:
         return solution
+    # What has circled far beyond any sense for as long as it may will do so stirred as well.
+    outcomes = zip(solution.outcome, solution.steps >= options.max_steps, strict=True)
+    if all(
+        outcome is Outcome.CONVERGED or (outcome is Outcome.TOO_HOT and spent)
+        for outcome, spent in outcomes
+    ):
+        return solution
     return solution.improved(_stirred(network, options))
 
 
@@ -279,7 +286,7 @@ def _newton(network: Network, start: FloatArray, options: SolveOptions) -> Solut
         stalled |= active & (mu > _LARGEST_MU)
         too_hot |= active & (np.max(np.abs(x), axis=0) > options.hottest_rise_k)
     # Stuck far beyond any sense is too hot as well: laws there change their minds at every step.
-    too_hot |= stalled & (np.max(np.abs(x), axis=0) > _FARTHEST_GUESS_K)
+    too_hot |= ~ended & (np.max(np.abs(x), axis=0) > _FARTHEST_GUESS_K)
     rise = network.full_rise(x)
     residual = np.abs(state.residual)
     # Where a temperature is past all bounds, it names the culprit better than the imbalance does.

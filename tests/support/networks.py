@@ -76,4 +76,7 @@ def together(networks: list[Network]) -> Network:
         fixed_rise=joined([network.fixed_rise for network in networks]),
         kinds=tuple(kinds),
         sources=sources,
+        readings=replace(
+            first.readings, weight=joined([network.readings.weight for network in networks])
+        ),
     )
