@@ -82,14 +82,25 @@ class Bands:
     def _places(self) -> dict[int, int]:
         return {int(node): place for place, node in enumerate(self.adjoint.nodes)}
 
+    @cached_property
+    def _bands_k(self) -> list[float]:
+        bands: list[float] = np.sqrt(np.sum(self.effects**2, axis=0)).tolist()
+        return bands
+
+    @cached_property
+    def _order(self) -> IntArray:
+        """The causes that move each temperature most, the largest first, shape (most, t)."""
+        order = np.argsort(-np.abs(self.effects), axis=0, kind="stable")
+        return np.asarray(order[:MOST_CONTRIBUTIONS])
+
     def band_k(self, node: int) -> float:
         """Half-width at about 95 % of a node's temperature [K]."""
-        return float(np.sqrt(np.sum(self.effects[:, self._places[node]] ** 2)))
+        return self._bands_k[self._places[node]]
 
     def contributions(self, node: int) -> tuple[Contribution, ...]:
         """Give the causes that move a node's temperature most, the largest first."""
         effect = self.effects[:, self._places[node]]
-        largest = np.argsort(-np.abs(effect), kind="stable")[:MOST_CONTRIBUTIONS]
+        largest = self._order[:, self._places[node]]
         every = (*self.causes, *(cause for cause, _ in self.others))
         return tuple(
             Contribution(every[index].words, every[index].half_width, float(effect[index]))

@@ -131,6 +131,8 @@ class _Search:
         # The last two states of either search, from which the next is foreseen.
         self.states = [[(0.0, start[:, 0])], [(1.0, start[:, 0])]]
         self.inverse = inverse
+        roles = np.array([label.role == "power" for label in network.labels], dtype=bool)
+        self.is_power = roles[network.sources.label]
         base = limits.margins(network.full_rise(start), network.reference_k)[:, 0] - wanted
         self.base = float(base.min())
         self.base_name = limits.names[int(base.argmin())]
@@ -157,10 +159,7 @@ class _Search:
     def _margins(self, shift: float, factor: float) -> tuple[FloatArray, BoolArray]:
         """Margins over the wanted ones by limit and variant, and which variants have any."""
         network = self.network
-        is_power = np.array(
-            [network.labels[label].role == "power" for label in network.sources.label], dtype=bool
-        )
-        scaled = np.where(is_power[:, None], [1.0, factor], 1.0)
+        scaled = np.where(self.is_power[:, None], [1.0, factor], 1.0)
         pair = replace(
             network,
             reference_k=network.reference_k + np.array([shift, 0.0]),

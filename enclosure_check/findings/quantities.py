@@ -171,7 +171,7 @@ class _Collector(Turns):
         else:
             return
         number = self.finishes.setdefault(finish.name, len(self.finishes))
-        self.finish_of_label[self.network.labels.index(label)] = number
+        self.finish_of_label[self.place[label]] = number
         key = ("finishes", finish.name, "emissivity")
         if key not in self.found:
             value = finish.emissivity

@@ -40,6 +40,7 @@ class Turns:
         self.parameter: list[tuple[int, str]] = []
         self.films: list[FloatArray] = []
         self.finishes: dict[str, int] = {}
+        self.place = {label: index for index, label in enumerate(self.network.labels)}
         self.finish_of_label = np.full(len(self.network.labels), -1, dtype=np.intp)
         self.source: list[int] = []
         self.node: list[int] = []
@@ -85,12 +86,11 @@ class Turns:
             # Without the heat that contacts take from each other, which follows other nodes.
             weights = np.where(links.x == links.a, links.conductance[:, 0], 0.0)
         total = np.bincount(labels, weights, len(self.network.labels)).astype(np.float64)
-        place = {label: index for index, label in enumerate(self.network.labels)}
         for index in present.tolist():
             if knob_of[index] >= 0:
                 owner, role = label = self.network.labels[index]
                 # What is felt of a contact goes with its heat.
-                own = place[LinkLabel(owner, role.removesuffix(FELT))]
+                own = self.place[LinkLabel(owner, role.removesuffix(FELT))]
                 yield label, int(knob_of[index]), float(total[own])
 
     def knobs(self) -> Knobs:

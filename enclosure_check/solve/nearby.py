@@ -84,6 +84,9 @@ def solve_known(network: Network, known: Known | None) -> Known:
         start = known.solution.rise[network.unknown]
         solution = solve_nearby(network, start, known.inverse)
         return Known(network, solution, known.inverse)
+    calm = _without_heat(network)
+    if calm is not None:
+        return Known(network, calm, Inverse(network, calm.rise))
     near = approach(network, _FIRST_STEPS)
     inverse = Inverse(network, near.rise)
     if near.converged:
@@ -92,6 +95,17 @@ def solve_known(network: Network, known: Known | None) -> Known:
     if not np.isfinite(x).all():
         x = np.zeros_like(x)
     return Known(network, solve_nearby(network, x, inverse, taken=int(near.steps[0])), inverse)
+
+
+def _without_heat(network: Network) -> Solution | None:
+    """Give the state of all at the temperature of the air, where nothing heats or cools."""
+    if network.sources.power.any() or network.fixed_rise.any():
+        return None
+    state = State.of(network, np.zeros((len(network.unknown), network.variants)))
+    done = state.balanced(SolveOptions())
+    if not done.all():
+        return None
+    return solution_of(network, state, done, np.zeros(network.variants, dtype=np.intp))
 
 
 def solve_nearby(
