@@ -8,6 +8,7 @@ from enclosure_check.description.names import WALL_NAMES, WallName
 from enclosure_check.findings.solved import Solved
 from enclosure_check.findings.turning import Key, Turns
 from enclosure_check.network.builder import LEAST_RESISTANCE
+from enclosure_check.network.by_sheet import sub_cells_by_sheet
 from enclosure_check.network.covering import shared
 from enclosure_check.network.features import filler_over
 from enclosure_check.network.films import BoxFilm
@@ -20,14 +21,14 @@ from enclosure_check.network.spots import FELT, LEAST_SHARE_LEFT
 from enclosure_check.network.units import metres_3
 from enclosure_check.network.wind import BoxFilmInWind
 from enclosure_check.physics.radiation import sky_temperature_clear
-from enclosure_check.records import dataclass, replace
+from enclosure_check.records import dataclass
 
 # Temperatures this close are one and the same. [K]
 _SAME_K = 1e-9
 # A step for the sky's answer to the air. [K]
 _SKY_STEP_K = 0.01
-# Spreading that is less of a resistance than this follows no plate, and the step of its derivative.
-_LEAST_SPREADING, _SHEET_STEP = 0.02, 1e-3
+# Spreading that is less of a resistance than this follows no plate.
+_LEAST_SPREADING = 0.02
 # Faces of the box that point up by more than this are its top. [-]
 _UP_COSINE = 0.5
 
@@ -76,6 +77,7 @@ class _Collector(Turns):
             elif self.network.labels[kind.label[0]].role == "radiation":
                 every = np.arange(len(kind.a))
                 self.turn(("patches",), "patches", "link", self.knob(number, every))
+        self._sheets()
         self._sources()
         self._given()
 
@@ -293,20 +295,26 @@ class _Collector(Turns):
         total: float,
         host: str,
     ) -> None:
-        """Let the plate turn what cells do not resolve of the spreading in it."""
+        """Let the spreading law turn what cells do not resolve, and note it for the plate."""
         added = (total - sum(series.values())) / total
         if _is_least(series, total):
             return
         self.turn(("spreading",), "spreading", "link", knob, -added)
         if abs(added) < _LEAST_SPREADING:
             return
-        grid = self.network.places.grids[host]
-        more = replace(grid, sheet=grid.sheet * (1.0 + _SHEET_STEP)).sub_cell(*foot)[0]
-        by_sheet = (more / total - added) / _SHEET_STEP
-        if host in self.case.boards:
-            self.turn(("boards", host, "copper"), "copper", "link", knob, -by_sheet, host)
-        else:
-            self._material(self.case.walls[_named(host)], knob, -by_sheet)
+        self.spread.setdefault(host, []).append((foot, knob, total))
+
+    def _sheets(self) -> None:
+        """Let plates turn what cells do not resolve of the spreading in them."""
+        for host, rows in self.spread.items():
+            feet = tuple(row[0] for row in rows)
+            by_sheet = sub_cells_by_sheet(self.network.places.grids[host], feet)
+            for change, (_, knob, total) in zip(by_sheet.tolist(), rows, strict=True):
+                if host in self.case.boards:
+                    key = ("boards", host, "copper")
+                    self.turn(key, "copper", "link", knob, -change / total, host)
+                else:
+                    self._material(self.case.walls[_named(host)], knob, -change / total)
 
     # Sources and given temperatures ------------------------------------------------------
 

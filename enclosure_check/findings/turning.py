@@ -4,6 +4,7 @@ from collections.abc import Iterator
 
 import numpy as np
 
+from enclosure_check.description.frames import Vector
 from enclosure_check.findings.solved import Solved
 from enclosure_check.network.inside_air import InsideAir
 from enclosure_check.network.knobs import Knobs, emitters_of
@@ -44,6 +45,8 @@ class Turns:
         self.finish_of_label = np.full(len(self.network.labels), -1, dtype=np.intp)
         self.source: list[int] = []
         self.node: list[int] = []
+        self.spread: dict[str, list[tuple[tuple[Vector, Vector], int, float]]] = {}
+        """Contacts, by their plate: foot [m], knob and resistance [K/W]."""
         around = self.case.surroundings
         pressure = float(pressure_at_altitude(around.altitude_m))
         self.air_conductivity = float(air(kelvin(around.air_c), pressure).conductivity)

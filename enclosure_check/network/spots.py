@@ -16,7 +16,7 @@ from enclosure_check.network.lines import Segment
 from enclosure_check.network.links import FloatArray, IntArray, LinkLabel
 from enclosure_check.network.network import PlateNodes
 from enclosure_check.physics.mutual import mutual_rise
-from enclosure_check.records import dataclass, field, replace
+from enclosure_check.records import dataclass, field
 
 # What of a resistance is left at the least where a spreading term is taken off it. [-]
 LEAST_SHARE_LEFT = 0.1
@@ -182,8 +182,8 @@ class Spots:
                 shares = np.zeros((len(contacts), *grid.counts))
                 for row, contact in zip(shares, contacts, strict=True):
                     row[contact.places] = contact.shares
-                more = replace(grid, sheet=grid.sheet * (1.0 + _SHEET_STEP))
-                one, other = (_mutual(each, contacts, shares) for each in (grid, more))
+                more = 1.0 + _SHEET_STEP
+                one, other = (_mutual(grid, contacts, shares, times) for times in (1.0, more))
                 whole = np.maximum(np.abs(one).sum(axis=0), 1e-300)
                 change = np.sum(np.sign(one) * (other - one), axis=0) / (_SHEET_STEP * whole)
                 found = {each.label: float(own) for each, own in zip(contacts, change, strict=True)}
@@ -226,16 +226,25 @@ class Spots:
                 builder.read(contact.spot, nodes, weights)
 
 
-def _mutual(grid: PlateGrid, contacts: Sequence[Contact], shares: FloatArray) -> FloatArray:
-    """Rise under one contact per watt into another that the cells do not resolve [K/W], (c, c)."""
+def _mutual(
+    grid: PlateGrid, contacts: Sequence[Contact], shares: FloatArray, times: float = 1.0
+) -> FloatArray:
+    """Rise under one contact per watt into another that the cells do not resolve [K/W], (c, c).
+
+    The plate conducts so many ``times`` what it does.
+    """
     ends = tuple(contact.ends for contact in contacts)
     lines = tuple(contact.line for contact in contacts)
-    return _unresolved(grid, ends, lines, shares.tobytes())
+    return _unresolved(grid, ends, lines, shares.tobytes(), times)
 
 
 @lru_cache(maxsize=64)
 def _unresolved(
-    grid: PlateGrid, all_ends: tuple[_Ends, ...], lines: tuple[str | None, ...], all_shares: bytes
+    grid: PlateGrid,
+    all_ends: tuple[_Ends, ...],
+    lines: tuple[str | None, ...],
+    all_shares: bytes,
+    times: float,
 ) -> FloatArray:
     """See `_mutual`; kept, as the same contacts come again under every condition."""
     count = len(lines)
@@ -255,7 +264,7 @@ def _unresolved(
     first, second = first[near], second[near]
     if not first.size:
         return kept(total)
-    sheet = np.einsum("aij,cij->ca", grid.sheet, shares)
+    sheet = times * np.einsum("aij,cij->ca", grid.sheet, shares)
     # Between two places of unlike copper, the mean of both.
     along = np.sqrt(sheet[first] * sheet[second])
     mean = np.sqrt(along[:, :1] * along[:, 1:])
