@@ -188,7 +188,7 @@ class Conduction(Links):
 
     PARAMETERS: ClassVar[tuple[str, ...]] = ("conductance",)
 
-    @property
+    @cached_property
     def stencil(self) -> IntArray:
         """Nodes each link depends on, shape (2, m)."""
         return np.stack((self.x, self.y))
@@ -233,26 +233,26 @@ class Radiation(Links):
 
     PARAMETERS: ClassVar[tuple[str, ...]] = ("area", "exchange_area", "share", "emissivity")
 
-    @property
+    @cached_property
     def stencil(self) -> IntArray:
         """Nodes each link depends on, shape (2, m)."""
         return np.stack((self.x, self.y))
 
     def heat(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
         """Heat rate from ``a`` to ``b`` [W], shape (m, v)."""
-        heat: FloatArray = self._conductance() * fourth_power_difference(rise, reference_k)
+        heat: FloatArray = self._conductance * fourth_power_difference(rise, reference_k)
         return heat
 
     def heat_by_rise(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
         """Derivative of `heat` by each rise [W/K], shape (2, m, v)."""
         absolute = rise + reference_k
-        slope = 4.0 * self._conductance() * (absolute * absolute * absolute)
+        slope = 4.0 * self._conductance * (absolute * absolute * absolute)
         slope[1] *= -1.0
         return slope
 
     def factors(self, reference_k: FloatArray) -> FloatArray:
         """Factors at a nominal rise [W/K], shape (2, m, 1)."""
-        slope = 4.0 * self._conductance()[:, :1] * (reference_k + NOMINAL_RISE_K) ** 3
+        slope = 4.0 * self._conductance[:, :1] * (reference_k + NOMINAL_RISE_K) ** 3
         return np.stack((slope, -slope))
 
     def heat_by_parameter(self, rise: FloatArray, reference_k: FloatArray, name: str) -> FloatArray:
@@ -264,7 +264,9 @@ class Radiation(Links):
         by_emissivity = by_emissivity * fourth_power_difference(rise, reference_k)
         return by_emissivity
 
+    @cached_property
     def _conductance(self) -> FloatArray:
+        """[W/K4], shape (m, 1) or (m, v)."""
         exchange = grey_exchange(self.area, self.exchange_area, self.emissivity)
         conductance: FloatArray = STEFAN_BOLTZMANN * self.share * exchange
         return conductance
@@ -286,7 +288,7 @@ class PatchExchange(Links):
 
     PARAMETERS: ClassVar[tuple[str, ...]] = ("exchange_area", "emissivity_a", "emissivity_b")
 
-    @property
+    @cached_property
     def stencil(self) -> IntArray:
         """Nodes each link depends on, shape (4, m)."""
         return np.stack((self.a, self.b, self.c, self.d))
