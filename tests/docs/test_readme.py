@@ -17,7 +17,7 @@ VENTED = "sample_boards/door_controller.yaml"
 SETTING_UP = "python3 -m venv .venv && .venv/bin/pip install -q "
 COMMANDS = (
     f"{SETTING_UP}. && .venv/bin/enclosure-check check {SAMPLE}",
-    f'{SETTING_UP}-e ".[test]" && .venv/bin/python -m pytest',
+    f'{SETTING_UP}-e ".[test]" && .venv/bin/python -m pytest -n auto',
 )
 
 
