@@ -12,6 +12,7 @@ from enclosure_check.findings.results import CAUTION, ConditionFinding, PartFind
 from enclosure_check.findings.solved import Solved
 from enclosure_check.findings.stated import PartListFinding
 from enclosure_check.network.build import build_network
+from enclosure_check.physics.view_closure import NotEnclosedError
 from enclosure_check.solve.nearby import Known, solve_known
 from enclosure_check.solve.steady import Outcome
 
@@ -28,6 +29,18 @@ class NotConvergedError(Exception):
         super().__init__(
             f"condition {condition!r}: no converged answer. Worst node: {node} "
             f"({imbalance_w:.3g} W out of balance): {outcome.value}"
+        )
+
+
+class NotEnclosedCaseError(NotConvergedError):
+    """The surfaces inside enclose no space, mostly since bodies reach into each other."""
+
+    def __init__(self, condition: str, reason: str) -> None:
+        self.condition = condition
+        Exception.__init__(
+            self,
+            f"condition {condition!r}: no answer, {reason}. Look for bodies in the air or boards "
+            "that reach into each other",
         )
 
 
@@ -138,7 +151,10 @@ def solve_case(case: Case, known: Known | None = None) -> tuple[Solved, Known]:
     NotConvergedError
         When it has no steady temperatures.
     """
-    network = build_network(case)
+    try:
+        network = build_network(case)
+    except NotEnclosedError as error:
+        raise NotEnclosedCaseError(case.condition, str(error)) from None
     known = solve_known(network, known)
     solution = known.solution
     if not solution.converged:

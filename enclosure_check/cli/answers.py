@@ -8,6 +8,7 @@ from enclosure_check import __version__
 from enclosure_check.check import NotConvergedError, check, check_and_explain
 from enclosure_check.description.load import LoadedDocument, load_document
 from enclosure_check.description.problems import DocumentError, Problem
+from enclosure_check.description.size import refuse_large
 from enclosure_check.description.yaml_nodes import locate
 from enclosure_check.findings.results import Report
 from enclosure_check.findings.run import NoAnswer, ProblemFinding, Reason, Run, run_of
@@ -24,6 +25,8 @@ class Asked(NamedTuple):
     sensitivities: int = 0
     """How many of the smallest margin."""
     allowed_folders: Sequence[str] = ()
+    large: bool = False
+    """Whether documents may be larger than those of a stranger."""
 
 
 def answer_all(
@@ -91,6 +94,8 @@ def _answer(
 
 def _report(document: LoadedDocument, asked: Asked, tell: Callable[[str], None]) -> Report:
     option, conditions = asked.option, asked.conditions
+    if not asked.large:
+        refuse_large(document.file, document.cases(option=option, conditions=conditions))
     if asked.explain is None:
         return check(
             document,

@@ -100,6 +100,11 @@ def add(commands: Any) -> None:
         help="part lists may lie there too, besides the document's own folder; may be repeated",
     )
     check.add_argument(
+        "--large",
+        action="store_true",
+        help="also check documents that take longer than some seconds",
+    )
+    check.add_argument(
         "--output",
         metavar="PATH",
         help="write the report there, at once or not at all (default: standard output)",
@@ -201,6 +206,7 @@ def run(arguments: argparse.Namespace) -> ExitCode:
                 arguments.explain,
                 arguments.sensitivities,
                 arguments.allow_folder,
+                arguments.large,
             ),
             progress.tell,
         )

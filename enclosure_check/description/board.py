@@ -56,6 +56,7 @@ class Zone(Strict):
     width_mm: LengthMm = Field(description="Size upwards, so seen. [mm]")
     copper: dict[Name, CopperLayer] = Field(
         default_factory=dict,
+        max_length=100,
         description="Copper layers of the zone, instead of the board's; none for bare laminate.",
     )
     conductivity_in_plane_w_per_mk: ConductivityWPerMK | None = Field(
@@ -161,27 +162,32 @@ class Board(BoardDefaults):
         "direction with neither wall named the board stands in the middle. [mm]",
     )
     copper: dict[Name, CopperLayer] = Field(
-        default_factory=dict, description="Copper layers by name, in order from the first side."
+        default_factory=dict,
+        max_length=100,
+        description="Copper layers by name, in order from the first side.",
     )
     conductivity_in_plane_w_per_mk: ConductivityWPerMK | None = Field(
         None, description="In-plane conductivity, instead of the copper layers. [W/mK]"
     )
     zones: dict[Name, Zone] = Field(
         default_factory=dict,
+        max_length=200,
         description="Rectangles with other copper; a later one covers an earlier one.",
     )
     stand_offs: dict[Name, StandOff] = Field(
-        default_factory=dict, description="Columns to a wall, by name."
+        default_factory=dict, max_length=200, description="Columns to a wall, by name."
     )
     edge_clamps: dict[WallName, EdgeClamp] = Field(
         default_factory=dict,
         description="Clamped edges, each named after the wall the edge faces and is clamped to.",
     )
     fillers: dict[Name, Filler] = Field(
-        default_factory=dict, description="Potting and gap fillers to a wall, by name."
+        default_factory=dict,
+        max_length=100,
+        description="Potting and gap fillers to a wall, by name.",
     )
     shield_cans: dict[Name, ShieldCan] = Field(
-        default_factory=dict, description="Metal cans over parts, by name."
+        default_factory=dict, max_length=100, description="Metal cans over parts, by name."
     )
     other_power_w: PowerW = Field(
         0.0, description="Power of everything on this board that is not listed, spread evenly. [W]"

@@ -108,10 +108,10 @@ class Wall(WallDefaults):
         default_factory=Mounting, description="What the outside of this wall faces."
     )
     cables: dict[Name, Cable] = Field(
-        default_factory=dict, description="Conductors through this wall, by name."
+        default_factory=dict, max_length=100, description="Conductors through this wall, by name."
     )
     openings: dict[Name, Opening] = Field(
-        default_factory=dict, description="Openings in this wall, by name."
+        default_factory=dict, max_length=100, description="Openings in this wall, by name."
     )
     touch_max_c: TemperatureC | None = Field(
         None,

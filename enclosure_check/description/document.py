@@ -117,18 +117,20 @@ class Document(Strict):
         default_factory=Defaults, description="What is so unless said otherwise."
     )
     materials: dict[Name, MaterialRow] = Field(
-        default_factory=dict, description="Materials of your own, by name."
+        default_factory=dict, max_length=500, description="Materials of your own, by name."
     )
     finishes: dict[Name, FinishRow] = Field(
-        default_factory=dict, description="Finishes of your own, by name."
+        default_factory=dict, max_length=500, description="Finishes of your own, by name."
     )
     box: Box = Field(description="Size and attitude of the box.")
     walls: dict[WallName, Wall] = Field(
         default_factory=dict, description="What differs from `defaults.wall`, by wall."
     )
-    boards: dict[Name, Board] = Field(default_factory=dict, description="Boards by name.")
+    boards: dict[Name, Board] = Field(
+        default_factory=dict, max_length=50, description="Boards by name."
+    )
     part_types: dict[Name, PartType] = Field(
-        default_factory=dict, description="What parts of one kind share, by name."
+        default_factory=dict, max_length=1000, description="What parts of one kind share, by name."
     )
     part_lists: dict[Name, PartList] = Field(
         default_factory=dict,
@@ -137,10 +139,13 @@ class Document(Strict):
     )
     parts: dict[Name, Part] = Field(
         default_factory=dict,
+        max_length=5000,
         description="Parts by reference. What stands here is merged into parts of the same "
         "reference from `part_lists`; null leaves one out.",
     )
-    modes: dict[Name, Mode] = Field(default_factory=dict, description="Operating modes by name.")
+    modes: dict[Name, Mode] = Field(
+        default_factory=dict, max_length=100, description="Operating modes by name."
+    )
     mode: Name | None = Field(
         None, description="The operating mode that applies; full power when left out."
     )
@@ -158,10 +163,11 @@ class Document(Strict):
     )
     tolerances: dict[Name, Tolerance] = Field(
         default_factory=dict,
+        max_length=50,
         description="Tolerances by dotted path of a number, `*` standing for any one name.",
     )
     measured: dict[Name, Measured] = Field(
-        default_factory=dict, description="Readings from the bench by name."
+        default_factory=dict, max_length=100, description="Readings from the bench by name."
     )
     options: dict[Name, dict[Name, Any]] = Field(
         default_factory=dict,

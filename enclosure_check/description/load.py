@@ -21,6 +21,7 @@ from enclosure_check.description.problems import (
     quoted,
 )
 from enclosure_check.description.quick import is_mapping_by_name
+from enclosure_check.description.remarks import MOST_SPELLINGS
 from enclosure_check.description.yaml_nodes import (
     MAX_BYTES,
     MappingNode,
@@ -37,6 +38,7 @@ if TYPE_CHECKING:
     from enclosure_check.description.variation import Variation
 
 MAX_COMBINATIONS = 200
+MAX_PARTS_IN_COMBINATIONS = 10_000
 _LONGEST_NAME = 80
 
 
@@ -171,6 +173,14 @@ def load_document(path: str, *, allowed_folders: Sequence[str] = ()) -> LoadedDo
         raise DocumentError([*problems, Problem(path, *at, "options", message)])
     all_refused = not conditions and any(_named(node, "conditions"))
     checked = Checked(path, node, options, conditions, _named(node, "conditions"), lists)
+    most = max((len(_keys(each.entries.get("parts"))) for each in bases), default=0)
+    if most * len(combinations) > MAX_PARTS_IN_COMBINATIONS:
+        message = (
+            f"{most} parts in {len(combinations)} combinations of options and conditions are more "
+            f"than {MAX_PARTS_IN_COMBINATIONS}"
+        )
+        problems.append(Problem(path, *locate(node, ("parts",), at_key=True), "parts", message))
+        all_refused = True
     if not all_refused:
         checked.check(combinations)
         problems += checked.problems(combinations)
@@ -288,6 +298,7 @@ def _idle_removals(
     file: str,
 ) -> Iterator[Problem]:
     """Refuse a null in a patch that removes a named thing which is nowhere: it is misspelt."""
+    told = 0
     for key, patches, patched in (
         ("options", options, bases),
         ("conditions", conditions, [*bases, *options.values()]),
@@ -299,7 +310,9 @@ def _idle_removals(
                 gone = str(path[-1])
                 owners = [_keys(_at(each, path[:-1])) for each in patched]
                 if not any(gone in owner for owner in owners):
-                    near = nearest(gone, chain.from_iterable(owners))
+                    spell = told < MOST_SPELLINGS
+                    near = nearest(gone, chain.from_iterable(owners)) if spell else ""
+                    told += 1
                     message = f"removes nothing, there is no {quoted(gone)}{near}"
                     at = locate(patch, path, at_key=True)
                     yield Problem(file, *at, dotted((key, name, *path)), message)

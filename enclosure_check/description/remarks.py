@@ -8,6 +8,10 @@ Path = tuple[str | int, ...]
 
 # What "close to" means when lengths from a drawing are compared. [mm]
 ROUNDING_MM = 1e-6
+# Errors told before unknown names are no longer compared with known ones.
+MOST_SPELLINGS = 100
+# Errors after which a document is given up.
+MOST_ERRORS = 500
 
 
 @dataclass
@@ -21,6 +25,9 @@ class Remarks:
     def error(self, path: Path, message: str) -> None:
         """Record an error at a field."""
         self.errors.append(FieldProblem(path, message))
+        if len(self.errors) == MOST_ERRORS:
+            self.errors.append(FieldProblem((), "too many problems; stopped here"))
+            self.finish()
 
     def warn(self, path: Path, message: str) -> None:
         """Record a warning at a field."""
@@ -34,7 +41,9 @@ class Remarks:
 
     def unknown(self, path: Path, what: str, given: str, known: list[str]) -> None:
         """Record a name that stands for nothing, with the nearest that does."""
-        self.error(path, f"given {given!r}, which is no {what}{nearest(given, known)}")
+        # To look for the nearest spelling takes milliseconds; nobody reads a hundred of them.
+        near = nearest(given, known) if len(self.errors) < MOST_SPELLINGS else ""
+        self.error(path, f"given {given!r}, which is no {what}{near}")
 
     def assumptions(self) -> tuple[str, ...]:
         """Give one line per assumption, naming what it was made of."""

@@ -19,6 +19,10 @@ _LEAST_FACTOR = 0.2
 _RIDGE = 1e-10
 
 
+class NotEnclosedError(ValueError):
+    """Patches that enclose no space: what one sees is not all seen by the others."""
+
+
 def consistent_exchange_areas(exchange: ArrayLike, area: ArrayLike) -> FloatArray:
     """Exchange areas with exact closure and reciprocity, from inexact ones.
 
@@ -74,7 +78,7 @@ def consistent_exchange_areas(exchange: ArrayLike, area: ArrayLike) -> FloatArra
         x = x * (1.0 + change * min(1.0, (_LEAST_FACTOR - 1.0) / min(least, -1e-9)))
     else:
         worst = float(np.max(np.abs(target - x.sum(axis=1)) / target))
-        raise ValueError(
+        raise NotEnclosedError(
             f"exchange areas do not close: a row misses {worst:.1%} of its area; "
             "the patches do not enclose a space"
         )

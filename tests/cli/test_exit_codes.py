@@ -9,6 +9,7 @@ from enclosure_check import __version__
 from enclosure_check.cli import main
 from enclosure_check.cli.check_command import FORMATS
 from enclosure_check.cli.codes import ExitCode, exit_code
+from enclosure_check.physics.view_closure import NotEnclosedError
 
 RUNAWAY = {**SMALL, "parts": {"X1": {**SMALL["parts"]["X1"], "power_doubling_k": 2}}}
 
@@ -169,3 +170,12 @@ def test_formats_are_those_of_the_writers():
     from enclosure_check.report.writers import WRITERS
 
     assert tuple(WRITERS) == FORMATS
+
+
+def test_surfaces_that_enclose_no_space_are_no_answer(tmp_path, monkeypatch, capsys):
+    def refuse(case):
+        raise NotEnclosedError("exchange areas do not close")
+
+    monkeypatch.setattr("enclosure_check.check.build_network", refuse)
+    assert main(["check", str(write_document(tmp_path))]) == 3
+    assert "bodies in the air or boards that reach into each other" in capsys.readouterr().err

@@ -109,7 +109,7 @@ def test_the_whole_line():
             "given a list of 1, allowed: a mapping with keys out of left, right, "
             "front, back, bottom or top",
         ),
-        ("parts: 5\n", "given 5 (a number), allowed: a mapping by name"),
+        ("parts: 5\n", "given 5 (a number), allowed: a mapping by name of 0 to 5000 entries"),
         (
             "requirements: x\n",
             "given 'x' (text), allowed: a mapping with keys out of margin_k, "
