@@ -34,7 +34,7 @@ def conditions(count: int) -> str:
 def test_points(tmp_path):
     path = tmp_path / "box.yaml"
     path.write_text(TOP + parts(40))
-    assert points(load_document(str(path)).cases()[0]) == 10 + 20 + 40
+    assert points(load_document(str(path)).cases()[0]) == 10 + 20 + 40 + 40 * 40 / 200
 
 
 def test_more_than_a_run_may_take_is_refused_with_ways_out(tmp_path, capsys):
@@ -44,7 +44,7 @@ def test_more_than_a_run_may_take_is_refused_with_ways_out(tmp_path, capsys):
     assert main(["check", str(path)]) == 2
     assert time.process_time() - start < 2.0
     said = capsys.readouterr().err
-    assert f"count 2600 points, allowed: {MOST_POINTS}" in said
+    assert f"count 3600 points, allowed: {MOST_POINTS}" in said
     assert "--condition" in said
     assert "--large" in said
 
@@ -55,6 +55,27 @@ def test_fewer_conditions_or_a_word_of_trust_are_ways_out(tmp_path, capsys):
     assert main(["check", str(path)]) == 2
     assert main(["check", str(path), "--condition", "c7"]) == 0
     assert main(["check", str(path), "--large", "--quiet"]) == 0
+
+
+@pytest.mark.parametrize(
+    ("more", "message"),
+    [
+        (
+            parts(201),
+            "201 parts make 40401 pairs on their boards, allowed: 40000 (200 parts on one",
+        ),
+        (
+            parts(75, "front") + parts(75, "back").replace("P", "Q").replace("parts:", ""),
+            "",
+        ),
+    ],
+)
+def test_one_case_too_large(tmp_path, capsys, more, message):
+    path = tmp_path / "box.yaml"
+    path.write_text(TOP + more)
+    refused = main(["check", str(path), "--quiet"]) == 2
+    assert refused is bool(message)
+    assert message in capsys.readouterr().err
 
 
 @pytest.mark.parametrize(
