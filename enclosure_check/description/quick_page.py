@@ -20,6 +20,7 @@ By model and key: what may stand there, and its default where it has one.
 Written by ``python -m enclosure_check.description.quick_page``; not to be changed by hand.
 """
 
+# Written by a program, one key a line however long:
 # fmt: off
 # ruff: noqa: E501
 

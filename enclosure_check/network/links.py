@@ -138,15 +138,15 @@ class Links:
 
     def heat(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
         """Heat rate from ``a`` to ``b`` [W] from the rises of the stencil (k, m, v), (m, v)."""
-        raise NotImplementedError
+        raise NotImplementedError  # every kind has its own law
 
     def heat_by_rise(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
         """Derivative of `heat` by each rise of the stencil [W/K], shape (k, m, v)."""
-        raise NotImplementedError
+        raise NotImplementedError  # every kind has its own law
 
     def factors(self, reference_k: FloatArray) -> FloatArray:
         """Factors of the stencil's rises at a nominal rise [W/K], shape (k, m, 1)."""
-        raise NotImplementedError
+        raise NotImplementedError  # every kind has its own law
 
     def heat_by_parameter(self, rise: FloatArray, reference_k: FloatArray, name: str) -> FloatArray:
         """Derivative of `heat` by a parameter, by a difference of the same function."""

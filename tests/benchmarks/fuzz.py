@@ -16,7 +16,7 @@ from pathlib import Path
 ROOT = Path(__file__).resolve().parents[2]
 sys.path[:0] = [str(ROOT), str(ROOT / "tests")]
 
-from support.fuzzing import LONGEST_S, MOST_MB, Outcome  # noqa: E402
+from support.fuzzing import LONGEST_S, MOST_MB, Outcome  # noqa: E402 - after the path is set
 
 BATCH = 50
 

@@ -74,7 +74,7 @@ box is here**.
   for this project: laminar free convection of air solved on fine grids with a general-purpose flow
   solver), **worked example** (a textbook's example, a library's value or an exact solution),
   **practice rule** (a rule of the trade, which may be wrong).
-- *seen*: the number was read in the source or in a published transcription of its worked example;
+- *seen*: the number was read in the source or in a published reprint of its worked example;
   *computed*: worked out from published inputs or a published formula, apart from the program;
   *from memory*: recalled and not looked up.
 - *error*: ours less theirs, in percent of theirs, or of what the row names: shares in points of the

@@ -96,7 +96,7 @@ def row(
     flag: bool = False,
 ) -> Row:
     """Make a row; the band as such, or in percent of our number."""
-    value = float(ours)  # type: ignore[arg-type]
+    value = float(ours)  # type: ignore[arg-type]  # a number or an array of one
     assert flag or (pct is None) != (band is None), case
     width = band if band is not None else abs(value) * (pct or 0.0) / 100.0
     span = theirs if isinstance(theirs, tuple) else (float(theirs), float(theirs))

@@ -62,7 +62,7 @@ def together(networks: list[Network]) -> Network:
             name: joined([getattr(network.kinds[index], name) for network in networks])
             for name in kind.PARAMETERS
         }
-        kinds.append(replace(kind, **changed))  # type: ignore[type-var]
+        kinds.append(replace(kind, **changed))  # type: ignore[type-var]  # every kind is one
     sources = replace(
         first.sources,
         **{
