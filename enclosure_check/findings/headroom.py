@@ -26,9 +26,10 @@ COLDEST_AIR_C = -90.0
 # Power is not searched for beyond this multiple.
 LARGEST_FACTOR = 100.0
 # Balance of the states on the way: far closer than the searches end.
-# Where no state is found at once there mostly is none, and the search goes back.
+# Where no state is found at once there mostly is none, and the search goes back: to look longer
+# there takes seconds, and a state so hard to find is close to the last.
 _CLOSE = SolveOptions(
-    max_steps=50, node_tolerance=1e-6, overall_tolerance=1e-5, by_stirring=False, most_holds=1
+    max_steps=16, node_tolerance=1e-6, overall_tolerance=1e-5, by_stirring=False, most_holds=1
 )
 # Film laws and radiation make rises grow about so with power; only a first guess.
 _RISE_EXPONENT = 0.87
@@ -147,34 +148,40 @@ class _Search:
         for _ in range(MOST_STEPS):
             if all(track.done for track in tracks):
                 break
-            margins, found = self._margins(tracks[0].next, tracks[1].next)
-            for index, track in enumerate(tracks):
-                least = int(margins[:, index].argmin())
-                if found[index]:
-                    track.take(float(margins[least, index]), self.limits.names[least])
+            # One that has ended is not reckoned on.
+            going = [index for index, track in enumerate(tracks) if not track.done]
+            margins, found = self._margins({index: tracks[index].next for index in going})
+            for column, index in enumerate(going):
+                least = int(margins[:, column].argmin())
+                if found[column]:
+                    tracks[index].take(float(margins[least, column]), self.limits.names[least])
                 else:
-                    track.go_back()
+                    tracks[index].go_back()
         return tracks
 
-    def _margins(self, shift: float, factor: float) -> tuple[FloatArray, BoolArray]:
-        """Margins over the wanted ones by limit and variant, and which variants have any."""
-        network = self.network
-        scaled = np.where(self.is_power[:, None], [1.0, factor], 1.0)
-        pair = replace(
+    def _margins(self, values: dict[int, float]) -> tuple[FloatArray, BoolArray]:
+        """Margins over the wanted ones by limit and search, and which searches have any.
+
+        ``values`` are those to be tried: the shift under 0, the factor under 1.
+        """
+        network, count = self.network, len(values)
+        shifts = np.array([value if index == 0 else 0.0 for index, value in values.items()])
+        factors = np.array([value if index == 1 else 1.0 for index, value in values.items()])
+        scaled = np.where(self.is_power[:, None], factors, 1.0)
+        tried = replace(
             network,
-            reference_k=network.reference_k + np.array([shift, 0.0]),
-            fixed_rise=np.repeat(network.fixed_rise, 2, axis=1),
+            reference_k=network.reference_k + shifts,
+            fixed_rise=np.repeat(network.fixed_rise, count, axis=1),
             sources=replace(network.sources, power=network.sources.power * scaled),
         )
-        values = (shift, factor)
-        start = np.stack([self._foreseen(k, value) for k, value in enumerate(values)], axis=1)
-        solution = solve_nearby(pair, start, self.inverse, _CLOSE)
+        start = np.stack([self._foreseen(*each) for each in values.items()], axis=1)
+        solution = solve_nearby(tried, start, self.inverse, _CLOSE)
         found = solution.each_converged
-        for index, value in enumerate(values):
-            if found[index] and value != self.states[index][-1][0]:
-                state = value, solution.rise[network.unknown, index]
+        for column, (index, value) in enumerate(values.items()):
+            if found[column] and value != self.states[index][-1][0]:
+                state = value, solution.rise[network.unknown, column]
                 self.states[index] = [self.states[index][-1], state]
-        return self.limits.margins(solution.rise, pair.reference_k) - self.wanted, found
+        return self.limits.margins(solution.rise, tried.reference_k) - self.wanted, found
 
     def _foreseen(self, index: int, value: float) -> FloatArray:
         """Rises of the unknown nodes to start from [K], on the line through the last states."""
@@ -214,8 +221,6 @@ class _Track:
 
     def take(self, margin: float, name: str) -> None:
         """Take the margin at `next`, of the limit named, and move on."""
-        if self.done:
-            return
         value, (last_value, last_margin) = self.next, self._last
         if abs(margin) < CLOSE_K:
             self._end(value, name)
@@ -236,9 +241,8 @@ class _Track:
 
     def go_back(self) -> None:
         """Take it that there is no steady state at `next`, and move on."""
-        if not self.done:
-            self._runaway = self.next
-            self._halve(self.next)
+        self._runaway = self.next
+        self._halve(self.next)
 
     def _halve(self, runaway: float) -> None:
         """Go half the way from the last steady state to where there is none, or end there."""
