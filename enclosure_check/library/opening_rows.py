@@ -1,11 +1,14 @@
 """Rows of the shipped tables for openings: louvres, woven meshes and filter mats."""
 
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from functools import cache
 from types import MappingProxyType
+from typing import TypeVar
 
 from enclosure_check.library.rows import Basis, read_table
 from enclosure_check.records import dataclass
+
+Shipped = TypeVar("Shipped")
 
 
 @dataclass(frozen=True)
@@ -56,9 +59,7 @@ def load_louvres() -> Mapping[str, Louvre]:
     TypeError
         If a row lacks a key or has one that `Louvre` does not know.
     """
-    return MappingProxyType(
-        {name: Louvre(name=name, **row) for name, row in read_table("louvres.yaml").items()}
-    )
+    return _shipped(Louvre, "louvres.yaml")
 
 
 @cache
@@ -70,9 +71,7 @@ def load_screens() -> Mapping[str, Mesh]:
     TypeError
         If a row lacks a key or has one that `Mesh` does not know.
     """
-    return MappingProxyType(
-        {name: Mesh(name=name, **row) for name, row in read_table("screens.yaml").items()}
-    )
+    return _shipped(Mesh, "screens.yaml")
 
 
 @cache
@@ -84,6 +83,10 @@ def load_filters() -> Mapping[str, FilterMat]:
     TypeError
         If a row lacks a key or has one that `FilterMat` does not know.
     """
-    return MappingProxyType(
-        {name: FilterMat(name=name, **row) for name, row in read_table("filters.yaml").items()}
-    )
+    return _shipped(FilterMat, "filters.yaml")
+
+
+def _shipped(kind: Callable[..., Shipped], file: str) -> Mapping[str, Shipped]:
+    """Make the rows of a shipped table, read-only, by name."""
+    rows = {name: kind(name=name, **row) for name, row in read_table(file).items()}
+    return MappingProxyType(rows)

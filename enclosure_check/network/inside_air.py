@@ -8,7 +8,6 @@ import numpy as np
 from enclosure_check.network.films import DIFFERENCE_K, FilmAudit
 from enclosure_check.network.inside_air_heat import InsideAirHeat
 from enclosure_check.network.links import (
-    DIFFERENCE_SHARE,
     NOMINAL_RISE_K,
     FloatArray,
     IntArray,
@@ -226,19 +225,6 @@ class InsideAir(InsideAirHeat):
     def audit(self, rise: FloatArray, reference_k: FloatArray) -> FilmAudit:
         """Give the films of the surfaces with the groups of their laws, shape (s, v)."""
         return self._films(rise[self.surfaces.node], rise[self.air], reference_k)
-
-    def weighted_by_parameter(
-        self, rise: FloatArray, reference_k: FloatArray, weight: FloatArray, name: str
-    ) -> FloatArray:
-        """Derivative of the weighted sum of heat rates by each surface's factor, shape (s,)."""
-        count = len(self.factor)
-        step = DIFFERENCE_SHARE * self.factor[:, 0]
-        moved = np.repeat(self.factor, count + 1, axis=1)
-        moved[np.arange(count), np.arange(count) + 1] += step
-        many = self.with_parameter(name, moved)
-        copies = np.repeat(rise, count + 1, axis=1)
-        heat = weight @ many.evaluate(copies, np.repeat(reference_k, count + 1))
-        return np.asarray((heat[1:] - heat[0]) / step)
 
     def with_parameter(self, name: str, value: FloatArray) -> "InsideAir":
         """Give the same links with other factors of the films, shape (s, 1) or (s, v)."""

@@ -71,12 +71,6 @@ class Scaled:
         """Factors of a linear link that behaves so at a nominal rise [W/K], shape (d, 1)."""
         return self.factor[self.kind.pattern[0], :1] * self.kind.nominal(reference_k)
 
-    def weighted_by_parameter(
-        self, rise: FloatArray, reference_k: FloatArray, weight: FloatArray, name: str
-    ) -> FloatArray:
-        """Give nothing: it has no parameters."""
-        raise KeyError(f"scaled links have no parameter {name!r}")
-
     def with_parameter(self, name: str, value: FloatArray) -> Self:
         """Give nothing: it has no parameters."""
         raise KeyError(f"scaled links have no parameter {name!r}")

@@ -72,21 +72,6 @@ class LinkKind(Protocol):
     def nominal(self, reference_k: FloatArray) -> FloatArray:
         """Factors of a linear link that behaves so at a nominal rise [W/K], shape (d, 1)."""
 
-    def weighted_by_parameter(
-        self, rise: FloatArray, reference_k: FloatArray, weight: FloatArray, name: str
-    ) -> FloatArray:
-        """Derivative of the weighted sum of heat rates by each value of a parameter, shape (p,).
-
-        Parameters
-        ----------
-        rise, reference_k
-            As `evaluate`, of one variant.
-        weight
-            Weight of each link, shape (m,).
-        name
-            One of ``PARAMETERS``.
-        """
-
     def with_parameter(self, name: str, value: FloatArray) -> Self:
         """Give the same links with other values of a parameter, shape (p, 1) or (p, v)."""
 
@@ -128,13 +113,6 @@ class Links:
     def nominal(self, reference_k: FloatArray) -> FloatArray:
         """Factors of a linear link that behaves so at a nominal rise [W/K], shape (k m, 1)."""
         return self.factors(reference_k).reshape(-1, 1)
-
-    def weighted_by_parameter(
-        self, rise: FloatArray, reference_k: FloatArray, weight: FloatArray, name: str
-    ) -> FloatArray:
-        """Derivative of the weighted sum of heat rates by each value of a parameter, shape (p,)."""
-        slopes = self.heat_by_parameter(rise[self.stencil], reference_k, name)[:, 0]
-        return np.asarray(np.bincount(self.parameter_of(name), weight * slopes), dtype=np.float64)
 
     def heat(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
         """Heat rate from ``a`` to ``b`` [W] from the rises of the stencil (k, m, v), (m, v)."""

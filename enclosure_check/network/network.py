@@ -84,11 +84,6 @@ class Sources:
         slope: FloatArray = self.power * growth * (by_line + line * growing)
         return slope
 
-    def heat_by_power(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
-        """Derivative of `heat` by the power stated [-], shape (s, v)."""
-        unit = replace(self, power=np.ones_like(self.power))
-        return unit.heat(rise, reference_k)
-
 
 @dataclass(frozen=True, eq=False)
 class Readings:

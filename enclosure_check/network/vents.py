@@ -22,9 +22,6 @@ from enclosure_check.records import dataclass, replace
 
 # The loss of an opening is taken as linear below this velocity at least. [m/s]
 SLOW_M_PER_S = 1e-3
-# Relative step for derivatives by a loss: flows hardly bend with it, and what they carry is large
-# beside what a loss changes.
-LOSS_STEP = 1e-4
 
 
 class VentState(NamedTuple):
@@ -319,20 +316,6 @@ class Vents:
         return factors.reshape(-1, 1)
 
     # Parameters ------------------------------------------------------------------------------
-
-    def weighted_by_parameter(
-        self, rise: FloatArray, reference_k: FloatArray, weight: FloatArray, name: str
-    ) -> FloatArray:
-        """Derivative of the weighted sum of heat rates by each opening's loss, shape (o,)."""
-        count = len(self.names)
-        step = LOSS_STEP * self.loss[:, 0]
-        moved = np.repeat(self.loss, count + 1, axis=1)
-        moved[np.arange(count), np.arange(count) + 1] += step
-        many = self.with_parameter(name, moved)
-        heat = weight @ many.evaluate(
-            np.repeat(rise, count + 1, axis=1), np.repeat(reference_k, count + 1)
-        )
-        return np.asarray((heat[1:] - heat[0]) / step)
 
     def with_parameter(self, name: str, value: FloatArray) -> "Vents":
         """Give the same openings with other loss coefficients, shape (o, 1) or (o, v)."""

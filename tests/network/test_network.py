@@ -213,9 +213,6 @@ def test_slope_of_power(row, rise):
     found = row.heat_by_rise(np.array([[rise]]), REFERENCE)
     # Second-order differences of a power that doubles over 12 K at most.
     assert found == pytest.approx((high - low) / (2 * step), rel=1e-6, abs=1e-12)
-    assert row.heat_by_power(np.array([[rise]]), REFERENCE) == pytest.approx(
-        row.heat(np.array([[rise]]), REFERENCE) / 2
-    )
 
 
 def test_growing_power_is_held_and_the_rest_is_not():

@@ -347,25 +347,6 @@ def test_derivative_by_every_air_temperature(network, seed):
 
 
 @each_vented
-def test_derivative_by_every_loss(network):
-    kind, rise = vents_of(network), layers(network, 3)
-    weight = np.random.default_rng(4).uniform(-1, 1, len(kind.a))
-    found = kind.weighted_by_parameter(rise, REFERENCE_K, weight, "loss")
-    expected = np.zeros(len(kind.names))
-    for opening in range(len(kind.names)):
-
-        def total(shift, opening=opening):
-            loss = kind.loss.copy()
-            loss[opening] *= 1 + shift
-            moved = kind.with_parameter("loss", loss)
-            return float(weight @ moved.evaluate(rise, REFERENCE_K)[:, 0])
-
-        expected[opening] = five_point(total, 1e-3) / kind.loss[opening, 0]
-    assert np.abs(expected).max() > 0
-    np.testing.assert_allclose(found, expected, rtol=1e-3, atol=1e-4 * np.abs(expected).max())
-
-
-@each_vented
 def test_variants_together_are_the_variants_alone(network):
     kind, rise = vents_of(network), layers(network, 5, variants=3)
     reference = np.array([253.15, 298.15, 340.15])
