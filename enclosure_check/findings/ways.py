@@ -6,14 +6,17 @@ import numpy as np
 
 from enclosure_check.description.case import PartCase
 from enclosure_check.findings.explanation import LinkLaw
+from enclosure_check.findings.openings import openings_finding
 from enclosure_check.findings.results import RangeFinding
 from enclosure_check.findings.solved import Solved
 from enclosure_check.findings.things import INSIDE_AIR, Flow, Things
+from enclosure_check.network.cables import CABLE_RISE_K
 from enclosure_check.network.films import BoxFilm
 from enclosure_check.network.inside_air import InsideAir
 from enclosure_check.network.links import Radiation
 from enclosure_check.network.outer_gap import OuterGap
-from enclosure_check.physics.air import air, rayleigh_number
+from enclosure_check.network.units import metres
+from enclosure_check.physics.air import air, pressure_at_altitude, rayleigh_number
 from enclosure_check.physics.cavity import channel_drive
 from enclosure_check.physics.correlation import CORRELATIONS
 
@@ -37,12 +40,15 @@ _PLAIN = {
     "filler": "filler: thickness over conductivity and area, and contact faces",
     "still_air": "still air under the can: conductivity times area over gap",
     "frame": "stated conductance of the can's frame",
-    "openings": "flow by the balance of mass; R goes with one over the free area of all openings",
     "edge_clamp": "stated conductance of the clamp, half a cell, and the wall around the line",
     "mounting": "stated contact conductance",
     "through": "wall: conductivity times area over thickness",
     "corner": "walls joined along their edge: conduction of half a cell each",
 }
+_DRAUGHT = "flow by the balance of mass; R goes with one over the free area of all openings"
+# The two ends of what a hole loses, by its Reynolds number.
+_HOLES = ("perforated_plate", "creeping_hole")
+_LISTED = "loss of louvres and filters by the library or as stated"
 _PAD = "pad: thickness over conductivity and area, and contact faces"
 _GREY = "grey-diffuse radiation (Stefan-Boltzmann)"
 _UPRIGHT_BELOW = 0.5
@@ -81,8 +87,9 @@ def laws_of(
     if flow.role.startswith("radiation") or isinstance(kind, Radiation):
         return _radiation(solved, things, flow)
     if flow.role == "cable":
-        fin = LinkLaw(None, "conductors as fins through the wall", None, None, None)
-        return (fin, _law("churchill_chu_1975_cylinder"))
+        return _cables(solved, name)
+    if flow.role == "openings":
+        return _openings(solved)
     return (LinkLaw(None, _plain(solved, flow.role, family, name), None, None, None),)
 
 
@@ -158,6 +165,39 @@ def _outer_gap(solved: Solved, kind: OuterGap) -> tuple[LinkLaw, ...]:
         within = min(max(group, low), law.valid_to)
         laws.append(_law(key, group == within, group / within if within > 0 else 1.0))
     return tuple(laws)
+
+
+def _cables(solved: Solved, wall: str) -> tuple[LinkLaw, ...]:
+    """Give the laws of the cables through a wall, the film's audited at its nominal rise."""
+    fin = LinkLaw(None, "conductors as fins through the wall", None, None, None)
+    case = next(each for each in solved.case.walls.values() if each.name == wall)
+    outer = np.array([metres(cable.outer_mm) for cable in case.cables])
+    air_k = float(solved.network.reference_k[0])
+    pressure = float(pressure_at_altitude(solved.case.surroundings.altitude_m))
+    rayleigh = rayleigh_number(CABLE_RISE_K, outer, air(air_k + CABLE_RISE_K / 2, pressure))
+    return (fin, _within("churchill_chu_1975_cylinder", rayleigh.tolist()))
+
+
+def _openings(solved: Solved) -> tuple[LinkLaw, ...]:
+    """Give the laws of what openings lose, audited by the Reynolds numbers of their holes."""
+    openings = openings_finding(solved).each
+    holes = [row.reynolds for row in openings if row.kind not in ("mesh", "filter", "louvre")]
+    laws = [LinkLaw(None, _DRAUGHT, None, None, None)]
+    if holes:
+        laws += [_within(key, holes) for key in _HOLES]
+    if any(row.kind == "mesh" for row in openings):
+        laws.append(_law("woven_mesh"))
+    if any(row.kind in ("filter", "louvre") for row in openings):
+        laws.append(LinkLaw(None, _LISTED, None, None, None))
+    return tuple(laws)
+
+
+def _within(key: str, groups: Sequence[float]) -> LinkLaw:
+    """Audit a law by the groups it was used at, the furthest outside its range."""
+    law = CORRELATIONS[key]
+    over = [group / min(max(group, law.valid_from), law.valid_to) for group in groups if group > 0]
+    furthest = max(over, key=lambda by: max(by, 1 / by), default=1.0)
+    return _law(key, furthest == 1.0, furthest)
 
 
 def _radiation(solved: Solved, things: Things, flow: Flow) -> tuple[LinkLaw, ...]:

@@ -10,6 +10,7 @@ from support.explained import DOCUMENT, VENTED, scaled
 from enclosure_check.check import check_and_explain
 from enclosure_check.description.load import load_document
 from enclosure_check.findings.explain import PRUNED_BELOW_PCT, Worst, cost, explain
+from enclosure_check.findings.openings import openings_finding
 from enclosure_check.findings.parts import part_findings
 from enclosure_check.findings.things import flows_of, things_of
 from enclosure_check.physics.correlation import CORRELATIONS
@@ -71,6 +72,16 @@ def test_openings_take_their_share():
     )
     assert out.heat_w == pytest.approx(carried) != 0
     assert out.k_per_pct < 0
+    # Its holes run between creeping and fast flow: the laws of both ends, each with its own range.
+    reynolds = [row.reynolds for row in openings_finding(answer).each]
+    audited = {law.key: law for law in out.laws if law.key is not None}
+    assert set(audited) == {"perforated_plate", "creeping_hole"}
+    slow, fast = audited["creeping_hole"], audited["perforated_plate"]
+    assert slow.inside_range is (max(reynolds) <= CORRELATIONS["creeping_hole"].valid_to)
+    assert fast.inside_range is (min(reynolds) >= CORRELATIONS["perforated_plate"].valid_from)
+    if not slow.inside_range:
+        limit = CORRELATIONS["creeping_hole"].valid_to
+        assert slow.outside_by == pytest.approx(max(reynolds) / limit)
 
 
 def sums_by_label(answer):
@@ -348,6 +359,8 @@ def test_ways_and_laws_of_a_part_on_its_board(answer):
     ]
     assert "swinbank_sky" in ways["top wall", "sky", "radiation"]
     assert "churchill_chu_1975_cylinder" in ways["inside air", "surrounding air", "cables"]
+    (cables,) = (link for link in told.links if link.way == "cables")
+    assert cables.laws[-1].inside_range is True
     assert ways["bottom wall", "behind the bottom wall", "contact"] == [
         "stated contact conductance"
     ]
