@@ -3,8 +3,8 @@
 Flows follow from the temperatures of the inside air alone (`physics.vent_flow`), so they are no
 unknowns of the network. Air that leaves takes the heat of the air at its height along. Air that
 comes in is as warm as that outside: it falls through inside air warmer than itself (or rises
-through colder), takes inside air along on its way as a plume does, and what falls past a height has
-to rise past it in the air around.
+through colder), takes inside air along on its way as a plume does, which warms it until it stays,
+and what falls past a height has to rise past it in the air around.
 """
 
 from functools import cached_property
@@ -251,9 +251,12 @@ class Vents:
             new = entering * self.hat[:, here : here + 1]
             after = grown[:, step]
             taken = fresh * (after - before)[:, None] + new * after[:, None]
-            kept = sinking_share(layer[there] if falling else -layer[there])
-            fresh = (fresh + new) * kept
-            heat = (heat + heat_capacity * taken * layer[here]) * kept
+            fresh, heat = fresh + new, heat + heat_capacity * taken * layer[here]
+            # What it has taken up warms it: it goes on into air warmer than itself as it is now.
+            mass = np.maximum(fresh * (1.0 + after)[:, None], 1e-30)
+            warmer = layer[there] - heat / (heat_capacity * mass)
+            kept = sinking_share(warmer if falling else -warmer)
+            fresh, heat = fresh * kept, heat * kept
             before = after
             mass_past[step] = (fresh * (1.0 + after)[:, None]).sum(axis=0)
             heat_past[step] = heat.sum(axis=0)

@@ -20,8 +20,9 @@ from enclosure_check.physics.smooth import FloatArray
 
 # Balanced when no pressure is further off than this share of the largest difference.
 TOLERANCE = 1e-12
-# Within this share of it steps are taken whole, and the iteration ends as well when they stop
-# helping: rounding is all that is left.
+# Within this share of it steps are taken whole: rounding of the energy would hold them back.
+WHOLE = 1e-5
+# Within this share the iteration ends as well when steps stop helping: the rest is rounding.
 NEAR = 1e-9
 MOST_STEPS = 80
 MOST_HALVINGS = 40
@@ -120,7 +121,7 @@ def balanced_flows(
         if off <= TOLERANCE or (off <= NEAR and off > 0.5 * last):
             return VentFlows(flow, pressure, passing(flow), step)
         last = off
-        flow = flow + move if off <= NEAR else _stepped(flow, move, energy)
+        flow = flow + move if off <= WHOLE else _stepped(flow, move, energy)
     raise ArithmeticError("flows through the openings do not balance")
 
 

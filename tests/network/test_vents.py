@@ -86,14 +86,24 @@ def test_mass_and_heat_are_kept_at_every_air_node(seed):
 def test_air_that_comes_in_high_falls_and_stirs_what_it_falls_through():
     low = vents_of(network_of(vented(), COARSE))
     high = vents_of(network_of(vented(low={"at_mm": [100, 120]}), COARSE))
-    layer = np.linspace(2, 20, len(low.air))[:, None]
-    still, stirred = low.state(layer, REFERENCE_K), high.state(layer, REFERENCE_K)
+    even = np.linspace(12, 12.5, len(low.air))[:, None]
+    still, stirred = low.state(even, REFERENCE_K), high.state(even, REFERENCE_K)
     # By a low inlet nothing but the draught itself rises; by a high one far more than it.
     middle = len(low.air) // 2
     assert still.column[middle, 0] == pytest.approx(still.leaving.sum(), rel=1e-6)
     assert stirred.column[1, 0] > 1.5 * stirred.leaving.sum()
     # Taken down is warmer air than that below: heat is carried downwards by the stream.
     assert stirred.stream_heat[1, 0] < 0
+
+
+def test_inflow_stays_where_it_has_become_as_warm_as_the_air():
+    """In strong layers it has taken up so much warm air on its way that it never sees the floor."""
+    high = vents_of(network_of(vented(low={"at_mm": [100, 120]}), COARSE))
+    layers_k = np.linspace(2, 20, len(high.air))[:, None]
+    state = high.state(layers_k, REFERENCE_K)
+    assert state.column[3, 0] > 1.5 * state.leaving.sum()
+    assert abs(state.column[0, 0]) < 1e-6 * state.leaving.sum()
+    assert abs(state.stream_heat[0, 0]) < 1e-6 * abs(state.stream_heat[3, 0])
 
 
 def test_warm_air_rises_into_a_cold_box_the_same_way_upside_down():
@@ -339,10 +349,10 @@ def test_derivative_by_every_air_temperature(network, seed):
             return kind.evaluate(moved, REFERENCE_K)[:, 0]
 
         expected[:, column] = five_point(heat, 2e-3)
-    # One-sided over 1e-4 K, and rounding of the heat over that.
+    # One-sided over 1e-4 K of shares rounded over 0.2 K, and rounding of the heat over that.
     rounding = 1e-14 * np.abs(kind.evaluate(rise, REFERENCE_K)).max() / DIFFERENCE_K
     np.testing.assert_allclose(
-        found, expected, rtol=2e-4, atol=1e-5 * np.abs(expected).max() + rounding
+        found, expected, rtol=5e-4, atol=5e-5 * np.abs(expected).max() + rounding
     )
 
 
