@@ -1,15 +1,14 @@
 """Every document made invalid on purpose, through the command line."""
 
 import re
-import time
 
 import pytest
+from support.hanging import ends
 from support.mutations import FULL, Mutation, mutated_documents
 
 from enclosure_check.cli import main
 
 MUTATIONS = list(mutated_documents())
-LONGEST_S = 2.0
 
 
 def test_the_document_they_come_from_is_accepted(capsys):
@@ -27,9 +26,8 @@ def test_there_are_enough():
 def test_refused_with_its_place(mutation: Mutation, tmp_path, capsys):
     path = tmp_path / "enclosure.yaml"
     path.write_bytes(mutation.data)
-    start = time.perf_counter()
-    code = main(["check", str(path)])
-    assert time.perf_counter() - start < LONGEST_S
+    with ends():
+        code = main(["check", str(path)])
     captured = capsys.readouterr()
     assert code == 2
     assert captured.out == ""

@@ -1,12 +1,13 @@
 """Delimited text into rows: quotes, line breaks, byte order marks, and everything refused."""
 
+import contextlib
 import csv
 import io
-import time
 
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
+from support.hanging import ends
 
 from enclosure_check.description.delimited import (
     LONGEST_FIELD,
@@ -155,10 +156,6 @@ def test_bytes_that_are_no_text(data, encoding, place, message):
     ids=lambda text: repr(text[:8]),
 )
 def test_a_hostile_file_is_read_or_refused_at_once(text):
-    start = time.process_time()
-    try:
+    with ends(), contextlib.suppress(DelimitedError):
         for _ in read_rows(text, ","):
             pass
-    except DelimitedError:
-        pass
-    assert time.process_time() - start < 2.0

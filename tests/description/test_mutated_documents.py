@@ -1,15 +1,13 @@
-"""Every document made invalid on purpose is refused, quickly, at a place and by name."""
-
-import time
+"""Every document made invalid on purpose is refused at a place and by name."""
 
 import pytest
+from support.hanging import ends
 from support.mutations import FULL, Mutation, mutated_documents
 
 from enclosure_check.description.load import load_document
 from enclosure_check.description.problems import DocumentError
 
 MUTATIONS = list(mutated_documents())
-LONGEST_S = 2.0
 
 
 def test_unmutated_document_is_valid():
@@ -26,10 +24,8 @@ def test_there_are_enough_and_no_two_are_the_same():
 def test_refused(mutation: Mutation, tmp_path):
     path = tmp_path / "enclosure.yaml"
     path.write_bytes(mutation.data)
-    start = time.process_time()
-    with pytest.raises(DocumentError) as caught:
+    with ends(), pytest.raises(DocumentError) as caught:
         load_document(str(path))
-    assert time.process_time() - start < LONGEST_S
     problems = caught.value.problems
     assert problems
     assert all(each.line >= 1 and each.column >= 1 for each in problems)

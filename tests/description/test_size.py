@@ -1,8 +1,7 @@
 """What is too large for a stranger's document, and how it is allowed."""
 
-import time
-
 import pytest
+from support.hanging import ends
 
 from enclosure_check.cli import main
 from enclosure_check.description.load import load_document
@@ -40,9 +39,8 @@ def test_points(tmp_path):
 def test_more_than_a_run_may_take_is_refused_with_ways_out(tmp_path, capsys):
     path = tmp_path / "box.yaml"
     path.write_text(TOP + parts(100) + conditions(20))
-    start = time.process_time()
-    assert main(["check", str(path)]) == 2
-    assert time.process_time() - start < 2.0
+    with ends():
+        assert main(["check", str(path)]) == 2
     said = capsys.readouterr().err
     assert f"count 3600 points, allowed: {MOST_POINTS}" in said
     assert "--condition" in said
@@ -103,8 +101,6 @@ def test_many_misspelt_names_are_told_quickly(tmp_path):
     types = ", ".join(f"kind_{i:04d}: {{}}" for i in range(900))
     rows = "".join(f"  P{i}: {{place: left, type: kynd_{i}}}\n" for i in range(3000))
     path.write_text(f"{TOP}part_types: {{{types}}}\nparts:\n{rows}")
-    start = time.process_time()
-    with pytest.raises(DocumentError) as caught:
+    with ends(), pytest.raises(DocumentError) as caught:
         load_document(str(path))
-    assert time.process_time() - start < 4.0
     assert any("stopped here" in str(each) for each in caught.value.problems)

@@ -1,10 +1,10 @@
 """Reading YAML into nodes: values, positions, and everything that is refused."""
 
 import math
-import time
 
 import pytest
 import yaml
+from support.hanging import ends
 
 from enclosure_check.description import yaml_nodes
 from enclosure_check.description.problems import DocumentError, Problem
@@ -121,9 +121,8 @@ def test_a_long_row_of_digits_is_a_number():
 
 @pytest.mark.parametrize("tail", ["x", ".x", "e", "e+"])
 def test_a_megabyte_that_is_nearly_a_number_is_read_at_once(tail):
-    start = time.process_time()
-    assert isinstance(plain_value("1" * 1_000_000 + tail), str)
-    assert time.process_time() - start < 1.0
+    with ends():
+        assert isinstance(plain_value("1" * 1_000_000 + tail), str)
 
 
 @pytest.mark.parametrize("key", ["40", "12:30", "true", "1e-3", "on", "~", "-40", "85.5", "null"])

@@ -1,9 +1,9 @@
 """Earlier results read back: what a check wrote, and nothing else."""
 
 import json
-import time
 
 import pytest
+from support.hanging import ends
 from support.reports import SAMPLES, SMALL, report_of
 
 from enclosure_check.check import check
@@ -122,8 +122,6 @@ def test_size_is_bounded(monkeypatch):
     monkeypatch.setattr(earlier, "MAX_BYTES", 1 << 20)
     with pytest.raises(EarlierError, match="larger than 1 MiB"):
         read_earlier(b" " * (1 << 20) + b"{}")
-    start = time.process_time()
     monkeypatch.setattr(earlier, "MAX_BYTES", 24 << 20)
-    with pytest.raises(EarlierError, match="more than 600000 values"):
+    with ends(), pytest.raises(EarlierError, match="more than 600000 values"):
         read_earlier(b'{"format":1,"x":[' + b"[]," * 1_000_000 + b"[]]}")
-    assert time.process_time() - start < 1.0
