@@ -1,7 +1,9 @@
 """Solve random documents and print how the solver fared.
 
 Run it as ``python tests/benchmarks/random_documents.py [COUNT] [FIRST_SEED]``; 1,000 documents from
-seed 0 by default. It ends with exit code 1 when any of them does not converge.
+seed 0 by default. It tells at once of every document that does not converge, raises or takes more
+than 100 steps, and ends with exit code 1 when any of them did not converge. `tally.py` adds up what
+several runs printed.
 """
 
 import random
@@ -14,45 +16,56 @@ from typing import Any
 sys.path.insert(0, str(Path(__file__).resolve().parents[2]))
 sys.path.insert(0, str(Path(__file__).resolve().parents[1]))
 
-import numpy as np
+from benchmarks.tally import Tally
 from support.cases import LEAST_HEAT_W, network_of
 from support.random_documents import random_document
 
 from enclosure_check.solve.steady import solve_steady
 
+Make = Callable[[random.Random], dict[str, Any]]
+# More steps than these are told of.
+LONG = 100
 
-def main(
-    count: int, first: int, make: Callable[[random.Random], dict[str, Any]] = random_document
-) -> int:
+
+def main(count: int, first: int, make: Make = random_document) -> int:
     """Solve ``count`` documents that ``make`` gives, print the figures, and tell how many did not converge."""
-    steps, fallbacks, shares, unknowns, failed = [], [], [], [], []
-    spent = 0.0
+    tally = Tally()
     for seed in range(first, first + count):
+        told = solve(seed, make, tally)
+        if told:
+            print(told, flush=True)
+    print(tally.line())
+    print(f"seeds                   {first} to {first + count - 1}")
+    print(tally.text())
+    return len(tally.failed)
+
+
+def solve(seed: int, make: Make, tally: Tally) -> str:
+    """Solve one document, put down how it went, and say so if that was not well."""
+    start = time.process_time()
+    try:
         network = network_of(make(random.Random(seed)))
         start = time.process_time()
         solution = solve_steady(network)
-        spent += time.process_time() - start
-        worst = float(solution.worst_imbalance_w[0])
-        if not solution.converged:
-            node = network.node_labels[int(solution.worst_node[0])]
-            failed.append(f"seed {seed}: {solution.outcome[0].name} at {node}, {worst:.3g} W")
-            continue
-        steps.append(int(solution.steps[0]))
-        fallbacks.append(int(solution.fallbacks[0]))
-        shares.append(worst / max(float(solution.heat_w[0]), LEAST_HEAT_W))
-        unknowns.append(len(network.unknown))
-    print(f"documents               {count} (seeds {first} to {first + count - 1})")
-    print(f"not converged           {len(failed)}")
-    print(f"unknowns                median {np.median(unknowns):.0f}, most {max(unknowns)}")
-    print(
-        f"Newton steps            median {np.median(steps):.0f}, "
-        f"99 % {np.percentile(steps, 99):.0f}, most {max(steps)}"
-    )
-    print(f"steps taken back        {sum(fallbacks)} in all, most {max(fallbacks)}")
-    print(f"worst relative imbalance {max(shares):.2e} of the heat that flows")
-    print(f"solving                 {1e3 * spent / count:.2f} ms of processor time each")
-    print("\n".join(failed))
-    return len(failed)
+    # Whatever an answer fails by is to be known of all documents, not of the first.
+    except Exception as error:
+        tally.failed.append(f"seed {seed}: {type(error).__name__}: {error}")
+        return tally.failed[-1]
+    spent = time.process_time() - start
+    tally.processor_s += spent
+    worst, steps = float(solution.worst_imbalance_w[0]), int(solution.steps[0])
+    taken = f"{steps} steps, {int(solution.fallbacks[0])} taken back, {spent:.1f} s"
+    if not solution.converged:
+        node = network.node_labels[int(solution.worst_node[0])]
+        outcome = solution.outcome[0].name
+        tally.failed.append(f"seed {seed}: {outcome} at {node}, {worst:.3g} W; {taken}")
+        return tally.failed[-1]
+    tally.steps[steps] += 1
+    tally.fallbacks[int(solution.fallbacks[0])] += 1
+    tally.unknowns[round(len(network.unknown), -1)] += 1
+    share = worst / max(float(solution.heat_w[0]), LEAST_HEAT_W)
+    tally.worst_share = max(tally.worst_share, share)
+    return f"seed {seed}: long, {taken}" if steps > LONG else ""
 
 
 if __name__ == "__main__":
