@@ -15,6 +15,7 @@ from enclosure_check.network.build import build_network
 from enclosure_check.physics.view_closure import NotEnclosedError
 from enclosure_check.solve.nearby import Known, solve_known
 from enclosure_check.solve.steady import Outcome
+from enclosure_check.workers import spread
 
 if TYPE_CHECKING:
     from enclosure_check.findings.certainty import Sensitivities
@@ -52,11 +53,14 @@ def check(
     tell: Callable[[str], None] | None = None,
     see: Callable[[Solved, ConditionFinding], None] | None = None,
     sensitivities: int = 0,
+    processes: int = 1,
 ) -> Report:
     """Check a document under its conditions.
 
     ``tell`` is told the name of each as it begins, ``see`` is shown what was found for it. The
-    report tells so many ``sensitivities`` of the smallest margin of a part.
+    report tells so many ``sensitivities`` of the smallest margin of a part. Conditions are spread
+    over so many ``processes``, forks of this one, where nothing is asked that needs all in one;
+    the report is the same.
 
     Raises
     ------
@@ -66,21 +70,28 @@ def check(
         When a condition has no steady temperatures.
     """
     cases = document.cases(option=option, conditions=conditions)
-    found: list[ConditionFinding] = []
-    known: Known | None = None
+    lead, known = _solve_lead(cases)
     closest: tuple[Solved, PartFinding] | None = None
-    for case in cases:
-        if tell is not None:
-            tell(case.condition)
-        solved, known = solve_case(case, known)
+
+    def work(case: Case) -> ConditionFinding:
+        nonlocal closest
+        solved = lead if case is lead.case else solve_case(case, known)[0]
         # Only tolerances ask for the document again.
         rebuild = document.variation(case).case_with if case.tolerances else None
-        found.append(assess(solved, rebuild))
+        found = assess(solved, rebuild)
         if see is not None:
-            see(solved, found[-1])
-        parts = found[-1].parts
-        if parts and (closest is None or parts[0].margin_k < closest[1].margin_k):
-            closest = solved, parts[0]
+            see(solved, found)
+        if found.parts and (closest is None or found.parts[0].margin_k < closest[1].margin_k):
+            closest = solved, found.parts[0]
+        return found
+
+    def begins(case: Case) -> None:
+        if tell is not None:
+            tell(case.condition)
+
+    # What is wanted of the solutions themselves needs them in this process.
+    alone = see is not None or sensitivities > 0
+    found = spread(work, cases, 1 if alone else processes, begins)
     return Report(
         format=1,
         version=__version__,
@@ -101,6 +112,20 @@ def check(
         baseline=None,
         sensitivities=_sensitivities(document, closest, sensitivities),
     )
+
+
+def _solve_lead(cases: Sequence[Case]) -> tuple[Solved, Known]:
+    """Solve the case of the most power, from whose state the others are found.
+
+    None depends on another, so that they may be found side by side.
+    """
+    return solve_case(max(cases, key=_stated_power))
+
+
+def _stated_power(case: Case) -> float:
+    """Power stated for parts and boards [W]."""
+    boards = sum(board.other_power_w for board in case.boards.values())
+    return boards + sum(part.power_w for part in case.parts.values())
 
 
 def _sensitivities(

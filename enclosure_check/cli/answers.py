@@ -27,6 +27,8 @@ class Asked(NamedTuple):
     allowed_folders: Sequence[str] = ()
     large: bool = False
     """Whether documents may be larger than those of a stranger."""
+    processes: int = 1
+    """How many may work at once."""
 
 
 def answer_all(
@@ -103,6 +105,7 @@ def _report(document: LoadedDocument, asked: Asked, tell: Callable[[str], None])
             conditions=conditions,
             tell=tell,
             sensitivities=asked.sensitivities,
+            processes=asked.processes,
         )
     return check_and_explain(
         document, asked.explain, option=option, conditions=conditions, tell=tell

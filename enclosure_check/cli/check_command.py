@@ -207,6 +207,7 @@ def run(arguments: argparse.Namespace) -> ExitCode:
                 arguments.sensitivities,
                 arguments.allow_folder,
                 arguments.large,
+                arguments.processes,
             ),
             progress.tell,
         )
