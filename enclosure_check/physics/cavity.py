@@ -202,8 +202,10 @@ def channel_share(
 def channel_drive(difference_a: ArrayLike, difference_b: ArrayLike) -> FloatArray:
     """Difference to the air outside that drives the flow through a gap of two unlike faces.
 
-    ``|mean| + |half difference| / 16``: like faces drive a channel with their mean; unlike ones a
-    counterflow, each half a channel of half the width and half the excess.
+    ``sqrt(mean^2 + (half difference / 16)^2)``: like faces drive a channel with their mean; unlike
+    ones a counterflow, each half a channel of half the width and half the excess. Their sum would
+    have a corner where faces lie as far above as below the air, sharp beside the differences
+    there; joining them is ours, and lies below the sum by 29 % at most, where both are the same.
 
     Parameters
     ----------
@@ -216,8 +218,8 @@ def channel_drive(difference_a: ArrayLike, difference_b: ArrayLike) -> FloatArra
         Drive [K], above zero, broadcast shape.
     """
     a, b = np.asarray(difference_a, dtype=np.float64), np.asarray(difference_b, dtype=np.float64)
-    mean = soft_abs(0.5 * (a + b), DIFFERENCE_WIDTH_K)
-    return np.asarray(mean + OPPOSED_SHARE * soft_abs(0.5 * (a - b), DIFFERENCE_WIDTH_K))
+    opposed = OPPOSED_SHARE * 0.5 * (a - b)
+    return np.hypot(soft_abs(0.5 * (a + b), DIFFERENCE_WIDTH_K), opposed)
 
 
 class GapExchange(NamedTuple):

@@ -205,8 +205,8 @@ def test_accuracy_told_is_that_of_the_tables_of_the_method(readme, read_page):
     assert "within -5 to +7 %" in prose
     inside = [float(row[3]) for row in method.table("case", "inside mm, board")]
     assert f"the walls of {_word(len(inside))} sealed boxes" in prose
-    assert "is met within -6 to +8 %" in prose
-    assert (min(inside), max(inside)) == (-6, 8)
+    assert "is met within -6 to +7 %" in prose
+    assert (min(inside), max(inside)) == (-6, 7)
 
 
 def _word(number):

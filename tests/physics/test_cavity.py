@@ -252,10 +252,21 @@ def test_channel_drive_of_like_and_unlike_faces():
     assert cavity.channel_drive(20.0, 5.0) == cavity.channel_drive(5.0, 20.0)
     assert cavity.channel_drive(0.0, 0.0) > 0.0
     # Faces as far above as below the air: each half of the gap is a channel of half its width.
-    drive = cavity.channel_drive(16.0, -16.0) - cavity.DIFFERENCE_WIDTH_K
+    drive = np.sqrt(cavity.channel_drive(16.0, -16.0) ** 2 - cavity.DIFFERENCE_WIDTH_K**2)
     opposed = cavity.channel_share(drive, 9e7, 0.03, 0.15, 1.0)
     half = cavity.channel_share(16.0, 9e7, 0.015, 0.15, 1.0)
     assert opposed == pytest.approx(half, rel=1e-5)
+
+
+def test_channel_drive_of_unlike_faces_has_no_corner():
+    """A corner 0.01 K wide between faces kelvins apart is jumped over, to and fro, by every step."""
+    mean = np.linspace(-3.0, 3.0, 3001)
+    drive = cavity.channel_drive(mean + 16.0, mean - 16.0)
+    bend = np.diff(drive, 2) / (mean[1] - mean[0]) ** 2
+    # That of sqrt(mean^2 + (16 / 16)^2), which the least drive allows.
+    assert bend.max() == pytest.approx(1.0, rel=1e-3)
+    assert bend.min() > 0
+    assert drive.min() == pytest.approx(1.0, rel=1e-3)
 
 
 # The gap as a whole ---------------------------------------------------------------------------
