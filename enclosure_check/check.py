@@ -12,10 +12,11 @@ from enclosure_check.findings.results import CAUTION, ConditionFinding, PartFind
 from enclosure_check.findings.solved import Solved
 from enclosure_check.findings.stated import PartListFinding
 from enclosure_check.network.build import build_network
+from enclosure_check.network.network import Network
 from enclosure_check.physics.view_closure import NotEnclosedError
 from enclosure_check.solve.nearby import Known, solve_known
 from enclosure_check.solve.steady import Outcome
-from enclosure_check.workers import spread
+from enclosure_check.workers import Task, spread
 
 if TYPE_CHECKING:
     from enclosure_check.findings.certainty import Sensitivities
@@ -70,12 +71,23 @@ def check(
         When a condition has no steady temperatures.
     """
     cases = document.cases(option=option, conditions=conditions)
-    lead, known = _solve_lead(cases)
+    # The case of the most power is solved first, and all others from its state: none depends on
+    # another, so that they may be found side by side.
+    first = max(cases, key=_stated_power)
+    network = _build(first)
     closest: tuple[Solved, PartFinding] | None = None
 
-    def work(case: Case) -> ConditionFinding:
+    def prepare(case: Case) -> Network:
+        return network if case is first else _build(case)
+
+    def lead() -> Known:
+        known = solve_known(network, None)
+        _refuse_unconverged(first, known)
+        return known.shared()
+
+    def finish(case: Case, own: Network, shared: Known) -> ConditionFinding:
         nonlocal closest
-        solved = lead if case is lead.case else solve_case(case, known)[0]
+        solved = _solved(case, own, shared if case is first else solve_known(own, shared))
         # Only tolerances ask for the document again.
         rebuild = document.variation(case).case_with if case.tolerances else None
         found = assess(solved, rebuild)
@@ -91,7 +103,7 @@ def check(
 
     # What is wanted of the solutions themselves needs them in this process.
     alone = see is not None or sensitivities > 0
-    found = spread(work, cases, 1 if alone else processes, begins)
+    found = spread(Task(prepare, lead, finish, begins), cases, 1 if alone else processes)
     return Report(
         format=1,
         version=__version__,
@@ -112,14 +124,6 @@ def check(
         baseline=None,
         sensitivities=_sensitivities(document, closest, sensitivities),
     )
-
-
-def _solve_lead(cases: Sequence[Case]) -> tuple[Solved, Known]:
-    """Solve the case of the most power, from whose state the others are found.
-
-    None depends on another, so that they may be found side by side.
-    """
-    return solve_case(max(cases, key=_stated_power))
 
 
 def _stated_power(case: Case) -> float:
@@ -168,23 +172,33 @@ def check_and_explain(
     return worst_of.explained(report)
 
 
-def solve_case(case: Case, known: Known | None = None) -> tuple[Solved, Known]:
-    """Build and solve one case, from a state known of a like one where there is one.
+def solve_case(case: Case) -> Solved:
+    """Build and solve one case.
 
     Raises
     ------
     NotConvergedError
         When it has no steady temperatures.
     """
+    network = _build(case)
+    return _solved(case, network, solve_known(network, None))
+
+
+def _build(case: Case) -> Network:
     try:
-        network = build_network(case)
+        return build_network(case)
     except NotEnclosedError as error:
         raise NotEnclosedCaseError(case.condition, str(error)) from None
-    known = solve_known(network, known)
+
+
+def _solved(case: Case, network: Network, known: Known) -> Solved:
+    _refuse_unconverged(case, known)
+    return Solved(case, network, known.solution, known.inverse)
+
+
+def _refuse_unconverged(case: Case, known: Known) -> None:
     solution = known.solution
     if not solution.converged:
-        node = network.node_labels[int(solution.worst_node[0])]
-        raise NotConvergedError(
-            case.condition, node, float(solution.worst_imbalance_w[0]), solution.outcome[0]
-        )
-    return Solved(case, network, solution, known.inverse), known
+        node = known.node_labels[int(solution.worst_node[0])]
+        worst = float(solution.worst_imbalance_w[0])
+        raise NotConvergedError(case.condition, node, worst, solution.outcome[0])

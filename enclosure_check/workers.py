@@ -1,15 +1,21 @@
 """Work spread over processes that are forks of this one; the results are those of one alone."""
 
+import mmap
 import os
 import pickle
+import select
 import signal
 import struct
 import warnings
 from collections.abc import Callable, Sequence
 from contextlib import suppress
-from typing import BinaryIO, NamedTuple, NoReturn, TypeVar
+from typing import BinaryIO, Generic, NamedTuple, NoReturn, TypeVar
+
+from enclosure_check.records import dataclass
 
 Item = TypeVar("Item")
+Prepared = TypeVar("Prepared")
+Shared = TypeVar("Shared")
 Result = TypeVar("Result")
 
 # Each process holds what its work takes.
@@ -17,13 +23,34 @@ MOST_PROCESSES = 8
 _PLACE = struct.Struct("=i")
 # All places fit into a pipe of the least size there is.
 _MOST_ITEMS = 512 // _PLACE.size
+# Room for what all processes share, used as far as it is needed.
+_SHARED_BYTES = 16 << 20
+_SIZE = struct.Struct("=q")
+
+
+@dataclass(frozen=True, eq=False)
+class Task(Generic[Item, Prepared, Shared, Result]):
+    """What is to be done with every item.
+
+    Shared things and results go through `pickle` where they come from another process. No result
+    may depend on what was done before.
+    """
+
+    prepare: Callable[[Item], Prepared]
+    """What can be done with an item before anything is known of the others."""
+    lead: Callable[[], Shared]
+    """Finds once what all are finished with."""
+    finish: Callable[[Item, Prepared, Shared], Result]
+    begins: Callable[[Item], None] | None = None
+    """Told of every item that this process begins to finish."""
 
 
 class _Worker(NamedTuple):
-    """A forked process and where its results come from."""
+    """A forked process, where its results come from, and where it learns that all is led."""
 
     number: int
     results: int
+    led: int
 
 
 def available_processes() -> int:
@@ -36,24 +63,18 @@ def available_processes() -> int:
 
 
 def spread(
-    work: Callable[[Item], Result],
-    items: Sequence[Item],
-    processes: int,
-    begins: Callable[[Item], None] | None = None,
+    task: Task[Item, Prepared, Shared, Result], items: Sequence[Item], processes: int
 ) -> list[Result]:
-    """Do the same work on every item, on several processes at once.
+    """Do a task with every item, on several processes at once.
 
     Parameters
     ----------
-    work
-        What gives the result of an item; it must not depend on what was done before. Its results
-        go through `pickle` when another process gives them.
+    task
+        What is done. While this process leads, the others prepare.
     items
         What to work on.
     processes
         How many at most, this one included; with one nothing is forked.
-    begins
-        Told of every item this process begins.
 
     Returns
     -------
@@ -61,46 +82,69 @@ def spread(
         The results, in the order of the items. What another process did not give, for an error or
         want of memory there, is done again here, so that errors are raised as without processes.
     """
-    done: dict[int, Result] = {}
-    if min(processes, len(items)) > 1 and len(items) <= _MOST_ITEMS:
-        done = _side_by_side(work, items, min(processes, len(items)), begins)
+    processes = min(processes, len(items))
+    if processes > 1 and len(items) <= _MOST_ITEMS:
+        shared, done = _side_by_side(task, items, processes)
+    else:
+        shared, done = task.lead(), {}
     for place, item in enumerate(items):
         if place not in done:
-            if begins is not None:
-                begins(item)
-            done[place] = work(item)
+            done[place] = _done(task, item, shared)
     return [done[place] for place in range(len(items))]
 
 
+def _done(task: Task[Item, Prepared, Shared, Result], item: Item, shared: Shared) -> Result:
+    if task.begins is not None:
+        task.begins(item)
+    return task.finish(item, task.prepare(item), shared)
+
+
 def _side_by_side(
-    work: Callable[[Item], Result],
-    items: Sequence[Item],
-    processes: int,
-    begins: Callable[[Item], None] | None,
-) -> dict[int, Result]:
-    """Give the results that were found, by place."""
+    task: Task[Item, Prepared, Shared, Result], items: Sequence[Item], processes: int
+) -> tuple[Shared, dict[int, Result]]:
+    """Give what is shared, and the results that were found, by place."""
     # Whoever is free takes the next place out of the pipe.
     take, put = os.pipe()
     os.write(put, b"".join(_PLACE.pack(place) for place in range(len(items))))
     os.close(put)
+    # No process begins more than its part before all is led: the last ones go to whoever is free.
+    most = max(1, (len(items) - 1) // processes)
     workers: list[_Worker] = []
     done: dict[int, Result] = {}
-    try:
-        with suppress(OSError):  # no more processes to be had
-            while len(workers) < processes - 1:
-                workers.append(_forked(work, items, take))
-        while workers and (place := _taken(take)) is not None:
-            if begins is not None:
-                begins(items[place])
-            done[place] = work(items[place])
-        for worker in workers:
-            with os.fdopen(os.dup(worker.results), "rb") as results:
-                done.update(_received(results))
-    finally:
-        os.close(take)
-        for worker in workers:
-            _ended(worker)
-    return done
+    with mmap.mmap(-1, _SHARED_BYTES) as room:
+        try:
+            with suppress(OSError):  # no more processes to be had
+                while len(workers) < processes - 1:
+                    workers.append(_forked(task, items, take, most, room))
+            shared = task.lead()
+            if workers and _filled(room, shared):
+                for worker in workers:
+                    _tell_led(worker)
+                while (place := _taken(take)) is not None:
+                    done[place] = _done(task, items[place], shared)
+                for worker in workers:
+                    with os.fdopen(os.dup(worker.results), "rb") as results:
+                        done.update(_received(results))
+        finally:
+            os.close(take)
+            for worker in workers:
+                _ended(worker)
+    return shared, done
+
+
+def _filled(room: mmap.mmap, shared: object) -> bool:
+    """Put what is shared where all processes find it, if it fits."""
+    told = pickle.dumps(shared, pickle.HIGHEST_PROTOCOL)
+    if _SIZE.size + len(told) > len(room):
+        return False
+    room[: _SIZE.size] = _SIZE.pack(len(told))
+    room[_SIZE.size : _SIZE.size + len(told)] = told
+    return True
+
+
+def _tell_led(worker: _Worker) -> None:
+    with suppress(BrokenPipeError):  # it is no more; what it had taken is done here
+        os.write(worker.led, b"1")
 
 
 def _taken(take: int) -> int | None:
@@ -119,45 +163,76 @@ def _received(results: BinaryIO) -> dict[int, Result]:
     return received
 
 
-def _forked(work: Callable[[Item], Result], items: Sequence[Item], take: int) -> _Worker:
+def _forked(
+    task: Task[Item, Prepared, Shared, Result],
+    items: Sequence[Item],
+    take: int,
+    most: int,
+    room: mmap.mmap,
+) -> _Worker:
     """Start a process that works on items until none is left, and gives its results to a pipe."""
     results, give = os.pipe()
+    wait, led = os.pipe()
     try:
         with warnings.catch_warnings():
             # A thread that shows progress may run; the fork touches nothing of it.
             warnings.simplefilter("ignore", DeprecationWarning)
             number = os.fork()
     except OSError:
-        os.close(results)
-        os.close(give)
+        for each in (results, give, wait, led):
+            os.close(each)
         raise
     if number == 0:
         os.close(results)
-        _work_and_end(work, items, take, give)
+        os.close(led)
+        _work_and_end(task, items, take, most, (room, wait, give))
     os.close(give)
-    return _Worker(number, results)
+    os.close(wait)
+    return _Worker(number, results, led)
 
 
 def _work_and_end(
-    work: Callable[[Item], Result], items: Sequence[Item], take: int, give: int
+    task: Task[Item, Prepared, Shared, Result],
+    items: Sequence[Item],
+    take: int,
+    most: int,
+    ways: tuple[mmap.mmap, int, int],
 ) -> NoReturn:
     """Be the other process: never return, print nothing, leave what fails to the first."""
+    room, wait, give = ways
     code = 1
     try:
-        with os.fdopen(give, "wb") as out:
-            while (place := _taken(take)) is not None:
-                pickle.dump((place, work(items[place])), out, pickle.HIGHEST_PROTOCOL)
-                out.flush()
+        prepared: list[tuple[int, Prepared]] = []
+        while len(prepared) < most and not select.select([wait], [], [], 0)[0]:
+            place = _taken(take)
+            if place is None:
+                break
+            prepared.append((place, task.prepare(items[place])))
+        if os.read(wait, 1):
+            size = _SIZE.unpack(room[: _SIZE.size])[0]
+            shared: Shared = pickle.loads(room[_SIZE.size : _SIZE.size + size])
+            with os.fdopen(give, "wb") as out:
+                for place, ready in prepared:
+                    _give(out, place, task.finish(items[place], ready, shared))
+                while (place := _taken(take)) is not None:
+                    item = items[place]
+                    _give(out, place, task.finish(item, task.prepare(item), shared))
         code = 0
-    except BaseException:
+    except BaseException:  # whatever it is, the first process comes upon it as well
         code = 1
     finally:
         os._exit(code)
 
 
+def _give(out: BinaryIO, place: int, result: object) -> None:
+    pickle.dump((place, result), out, pickle.HIGHEST_PROTOCOL)
+    out.flush()
+
+
 def _ended(worker: _Worker) -> None:
     """Be rid of a worker; one that still works has no reader left."""
     os.close(worker.results)
+    os.close(worker.led)
     with suppress(ProcessLookupError):
         os.kill(worker.number, signal.SIGKILL)
     with suppress(ChildProcessError):

@@ -9,7 +9,6 @@ from typing import NoReturn
 
 from enclosure_check.cli.codes import ExitCode, UsageError
 from enclosure_check.cli.output import PROGRAM, CannotWriteError, all_is_written, say
-from enclosure_check.workers import available_processes
 
 
 def run() -> NoReturn:
@@ -44,8 +43,7 @@ def main(argv: Sequence[str] | None = None) -> int:
             from enclosure_check.cli.arguments import parser
 
             arguments = parser().parse_args(argv)
-            # A process that does other things as well is not forked.
-            arguments.processes = available_processes() if argv is None else 1
+            arguments.whole_process = argv is None
             return int(arguments.run(arguments))
     except SystemExit as ended:  # argparse, after --help, --version or wrong usage
         return ended.code if isinstance(ended.code, int) else int(ExitCode.BAD_INPUT)

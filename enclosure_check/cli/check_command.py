@@ -175,6 +175,7 @@ def run(arguments: argparse.Namespace) -> ExitCode:
     """
     from enclosure_check.cli.answers import Asked, answer_all
     from enclosure_check.cli.documents import find_documents, is_several
+    from enclosure_check.cli.whole_process import prepare
 
     if arguments.quiet and arguments.format != "text":
         raise UsageError("--quiet shortens the text report; it does not go with --format")
@@ -195,6 +196,8 @@ def run(arguments: argparse.Namespace) -> ExitCode:
     earlier = None
     if arguments.baseline is not None:
         earlier = read_baseline(arguments.baseline, documents.paths)
+    # A process that does other things as well is not forked.
+    processes = prepare() if arguments.whole_process else 1
     with Progress(wanted=not arguments.quiet) as progress:
         run, said = answer_all(
             documents.paths,
@@ -207,7 +210,7 @@ def run(arguments: argparse.Namespace) -> ExitCode:
                 arguments.sensitivities,
                 arguments.allow_folder,
                 arguments.large,
-                arguments.processes,
+                processes,
             ),
             progress.tell,
         )

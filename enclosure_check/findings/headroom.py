@@ -1,18 +1,21 @@
 """How far the surroundings' temperature and the power can rise until a limit is met.
 
-Both searches run side by side as two variants of the network, by the secant method on the
-smallest margin; the rises of the check are the first guess. Where power that grows with temperature
-leaves no steady state, the search goes back towards the last one there was.
+Both are found side by side as two variants of the network, together with its state
+(`solve.reaching`). What is not found so is searched for by the secant method on the smallest
+margin; where power that grows with temperature leaves no steady state, the search goes back towards
+the last one there was.
 """
+
+from typing import NamedTuple
 
 import numpy as np
 
 from enclosure_check.findings.results import Headroom, PartFinding, WallFinding
 from enclosure_check.findings.solved import Solved
-from enclosure_check.network.links import FloatArray, IntArray
+from enclosure_check.network.links import FloatArray
 from enclosure_check.network.network import BoolArray, Network
-from enclosure_check.records import dataclass, replace
 from enclosure_check.solve.nearby import Inverse, solve_nearby
+from enclosure_check.solve.reaching import Limits, Number, reached
 from enclosure_check.solve.steady import SolveOptions
 
 # The searches end when the smallest margin is met this closely. [K]
@@ -35,19 +38,6 @@ _CLOSE = SolveOptions(
 _RISE_EXPONENT = 0.87
 
 
-@dataclass(frozen=True, eq=False)
-class _Limits:
-    """The upper limits: nodes, their limits, and their names."""
-
-    node: IntArray
-    limit_k: FloatArray
-    names: tuple[str, ...]
-
-    def margins(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
-        """Margins by limit and variant [K], shape (limits, v)."""
-        return self.limit_k[:, None] - rise[self.node] - reference_k
-
-
 def headroom(
     solved: Solved, parts: tuple[PartFinding, ...], walls: tuple[WallFinding, ...]
 ) -> Headroom:
@@ -56,14 +46,8 @@ def headroom(
     limits = _upper_limits(solved, parts, walls)
     if limits is None:
         return Headroom(wanted, None, None, None, None)
-    network, rise = solved.network, solved.solution.rise
-    reference = network.reference_k
-    now = limits.margins(rise, reference)[:, 0] - wanted
     powered = solved.total_put_in("power") > 0
-    search = _Search(network, limits, wanted, rise[network.unknown], solved.inverse)
-    first_factor = _guess_factor(limits, rise, reference, wanted) if powered else 1.0
-    coldest = COLDEST_AIR_C - solved.case.surroundings.air_c
-    shift, factor = search.run(float(now.min()), coldest, first_factor)
+    shift, factor = _found(solved, limits, wanted, powered)
     air = None if shift.answer is None else shift.answer + solved.case.surroundings.air_c
     return Headroom(
         wanted_margin_k=wanted,
@@ -74,9 +58,56 @@ def headroom(
     )
 
 
+def _found(solved: Solved, limits: Limits, wanted: float, powered: bool) -> tuple["_End", "_End"]:
+    """Find how far the surroundings may shift [K], and the factor the power may take."""
+    network, rise = solved.network, solved.solution.rise
+    coldest = COLDEST_AIR_C - solved.case.surroundings.air_c
+    ends: list[_End | None] = [None, None if powered else _End(None, None)]
+    # Where power doubles there may be several states, or none: those are searched for.
+    if not network.sources.doubles:
+        met = reached(
+            network, rise, solved.inverse, _numbers(network, limits, rise, coldest)[: 1 + powered],
+            limits, wanted, CLOSE_K,
+        )  # fmt: skip
+        for place, one in enumerate(met):
+            if one is not None:
+                ends[place] = _End(one.value + place, one.limit)
+    shift, factor = ends
+    if shift is None or factor is None:
+        now = limits.margins(rise, network.reference_k)[:, 0] - wanted
+        first = _guess_factor(limits, rise, network.reference_k, wanted) if powered else 1.0
+        search = _Search(network, limits, wanted, rise[network.unknown], solved.inverse)
+        shift, factor = search.run((shift, factor), float(now.min()), coldest, first)
+    return shift, factor
+
+
+def _numbers(
+    network: Network, limits: Limits, rise: FloatArray, coldest: float
+) -> tuple[Number, Number]:
+    """The shift of the surroundings [K], and what is added to the factor on the power."""
+    reference, power = network.reference_k, network.sources.power
+    is_power = _is_power(network)[:, None]
+    scale = 1.0 / max(1.0, float(np.abs(rise[limits.node]).max()))
+    return (
+        Number(lambda shift: (reference + shift, power), 1.0, coldest, np.inf),
+        Number(
+            lambda more: (reference, np.where(is_power, power * (1.0 + more), power)),
+            scale,
+            -1.0,
+            LARGEST_FACTOR - 1.0,
+        ),
+    )
+
+
+def _is_power(network: Network) -> BoolArray:
+    """Which sources are power, not sun, shape (s,)."""
+    roles = np.array([label.role == "power" for label in network.labels], dtype=bool)
+    return np.asarray(roles[network.sources.label])
+
+
 def _upper_limits(
     solved: Solved, parts: tuple[PartFinding, ...], walls: tuple[WallFinding, ...]
-) -> _Limits | None:
+) -> Limits | None:
     places = solved.network.places
     rows: list[tuple[int, float, str]] = [
         (
@@ -96,7 +127,7 @@ def _upper_limits(
     if not rows:
         return None
     offset = float(solved.network.reference_k[0]) - solved.case.surroundings.air_c
-    return _Limits(
+    return Limits(
         np.array([row[0] for row in rows], dtype=np.intp),
         np.array([row[1] for row in rows]) + offset,
         tuple(row[2] for row in rows),
@@ -104,7 +135,7 @@ def _upper_limits(
 
 
 def _guess_factor(
-    limits: _Limits, rise: FloatArray, reference_k: FloatArray, wanted: float
+    limits: Limits, rise: FloatArray, reference_k: FloatArray, wanted: float
 ) -> float:
     own = rise[limits.node, 0]
     allowed = own + limits.margins(rise, reference_k)[:, 0] - wanted
@@ -115,13 +146,20 @@ def _guess_factor(
     return float(min(least ** (1 / _RISE_EXPONENT), LARGEST_FACTOR))
 
 
+class _End(NamedTuple):
+    """Where a search ended: the shift [K] or the factor, and what it is limited by."""
+
+    answer: float | None
+    limited_by: str | None
+
+
 class _Search:
     """The two searches: shift of the surroundings [K] and factor on the power."""
 
     def __init__(
         self,
         network: Network,
-        limits: _Limits,
+        limits: Limits,
         wanted: float,
         start: FloatArray,
         inverse: Inverse,
@@ -132,19 +170,23 @@ class _Search:
         # The last two states of either search, from which the next is foreseen.
         self.states = [[(0.0, start[:, 0])], [(1.0, start[:, 0])]]
         self.inverse = inverse
-        roles = np.array([label.role == "power" for label in network.labels], dtype=bool)
-        self.is_power = roles[network.sources.label]
+        self.is_power = _is_power(network)
         base = limits.margins(network.full_rise(start), network.reference_k)[:, 0] - wanted
         self.base = float(base.min())
         self.base_name = limits.names[int(base.argmin())]
 
-    def run(self, shift: float, coldest: float, factor: float) -> tuple["_Track", "_Track"]:
-        """Search both from their first guesses; the shift not below the coldest there may be."""
+    def run(
+        self, known: tuple[_End | None, _End | None], shift: float, coldest: float, factor: float
+    ) -> tuple[_End, _End]:
+        """Search what is not known from the first guesses, the shift not below the coldest."""
         at = self.base, self.base_name
         tracks = (
             _Track(0.0, *at, shift, coldest, np.inf, CLOSE_TO_RUNAWAY_K),
             _Track(1.0, *at, factor, 0.0, LARGEST_FACTOR, CLOSE_TO_RUNAWAY_SHARE),
         )
+        for track, end in zip(tracks, known, strict=True):
+            if end is not None:
+                track.end(*end)
         for _ in range(MOST_STEPS):
             if all(track.done for track in tracks):
                 break
@@ -157,23 +199,19 @@ class _Search:
                     tracks[index].take(float(margins[least, column]), self.limits.names[least])
                 else:
                     tracks[index].go_back()
-        return tracks
+        shifted, scaled = (_End(track.answer, track.limited_by) for track in tracks)
+        return shifted, scaled
 
     def _margins(self, values: dict[int, float]) -> tuple[FloatArray, BoolArray]:
         """Margins over the wanted ones by limit and search, and which searches have any.
 
         ``values`` are those to be tried: the shift under 0, the factor under 1.
         """
-        network, count = self.network, len(values)
+        network = self.network
         shifts = np.array([value if index == 0 else 0.0 for index, value in values.items()])
         factors = np.array([value if index == 1 else 1.0 for index, value in values.items()])
         scaled = np.where(self.is_power[:, None], factors, 1.0)
-        tried = replace(
-            network,
-            reference_k=network.reference_k + shifts,
-            fixed_rise=np.repeat(network.fixed_rise, count, axis=1),
-            sources=replace(network.sources, power=network.sources.power * scaled),
-        )
+        tried = network.varied(network.reference_k + shifts, network.sources.power * scaled)
         start = np.stack([self._foreseen(*each) for each in values.items()], axis=1)
         solution = solve_nearby(tried, start, self.inverse, _CLOSE)
         found = solution.each_converged
@@ -214,26 +252,27 @@ class _Track:
         self.done = False
         self.next = min(max(guess, low), high)
         if abs(margin) < CLOSE_K:
-            self._end(value, name)
+            self.end(value, name)
 
-    def _end(self, answer: float | None, limited_by: str | None) -> None:
+    def end(self, answer: float | None, limited_by: str | None) -> None:
+        """End the search with an answer, or without one."""
         self.answer, self.limited_by, self.done = answer, limited_by, True
 
     def take(self, margin: float, name: str) -> None:
         """Take the margin at `next`, of the limit named, and move on."""
         value, (last_value, last_margin) = self.next, self._last
         if abs(margin) < CLOSE_K:
-            self._end(value, name)
+            self.end(value, name)
             return
         slope = (margin - last_margin) / (value - last_value) if value != last_value else 0.0
         if slope >= 0:
-            self._end(None, None)
+            self.end(None, None)
             return
         self._last = (value, margin)
         moved = min(max(value - margin / slope, self._low), self._high)
         if moved == value:
             # At the end of the range and the margin still not met: no answer in reach.
-            self._end(None, None)
+            self.end(None, None)
         elif self._runaway is not None and moved >= self._runaway:
             self._halve(self._runaway)
         else:
@@ -250,6 +289,6 @@ class _Track:
         # A factor is found to a share of itself, a shift to so many kelvin.
         scale = max(value, 1.0) if self._high < np.inf else 1.0
         if runaway - value < self._close * scale:
-            self._end(value if margin > 0 else None, RUNAWAY if margin > 0 else None)
+            self.end(value if margin > 0 else None, RUNAWAY if margin > 0 else None)
         else:
             self.next = 0.5 * (value + runaway)

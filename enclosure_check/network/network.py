@@ -16,6 +16,9 @@ if TYPE_CHECKING:
 
 BoolArray = npt.NDArray[np.bool_]
 
+# Cached properties of a network that follow from its shape alone.
+_OF_SHAPE = ("unknown", "size", "_ends", "_positions", "_entries", "link_label", "outgoing")
+
 # Twice the doubled power is doubled 60 times at most: keeps an iterate that runs away finite.
 _LARGEST_EXPONENT = 60.0
 LN2 = float(np.log(2.0))
@@ -317,6 +320,24 @@ class Network:
         cold = replace(self.sources, slope=np.zeros(1), doublings=np.zeros(1))
         right = -replace(self, sources=cold).imbalance(self.fixed_rise, pulled)[self.unknown]
         return self.factor(np.concatenate((links, -links, own))).solve(right)
+
+    def varied(self, reference_k: FloatArray, power: FloatArray) -> "Network":
+        """Give the network in other surroundings and with other power, for v variants.
+
+        Parameters
+        ----------
+        reference_k
+            Temperature that rises count from, the given ones too [K], shape (v,).
+        power
+            Power of all sources [W], shape (s, v).
+        """
+        sources = replace(self.sources, power=power)
+        fixed_rise = np.repeat(self.fixed_rise, len(reference_k), axis=1)
+        varied = replace(self, reference_k=reference_k, sources=sources, fixed_rise=fixed_rise)
+        # What follows from the shape alone is not found again.
+        kept = {name: self.__dict__[name] for name in _OF_SHAPE if name in self.__dict__}
+        varied.__dict__.update(kept)
+        return varied
 
     def stirred(self, share: float) -> "Network":
         """Give the network with its inside air stirred: even within a percent from about 1000."""

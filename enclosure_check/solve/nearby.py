@@ -6,13 +6,14 @@ methods for solving nonlinear simultaneous equations", Mathematics of Computatio
 Variants that do not get there are left to Newton.
 """
 
+from contextlib import suppress
 from functools import cached_property
 
 import numpy as np
 
 from enclosure_check.network.linear import DenseFactor, Factor
 from enclosure_check.network.links import FloatArray
-from enclosure_check.network.network import Network
+from enclosure_check.network.network import BoolArray, Network
 from enclosure_check.records import dataclass, replace
 from enclosure_check.solve.steady import (
     Solution,
@@ -38,11 +39,12 @@ class Inverse:
     factorised.
     """
 
-    def __init__(self, network: Network, rise: FloatArray) -> None:
+    def __init__(self, network: Network | None, rise: FloatArray) -> None:
         self._network, self._rise = network, rise
 
     @cached_property
     def _factor(self) -> Factor:
+        assert self._network is not None  # see `of`
         return self._network.factor(self._network.derivatives(self._rise[:, :1])[:, 0])
 
     @cached_property
@@ -56,22 +58,46 @@ class Inverse:
             return self._factor.solve(right)
         return np.asarray(self._matrix @ right)
 
+    def shared(self) -> "Inverse":
+        """Give it without its network, as other processes can be told of it."""
+        told = Inverse(None, self._rise)
+        with suppress(np.linalg.LinAlgError):  # nothing is found from it then
+            if self._matrix is not None:
+                told._matrix = self._matrix
+        return told
+
+    def of(self, network: Network) -> "Inverse":
+        """Give it for a network of the same shape: its own where this is not inverted outright."""
+        return self if "_matrix" in self.__dict__ else Inverse(network, self._rise)
+
 
 @dataclass(frozen=True, eq=False)
 class Known:
     """A steady state that others of networks of the same shape are found from."""
 
-    network: Network
+    node_labels: tuple[str, ...]
+    fixed: BoolArray
+    put_in_w: float
     solution: Solution
     inverse: Inverse
 
     def serves(self, network: Network) -> bool:
         """Whether a network has the same nodes and about the same heat put in."""
-        own = self.network
-        if own.node_labels != network.node_labels or not np.array_equal(own.fixed, network.fixed):
+        if self.node_labels != network.node_labels or not np.array_equal(self.fixed, network.fixed):
             return False
-        put_in, before = (float(np.abs(each.sources.power).sum()) for each in (network, own))
-        return before / _LIKE_HEAT < put_in < before * _LIKE_HEAT
+        return self.put_in_w / _LIKE_HEAT < _put_in(network) < self.put_in_w * _LIKE_HEAT
+
+    def shared(self) -> "Known":
+        """Give it as other processes can be told of it."""
+        return replace(self, inverse=self.inverse.shared())
+
+
+def _put_in(network: Network) -> float:
+    return float(np.abs(network.sources.power).sum())
+
+
+def _known(network: Network, solution: Solution, inverse: Inverse) -> Known:
+    return Known(network.node_labels, network.fixed, _put_in(network), solution, inverse)
 
 
 def solve_known(network: Network, known: Known | None) -> Known:
@@ -82,19 +108,19 @@ def solve_known(network: Network, known: Known | None) -> Known:
     """
     if known is not None and known.serves(network):
         start = known.solution.rise[network.unknown]
-        solution = solve_nearby(network, start, known.inverse)
-        return Known(network, solution, known.inverse)
+        inverse = known.inverse.of(network)
+        return _known(network, solve_nearby(network, start, inverse), inverse)
     calm = _without_heat(network)
     if calm is not None:
-        return Known(network, calm, Inverse(network, calm.rise))
+        return _known(network, calm, Inverse(network, calm.rise))
     near = approach(network, _FIRST_STEPS)
     inverse = Inverse(network, near.rise)
     if near.converged:
-        return Known(network, near, inverse)
+        return _known(network, near, inverse)
     x = near.rise[network.unknown]
     if not np.isfinite(x).all():
         x = np.zeros_like(x)
-    return Known(network, solve_nearby(network, x, inverse, taken=int(near.steps[0])), inverse)
+    return _known(network, solve_nearby(network, x, inverse, taken=int(near.steps[0])), inverse)
 
 
 def _without_heat(network: Network) -> Solution | None:
@@ -152,14 +178,36 @@ def solve_nearby(
             break
         x, state, steps = x + move, trial, steps + ~done
         done = state.balanced(options)
-        # Broyden's update in the form that keeps only steps: s_{k+1} from s_0..s_k.
-        following = -inverse.apply(state.residual)
-        for last, after in history:
-            size = np.maximum(np.sum(last * last, axis=0), 1e-300)
-            following = following + after * (np.sum(last * following, axis=0) / size)
-        size = np.maximum(np.sum(move * move, axis=0), 1e-300)
-        following = following / np.maximum(1.0 - np.sum(move * following, axis=0) / size, 0.1)
-        history.append((move, following))
-        step = following
+        step, history = following_step(-inverse.apply(state.residual), move, history)
     solution = solve_steady(network, start, options)
     return replace(solution, steps=solution.steps + steps)
+
+
+def following_step(
+    plain: FloatArray, move: FloatArray, history: list[tuple[FloatArray, FloatArray]]
+) -> tuple[FloatArray, list[tuple[FloatArray, FloatArray]]]:
+    """Better a step of the known inverse by what the steps before it did, shape (u, v).
+
+    Broyden's update in the form that keeps only steps: s_{k+1} from s_0..s_k.
+
+    Parameters
+    ----------
+    plain
+        The step of the known inverse alone.
+    move
+        The last step, as it was taken.
+    history
+        Steps before it, each with the one that followed.
+
+    Returns
+    -------
+    tuple
+        The step, and the history with the last one.
+    """
+    following = plain
+    for last, after in history:
+        size = np.maximum(np.sum(last * last, axis=0), 1e-300)
+        following = following + after * (np.sum(last * following, axis=0) / size)
+    size = np.maximum(np.sum(move * move, axis=0), 1e-300)
+    following = following / np.maximum(1.0 - np.sum(move * following, axis=0) / size, 0.1)
+    return following, [*history, (move, following)]

@@ -2,7 +2,11 @@
 
 import pytest
 from support.cases import Data, board, box, checked, part, patched, solved
+from support.reports import SAMPLES
 
+from enclosure_check.check import solve_case
+from enclosure_check.description.load import load_document
+from enclosure_check.findings import headroom
 from enclosure_check.findings.assess import assess
 from enclosure_check.findings.headroom import CLOSE_K, RUNAWAY
 
@@ -248,3 +252,36 @@ def test_a_limit_below_the_runaway_is_found_all_the_same(leaky):
 def test_headroom_is_that_of_its_own_case():
     answer = solved(WARM)
     assert assess(answer).headroom == checked(WARM).headroom
+
+
+# Found at once, or searched for -------------------------------------------------------------
+
+
+@pytest.mark.parametrize("path", SAMPLES, ids=[path.stem for path in SAMPLES])
+def test_what_is_found_with_its_state_is_what_a_search_finds(path, monkeypatch):
+    case = load_document(str(path)).cases()[0]
+    answer = solve_case(case)
+    found = assess(answer).headroom
+    asked: list[int] = []
+
+    def nothing_found(network, rise, inverse, numbers, *_):
+        asked.append(len(numbers))
+        return [None] * len(numbers)
+
+    monkeypatch.setattr(headroom, "reached", nothing_found)
+    searched = assess(answer).headroom
+    assert asked == [2]
+    assert (found.air_limited_by, found.power_limited_by) == (
+        searched.air_limited_by,
+        searched.power_limited_by,
+    )
+    assert found.highest_air_c == pytest.approx(searched.highest_air_c, abs=2 * CLOSE_K)
+    assert found.power_pct == pytest.approx(searched.power_pct, abs=0.2)
+
+
+def test_where_power_doubles_it_is_searched_for(monkeypatch):
+    def refused(*_):
+        raise AssertionError
+
+    monkeypatch.setattr(headroom, "reached", refused)
+    assert checked(LEAKY).headroom.air_limited_by == RUNAWAY

@@ -42,7 +42,7 @@ def wall(found: dict[str, Any], which: str) -> dict[str, Any]:
 def solved(name: str) -> Solved:
     """A document without conditions, solved, for what no report has."""
     (case,) = load_document(str(DOCUMENTS / f"{name}.yaml")).cases()
-    return solve_case(case)[0]
+    return solve_case(case)
 
 
 def board_band_k(name: str, board: str) -> float:
