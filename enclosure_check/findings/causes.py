@@ -14,6 +14,10 @@ Unit = Literal["%", "K", "-", "mm"]
 
 PRACTICE = "common practice, no source"
 JUDGEMENT = "judgement of this project"
+OWN = (
+    "twice the root mean square of {} deviations in numerical experiments made for this project: "
+    "see accuracies of our own forms"
+)
 
 
 @dataclass(frozen=True)
@@ -43,10 +47,18 @@ CAUSES: dict[str, Row] = {
     "wind_films": _law("flat_plate_in_wind", "film law of the wind outside"),
     "top_share": Row(
         "share of the uppermost wall in the film outside",
-        35.0,
+        45.0,
         "%",
-        "numerical experiment made for this project (see box_shelter in the register)",
+        OWN.format(5),
         "the other walls give up what it gains",
+    ),
+    "transition": Row(
+        "laminar or turbulent flow along upright faces",
+        115.0,
+        "%",
+        "of the distance between Churchill & Chu's two laws where the flow may be either: evenly "
+        "likely within it (JCGM 100:2008, 4.3.7), 2/sqrt(3) of it",
+        "all upright films of Ra 1e8 to 1e10, outside and inside",
     ),
     "outer_gap": _law("elsherbiny_vertical_gap", "law of the gap behind the {name} wall"),
     "film_0": _law("churchill_chu_1975_vertical", "film law of upright surfaces inside"),
@@ -69,6 +81,41 @@ CAUSES: dict[str, Row] = {
         "numerical experiments made for this project: excess of the air at mid height and at the "
         "top against ours",
         "one law, one cause",
+    ),
+    "gap_films": Row(
+        "films and gaps together where faces lie close",
+        21.0,
+        "%",
+        OWN.format(2),
+        "all gaps, as far as two films fill them",
+    ),
+    "board_rim": Row(
+        "share of their rim in the films of boards",
+        80.0,
+        "%",
+        OWN.format(2),
+        "all boards; its sides give up what a rim gains",
+    ),
+    "board_top": Row(
+        "share of the unstable side in the films of flat boards",
+        68.0,
+        "%",
+        OWN.format(2),
+        "all flat boards; the other faces give up what it gains",
+    ),
+    "air_below": Row(
+        "air in the lower half of the inside",
+        9.0,
+        "%",
+        "of what warms the air over what cools it: " + OWN.format(15),
+        "readings there, and the air that films there give heat to",
+    ),
+    "air_above": Row(
+        "air in the upper half of the inside",
+        15.0,
+        "%",
+        "of what warms the air over what cools it: " + OWN.format(15),
+        "readings there, and the air that films there give heat to",
     ),
     "patches": Row("radiation inside by coarse patches", 3.0, "%", JUDGEMENT, "the whole inside"),
     "spreading": Row(

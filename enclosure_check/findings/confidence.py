@@ -56,9 +56,13 @@ class Bands:
     @cached_property
     def gradient(self) -> FloatArray:
         """Derivatives of the temperatures by every knob, shape (knobs, t)."""
-        return self.knobs.gradient(
-            self.solved.solution.rise, self.adjoint.weight, self.adjoint.derivatives
-        )
+        solved, at = self.solved, self.adjoint
+        return self.knobs.gradient(solved.solution.rise, at.weight, at.derivatives, solved.heat_w)
+
+    @cached_property
+    def readings(self) -> FloatArray:
+        """What readings of the air move apart from its nodes, shape (knobs, t)."""
+        return self.knobs.readings(self.adjoint.nodes, self.gradient)
 
     @cached_property
     def turns(self) -> FloatArray:
@@ -75,7 +79,7 @@ class Bands:
 
         Those that turn knobs first, then the others.
         """
-        by_knobs = self.turns @ self.gradient
+        by_knobs = self.turns @ (self.gradient + self.readings)
         return np.concatenate((by_knobs, *(effect[None] for _, effect in self.others)))
 
     @cached_property

@@ -7,6 +7,7 @@ from enclosure_check.description.frames import AXIS, OPPOSITE, Vector
 from enclosure_check.description.names import WALL_NAMES, WallName
 from enclosure_check.findings.solved import Solved
 from enclosure_check.findings.turning import Key, Turns
+from enclosure_check.findings.turning_inside import outside_doubt, turn_inside_air
 from enclosure_check.network.builder import LEAST_RESISTANCE
 from enclosure_check.network.by_sheet import sub_cells_by_sheet
 from enclosure_check.network.covering import shared
@@ -82,17 +83,18 @@ class _Collector(Turns):
         self._given()
 
     def _box_film(self, number: int, kind: BoxFilm) -> None:
-        heat = kind.evaluate(self.solved.solution.rise, self.network.reference_k)[:, 0]
-        by_wall = np.bincount(kind.surface, heat, 6)
+        by_wall = np.bincount(kind.surface, self.heat[number], 6)
         top = int(np.argmax(kind.geometry.up_cosine))
         beside = float(np.abs(by_wall).sum() - abs(by_wall[top]))
         shared = kind.geometry.up_cosine[top] > _UP_COSINE and beside > 0 and by_wall[top] != 0
         if isinstance(kind, BoxFilmInWind):
             self._in_wind(number)
+        doubt = outside_doubt(kind, self.solved.solution.rise, self.network.reference_k)
         for label, knob, _ in self.knobs_by_label(number):
             index = WALL_NAMES.index(_wall(label))
             if not isinstance(kind, BoxFilmInWind):
                 self.turn(("outside_films",), "outside_films", "link", knob)
+            self.turn(("transition",), "transition", "link", knob, float(doubt[index]))
             if shared:
                 given_up = -abs(by_wall[top]) / beside
                 share = 1.0 if index == top else given_up
@@ -125,15 +127,10 @@ class _Collector(Turns):
         knob = self.knob(number, np.arange(films, films + straights))
         self.turn(("gaps_inside",), "gaps_inside", "link", knob)
         self.turn(("streams",), "streams", "link", self.knob(number, lifts))
-        law = kind.audit(self.solved.solution.rise, self.network.reference_k).law[:, 0]
-        for code in range(4):
-            if (law == code).any():
-                self.films.append((law == code).astype(np.float64))
-                self.turn((f"film_{code}",), f"film_{code}", "film", len(self.films) - 1)
+        turn_inside_air(self, kind, self.heat[number], knob)
         on_boards = np.array([self._carries(name) for name in kind.surfaces.names], dtype=float)
         if on_boards.any():
-            self.films.append(on_boards)
-            self.turn(("board_films",), "board_films", "film", len(self.films) - 1)
+            self.turn_film(("board_films",), "board_films", kind, films=on_boards)
 
     def _carries(self, surface: str) -> bool:
         """Tell whether a surface inside is a board that carries parts, or a part on one."""

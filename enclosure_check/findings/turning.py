@@ -39,7 +39,11 @@ class Turns:
         self.count = 0
         self.link = [np.full(len(kind.a), -1, dtype=np.intp) for kind in self.network.kinds]
         self.parameter: list[tuple[int, str]] = []
-        self.films: list[FloatArray] = []
+        self.inside: list[tuple[FloatArray, FloatArray]] = []
+        """Film knobs: see `Knobs.films` and ``offsets``."""
+        ends = np.cumsum([len(kind.a) for kind in self.network.kinds])[:-1]
+        self.heat: list[FloatArray] = np.split(solved.heat_w, ends)
+        """Through the links of each kind [W], shapes (m,)."""
         self.finishes: dict[str, int] = {}
         self.place = {label: index for index, label in enumerate(self.network.labels)}
         self.finish_of_label = np.full(len(self.network.labels), -1, dtype=np.intp)
@@ -72,6 +76,23 @@ class Turns:
         self.count += 1
         return self.count - 1
 
+    def turn_film(
+        self,
+        key: Key,
+        family: str,
+        kind: InsideAir,
+        *,
+        films: FloatArray | None = None,
+        offsets: FloatArray | None = None,
+    ) -> None:
+        """Let a quantity turn a new film knob; see `Knobs.films` for what it turns."""
+        if films is None:
+            films = np.zeros(len(kind.surfaces.node))
+        if offsets is None:
+            offsets = np.zeros(len(kind.air))
+        self.inside.append((films, offsets))
+        self.turn(key, family, "film", len(self.inside) - 1)
+
     def knobs_by_label(self, kind: int) -> Iterator[tuple[LinkLabel, int, float]]:
         """Give every label of a kind with a new knob on its links, and their conductance."""
         links = self.network.kinds[kind]
@@ -98,15 +119,15 @@ class Turns:
 
     def knobs(self) -> Knobs:
         """Give the knobs found."""
-        surfaces = next(
-            (len(kind.factor) for kind in self.network.kinds if isinstance(kind, InsideAir)), 0
-        )
+        nothing = [np.zeros((0, 0))] * 2
+        films, offsets = [np.stack(each) for each in zip(*self.inside, strict=True)] or nothing
         return Knobs(
             self.network,
             tuple(self.link),
             self.count,
             tuple(self.parameter),
-            np.array(self.films).reshape(len(self.films), surfaces),
+            films,
+            offsets,
             emitters_of(self.network, self.finish_of_label, len(self.finishes)),
             np.array(self.source, dtype=np.intp),
             np.array(self.node, dtype=np.intp),

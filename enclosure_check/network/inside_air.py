@@ -83,17 +83,21 @@ class InsideAir(InsideAirHeat):
     def slopes(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
         """Derivatives of `evaluate` in the order of `pattern` [W/K], shape (d, v)."""
         variants = rise.shape[1]
-        factors = np.broadcast_to(self.factor, (len(self.factor), variants)).T[:, :, None]
+        turned = (_columns(each, variants) for each in (self.factor, self.offset))
         return np.concatenate(
             [
-                self._slopes_of_one(rise[:, v : v + 1], reference_k[v : v + 1], factor)
-                for v, factor in enumerate(factors)
+                self._slopes_of_one(rise[:, v : v + 1], reference_k[v : v + 1], *own)
+                for v, own in enumerate(zip(*turned, strict=True))
             ],
             axis=1,
         )
 
     def _slopes_of_one(
-        self, rise: FloatArray, reference: FloatArray, factor: FloatArray
+        self,
+        rise: FloatArray,
+        reference: FloatArray,
+        factor: FloatArray,
+        offset: FloatArray,
     ) -> FloatArray:
         n = len(self.air)
         mean, layer = rise[self.surfaces.node], rise[self.air]
@@ -120,7 +124,7 @@ class InsideAir(InsideAirHeat):
         by_surface = film[:, [0, 1, 0, *range(2, n + 2)]]
         side = self._side_films(by_surface, keep[:, own], keep[:, facing])
         change = (side[:, 1:] - side[:, :1]) / DIFFERENCE_K
-        difference = rise[self.cell] - self.hat @ layer
+        difference = rise[self.cell] - self.hat @ (layer + offset)
         flow = self.area * difference
         entering = side[self.side, :1] * flow
         # Derivatives of the film heat by cell, own mean, facing mean, air nodes; (e, n + 3).
@@ -241,3 +245,9 @@ class InsideAir(InsideAirHeat):
             Conductance between neighbours over that of all films at a nominal coefficient [-].
         """
         return replace(self, stirring=share * NOMINAL_FILM * float(self.area.sum()))
+
+
+def _columns(value: FloatArray | float, variants: int) -> FloatArray:
+    """Give a parameter variant by variant, each as a column, shape (variants, ..., 1)."""
+    array = np.atleast_2d(value)
+    return np.broadcast_to(array, (len(array), variants)).T[:, :, None]

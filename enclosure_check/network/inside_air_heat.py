@@ -51,6 +51,9 @@ class InsideAirHeat:
         Entries that carry heat straight across: cells, pair, area [m2] (q, 1).
     factor
         Multiplies every film and straight conductance of a surface; shape (s, 1).
+    offset
+        How much warmer than each air node the air is to which films give heat there; streams, and
+        the coefficients of films, see the node; shape (n, 1), or one for all [K].
     stirring
         Conductance added between neighbouring air nodes [W/K]; none in an answer.
     """
@@ -77,6 +80,7 @@ class InsideAirHeat:
     mixing_label: int
     pressure_pa: float
     factor: FloatArray
+    offset: FloatArray | float = 0.0
     stirring: float = 0.0
 
     PARAMETERS: ClassVar[tuple[str, ...]] = ("factor",)
@@ -213,7 +217,7 @@ class InsideAirHeat:
         film = self.factor * self._films(mean, layer, reference_k).coefficient
         keep, straight = self._pair_values(film, film, mean, mean, layer, reference_k)
         entering = self._side_films(film, keep, keep)[self.side] * self.area
-        entering = entering * (rise[self.cell] - self.hat @ layer)
+        entering = entering * (rise[self.cell] - self.hat @ (layer + self.offset))
         return self._links(rise, layer, mean, entering, straight)
 
     def _pair_values(

@@ -21,6 +21,7 @@ from enclosure_check.network.links import (
     Radiation,
 )
 from enclosure_check.network.network import Network
+from enclosure_check.network.site import AIR_SHARES
 from enclosure_check.records import dataclass, replace
 
 # Steps of the differenced derivatives by a factor on films [-], and by the air's temperature [K].
@@ -108,8 +109,9 @@ class Knobs:
         How many link knobs there are.
     parameter
         Kind of links, by number, and the parameter of it that each parameter knob turns.
-    films
-        Which surfaces inside each film knob turns, shape (films, s).
+    films, offsets
+        What each film knob turns inside, and how far: factors on the films of surfaces, shape
+        (films, s), and how much warmer the air at each air node is to films [K], shape (films, n).
     emitters
         What each finish knob turns.
     source
@@ -125,6 +127,7 @@ class Knobs:
     count: int
     parameter: tuple[tuple[int, str], ...]
     films: FloatArray
+    offsets: FloatArray
     emitters: Emitters
     source: IntArray
     node: IntArray
@@ -140,7 +143,13 @@ class Knobs:
 
     # Gradient ----------------------------------------------------------------------------
 
-    def gradient(self, rise: FloatArray, weight: FloatArray, derivatives: FloatArray) -> FloatArray:
+    def gradient(
+        self,
+        rise: FloatArray,
+        weight: FloatArray,
+        derivatives: FloatArray,
+        heat: FloatArray | None = None,
+    ) -> FloatArray:
         """Derivatives of temperatures by every knob, shape (knobs, t).
 
         By factors as per 1 (100 %), by emissivities as per 1, by temperatures as per K.
@@ -153,6 +162,8 @@ class Knobs:
             Adjoint weights of the temperatures, see `solve.adjoint`, shape (n, t).
         derivatives
             Of all links there, kinds one after the other in the order of their patterns, (d,).
+        heat
+            Through all links there, where it is known [W], shape (links,).
         """
         network, size = self.network, self.network.size
         parameters, films, finishes, sources, nodes, count = self.starts
@@ -165,7 +176,7 @@ class Knobs:
             total -= np.bincount(flat + kind.b[kept], heat, many * size)
             pushed[first : first + many] += total.reshape(many, size)
 
-        heats = network.heat(rise)
+        heats = network.heat(rise) if heat is None else heat[:, None]
         ends = np.cumsum([len(kind.a) for kind in network.kinds])[:-1]
         by_kind = np.split(heats[:, 0], ends)
         for knob, kind, heat in zip(self.link, network.kinds, by_kind, strict=True):
@@ -203,8 +214,13 @@ class Knobs:
 
     def _by_films(self, kind: InsideAir, rise: FloatArray) -> FloatArray:
         """Heat by each film knob [W], shape (films, m)."""
-        factor = np.concatenate((kind.factor, kind.factor * (1.0 + _STEP * self.films.T)), axis=1)
-        many = kind.with_parameter("factor", factor)
+        still = np.zeros(len(self.films) + 1)
+        still[1:] = _STEP
+        films, offsets = (
+            np.concatenate((turned[:1], turned)).T * still for turned in (self.films, self.offsets)
+        )
+        factor = kind.factor * (1.0 + films)
+        many = replace(kind, factor=factor, offset=offsets)
         copies = np.repeat(rise, factor.shape[1], axis=1)
         heat = many.evaluate(copies, np.repeat(self.network.reference_k, factor.shape[1]))
         return np.asarray((heat[:, 1:] - heat[:, :1]).T / _STEP)
@@ -236,6 +252,30 @@ class Knobs:
                 pushed -= np.bincount(flat + kind.b[link], slopes, pushed.size)
         return np.asarray(-pushed.reshape(len(self.node), size) @ weight)
 
+    def readings(self, nodes: IntArray, gradient: FloatArray) -> FloatArray:
+        """What to add to derivatives of air nodes' temperatures for those of their readings.
+
+        An offset of the air that films see is how far off a reading of the air is, whatever the
+        balance makes of it: a reading's derivative is that of the offset itself. Zero for all else.
+
+        Parameters
+        ----------
+        nodes
+            The nodes whose temperatures are asked for, shape (t,).
+        gradient
+            Derivatives of their temperatures, see `gradient`, shape (knobs, t).
+        """
+        added = np.zeros_like(gradient)
+        kind = next((kind for kind in self.network.kinds if isinstance(kind, InsideAir)), None)
+        offset = np.flatnonzero(self.offsets.any(axis=1))
+        if kind is not None and len(offset):
+            air = self.network.shown(nodes)[kind.air]
+            # Their mean is a node of the balance.
+            air[:, nodes == self.network.places.air] = AIR_SHARES[:, None]
+            rows = self.starts[1] + offset
+            added[rows] = self.offsets[offset] @ air - gradient[rows] * air.sum(axis=0)
+        return added
+
     # Moved networks ----------------------------------------------------------------------
 
     def moved(self, amounts: FloatArray) -> Network:
@@ -252,10 +292,14 @@ class Knobs:
         parameters, films, finishes, sources, nodes, _ = self.starts
         variants = amounts.shape[1]
         padded = np.concatenate((amounts[: self.count], np.zeros((1, variants))))
-        by_film = np.exp(self.films.T @ amounts[films:finishes])
+        by_film = amounts[films:finishes]
         by_finish = np.concatenate((amounts[finishes:sources], np.zeros((1, variants))))
         moved: dict[type, Callable[[Any], LinkKind]] = {
-            InsideAir: lambda kind: kind.with_parameter("factor", kind.factor * by_film),
+            InsideAir: lambda kind: replace(
+                kind,
+                factor=kind.factor * np.exp(self.films.T @ by_film),
+                offset=self.offsets.T @ by_film,
+            ),
             Radiation: lambda kind: kind.with_parameter(
                 "emissivity", _grey(kind.emissivity + by_finish[self.emitters.finish])
             ),

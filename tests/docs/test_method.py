@@ -7,6 +7,7 @@ import re
 
 import pytest
 from fluids.filters import square_edge_screen
+from published import accuracies
 from published import experiment_vented as vented
 from published import experiments_inside as inside
 
@@ -145,6 +146,11 @@ def test_defaults_of_uncertainty_are_those_of_the_code(method):
         for row in CAUSES.values()
     ]
     assert method.table("what", "half-width", "rests on", "moves together") == expected
+
+
+def test_accuracies_of_our_own_forms(method):
+    rows = method.table("form", "percent of", "deviations")
+    assert rows == accuracies.table()
 
 
 # Outside: boxes against the numerical experiments -------------------------------------------

@@ -25,6 +25,8 @@ from published.rows_surfaces import surface_rows
 
 COMMAND = "python tests/published/evidence.py > docs/evidence.md"
 WANTED_PCT = 90.0
+# Marks a row that an accuracy was found from.
+OWN = "†"
 RUNGS = {
     1: (
         "Laws and properties",
@@ -83,6 +85,9 @@ box is here**.
 - *band*: half-width of our band at about 95 %, in the unit of the row. *inside*: theirs lies in ours
   with its band. What theirs is uncertain by is not added, but for a range or a printed rounding that
   the table shows.
+- {OWN}: the accuracy that the band rests on was found from this row itself among others, by
+  [one rule for all](method.md#accuracies-of-our-own-forms): **such a row is no independent check of its
+  band**, only of its best estimate.
 """
 
 NOT_HERE = """## What is not here
@@ -138,7 +143,7 @@ def line(row: Row) -> str:
     cells = (
         row.case,
         f"{row.source.short}, {row.place}; {SEEN[row.seen]}",
-        row.quantity,
+        row.quantity + (f" {OWN}" if row.own else ""),
         theirs(row),
         digits(row.ours),
         signed(row.error_pct),
@@ -199,6 +204,13 @@ def verdict(rows: Sequence[Row]) -> list[str]:
             f"- Wanted: {WANTED_PCT:.0f} % of the rows of kind *{kind}* inside the band. "
             f"{found.inside} of {found.rows} are, {found.share_pct:.0f} %: {reached}."
         )
+        if any(row.own for row in rows if row.kind == kind):
+            others = count(row for row in rows if row.kind == kind and not row.own)
+            lines.append(
+                f"  {found.rows - others.rows} of them are marked {OWN}: their bands were found so that "
+                f"most lie inside. Of the {others.rows} others {others.inside} do, "
+                f"{others.share_pct:.0f} %."
+            )
     own = count(row for row in rows if row.kind == "worked example" and row.rung in (2, 4))
     lines.append(
         f"- Worked examples where a choice of law or a model counts (rungs 2 and 4): {own.inside} "

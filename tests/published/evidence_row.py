@@ -47,6 +47,8 @@ class Row:
     """What the error is a share of; their number when left out."""
     flag: bool = False
     """The source says only that ours has to be above ``theirs``."""
+    own: bool = False
+    """The accuracy that its band rests on was found from this row itself, among others."""
 
     @property
     def middle(self) -> float:
@@ -94,6 +96,7 @@ def row(
     why: str = "",
     scale: float | None = None,
     flag: bool = False,
+    own: bool = False,
 ) -> Row:
     """Make a row; the band as such, or in percent of our number."""
     value = float(ours)  # type: ignore[arg-type]  # a number or an array of one
@@ -101,7 +104,7 @@ def row(
     width = band if band is not None else abs(value) * (pct or 0.0) / 100.0
     span = theirs if isinstance(theirs, tuple) else (float(theirs), float(theirs))
     return Row(
-        rung, kind, case, source, place, seen, quantity, span, value, width, why, scale, flag
+        rung, kind, case, source, place, seen, quantity, span, value, width, why, scale, flag, own
     )
 
 

@@ -90,6 +90,12 @@ CASES = (
     ),
 )  # fmt: skip
 
+FACES_W = {
+    "C": {"bottom side": 1.43, "top side": 1.04, "rim": 0.24},
+    "D": {"bottom side": 0.616, "top side": 0.407, "rim": 0.159},
+}
+"""Heat of the faces of flat boards."""
+
 
 @dataclass(frozen=True)
 class Ours:

@@ -8,10 +8,12 @@ from typing import Any
 
 import numpy as np
 from published import sources as by
-from published.command import board_band_k, condition, reported, solved, wall
+from published.command import board_band_k, condition, reported, wall
 from published.evidence_row import Kind, Row, Seen, Source, accuracy, row
-from published.slices import slice_of_vented
+from published.rows_surfaces import OVEN_EDGE_M, OVEN_FILM_K, OVEN_RISE_K, doubt_pct
+from published.vented_slices import F_SLICES_K, slice_of_f
 
+from enclosure_check.findings.causes import CAUSES
 from enclosure_check.physics.air import GRAVITY, air
 
 STRAIGHT = "the methods take all heat through the air; here a painted plate radiates most of it"
@@ -41,11 +43,11 @@ def mean_air(found: dict[str, Any]) -> tuple[float, float]:
 def _row(
     kind: Kind, case: str, source: Source, place: str, seen: Seen, quantity: str,
     theirs: float | tuple[float, float], found: tuple[float, float], why: str = "",
-    scale: float | None = None,
+    scale: float | None = None, own: bool = False,
 ) -> Row:  # fmt: skip
     ours, band = found
     return row(4, kind, case, source, place, seen, quantity, theirs, ours, band=band, why=why,
-               scale=scale)  # fmt: skip
+               scale=scale, own=own)  # fmt: skip
 
 
 def isothermal_rows() -> list[Row]:
@@ -76,12 +78,15 @@ def oven_rows() -> list[Row]:
     """one side and the top of an oven, as they stand on a box."""
     found = condition("oven")
     side, top = wall(found, "left")["convection_w"], wall(found, "top")["convection_w"]
+    shelter = accuracy("box_shelter")
+    side_pct = np.hypot(shelter, doubt_pct(OVEN_RISE_K, OVEN_FILM_K, OVEN_EDGE_M))
+    top_pct = np.hypot(shelter, CAUSES["top_share"].half_width)
     return [
         _row("worked example", "side of an oven 2 x 2 ft, 40 F", by.JANNA, "example 8.5",
-             "seen", "heat, W", 27.5, (side, side * accuracy("box_shelter") / 100),
+             "seen", "heat, W", 27.5, (side, float(side * side_pct / 100)),
              "the book has a plate alone; on a box a side gives 0.9 of that"),
         _row("worked example", "top of an oven 2 x 2 ft, 40 F", by.JANNA, "example 8.5",
-             "seen", "heat, W", 40.4, (top, top * 0.35),
+             "seen", "heat, W", 40.4, (top, float(top * top_pct / 100)),
              "the book has a plate alone; on a box the top stands in the plume of the sides"),
     ]  # fmt: skip
 
@@ -160,15 +165,12 @@ def _outlet(found: dict[str, Any], name: str) -> tuple[float, float]:
     return opening["air_out_c"] - found["surrounding_air_c"], band
 
 
-_F_INSIDE = (0.100, 0.152, 0.254)
-_F_BOARD = {"along": 0.140, "thickness": 0.002, "low": 0.027, "high": 0.227}
 _F_STEADY = "ours warms steadily up the box; theirs stays nearly cold to mid height"
 _F_WHY = {
     0.5: _F_STEADY,
     0.75: _F_STEADY,
     0.9: "the plume over the board is not counted in our slice",
 }
-_F_HEIGHTS = ((0.1, 0.43), (0.25, 2.37), (0.5, 3.76), (0.75, 12.8), (0.9, 25.1))
 
 
 def _head(found: dict[str, Any]) -> tuple[float, float]:
@@ -195,17 +197,18 @@ def vented_rows() -> list[Row]:
              "board, mean rise, K", 34.9, (board, board_band_k("vented_board", "board")),
              "our air beside the upper half of the board is warmer than theirs, and so is the board"),
         _row("numerical experiment", f"F: {about}", by.EXPERIMENT, "F", "seen",
-             "air, mean rise, K", 8.35, mean_air(found)),
+             "air, mean rise, K", 8.35, mean_air(found), own=True),
         _row("numerical experiment", f"F: {about}", by.EXPERIMENT, "F", "seen",
-             "head of the air between the slots, m2/s2", 0.0532, _head(found)),
+             "head of the air between the slots, m2/s2", 0.0532, _head(found),
+             own=True),
     ]  # fmt: skip
-    for share, theirs in _F_HEIGHTS:
+    for share, theirs in F_SLICES_K.items():
         _, band = air_at(found, share)
-        ours = slice_of_vented(solved("vented_board"), _F_INSIDE, _F_BOARD, share)
+        ours = slice_of_f(share)
         rows.append(
             _row("numerical experiment", f"F: {about}", by.EXPERIMENT, "F", "seen",
                  f"slice of air at {share:g} of the height, rise, K", theirs, (ours, band),
-                 _F_WHY.get(share, ""), scale=23.05)
+                 _F_WHY.get(share, ""), scale=23.05, own=True)
         )  # fmt: skip
     for which, case, theirs in (
         ("w20", "20 W, 20 cm2 each, 0.25 m", 30.19),

@@ -1,40 +1,42 @@
 """Rung 4: numerical experiments made for this project, X outside and B, C, D inside.
 
-Bands: of faces and shares the accuracy that the register states; of totals and air what the
-program's bands say of the temperatures, with the experiments' own numbers exact.
+Bands: of faces and shares the accuracies of our own forms; of totals and air what the program's
+bands say of the temperatures, with the experiments' own numbers exact.
 """
 
 import numpy as np
 from published import sources as by
+from published.accuracies import NARROW, accuracies
 from published.evidence_row import Row, accuracy, row
-from published.experiments_inside import CASES, HEIGHTS, Sealed, ours, solved
+from published.experiments_inside import CASES, FACES_W, HEIGHTS, Sealed, ours, solved
 from published.experiments_outside import CASES as BOXES
 from published.experiments_outside import parts
 from published.faces import heat_by_face
 
 from enclosure_check.findings.confidence import bands
 
-# By the register's basis of `box_shelter` [%], and of `streams_in_layers` [-].
-FACES_PCT = {"top": 35.0, "sides": 12.0, "bottom": 12.0}
-SHARE = 0.08
 BOARD_RISE_K = 20.0
 
-_BOX_WHY = {("X1 cube", "top"): "the top alone is known to 20 %; one shelter factor for all shapes"}
+
+def _with(law: str, form: str) -> float:
+    """Accuracy of a law and of how one of our forms shares its film out, together [%]."""
+    return float(np.hypot(accuracy(law), accuracies()[form].half_width_pct))
 
 
 def outside_rows() -> list[Row]:
     """Heat of isothermal boxes, X: total and by faces."""
     rows = []
+    sides = accuracies()["faces"].half_width_pct
+    widths = {"top": _with("box_shelter", "top_share"), "sides": sides, "bottom": sides}
     for case in BOXES:
         found = parts(case)
         for face in ("total", "top", "sides", "bottom"):
             theirs = getattr(case, f"{face}_w")
             if theirs is not None:
-                pct = FACES_PCT.get(face, accuracy("box_shelter"))
+                pct = widths.get(face, accuracy("box_shelter"))
                 rows.append(
                     row(4, "numerical experiment", case.name, by.EXPERIMENT, "X", "seen",
-                        f"{face}, W", theirs, found[face], pct=pct,
-                        why=_BOX_WHY.get((case.name, face), ""))
+                        f"{face}, W", theirs, found[face], pct=pct, own=face != "total")
                 )  # fmt: skip
     return rows
 
@@ -49,21 +51,11 @@ def _theirs(case: Sealed) -> dict[str, float]:
     }
 
 
-# Heat of the sides of flat boards and their rim, with the accuracy of their film.
-_DOWN, _UP, _RIM = (
-    accuracy(key)
-    for key in ("raithby_hollands_hot_down", "lloyd_moran_hot_up", "yovanovich_cuboid")
-)
-_SIDES = {
-    "C": {"bottom side": (1.43, _DOWN), "top side": (1.04, _UP), "rim": (0.24, _RIM)},
-    "D": {"bottom side": (0.616, _DOWN), "top side": (0.407, _UP), "rim": (0.159, _RIM)},
-}
 _SPLIT = "the film of a board as a body gives its rim too much and its top too little"
 _PLUME = "the plume over the board is not counted in our slice, and our air there is colder"
 _NARROW = (
     "ours lets more heat rise out of gaps of 10 mm than the experiment, and less straight across"
 )
-_UNDER = "air under the board is nearly cold in both; little moves ours, so its band is narrow"
 _LOW = "a box 30 mm high: ours gives its low walls too much and the ceiling too little"
 _WHY = {
     ("B20", "0.75"): _PLUME,
@@ -71,8 +63,6 @@ _WHY = {
     ("B10", "total"): _NARROW,
     ("B10", "0.1"): _NARROW,
     ("B10", "0.5"): _NARROW,
-    ("C", "0.1"): _UNDER,
-    ("C", "0.25"): _UNDER,
     ("C", "0.75"): _PLUME,
     ("C", "0.9"): _PLUME,
     ("C", "mean"): _PLUME,
@@ -88,12 +78,18 @@ _WHY = {
 def inside_rows() -> list[Row]:
     """Heat, its shares, and the air of sealed boxes, B, C and D."""
     rows = []
+    share = accuracies()["shares"].half_width_pct / 100.0
+    films = {
+        "bottom side": accuracy("raithby_hollands_hot_down"),
+        "top side": _with("lloyd_moran_hot_up", "board_top"),
+        "rim": _with("yovanovich_cuboid", "board_rim"),
+    }
     for case in CASES:
         got = ours(case.name)
         answer = solved(case, got.total_w)
         places = answer.network.places
         board = places.boards["board"].mean
-        band = bands(answer, [board, *places.air_nodes])
+        band = bands(answer, [board, places.air, *places.air_nodes])
         assert band is not None
         # Heat goes with the rise of the board to this power near here.
         more = float(solved(case, 1.02 * got.total_w).solution.rise[board, 0])
@@ -102,7 +98,8 @@ def inside_rows() -> list[Row]:
         name = f"{case.name}: board 20 K over its walls, {case.about}"
         rows.append(
             row(4, "numerical experiment", name, by.EXPERIMENT, case.name, "seen", "total, W",
-                case.total_w, got.total_w, band=float(total), why=_why(case.name, "total"))
+                case.total_w, got.total_w, band=float(total), why=_why(case.name, "total"),
+                own=case.name in NARROW)
         )  # fmt: skip
         other = 1.0 - got.ceiling - got.floor - (got.facing if case.facing is not None else 0.0)
         shares = {
@@ -114,15 +111,16 @@ def inside_rows() -> list[Row]:
         for wall, theirs in _theirs(case).items():
             rows.append(
                 row(4, "numerical experiment", name, by.EXPERIMENT, case.name, "seen",
-                    f"share, {wall}", theirs, shares[wall], band=SHARE, scale=1.0,
-                    why=_why(case.name, wall))
+                    f"share, {wall}", theirs, shares[wall], band=share, scale=1.0,
+                    why=_why(case.name, wall), own=True)
             )  # fmt: skip
         faces = heat_by_face(answer)
-        for side, (theirs, pct) in _SIDES.get(case.name, {}).items():
+        for side, theirs in FACES_W.get(case.name, {}).items():
             found = faces[f"board board, {side}"]
             rows.append(
                 row(4, "numerical experiment", name, by.EXPERIMENT, case.name, "seen",
-                    f"{side} of the board, W", theirs, found, pct=pct, why=_why(case.name, side))
+                    f"{side} of the board, W", theirs, found, pct=films[side],
+                    why=_why(case.name, side), own=side != "bottom side")
             )  # fmt: skip
         if case.profile_k is None:
             continue
@@ -133,12 +131,12 @@ def inside_rows() -> list[Row]:
             rows.append(
                 row(4, "numerical experiment", name, by.EXPERIMENT, case.name, "seen",
                     f"slice of air at {height:g} of the height, K", theirs, found, band=width,
-                    scale=BOARD_RISE_K, why=_why(case.name, f"{height:g}"))
+                    scale=BOARD_RISE_K, why=_why(case.name, f"{height:g}"), own=True)
             )  # fmt: skip
         rows.append(
             row(4, "numerical experiment", name, by.EXPERIMENT, case.name, "seen",
-                "mean of all air, K", case.mean_k, got.mean_k, band=float(np.mean(layer)),
-                scale=BOARD_RISE_K, why=_why(case.name, "mean"))
+                "mean of all air, K", case.mean_k, got.mean_k, band=band.band_k(places.air),
+                scale=BOARD_RISE_K, why=_why(case.name, "mean"), own=True)
         )  # fmt: skip
     return rows
 

@@ -6,6 +6,7 @@ import numpy as np
 from published import sources as by
 from published.evidence_row import SAME_LAW_PCT, Row, accuracy, row
 
+from enclosure_check.findings.causes import CAUSES
 from enclosure_check.physics.air import air, rayleigh_number
 from enclosure_check.physics.bodies import (
     cuboid_gravity_function,
@@ -24,6 +25,7 @@ from enclosure_check.physics.radiation import (
     parallel_plates,
     radiation_coefficient,
 )
+from enclosure_check.physics.transition import transition_distance
 from enclosure_check.physics.wind import wind_film, wind_past_box
 
 ZERO, PRESSURE = 273.15, 101325.0
@@ -32,6 +34,28 @@ UP, DOWN = accuracy("lloyd_moran_hot_up"), accuracy("raithby_hollands_hot_down")
 CYLINDER = accuracy("churchill_chu_1975_cylinder")
 GAP, BELOW = accuracy("elsherbiny_vertical_gap"), accuracy("hollands_heated_below")
 PER_BTU_H = 0.29307
+
+
+# The faces of an oven, 40 F over air at 60 F.
+OVEN_RISE_K, OVEN_FILM_K, OVEN_EDGE_M = 40 / 1.8, 299.82, 0.6096
+
+
+def upright_pct(ra: float, prandtl: float) -> float:
+    """Accuracy of the film of an upright plate, with the doubt about its flow [%]."""
+    doubt = CAUSES["transition"].half_width * float(transition_distance(ra, prandtl))
+    return float(np.hypot(UPRIGHT, doubt))
+
+
+def doubt_pct(rise: float, film_k: float, height: float) -> float:
+    """That doubt alone, of a plate in our own air [%]."""
+    return float(np.sqrt(own_pct(rise, film_k, height) ** 2 - UPRIGHT**2))
+
+
+def own_pct(rise: float, film_k: float, height: float) -> float:
+    """Accuracy of the film of an upright plate in our own air [%]."""
+    properties = air(film_k, PRESSURE)
+    ra = float(rayleigh_number(rise, height, properties))
+    return upright_pct(ra, float(properties.prandtl))
 
 
 def vertical(rise: float, film_k: float, height: float) -> float:
@@ -62,28 +86,28 @@ def upright_rows() -> list[Row]:
     wider = vertical(26.0, 300.0, 0.4)
     return [
         row(2, "worked example", "plate 0.71 m, Ra 1.8e9", by.INCROPERA, "example 9.2", "seen",
-            "Nu", 147.0, vertical_plate(1.81e9, 0.69), pct=UPRIGHT, why=near),
+            "Nu", 147.0, vertical_plate(1.81e9, 0.69), pct=upright_pct(1.81e9, 0.69), why=near),
         row(2, "worked example", "plate 0.6 m, Ra 7.6e8", by.CENGEL, "example 9-2a", "seen", "Nu",
-            113.3, vertical_plate(7.649e8, 0.7202), pct=UPRIGHT, why=near),
+            113.3, vertical_plate(7.649e8, 0.7202), pct=upright_pct(7.649e8, 0.7202), why=near),
         row(2, "worked example", "plate 0.5 m, exact similarity", by.SUKHATME, "example 6.1",
-            "seen", "Nu", 72.62, vertical_plate(ra, 0.694), pct=UPRIGHT),
+            "seen", "Nu", 72.62, vertical_plate(ra, 0.694), pct=upright_pct(ra, 0.694)),
         row(2, "worked example", "plate 0.5 m, integral method", by.SUKHATME, "example 6.1", "seen",
-            "Nu", 76.07, vertical_plate(ra, 0.694), pct=UPRIGHT, why="his integral method"),
+            "Nu", 76.07, vertical_plate(ra, 0.694), pct=upright_pct(ra, 0.694), why="his integral method"),
         row(2, "worked example", "plate 0.5 m, 0.59 Ra^(1/4)", by.SUKHATME, "example 6.1", "seen",
-            "Nu", 81.91, vertical_plate(ra, 0.694), pct=UPRIGHT,
+            "Nu", 81.91, vertical_plate(ra, 0.694), pct=upright_pct(ra, 0.694),
             why="McAdams' law is 13 % above the exact solution of the same example"),
         row(2, "worked example", "plate 0.15 m both sides, 130/20 C", by.KREITH, "example 5.2",
-            "seen", "heat with radiation, W", 50.8, both[0], band=film[0] * UPRIGHT / 100),
+            "seen", "heat with radiation, W", 50.8, both[0], band=film[0] * own_pct(110.0, 348.15, 0.15) / 100),
         row(2, "worked example", "plate 4.5 m both sides, 130/20 C", by.KREITH, "example 5.2",
-            "seen", "heat with radiation, W", 1465.0, both[1], band=film[1] * UPRIGHT / 100,
+            "seen", "heat with radiation, W", 1465.0, both[1], band=film[1] * own_pct(110.0, 348.15, 4.5) / 100,
             why="the book has a turbulent law of its own"),
         row(2, "worked example", "plate 0.4 m, 313/287 K", by.LIENHARD, "example 8.1", "seen",
-            "h, W/m2K", 4.06, wider, pct=UPRIGHT, why="Squire & Eckert's law"),
+            "h, W/m2K", 4.06, wider, pct=own_pct(26.0, 300.0, 0.4), why="Squire & Eckert's law"),
         row(2, "worked example", "door 5.5 x 2.33 ft, 90/70 F", by.JANNA, "example 8.3", "seen",
-            "heat, Btu/h", 142.0, door, pct=UPRIGHT,
+            "heat, Btu/h", 142.0, door, pct=own_pct(rise, 299.8, height),
             why="the book has the full law at Ra 4.9e9, where ours is between both"),
         row(2, "worked example", "plate 3.5 m, 800 W/m2, 30 C", by.HOLMAN, "example 7.1", "seen",
-            "mean rise, K", 155.0, flux, pct=UPRIGHT / 1.33,
+            "mean rise, K", 155.0, flux, pct=own_pct(flux, 303.15 + flux / 2, 3.5) / 1.33,
             why="the book has a law of even flux with other air; ours is that of even temperature"),
     ]  # fmt: skip
 
@@ -148,7 +172,7 @@ def board_rows() -> list[Row]:
             "seen", "h, W/m2K", 6.696, ours, pct=UP),
         row(2, "worked example", "25 x 1.5 W on an upright plate, 50/30 C", by.CENGEL,
             "problem 9-129", "seen", "edge, cm", (42.5, 43.5), 100 * side,
-            band=100 * side * UPRIGHT / 100 * film / (film + flux) / 2,
+            band=side * own_pct(20.0, 313.15, side) * film / (film + flux) / 2,
             why="printed to a centimetre"),
     ]  # fmt: skip
     return rows
@@ -248,12 +272,12 @@ def cube_rows() -> list[Row]:
 
 def oven_rows() -> list[Row]:
     """Faces of an oven, each alone."""
-    rise, edge, mean = 40 / 1.8, 0.6096, 299.82
+    rise, edge, mean = OVEN_RISE_K, OVEN_EDGE_M, OVEN_FILM_K
     side, top = inclined_plate(rise, mean, PRESSURE, edge, edge / 4, [0.0, 1.0]).coefficient
     heat = edge**2 * rise
     return [
         row(2, "worked example", "oven side alone, 2 x 2 ft, 100/60 F", by.JANNA, "example 8.5",
-            "seen", "heat, W", 27.5, side * heat, pct=UPRIGHT),
+            "seen", "heat, W", 27.5, side * heat, pct=own_pct(rise, mean, edge)),
         row(2, "worked example", "oven top alone, 2 x 2 ft, 100/60 F", by.JANNA, "example 8.5",
             "seen", "heat, W", 40.4, top * heat, pct=UP,
             why="at Ra 7.4e6 ours has gone over to 0.15 Ra^(1/3)"),
