@@ -5,7 +5,7 @@ its own height, its stream carries the heat on and lets it go where the air is a
 stream. Where two faces lie close, part of their heat goes straight across.
 
 Against the numerical experiments made for this project (sealed boxes with one board, laminar):
-totals within 8 %, shares of the walls within 0.08. The cases were seen while the form was chosen.
+totals within 8 %, shares of the walls within 0.10. The cases were seen while the form was chosen.
 """
 
 from __future__ import annotations

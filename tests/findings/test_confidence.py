@@ -409,7 +409,7 @@ def test_contributions_add_up_to_the_band():
 
 @pytest.mark.parametrize("emissivity", [0.9])
 def test_band_of_a_sealed_painted_box_with_known_powers(emissivity):
-    """At most 30 % of the rise, for the air and the parts."""
+    """Of parts at most a tenth of the rise, of the mean air a quarter; wanted are at most 30 %."""
     document = patched(
         SMALL,
         {
@@ -430,7 +430,10 @@ def test_band_of_a_sealed_painted_box_with_known_powers(emissivity):
     for node in (places.air, *(each.junction for each in places.parts.values())):
         rise = answer.solution.rise[node, 0]
         assert rise > 10
-        assert 0.05 * rise < found.band_k(node) < 0.3 * rise
+        assert 0.05 * rise < found.band_k(node) < (0.25 if node == places.air else 0.1) * rise
+    # A single height of the air is told worse: that is what the experiments say of ours.
+    shares = [found.band_k(node) / answer.solution.rise[node, 0] for node in places.air_nodes]
+    assert 0.2 < min(shares) < max(shares) < 0.45
 
 
 def test_quantiles_are_those_of_printed_tables():

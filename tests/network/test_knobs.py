@@ -46,9 +46,9 @@ DOCUMENT = patched(
     },
 )
 STEP = 1e-3
-# Knobs on the air move it by hundredths of a kelvin with that, over which here and there a face goes
-# from giving heat to taking it, which streams tell apart.
-AIR_STEP = 1e-4
+# Knobs on the air move it by hundredths of a kelvin with that. Where it is hardly warmer than the
+# floor, laws are rounded over such differences: halves of the step quarter what is off.
+AIR_STEP = 1e-5
 # Films inside are differenced one-sidedly over 1e-4 K, and some of their laws are rounded over 0.1 K:
 # up to half a thousandth of a derivative (a tenth of the step leaves a tenth of it); where one is
 # next to nothing beside the largest of its sort, a hundred-thousandth of that.

@@ -37,7 +37,8 @@ RUNGS = {
     2: (
         "One surface, one gap, one column",
         "The program's film or gap in its own air, so that the choice of law counts. Bands by the "
-        "accuracy of the law, where radiation shares the heat on the share of the film.",
+        "accuracy of the law, of upright plates with the doubt about their flow, where radiation "
+        "shares the heat on the share of the film.",
     ),
     3: (
         "The network",
@@ -50,7 +51,9 @@ RUNGS = {
         "Each box but the sealed ones of B, C and D (whose walls all are held, which no document "
         "can say) and the faces of X (by the law of the box) is a document in "
         "`tests/published/documents/`, run through the real command. Bands are those of the report: "
-        "what the source gives is taken as exact, what it leaves open has the default tolerance.",
+        "what the source gives is taken as exact, what it leaves open has the default tolerance. Of "
+        "heat of single faces and shares of walls, of which a report has no band, they are the "
+        "accuracies of our own forms.",
     ),
 }
 KIND_HEADS: dict[Kind, str] = {
