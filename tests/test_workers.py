@@ -1,17 +1,22 @@
 """Work spread over processes gives what one process gives."""
 
 import os
+import pickle
 import signal
 import threading
+import time
+from collections.abc import Callable, Sequence
+from typing import Any
 
 import pytest
 from support.reports import SAMPLES
 
+from enclosure_check import workers
 from enclosure_check.check import check
 from enclosure_check.description.load import load_document
 from enclosure_check.report.json_report import write_json
 from enclosure_check.report.options import WriterOptions
-from enclosure_check.workers import MOST_PROCESSES, available_processes, spread
+from enclosure_check.workers import MOST_PROCESSES, Task, available_processes, spread
 
 pytestmark = pytest.mark.skipif(not hasattr(os, "fork"), reason="no processes without fork")
 HERE = os.getpid()
@@ -19,6 +24,19 @@ HERE = os.getpid()
 
 def where(item: int) -> tuple[int, int]:
     return item, os.getpid()
+
+
+def done(
+    work: Callable[[int], Any], items: Sequence[int], processes: int, **more: Any
+) -> list[Any]:
+    """Spread work that needs neither preparing nor leading."""
+    task = Task(
+        prepare=lambda item: item,
+        lead=lambda: None,
+        finish=lambda item, _prepared, _shared: work(item),
+        **more,
+    )
+    return spread(task, items, processes)
 
 
 def test_results_come_in_order_and_from_several_processes():
@@ -32,7 +50,7 @@ def test_results_come_in_order_and_from_several_processes():
             os.write(begin, b"x" * 8)
         return where(item)
 
-    results = spread(work, range(6), 2)
+    results = done(work, range(6), 2)
     assert [item for item, _ in results] == list(range(6))
     assert len({process for _, process in results}) == 2
 
@@ -40,19 +58,19 @@ def test_results_come_in_order_and_from_several_processes():
 @pytest.mark.parametrize("processes", [1, 2, 3, 50])
 def test_results_do_not_depend_on_the_number_of_processes(processes):
     items = list(range(11))
-    assert spread(lambda item: "x" * item * 50_000, items, processes) == [
+    assert done(lambda item: "x" * item * 50_000, items, processes) == [
         "x" * item * 50_000 for item in items
     ]
 
 
 def test_one_process_or_one_item_forks_nothing():
-    assert spread(where, range(3), 1) == [(0, HERE), (1, HERE), (2, HERE)]
-    assert spread(where, [7], 4) == [(7, HERE)]
-    assert spread(where, [], 4) == []
+    assert done(where, range(3), 1) == [(0, HERE), (1, HERE), (2, HERE)]
+    assert done(where, [7], 4) == [(7, HERE)]
+    assert done(where, [], 4) == []
 
 
 def test_more_items_than_fit_into_the_pipe_are_done_alone():
-    assert {process for _, process in spread(where, range(1000), 2)} == {HERE}
+    assert {process for _, process in done(where, range(1000), 2)} == {HERE}
 
 
 def test_what_another_process_cannot_do_is_done_here():
@@ -61,7 +79,7 @@ def test_what_another_process_cannot_do_is_done_here():
             raise ValueError(item)
         return where(item)
 
-    assert spread(elsewhere_it_fails, range(5), 3) == [(item, HERE) for item in range(5)]
+    assert done(elsewhere_it_fails, range(5), 3) == [(item, HERE) for item in range(5)]
 
 
 def test_what_a_killed_process_leaves_is_done_here():
@@ -70,7 +88,7 @@ def test_what_a_killed_process_leaves_is_done_here():
             os.kill(os.getpid(), signal.SIGKILL)
         return where(item)
 
-    assert spread(elsewhere_it_is_killed, range(5), 3) == [(item, HERE) for item in range(5)]
+    assert done(elsewhere_it_is_killed, range(5), 3) == [(item, HERE) for item in range(5)]
 
 
 def test_errors_are_raised_here_and_no_process_is_left():
@@ -80,7 +98,7 @@ def test_errors_are_raised_here_and_no_process_is_left():
         return item
 
     with pytest.raises(KeyError, match="3"):
-        spread(work, range(5), 2)
+        done(work, range(5), 2)
     with pytest.raises(ChildProcessError):
         os.waitpid(-1, os.WNOHANG)
 
@@ -90,12 +108,12 @@ def test_no_fork_to_be_had(monkeypatch):
         raise BlockingIOError
 
     monkeypatch.setattr(os, "fork", refused)
-    assert spread(where, range(3), 2) == [(item, HERE) for item in range(3)]
+    assert done(where, range(3), 2) == [(item, HERE) for item in range(3)]
 
 
 def test_what_begins_is_told_in_this_process_only():
     told: list[int] = []
-    results = spread(where, range(6), 2, told.append)
+    results = done(where, range(6), 2, begins=told.append)
     assert told == [item for item, process in results if process == HERE]
 
 
@@ -104,10 +122,53 @@ def test_a_thread_that_runs_is_no_hindrance():
     thread = threading.Thread(target=go_on.wait)
     thread.start()
     try:
-        assert [item for item, _ in spread(where, range(4), 2)] == [0, 1, 2, 3]
+        assert [item for item, _ in done(where, range(4), 2)] == [0, 1, 2, 3]
     finally:
         go_on.set()
         thread.join()
+
+
+def led(lead: Callable[[], Any], items: Sequence[int], processes: int) -> list[Any]:
+    task = Task(
+        prepare=lambda item: (10 * item, os.getpid()),
+        lead=lead,
+        finish=lambda item, prepared, shared: (item, *prepared, shared, os.getpid()),
+    )
+    return spread(task, items, processes)
+
+
+def test_what_is_led_here_reaches_all_and_what_was_prepared_stays_where_it_was():
+    def lead() -> dict[str, Any]:
+        time.sleep(0.2)  # so that the others have begun
+        return {"by": os.getpid(), "much": "x" * 1_000_000}
+
+    results = led(lead, range(6), 3)
+    for place, (item, prepared, preparer, shared, finisher) in enumerate(results):
+        assert (item, prepared) == (place, 10 * place)
+        assert preparer == finisher
+        assert shared == {"by": HERE, "much": "x" * 1_000_000}
+    assert len({finisher for *_, finisher in results}) > 1
+
+
+def test_what_is_too_much_to_share_is_done_here(monkeypatch):
+    monkeypatch.setattr(workers, "_SHARED_BYTES", 4096)
+    assert {finisher for *_, finisher in led(lambda: "x" * 5000, range(4), 2)} == {HERE}
+
+
+def test_an_error_in_what_leads_is_raised_and_no_process_is_left():
+    def lead() -> None:
+        raise LookupError
+
+    with pytest.raises(LookupError):
+        led(lead, range(4), 3)
+    with pytest.raises(ChildProcessError):
+        os.waitpid(-1, os.WNOHANG)
+
+
+def test_what_cannot_be_told_is_no_hindrance_to_one_process():
+    assert [item for item, *_ in led(lambda: lambda: None, range(3), 1)] == [0, 1, 2]
+    with pytest.raises((AttributeError, pickle.PicklingError)):
+        led(lambda: lambda: None, range(3), 2)
 
 
 def test_available_processes():
