@@ -114,7 +114,9 @@ class Solution:
 LEAST_HEAT_W = 1e-4
 # Regularisation of a step that did not help: the first try, its growth and the way back to none.
 _FIRST_MU, _MU_GROWTH, _MU_DECAY, _LEAST_MU = 1e-3, 8.0, 0.1, 1e-6
-_LARGEST_MU = 1e9
+# Steps are given up when they come to so small a share of what a node alone would ask for: none was
+# seen to lead on from there, and they are as dear as any.
+_LARGEST_MU = 1e5
 # Parts of a step that are tried one after the other.
 _PARTS = (1.0, 0.5, 0.25, 0.1)
 # The linear guess is not believed beyond this. [K]
