@@ -169,7 +169,7 @@ class InsideAirHeat:
         largest = np.maximum(upright, level)
         ratio = (np.minimum(upright, level) / largest) ** 2
         film = largest * (1.0 + ratio**5) ** 0.1
-        warm = 0.5 + 0.5 * signed / size
+        warm = 0.5 + 0.5 * signed / soft_abs(size, cavity.SIGN_WIDTH_K)
         film = film * (s.warm_factor * warm + s.cold_factor * (1.0 - warm))
         film = film * cavity.corner_factor(film, properties.conductivity, s.edge_a, s.edge_b)
         audit = plate_audit(

@@ -391,3 +391,27 @@ def test_air_alone_finds_its_balance_between_held_surfaces():
     np.subtract.at(net, kind.a, heat)
     np.add.at(net, kind.b, heat)
     assert np.abs(net[network.places.air_nodes]).max() < 1e-6 * np.abs(heat).sum()
+
+
+def test_the_shelter_of_a_level_side_does_not_jump_where_it_is_as_warm_as_the_air():
+    """Kept of the upper side: a third when warm, nearly all when cold; between them no jump."""
+    network = network_of(boxed(flat=board(parallel_to="bottom", width_mm=80)), COARSE)
+    kind = inside_air(network)
+    surface = int(np.flatnonzero(kind.surfaces.warm_factor < 0.5)[0])
+    warm, cold = (
+        float(factor[surface, 0])
+        for factor in (kind.surfaces.warm_factor, kind.surfaces.cold_factor)
+    )
+    assert cold > 2 * warm
+    over = np.linspace(-0.3, 0.3, 121)
+    rise = np.full((network.size, len(over)), 5.0)
+    rise[kind.surfaces.node[surface]] += over
+    reference = np.repeat(REFERENCE_K, len(over))
+    ones = np.ones_like(kind.surfaces.warm_factor)
+    bare = replace(kind.surfaces, warm_factor=ones, cold_factor=ones)
+    alone = replace(kind, surfaces=bare).audit(rise, reference).coefficient[surface]
+    kept = kind.audit(rise, reference).coefficient[surface] / alone
+    # 5 mK are a little of the way from cold to warm, not most of it.
+    assert kept[0] - kept[-1] > 0.8 * (cold - warm)
+    assert (np.diff(kept) < 0).all()
+    assert np.abs(np.diff(kept)).max() < 0.02 * (cold - warm)

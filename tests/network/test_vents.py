@@ -399,6 +399,14 @@ def test_boards_one_as_warm_as_the_other_is_cold():
     assert int(solution.steps[0]) <= FEW_STEPS
 
 
+def test_a_level_board_as_warm_as_its_air():
+    """Its shelter, and with it what goes straight across its gaps, once jumped within 0.01 K."""
+    network = network_of(random_vented_document(random.Random(284)), COARSE)
+    solution = solve_steady(network)
+    assert solution.converged
+    assert int(solution.steps[0]) <= FEW_STEPS
+
+
 def test_a_parameter_that_does_not_exist():
     with pytest.raises(KeyError, match="colour"):
         vents_of(VENTED[0]).with_parameter("colour", np.ones((1, 1)))
