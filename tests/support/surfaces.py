@@ -219,7 +219,7 @@ class Surfaces:
         signed = float(np.mean([mean - layer for layer in sampled]))
         size = float(np.mean([soft_abs(mean - layer, 0.01) for layer in sampled]))
         warm, cold = law.get("kept", (1.0, 1.0))
-        lean = signed / size
+        lean = signed / math.hypot(size, 0.2)
         kept = warm * (0.5 + 0.5 * lean) + cold * (0.5 - 0.5 * lean)
         film_k = self.ambient_k + mean - signed / 2
         if "body" in law:
