@@ -84,21 +84,21 @@ CAUSES: dict[str, Row] = {
     ),
     "gap_films": Row(
         "films and gaps together where faces lie close",
-        21.0,
+        18.0,
         "%",
         OWN.format(2),
         "all gaps, as far as two films fill them",
     ),
     "board_rim": Row(
         "share of their rim in the films of boards",
-        80.0,
+        35.0,
         "%",
         OWN.format(2),
         "all boards; its sides give up what a rim gains",
     ),
     "board_top": Row(
         "share of the unstable side in the films of flat boards",
-        68.0,
+        13.0,
         "%",
         OWN.format(2),
         "all flat boards; the other faces give up what it gains",
@@ -112,7 +112,7 @@ CAUSES: dict[str, Row] = {
     ),
     "air_above": Row(
         "air in the upper half of the inside",
-        15.0,
+        14.0,
         "%",
         "of what warms the air over what cools it: " + OWN.format(15),
         "readings there, and the air that films there give heat to",

@@ -90,7 +90,7 @@ class AirSite:
         centres[..., second] = grid.centres[1][None, :]
         low, high = list(grid.low), [a + b for a, b in zip(grid.low, grid.size, strict=True)]
         low[axis] = high[axis] = at
-        warm, cold = board_shelter(size, self.up, axis, sign, face) if is_board else (1.0, 1.0)
+        warm, cold = board_shelter(size, self.up, axis, sign) if is_board else (1.0, 1.0)
         edges = (np.inf, np.inf) if is_board else (grid.size[first], grid.size[second])
         number = self.add(
             Film(
@@ -319,11 +319,12 @@ class AirSite:
             pair.append(np.full(len(one), number))
             label.append(np.full(len(one), owner.label))
         for number, (top, face) in enumerate(tops, start=len(columns)):
-            cell_a.append(np.array([top.node]))
-            cell_b.append(np.array([_cell_at(face, top.centre)]))
-            area.append(np.array([top.area]))
-            pair.append(np.array([number]))
-            label.append(np.array([self.films[top.surface].label]))
+            cells, shares = _cells_over(face, top)
+            cell_a.append(np.full(len(cells), top.node))
+            cell_b.append(cells)
+            area.append(shares * top.area)
+            pair.append(np.full(len(cells), number))
+            label.append(np.full(len(cells), self.films[top.surface].label))
         return {
             "cell_a": np.concatenate(cell_a).astype(np.intp),
             "cell_b": np.concatenate(cell_b).astype(np.intp),
@@ -360,14 +361,11 @@ def _shapes(alike: _Alike) -> dict[str, Any]:
     return alike.site.shapes()
 
 
-def _cell_at(face: Face, point: Vector) -> int:
-    place = [
-        int(np.clip(np.searchsorted(edges, point[axis]) - 1, 0, count - 1))
-        for axis, edges, count in zip(
-            face.grid.axes, face.grid.edges, face.grid.counts, strict=True
-        )
-    ]
-    return int(face.cells[place[0], place[1]])
+def _cells_over(face: Face, top: Top) -> tuple[IntArray, FloatArray]:
+    """Cells of a face that a top looks at, and the share of it that each takes."""
+    shares = face.grid.shares(top.low, top.size)
+    seen = shares > 0
+    return face.cells[seen], shares[seen]
 
 
 class _Entries:

@@ -42,5 +42,13 @@ class Top:
     axis: int
     sign: int
     at: float
-    centre: Vector
+    low: Vector
+    size: Vector
+    """Of the part: its lowest corner and its extent [m]."""
     length: float
+
+    @property
+    def centre(self) -> Vector:
+        """Middle of the part [m]."""
+        x, y, z = (start + extent / 2 for start, extent in zip(self.low, self.size, strict=True))
+        return x, y, z

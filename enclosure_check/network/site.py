@@ -164,10 +164,9 @@ class Site:
         """Let the top of a part or can look at what lies across the air from it."""
         if area <= 0:
             return
-        x, y, z = (start + extent / 2 for start, extent in zip(low, size, strict=True))
         at = low[axis] + (size[axis] if sign > 0 else 0.0)
         length = self.air_site.films[surface].face.fall_length
-        self.air_site.tops.append(Top(surface, node, area, axis, sign, at, (x, y, z), length))
+        self.air_site.tops.append(Top(surface, node, area, axis, sign, at, low, size, length))
 
     def conduct_along(
         self, cells: IntArray, grid: PlateGrid, share: float, label: LinkLabel

@@ -118,7 +118,7 @@ _FIRST_MU, _MU_GROWTH, _MU_DECAY, _LEAST_MU = 1e-3, 8.0, 0.1, 1e-6
 # seen to lead on from there, and they are as dear as any.
 _LARGEST_MU = 1e5
 # Parts of a step that are tried one after the other.
-_PARTS = (1.0, 0.5, 0.25, 0.1)
+_PARTS = (1.0, 0.5, 0.25, 0.1, 0.03, 0.01)
 # The linear guess is not believed beyond this. [K]
 _FARTHEST_GUESS_K = 1_000.0
 # Stirring of the inside air on the way to an answer that Newton does not find at once, over what

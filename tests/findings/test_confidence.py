@@ -265,6 +265,8 @@ def test_units_of_tolerances(path, unit):
 
 # Draws solved together, which saves time; those among which one is far off are solved alone.
 TOGETHER = 20
+# Draws without a balance may be left out: air seen off by kelvins has corners where films turn round.
+LEFT_OUT = 0.01
 
 
 def spread(answer, found, draws, seed):
@@ -279,12 +281,13 @@ def spread(answer, found, draws, seed):
         solution = solve_nearby(network, start, answer.inverse)
         if some.shape[1] > 1 and not solution.converged:
             return np.concatenate([read(one[:, None]) for one in some.T], axis=1)
-        assert solution.converged
         own = solution.rise[found.adjoint.nodes] + found.readings.T @ some
-        return own + network.reference_k
+        return np.where(solution.each_converged, own + network.reference_k, np.nan)
 
     every = [read(some) for some in np.split(amounts, draws // TOGETHER, axis=1)]
-    return 2.0 * np.concatenate(every, axis=1).std(axis=1)
+    found_any = np.concatenate(every, axis=1)
+    assert np.isnan(found_any[0]).mean() <= LEFT_OUT
+    return 2.0 * np.nanstd(found_any, axis=1)
 
 
 MONTE_CARLO = patched(

@@ -51,7 +51,7 @@ def _theirs(case: Sealed) -> dict[str, float]:
     }
 
 
-_SPLIT = "the film of a board as a body gives its rim too much and its top too little"
+_RIM = "half the edge of a layer of air, which may well be the whole of it where a wall is near"
 _PLUME = "the plume over the board is not counted in our slice, and our air there is colder"
 _NARROW = (
     "ours lets more heat rise out of gaps of 10 mm than the experiment, and less straight across"
@@ -66,10 +66,7 @@ _WHY = {
     ("C", "0.75"): _PLUME,
     ("C", "0.9"): _PLUME,
     ("C", "mean"): _PLUME,
-    ("C", "top side"): _SPLIT,
-    ("C", "rim"): _SPLIT,
-    ("D", "top side"): _SPLIT,
-    ("D", "rim"): _SPLIT,
+    ("D", "rim"): _RIM,
     ("D", "ceiling"): _LOW,
     ("D", "other walls"): _LOW,
 }

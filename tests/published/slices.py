@@ -55,6 +55,19 @@ class Slices:
         straight = 0.5 * (self.rise[one] + self.rise[other])
         return kept * (core + films) + (1.0 - kept) * straight
 
+    def level_gap(self, above: bool, core: float) -> float:
+        """How much warmer the air over or under a flat board is than that away from it [K].
+
+        Nothing for an upright board, which has no such gap.
+        """
+        faces = ("board board, top side", "wall top inside")
+        if not above:
+            faces = ("board board, bottom side", "wall bottom inside")
+        if frozenset(faces) not in self.kept:
+            return 0.0
+        straight = 0.5 * sum(self.rise[face] for face in faces)
+        return (1.0 - self.kept[frozenset(faces)]) * (straight - core)
+
 
 def slice_mean(
     slices: Slices, inside: tuple[float, float, float], board: dict[str, float], height: float
@@ -78,11 +91,13 @@ def slice_mean(
     sides = sum(depth * slices.film(f"wall {wall} inside", core) for wall in ("left", "right"))
     between = slices.gap("wall front inside", "wall back inside", depth, core)
     within = board["low"] <= at <= board["high"]
+    footprint = board["along"] * board.get("across", 0.0)
     if not within:
-        return between + sides / (width * depth)
+        gap = slices.level_gap(at > board["high"], core)
+        return between + (sides + gap * footprint) / (width * depth)
     if "across" in board:
         rim = 2 * (board["along"] + board["across"]) * slices.film("board board, rim", core)
-        area = width * depth - board["along"] * board["across"]
+        area = width * depth - footprint
         return (between * width * depth + sides + rim - core * (width * depth - area)) / area
     gap = 0.5 * (depth - board["thickness"])
     one = slices.gap("wall front inside", "board board, front side", gap, core)

@@ -125,13 +125,13 @@ class Balances(Surfaces):
         shape = (width, length, along + abs(self.up[axis]) * width / length, sign * self.up[axis])
         found = self.exchange(surface, wall, self.air_at(self.height(piece.centre)), shape)
         to_air(surface, 0, foot, float(found.share))
-        (over,) = [
-            each.node
-            for each in wall.pieces
-            if overlap(each.low, each.high, piece.centre - 1e-9, piece.centre + 1e-9, axis) > 0
-        ]
-        watts = float(found.straight) * foot * (self.rise[piece.node] - self.rise[over])
-        self.give("straight", piece.node, over, watts)
+        low, high = surface.low, surface.high
+        shared = [overlap(each.low, each.high, low, high, axis) for each in wall.pieces]
+        for each, area in zip(wall.pieces, shared, strict=True):
+            drop = self.rise[piece.node] - self.rise[each.node]
+            if area > 0:
+                part = foot * area / sum(shared)
+                self.give("straight", piece.node, each.node, float(found.straight) * part * drop)
 
     def streams(self, surface: Surface, enters: list[tuple[Piece, float]]) -> None:
         nodes, step = self.places.air_nodes, self.tall / (NODES - 1)

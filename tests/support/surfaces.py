@@ -139,13 +139,36 @@ class Surfaces:
 
     def sheltered(self, face: int, law: dict) -> tuple[float, float]:
         kept = []
+        axis = face // 2
         for rise in (10.0, -10.0):
-            film = self.in_the_open(rise)[1][face]
-            alone = inclined_plate(
-                rise, 305.0 + rise / 2, 101_325.0, law["fall"], law["span"], law["cosine"]
+            shape, film = self.in_the_open(rise)
+            plates = {}
+            for index in (2 * axis, 2 * axis + 1):
+                cosine = law["cosine"] if index == face else -law["cosine"]
+                plates[index] = float(
+                    inclined_plate(
+                        rise, 305.0 + rise / 2, 101_325.0, law["fall"], law["span"], cosine
+                    ).coefficient
+                )
+            # What the rim does not take makes up for shelter, as far as there is any.
+            over = sum(
+                (film[index] - self.rim_film(rise)) * shape.area[index]
+                for index in range(6)
+                if index // 2 != axis
             )
-            kept.append(float(film / alone.coefficient))
+            lacking = {index: max(plates[index] - film[index], 0.0) for index in plates}
+            whole = sum(lacking.values()) * shape.area[face]
+            part = min(max(over / whole, 0.0), 1.0) if whole > 0 else 0.0
+            kept.append(float((film[face] + part * lacking[face]) / plates[face]))
         return kept[0], kept[1]
+
+    def rim_film(self, rise: float) -> float:
+        """Film of the rim: half the two edges of the layers of air on both sides."""
+        axis = self.board.axis
+        film = self.in_the_open(rise)[1]
+        conductivity = float(air(305.0 + rise / 2, 101_325.0).conductivity)
+        layers = (film[2 * axis] + film[2 * axis + 1]) / 2
+        return 0.54 * conductivity / self.board_size[axis] + float(layers)
 
     def rim(self) -> Surface:
         nodes = self.places.boards[self.board.name].cells
@@ -166,15 +189,10 @@ class Surfaces:
                 pieces.append(Piece(cell.node, tuple(low), tuple(high), edge * thick))
         kept = []
         for rise in (10.0, -10.0):
-            shape, film = self.in_the_open(rise)
-            narrow = [index for index in range(6) if index // 2 != axis]
-            mean = float(
-                sum(film[index] * shape.area[index] for index in narrow)
-                / sum(shape.area[index] for index in narrow)
-            )
+            shape, _ = self.in_the_open(rise)
             body = shape.body_area, shape.gravity_function
             whole = cuboid_film(rise, 305.0 + rise / 2, 101_325.0, *body)
-            kept.append(mean / float(whole.coefficient))
+            kept.append(self.rim_film(rise) / float(whole.coefficient))
         law = {"body": body, "kept": tuple(kept), "fall": thick}
         return Surface("rim", pieces, self.board_low, self.board_low + size, axis, 0, law)
 
