@@ -44,8 +44,8 @@ _LARGE_VIEW = 0.05
 #: Multipliers of the lattices of so many rays: the least of those that minimise Korobov's error
 #: P2 in four dimensions.
 KOROBOV_MULTIPLIER = {128: 21, 512: 115}
-#: Rays traced at once: bounds the memory and keeps the arrays in the cache.
-RAYS_AT_ONCE = 8192
+#: Rays traced at once: bounds the memory; of fewer, the calls cost more than the rays.
+RAYS_AT_ONCE = 65536
 #: Pairs of patches looked at together, for the same reason.
 PAIRS_AT_ONCE = 4096
 # Lengths below this share of the extent of all patches are rounding, as are shares of a ray.
