@@ -167,41 +167,43 @@ class Knobs:
         """
         network, size = self.network, self.network.size
         parameters, films, finishes, sources, nodes, count = self.starts
-        pushed = np.zeros((count, size))
+        places: list[IntArray] = []
+        amounts: list[FloatArray] = []
 
-        def push(knob: IntArray, first: int, many: int, kind: LinkKind, heat: FloatArray) -> None:
+        def push(knob: IntArray, first: int, kind: LinkKind, heat: FloatArray) -> None:
             kept = knob >= 0
-            flat, heat = knob[kept] * size, heat[kept]
-            total = np.bincount(flat + kind.a[kept], heat, many * size)
-            total -= np.bincount(flat + kind.b[kept], heat, many * size)
-            pushed[first : first + many] += total.reshape(many, size)
+            row, heat = (knob[kept] + first) * size, heat[kept]
+            places.extend((row + kind.a[kept], row + kind.b[kept]))
+            amounts.extend((heat, -heat))
 
         heats = network.heat(rise) if heat is None else heat[:, None]
         ends = np.cumsum([len(kind.a) for kind in network.kinds])[:-1]
         by_kind = np.split(heats[:, 0], ends)
         for knob, kind, heat in zip(self.link, network.kinds, by_kind, strict=True):
-            push(knob, 0, self.count, kind, heat)
+            push(knob, 0, kind, heat)
             if isinstance(kind, InsideAir):
                 for index, change in enumerate(self._by_films(kind, rise)):
-                    push(_one(kind), films + index, 1, kind, change)
+                    push(_one(kind), films + index, kind, change)
             elif isinstance(kind, Radiation):
                 by = kind.heat_by_parameter(rise[kind.stencil], network.reference_k, "emissivity")
-                push(self.emitters.finish, finishes, sources - finishes, kind, by[:, 0])
+                push(self.emitters.finish, finishes, kind, by[:, 0])
             elif isinstance(kind, PatchExchange):
                 for index, change in enumerate(self._by_mean_emissivity(kind, rise)):
-                    push(_one(kind), finishes + index, 1, kind, change)
+                    push(_one(kind), finishes + index, kind, change)
         for index, (number, name) in enumerate(self.parameter):
             kind = network.kinds[number]
             more = kind.with_parameter(name, getattr(kind, name) * (1.0 + _STEP))
             change = (more.evaluate(rise, network.reference_k)[:, 0] - by_kind[number]) / _STEP
-            push(_one(kind), parameters + index, 1, kind, change)
+            push(_one(kind), parameters + index, kind, change)
         put_in = network.sources.heat(rise[network.sources.node], network.reference_k)[:, 0]
         at = np.full(len(network.labels), -1, dtype=np.intp)
         at[self.source] = np.arange(len(self.source))
         own = at[network.sources.label]
         kept = own >= 0
-        np.add.at(pushed, (sources + own[kept], network.sources.node[kept]), -put_in[kept])
-        gradient = -pushed @ weight
+        places.append((sources + own[kept]) * size + network.sources.node[kept])
+        amounts.append(-put_in[kept])
+        pushed = np.bincount(np.concatenate(places), np.concatenate(amounts), count * size)
+        gradient = -(pushed.reshape(count, size) @ weight)
         gradient[nodes:-1] = self._by_given(weight, derivatives)
         gradient[-1] = 1.0 - self._by_reference(rise, heats) @ weight
         return np.asarray(gradient)
