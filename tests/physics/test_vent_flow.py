@@ -147,3 +147,16 @@ def test_turned_upside_down_it_flows_the_other_way():
     up = balanced_flows(head, ones, ones, linear, none, *NONE).flow
     down = balanced_flows(-head, ones, ones, linear, none, *NONE).flow
     np.testing.assert_allclose(up, -down, rtol=1e-9)
+
+
+def test_mass_is_kept_to_rounding_where_losses_differ_by_eleven_powers_of_ten():
+    """Two leaks of eight pieces each beside one wide opening: else steps seem to lead uphill."""
+    leaks = (np.linspace(0.107, 0.111, 8), np.linspace(0.085, 0.089, 8))
+    head = np.concatenate((*leaks, [0.117]))[:, None]
+    quadratic = np.repeat([1.4e10, 5e13, 400.0], [8, 8, 1])[:, None]
+    linear = np.repeat([1.7e6, 6.7e7, 1.0], [8, 8, 1])[:, None]
+    below = np.stack((np.repeat([1.0, 0.3, 1.0], [8, 8, 1]), np.repeat([0.4, 0, 1], [8, 8, 1])), 1)
+    passages = (np.array([[50.0], [0.0]]), np.full((2, 1), 1e-5))
+    found = balanced_flows(head, quadratic, 0.8 * quadratic, linear, below, *passages)
+    assert abs(found.flow.sum()) <= 1e-14 * np.abs(found.flow).max()
+    assert found.steps <= 4
