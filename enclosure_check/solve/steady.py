@@ -45,6 +45,12 @@ class Outcome(Enum):
     )
 
 
+# Parts of a step that are tried one after the other.
+_PARTS = (1.0, 0.5, 0.25, 0.1)
+# Where nothing else leads there: slower, and past sharper bends of the laws.
+_FINE_PARTS = (*_PARTS, 0.03, 0.01)
+
+
 @dataclass(frozen=True)
 class SolveOptions:
     """Settings of the iteration; nobody should need to touch them."""
@@ -56,6 +62,8 @@ class SolveOptions:
     """Sum of all imbalances over the heat that flows."""
     largest_step_k: float = 150.0
     """A step moves no node further than this."""
+    parts: tuple[float, ...] = _PARTS
+    """Parts of a step that are tried one after the other."""
     by_stirring: bool = True
     """Whether to go by way of stirred air where Newton does not get there at once."""
     most_holds: int = 64
@@ -117,8 +125,6 @@ _FIRST_MU, _MU_GROWTH, _MU_DECAY, _LEAST_MU = 1e-3, 8.0, 0.1, 1e-6
 # Steps are given up when they come to so small a share of what a node alone would ask for: none was
 # seen to lead on from there, and they are as dear as any.
 _LARGEST_MU = 1e5
-# Parts of a step that are tried one after the other.
-_PARTS = (1.0, 0.5, 0.25, 0.1, 0.03, 0.01)
 # The linear guess is not believed beyond this. [K]
 _FARTHEST_GUESS_K = 1_000.0
 # Stirring of the inside air on the way to an answer that Newton does not find at once, over what
@@ -178,7 +184,10 @@ def _reach(network: Network, start: FloatArray, options: SolveOptions) -> Soluti
         for outcome, spent in outcomes
     ):
         return solution
-    return solution.improved(_stirred(network, options))
+    solution = solution.improved(_stirred(network, options))
+    if solution.converged:
+        return solution
+    return solution.improved(_stirred(network, replace(options, parts=_FINE_PARTS)))
 
 
 def _stirred(network: Network, options: SolveOptions) -> Solution:
@@ -271,7 +280,7 @@ def _newton(network: Network, start: FloatArray, options: SolveOptions) -> Solut
         step = _step(network, state, mu, options)
         steps += active
         better = np.zeros(variants, dtype=bool)
-        for part in _PARTS:
+        for part in options.parts:
             trying = active & ~better
             if not trying.any():
                 break
