@@ -14,7 +14,7 @@ from enclosure_check.findings.stated import PartListFinding
 from enclosure_check.network.build import build_network
 from enclosure_check.network.network import Network
 from enclosure_check.physics.view_closure import NotEnclosedError
-from enclosure_check.solve.nearby import Known, solve_known
+from enclosure_check.solve.nearby import Known, solve_known, stands_alone
 from enclosure_check.solve.steady import Outcome
 from enclosure_check.workers import Task, spread
 
@@ -77,17 +77,25 @@ def check(
     network = _build(first)
     closest: tuple[Solved, PartFinding] | None = None
 
-    def prepare(case: Case) -> Network:
-        return network if case is first else _build(case)
+    def prepare(case: Case) -> tuple[Network, Known | None]:
+        if case is first:
+            return network, None
+        own = _build(case)
+        return own, solve_known(own, None) if stands_alone(own, network) else None
 
     def lead() -> Known:
         known = solve_known(network, None)
         _refuse_unconverged(first, known)
         return known.shared()
 
-    def finish(case: Case, own: Network, shared: Known) -> ConditionFinding:
+    def finish(
+        case: Case, prepared: tuple[Network, Known | None], shared: Known
+    ) -> ConditionFinding:
         nonlocal closest
-        solved = _solved(case, own, shared if case is first else solve_known(own, shared))
+        own, known = prepared
+        if known is None:
+            known = shared if case is first else solve_known(own, shared)
+        solved = _solved(case, own, known)
         # Only tolerances ask for the document again.
         rebuild = document.variation(case).case_with if case.tolerances else None
         found = assess(solved, rebuild)
@@ -103,7 +111,11 @@ def check(
 
     # What is wanted of the solutions themselves needs them in this process.
     alone = see is not None or sensitivities > 0
-    found = spread(Task(prepare, lead, finish, begins), cases, 1 if alone else processes)
+    # Those least like the first, which may need nothing of it, are begun while it is solved.
+    order = sorted(range(len(cases)), key=lambda at: (cases[at] is first, _stated_power(cases[at])))
+    ordered = [cases[at] for at in order]
+    results = spread(Task(prepare, lead, finish, begins), ordered, 1 if alone else processes)
+    found = [result for _, result in sorted(zip(order, results, strict=True), key=lambda x: x[0])]
     return Report(
         format=1,
         version=__version__,

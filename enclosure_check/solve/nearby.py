@@ -88,13 +88,24 @@ class Known:
 
     def serves(self, network: Network) -> bool:
         """Whether a network has the same nodes and about the same heat put in."""
-        if not self.like(network):
-            return False
-        return self.put_in_w / _LIKE_HEAT < _put_in(network) < self.put_in_w * _LIKE_HEAT
+        return self.like(network) and _like_heat(self.put_in_w, network)
 
     def shared(self) -> "Known":
         """Give it as other processes can be told of it."""
         return replace(self, inverse=self.inverse.shared())
+
+
+def stands_alone(network: Network, leading: Network) -> bool:
+    """Whether a network is solved by itself, whatever the state of the one that leads is.
+
+    It takes nothing from it where its heat is unlike; where it has none, an inverse.
+    """
+    put_in = network.sources.power.any() or network.fixed_rise.any()
+    return bool(put_in) and not _like_heat(_put_in(leading), network)
+
+
+def _like_heat(put_in_w: float, network: Network) -> bool:
+    return put_in_w / _LIKE_HEAT < _put_in(network) < put_in_w * _LIKE_HEAT
 
 
 def _put_in(network: Network) -> float:
