@@ -89,11 +89,12 @@ def check(
         return known.shared()
 
     def finish(
-        case: Case, prepared: tuple[Network, Known | None], shared: Known
+        case: Case, prepared: tuple[Network, Known | None], shared: Known | None
     ) -> ConditionFinding:
         nonlocal closest
         own, known = prepared
         if known is None:
+            assert shared is not None  # see `alone`
             known = shared if case is first else solve_known(own, shared)
         solved = _solved(case, own, known)
         # Only tolerances ask for the document again.
@@ -105,16 +106,20 @@ def check(
             closest = solved, found.parts[0]
         return found
 
+    def alone(prepared: tuple[Network, Known | None]) -> bool:
+        return prepared[1] is not None
+
     def begins(case: Case) -> None:
         if tell is not None:
             tell(case.condition)
 
     # What is wanted of the solutions themselves needs them in this process.
-    alone = see is not None or sensitivities > 0
+    if see is not None or sensitivities > 0:
+        processes = 1
     # Those least like the first, which may need nothing of it, are begun while it is solved.
     order = sorted(range(len(cases)), key=lambda at: (cases[at] is first, _stated_power(cases[at])))
     ordered = [cases[at] for at in order]
-    results = spread(Task(prepare, lead, finish, begins), ordered, 1 if alone else processes)
+    results = spread(Task(prepare, lead, finish, alone, begins), ordered, processes)
     found = [result for _, result in sorted(zip(order, results, strict=True), key=lambda x: x[0])]
     return Report(
         format=1,

@@ -40,7 +40,10 @@ class Task(Generic[Item, Prepared, Shared, Result]):
     """What can be done with an item before anything is known of the others."""
     lead: Callable[[], Shared]
     """Finds once what all are finished with."""
-    finish: Callable[[Item, Prepared, Shared], Result]
+    finish: Callable[[Item, Prepared, Shared | None], Result]
+    """Ends an item; without what is shared where it `stands_alone`."""
+    stands_alone: Callable[[Prepared], bool] = lambda _: False
+    """Whether an item that is prepared needs nothing of what is shared."""
     begins: Callable[[Item], None] | None = None
     """Told of every item that this process begins to finish."""
 
@@ -70,7 +73,7 @@ def spread(
     Parameters
     ----------
     task
-        What is done. While this process leads, the others prepare.
+        What is done. While this process leads, the others prepare, and end what stands alone.
     items
         What to work on.
     processes
@@ -154,13 +157,11 @@ def _taken(take: int) -> int | None:
 
 
 def _received(results: BinaryIO) -> dict[int, Result]:
-    """Read what a worker gives, until it ends."""
-    received: dict[int, Result] = {}
-    with suppress(EOFError, pickle.UnpicklingError):
-        while True:
-            place, result = pickle.load(results)
-            received[place] = result
-    return received
+    """Read what a worker gives as it ends; nothing of one that failed."""
+    try:
+        return dict(pickle.load(results))
+    except (EOFError, pickle.UnpicklingError):
+        return {}
 
 
 def _forked(
@@ -202,31 +203,33 @@ def _work_and_end(
     room, wait, give = ways
     code = 1
     try:
-        prepared: list[tuple[int, Prepared]] = []
-        while len(prepared) < most and not select.select([wait], [], [], 0)[0]:
+        # Given at the end: until then nobody reads.
+        results: list[tuple[int, Result]] = []
+        waiting: list[tuple[int, Prepared]] = []
+        while len(waiting) < most and not select.select([wait], [], [], 0)[0]:
             place = _taken(take)
             if place is None:
                 break
-            prepared.append((place, task.prepare(items[place])))
+            prepared = task.prepare(items[place])
+            if task.stands_alone(prepared):
+                results.append((place, task.finish(items[place], prepared, None)))
+            else:
+                waiting.append((place, prepared))
         if os.read(wait, 1):
             size = _SIZE.unpack(room[: _SIZE.size])[0]
             shared: Shared = pickle.loads(room[_SIZE.size : _SIZE.size + size])
-            with os.fdopen(give, "wb") as out:
-                for place, ready in prepared:
-                    _give(out, place, task.finish(items[place], ready, shared))
-                while (place := _taken(take)) is not None:
-                    item = items[place]
-                    _give(out, place, task.finish(item, task.prepare(item), shared))
+            for place, prepared in waiting:
+                results.append((place, task.finish(items[place], prepared, shared)))
+            while (place := _taken(take)) is not None:
+                item = items[place]
+                results.append((place, task.finish(item, task.prepare(item), shared)))
+        with os.fdopen(give, "wb") as out:
+            pickle.dump(results, out, pickle.HIGHEST_PROTOCOL)
         code = 0
     except BaseException:  # whatever it is, the first process comes upon it as well
         code = 1
     finally:
         os._exit(code)
-
-
-def _give(out: BinaryIO, place: int, result: object) -> None:
-    pickle.dump((place, result), out, pickle.HIGHEST_PROTOCOL)
-    out.flush()
 
 
 def _ended(worker: _Worker) -> None:

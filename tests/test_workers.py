@@ -150,6 +150,30 @@ def test_what_is_led_here_reaches_all_and_what_was_prepared_stays_where_it_was()
     assert len({finisher for *_, finisher in results}) > 1
 
 
+def test_what_stands_alone_is_ended_before_all_is_led():
+    marked, mark = os.pipe()
+
+    def lead() -> str:
+        # Led when the other process has ended all that it could.
+        for _ in range(3):
+            os.read(marked, 1)
+        return "led"
+
+    def finish(item: int, _prepared: int, shared: str | None) -> tuple[int, str | None, bool]:
+        if shared is None:
+            os.write(mark, b"x")
+        return item, shared, os.getpid() == HERE
+
+    task = Task(
+        prepare=lambda item: item, lead=lead, finish=finish, stands_alone=lambda item: item < 3
+    )
+    results = spread(task, range(5), 2)
+    assert results[:3] == [(item, None, False) for item in range(3)]
+    assert [shared for _, shared, _ in results[3:]] == ["led", "led"]
+    os.close(marked)
+    os.close(mark)
+
+
 def test_what_is_too_much_to_share_is_done_here(monkeypatch):
     monkeypatch.setattr(workers, "_SHARED_BYTES", 4096)
     assert {finisher for *_, finisher in led(lambda: "x" * 5000, range(4), 2)} == {HERE}

@@ -81,14 +81,11 @@ class Known:
     solution: Solution
     inverse: Inverse
 
-    def like(self, network: Network) -> bool:
-        """Whether a network has the same nodes."""
-        same = self.node_labels == network.node_labels
-        return same and np.array_equal(self.fixed, network.fixed)
-
     def serves(self, network: Network) -> bool:
         """Whether a network has the same nodes and about the same heat put in."""
-        return self.like(network) and _like_heat(self.put_in_w, network)
+        same = self.node_labels == network.node_labels
+        alike = same and np.array_equal(self.fixed, network.fixed)
+        return alike and _like_heat(self.put_in_w, network)
 
     def shared(self) -> "Known":
         """Give it as other processes can be told of it."""
@@ -96,12 +93,8 @@ class Known:
 
 
 def stands_alone(network: Network, leading: Network) -> bool:
-    """Whether a network is solved by itself, whatever the state of the one that leads is.
-
-    It takes nothing from it where its heat is unlike; where it has none, an inverse.
-    """
-    put_in = network.sources.power.any() or network.fixed_rise.any()
-    return bool(put_in) and not _like_heat(_put_in(leading), network)
+    """Whether a network is solved by itself: its heat is unlike that of the one that leads."""
+    return not _like_heat(_put_in(leading), network)
 
 
 def _like_heat(put_in_w: float, network: Network) -> bool:
@@ -128,11 +121,7 @@ def solve_known(network: Network, known: Known | None) -> Known:
         return _known(network, solve_nearby(network, start, inverse), inverse)
     calm = _without_heat(network)
     if calm is not None:
-        # Any inverse finds what is balanced; one that is made already costs nothing.
-        inverse = Inverse(network, calm.rise)
-        if known is not None and known.like(network):
-            inverse = known.inverse.of(network)
-        return _known(network, calm, inverse)
+        return _known(network, calm, Inverse(network, calm.rise))
     near = approach(network, _FIRST_STEPS)
     inverse = Inverse(network, near.rise)
     if near.converged:
