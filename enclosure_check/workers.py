@@ -87,13 +87,15 @@ def spread(
     """
     processes = min(processes, len(items))
     if processes > 1 and len(items) <= _MOST_ITEMS:
-        shared, done = _side_by_side(task, items, processes)
-    else:
-        shared, done = task.lead(), {}
-    for place, item in enumerate(items):
-        if place not in done:
-            done[place] = _done(task, item, shared)
-    return [done[place] for place in range(len(items))]
+        # Where there are no pipes or no memory to share, one process does.
+        with suppress(OSError):
+            shared, done = _side_by_side(task, items, processes)
+            return [
+                done[at] if at in done else _done(task, items[at], shared)
+                for at in range(len(items))
+            ]
+    shared = task.lead()
+    return [_done(task, item, shared) for item in items]
 
 
 def _done(task: Task[Item, Prepared, Shared, Result], item: Item, shared: Shared) -> Result:

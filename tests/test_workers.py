@@ -111,6 +111,15 @@ def test_no_fork_to_be_had(monkeypatch):
     assert done(where, range(3), 2) == [(item, HERE) for item in range(3)]
 
 
+@pytest.mark.parametrize("wanting", ["pipe", "mmap"])
+def test_nothing_to_be_shared(wanting, monkeypatch):
+    def refused(*_: Any) -> None:
+        raise OSError
+
+    monkeypatch.setattr(*((os, "pipe") if wanting == "pipe" else (workers.mmap, "mmap")), refused)
+    assert done(where, range(3), 2) == [(item, HERE) for item in range(3)]
+
+
 def test_what_begins_is_told_in_this_process_only():
     told: list[int] = []
     results = done(where, range(6), 2, begins=told.append)
