@@ -6,6 +6,7 @@ margin; where power that grows with temperature leaves no steady state, the sear
 the last one there was.
 """
 
+from collections.abc import Sequence
 from typing import NamedTuple
 
 import numpy as np
@@ -15,7 +16,7 @@ from enclosure_check.findings.solved import Solved
 from enclosure_check.network.links import FloatArray
 from enclosure_check.network.network import BoolArray, Network
 from enclosure_check.solve.nearby import Inverse, solve_nearby
-from enclosure_check.solve.reaching import Limits, Number, reached
+from enclosure_check.solve.reaching import Border, Limits, Number, reached, turned
 from enclosure_check.solve.steady import SolveOptions
 
 # The searches end when the smallest margin is met this closely. [K]
@@ -64,11 +65,10 @@ def _found(solved: Solved, limits: Limits, wanted: float, powered: bool) -> tupl
     coldest = COLDEST_AIR_C - solved.case.surroundings.air_c
     ends: list[_End | None] = [None, None if powered else _End(None, None)]
     # Where power doubles there may be several states, or none: those are searched for.
+    numbers = _numbers(network, limits, rise, coldest)
     if not network.sources.doubles:
-        met = reached(
-            network, rise, solved.inverse, _numbers(network, limits, rise, coldest)[: 1 + powered],
-            limits, wanted, CLOSE_K,
-        )  # fmt: skip
+        own = numbers[: 1 + powered]
+        met = reached(Border(network, rise, solved.inverse, own, limits, wanted), CLOSE_K)
         for place, one in enumerate(met):
             if one is not None:
                 ends[place] = _End(one.value + place, one.limit)
@@ -76,7 +76,7 @@ def _found(solved: Solved, limits: Limits, wanted: float, powered: bool) -> tupl
     if shift is None or factor is None:
         now = limits.margins(rise, network.reference_k)[:, 0] - wanted
         first = _guess_factor(limits, rise, network.reference_k, wanted) if powered else 1.0
-        search = _Search(network, limits, wanted, rise[network.unknown], solved.inverse)
+        search = _Search(network, numbers, limits, wanted, rise[network.unknown], solved.inverse)
         shift, factor = search.run((shift, factor), float(now.min()), coldest, first)
     return shift, factor
 
@@ -86,7 +86,8 @@ def _numbers(
 ) -> tuple[Number, Number]:
     """The shift of the surroundings [K], and what is added to the factor on the power."""
     reference, power = network.reference_k, network.sources.power
-    is_power = _is_power(network)[:, None]
+    roles = np.array([label.role == "power" for label in network.labels], dtype=bool)
+    is_power = roles[network.sources.label][:, None]
     scale = 1.0 / max(1.0, float(np.abs(rise[limits.node]).max()))
     return (
         Number(lambda shift: (reference + shift, power), 1.0, coldest, np.inf),
@@ -97,12 +98,6 @@ def _numbers(
             LARGEST_FACTOR - 1.0,
         ),
     )
-
-
-def _is_power(network: Network) -> BoolArray:
-    """Which sources are power, not sun, shape (s,)."""
-    roles = np.array([label.role == "power" for label in network.labels], dtype=bool)
-    return np.asarray(roles[network.sources.label])
 
 
 def _upper_limits(
@@ -159,18 +154,19 @@ class _Search:
     def __init__(
         self,
         network: Network,
+        numbers: Sequence[Number],
         limits: Limits,
         wanted: float,
         start: FloatArray,
         inverse: Inverse,
     ) -> None:
         self.network = network
+        self.numbers = numbers
         self.limits = limits
         self.wanted = wanted
         # The last two states of either search, from which the next is foreseen.
         self.states = [[(0.0, start[:, 0])], [(1.0, start[:, 0])]]
         self.inverse = inverse
-        self.is_power = _is_power(network)
         base = limits.margins(network.full_rise(start), network.reference_k)[:, 0] - wanted
         self.base = float(base.min())
         self.base_name = limits.names[int(base.argmin())]
@@ -208,10 +204,9 @@ class _Search:
         ``values`` are those to be tried: the shift under 0, the factor under 1.
         """
         network = self.network
-        shifts = np.array([value if index == 0 else 0.0 for index, value in values.items()])
-        factors = np.array([value if index == 1 else 1.0 for index, value in values.items()])
-        scaled = np.where(self.is_power[:, None], factors, 1.0)
-        tried = network.varied(network.reference_k + shifts, network.sources.power * scaled)
+        # The shift counts from none, the factor from one.
+        more = np.array([value - index for index, value in values.items()])
+        tried = turned(network, [self.numbers[index] for index in values], more)
         start = np.stack([self._foreseen(*each) for each in values.items()], axis=1)
         solution = solve_nearby(tried, start, self.inverse, _CLOSE)
         found = solution.each_converged

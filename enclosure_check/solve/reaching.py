@@ -7,6 +7,7 @@ Jacobian serves the balance, block elimination the border, and Broyden's updates
 """
 
 from collections.abc import Callable, Sequence
+from functools import cached_property
 from typing import NamedTuple
 
 import numpy as np
@@ -75,18 +76,22 @@ def turned(network: Network, numbers: Sequence[Number], values: FloatArray) -> N
     )
 
 
-def reached(
-    network: Network,
-    rise: FloatArray,
-    inverse: Inverse,
-    numbers: Sequence[Number],
-    limits: Limits,
-    wanted_k: float,
-    close_k: float,
-) -> list[Reached | None]:
-    """Find for each number where the smallest margin is the one wanted.
+class _At(NamedTuple):
+    """The bordered balance at a point."""
 
-    Parameters
+    residual: FloatArray
+    """Imbalance of the unknown nodes [W], shape (u, v)."""
+    over_k: FloatArray
+    """Smallest margin over the wanted one [K], shape (v,)."""
+    limit: IntArray
+    """Of which limit, shape (v,)."""
+
+
+@dataclass(frozen=True, eq=False)
+class Border:
+    """The balance of a network with the equation of the margin, for all numbers at once.
+
+    Attributes
     ----------
     network
         The network, one variant.
@@ -100,28 +105,109 @@ def reached(
         What margins there are.
     wanted_k
         The margin that is to be met.
+    """
+
+    network: Network
+    rise: FloatArray
+    inverse: Inverse
+    numbers: Sequence[Number]
+    limits: Limits
+    wanted_k: float
+
+    @cached_property
+    def scale(self) -> FloatArray:
+        """Units of the numbers, shape (v,)."""
+        return np.array([each.scale for each in self.numbers])
+
+    @cached_property
+    def _rises(self) -> FloatArray:
+        return np.repeat(self.rise, len(self.numbers), axis=1)
+
+    @cached_property
+    def _moved(self) -> Network:
+        """The network with every number turned a little."""
+        return turned(self.network, self.numbers, _DIFFERENCE * self.scale)
+
+    @cached_property
+    def _answer(self) -> FloatArray:
+        """What turning the numbers by their scale takes off the state [K], shape (n, v)."""
+        # The state itself balances.
+        change = self._moved.imbalance(self._rises)[self.network.unknown]
+        return self._lifted(self.inverse.apply(change / _DIFFERENCE))
+
+    @cached_property
+    def _warmer(self) -> FloatArray:
+        """What it adds to temperatures whose rises stay [K], shape (v,)."""
+        return (self._moved.reference_k - self.network.reference_k) / _DIFFERENCE
+
+    def rest(self) -> _At:
+        """Give the known state, with every number where it is."""
+        none = np.zeros((len(self.network.unknown), len(self.numbers)))
+        return self._margin(none, self._rises, self.network.reference_k)
+
+    def at(self, z: FloatArray) -> _At:
+        """Evaluate at a point, shape (u + 1, v)."""
+        network = turned(self.network, self.numbers, z[-1] * self.scale)
+        rise = network.full_rise(z[:-1])
+        return self._margin(network.imbalance(rise)[network.unknown], rise, network.reference_k)
+
+    def _margin(self, residual: FloatArray, rise: FloatArray, reference_k: FloatArray) -> _At:
+        margins = self.limits.margins(rise, reference_k) - self.wanted_k
+        least = np.argmin(margins, axis=0)
+        return _At(residual, margins[least, np.arange(len(least))], least)
+
+    def apply(self, at: _At) -> FloatArray:
+        """Multiply by the inverse of the bordered Jacobian at the known state: (u + 1, v)."""
+        balance = self.inverse.apply(at.residual)
+        variant = np.arange(balance.shape[1])
+        node = self.limits.node[at.limit]
+        shown = self._lifted(balance)[node, variant]
+        falls = self._answer[node, variant] - self._warmer
+        # A margin that does not fall leads nowhere.
+        number = (at.over_k + shown) / np.where(falls < 0, falls, np.nan)
+        rises = balance - self._answer[self.network.unknown] * number
+        return np.concatenate((rises, number[None]))
+
+    def _lifted(self, unknown: FloatArray) -> FloatArray:
+        """Changes of all nodes from those of the unknown ones [K], shape (n, v)."""
+        network = self.network
+        change = np.zeros((network.size, unknown.shape[1]))
+        change[network.unknown] = unknown
+        readings = network.readings
+        if readings.node.size:
+            change[readings.nodes] = readings.rise(change)
+        return change
+
+
+def reached(border: Border, close_k: float) -> list[Reached | None]:
+    """Find for each number where the smallest margin is the one wanted.
+
+    Parameters
+    ----------
+    border
+        The balance, the numbers, each turned alone, and the margins.
     close_k
-        How closely.
+        How closely the margin is to be met.
 
     Returns
     -------
     list
         Where each meets it; None where it was not found so.
     """
-    border = _Border(network, rise, inverse, numbers, limits, wanted_k)
-    scale = np.array([each.scale for each in numbers])
+    numbers = border.numbers
     low, high = (np.array([getattr(each, end) for each in numbers]) for end in ("low", "high"))
     # Unknowns: the rises, and last the number in units of its scale.
-    z = np.zeros((len(network.unknown) + 1, len(numbers)))
-    z[:-1] = rise[network.unknown]
-    step, at = border.first_step(), border.rest()
+    z = np.zeros((len(border.network.unknown) + 1, len(numbers)))
+    z[:-1] = border.rise[border.network.unknown]
+    at = border.rest()
+    step = -border.apply(at)
     lost = ~np.isfinite(step).all(axis=0)
     done = ~lost & (np.abs(at.over_k) < close_k)
     step = np.where(done, 0.0, step)
     history: list[tuple[FloatArray, FloatArray]] = []
     with np.errstate(all="ignore"):
         for _ in range(_MOST_CHORDS):
-            value = (z[-1] + step[-1]) * scale
+            value = (z[-1] + step[-1]) * border.scale
             within = (value >= low) & (value <= high) & np.all(np.abs(step) <= _FARTHEST_K, axis=0)
             lost |= ~done & ~within
             if (done | lost).all():
@@ -133,85 +219,7 @@ def reached(
             # What the next step would move is what is left.
             near = np.abs(step).max(axis=0) <= _LEFT_SHARE * close_k
             done |= ~lost & near & (np.abs(at.over_k) < close_k)
-    found: list[Reached | None] = []
-    for place, good in enumerate(done.tolist()):
-        name = limits.names[int(at.limit[place])]
-        found.append(Reached(float(z[-1, place] * scale[place]), name) if good else None)
-    return found
-
-
-class _At(NamedTuple):
-    """The bordered balance at a point."""
-
-    residual: FloatArray
-    """Imbalance of the unknown nodes [W], shape (u, v)."""
-    over_k: FloatArray
-    """Smallest margin over the wanted one [K], shape (v,)."""
-    limit: IntArray
-    """Of which limit, shape (v,)."""
-
-
-class _Border:
-    """The balance of a network with the equation of the margin, for all numbers at once."""
-
-    def __init__(
-        self,
-        network: Network,
-        rise: FloatArray,
-        inverse: Inverse,
-        numbers: Sequence[Number],
-        limits: Limits,
-        wanted_k: float,
-    ) -> None:
-        self._base, self._inverse, self._numbers = network, inverse, numbers
-        self._limits, self._wanted = limits, wanted_k
-        self._scale = np.array([each.scale for each in numbers])
-        # What turning the numbers by their scale does: to the state, and to margins at rest. The
-        # state itself balances.
-        moved = turned(network, numbers, _DIFFERENCE * self._scale)
-        self._rises = np.repeat(rise, len(numbers), axis=1)
-        change = moved.imbalance(self._rises)[network.unknown] / _DIFFERENCE
-        self._answer = self._lifted(inverse.apply(change))
-        self._warmer = (moved.reference_k - network.reference_k) / _DIFFERENCE
-
-    def rest(self) -> _At:
-        """Give the known state, with every number where it is."""
-        none = np.zeros((len(self._base.unknown), len(self._numbers)))
-        return self._margin(none, self._rises, self._base.reference_k)
-
-    def first_step(self) -> FloatArray:
-        """Step from there, shape (u + 1, v)."""
-        return -self.apply(self.rest())
-
-    def at(self, z: FloatArray) -> _At:
-        """Evaluate at a point, shape (u + 1, v)."""
-        network = turned(self._base, self._numbers, z[-1] * self._scale)
-        rise = network.full_rise(z[:-1])
-        return self._margin(network.imbalance(rise)[network.unknown], rise, network.reference_k)
-
-    def _margin(self, residual: FloatArray, rise: FloatArray, reference_k: FloatArray) -> _At:
-        margins = self._limits.margins(rise, reference_k) - self._wanted
-        least = np.argmin(margins, axis=0)
-        return _At(residual, margins[least, np.arange(len(least))], least)
-
-    def apply(self, at: _At) -> FloatArray:
-        """Multiply by the inverse of the bordered Jacobian at the known state: (u + 1, v)."""
-        balance = self._inverse.apply(at.residual)
-        variant = np.arange(balance.shape[1])
-        node = self._limits.node[at.limit]
-        shown = self._lifted(balance)[node, variant]
-        falls = self._answer[node, variant] - self._warmer
-        # A margin that does not fall leads nowhere.
-        number = (at.over_k + shown) / np.where(falls < 0, falls, np.nan)
-        rises = balance - self._answer[self._base.unknown] * number
-        return np.concatenate((rises, number[None]))
-
-    def _lifted(self, unknown: FloatArray) -> FloatArray:
-        """Changes of all nodes from those of the unknown ones [K], shape (n, v)."""
-        network = self._base
-        change = np.zeros((network.size, unknown.shape[1]))
-        change[network.unknown] = unknown
-        readings = network.readings
-        if readings.node.size:
-            change[readings.nodes] = readings.rise(change)
-        return change
+    values = (z[-1] * border.scale).tolist()
+    names = [border.limits.names[limit] for limit in at.limit.tolist()]
+    every = zip(done.tolist(), values, names, strict=True)
+    return [Reached(value, name) if good else None for good, value, name in every]

@@ -264,9 +264,9 @@ def test_what_is_found_with_its_state_is_what_a_search_finds(path, monkeypatch):
     found = assess(answer).headroom
     asked: list[int] = []
 
-    def nothing_found(network, rise, inverse, numbers, *_):
-        asked.append(len(numbers))
-        return [None] * len(numbers)
+    def nothing_found(border, _):
+        asked.append(len(border.numbers))
+        return [None] * len(border.numbers)
 
     monkeypatch.setattr(headroom, "reached", nothing_found)
     searched = assess(answer).headroom
