@@ -10,6 +10,7 @@ from typing import Any, Protocol
 import numpy as np
 
 from enclosure_check.network.links import FloatArray, IntArray
+from enclosure_check.records import dataclass
 
 # Unknowns up to which dense factorisation is used; below, importing a sparse library costs more.
 DENSE_UP_TO = 1200
@@ -33,32 +34,44 @@ class Factor(Protocol):
         """Solve the transposed system for right sides, shape (u, k)."""
 
 
-def factorise(
-    row: IntArray, column: IntArray, values: FloatArray, size: int, shift: float = 0.0
-) -> Factor:
+@dataclass(frozen=True, eq=False)
+class Entries:
+    """Where derivatives stand in a matrix; several at one place add up."""
+
+    row: IntArray
+    """Shape (d,), negative for what lies outside."""
+    column: IntArray
+    size: int
+    """Rows and columns of the matrix."""
+
+    @cached_property
+    def _flat(self) -> IntArray:
+        """Place in the matrix read row by row, its end for what lies outside, shape (d,)."""
+        outside = (self.row < 0) | (self.column < 0)
+        return np.where(outside, self.size * self.size, self.row * self.size + self.column)
+
+    def dense(self, values: FloatArray) -> FloatArray:
+        """Add derivatives (d,) up at their places: shape (size, size)."""
+        size = self.size
+        total = np.bincount(self._flat, values, size * size + 1)
+        return np.asarray(total[: size * size], dtype=np.float64).reshape(size, size)
+
+
+def factorise(entries: Entries, values: FloatArray, shift: float = 0.0) -> Factor:
     """Factorise the matrix of derivatives added up at their places.
 
     Parameters
     ----------
-    row, column
-        Places, negative for what lies outside; shape (d,).
+    entries
+        Their places.
     values
         Derivatives [W/K], shape (d,).
-    size
-        Number of unknowns.
     shift
         Adds this share of its size to every diagonal entry.
     """
-    if size <= DENSE_UP_TO:
-        return DenseFactor(dense(row, column, values, size), shift)
-    return BorderedFactor(row, column, values, size, shift)
-
-
-def dense(row: IntArray, column: IntArray, values: FloatArray, size: int) -> FloatArray:
-    """Add derivatives up at their places: shape (size, size)."""
-    flat = np.where((row >= 0) & (column >= 0), row * size + column, size * size)
-    total = np.bincount(flat, values, size * size + 1)
-    return np.asarray(total[: size * size], dtype=np.float64).reshape(size, size)
+    if entries.size <= DENSE_UP_TO:
+        return DenseFactor(entries.dense(values), shift)
+    return BorderedFactor(entries, values, shift)
 
 
 class DenseFactor:
@@ -82,12 +95,11 @@ class DenseFactor:
 class BorderedFactor:
     """A sparse matrix with a dense border: ``[[A, B], [C, D]]``."""
 
-    def __init__(
-        self, row: IntArray, column: IntArray, values: FloatArray, size: int, shift: float
-    ) -> None:
+    def __init__(self, entries: Entries, values: FloatArray, shift: float) -> None:
         # Slow to import, and only large networks come here.
         from scipy.sparse import csc_array, diags_array
 
+        row, column, size = entries.row, entries.column, entries.size
         inside = (row >= 0) & (column >= 0)
         row, column, values = row[inside], column[inside], values[inside]
         matrix = csc_array((values, (row, column)), shape=(size, size))

@@ -7,7 +7,7 @@ import numpy as np
 import numpy.typing as npt
 
 from enclosure_check.network.grid import PlateGrid
-from enclosure_check.network.linear import Factor, dense, factorise
+from enclosure_check.network.linear import Entries, Factor, factorise
 from enclosure_check.network.links import FloatArray, IntArray, LinkKind, LinkLabel
 from enclosure_check.records import dataclass, field, replace
 
@@ -17,7 +17,7 @@ if TYPE_CHECKING:
 BoolArray = npt.NDArray[np.bool_]
 
 # Cached properties of a network that follow from its shape alone.
-_OF_SHAPE = ("unknown", "size", "_ends", "_positions", "_entries", "link_label", "outgoing")
+_OF_SHAPE = ("unknown", "size", "_ends", "_positions", "entries", "link_label", "outgoing")
 
 # Twice the doubled power is doubled 60 times at most: keeps an iterate that runs away finite.
 _LARGEST_EXPONENT = 60.0
@@ -225,10 +225,10 @@ class Network:
         return positions
 
     @cached_property
-    def _entries(self) -> tuple[IntArray, IntArray]:
-        """Row and column of every derivative among the unknown nodes, the leaving ends first.
+    def entries(self) -> Entries:
+        """Places of all derivatives among the unknown nodes, the leaving ends first.
 
-        Derivatives of or by nodes of given temperature have negative places. Shapes (d,).
+        Those of or by nodes of given temperature lie outside.
         """
         positions = self._positions
         patterns = [kind.pattern for kind in self.kinds]
@@ -240,7 +240,8 @@ class Network:
             for end in (getattr(kind, ends),)
         ]
         own = positions[self.sources.node]
-        return np.concatenate([*rows, own]), np.concatenate([*columns, *columns, own])
+        row, column = np.concatenate([*rows, own]), np.concatenate([*columns, *columns, own])
+        return Entries(row, column, len(self.unknown))
 
     @cached_property
     def link_label(self) -> IntArray:
@@ -291,20 +292,18 @@ class Network:
         )
 
     def derivatives(self, rise: FloatArray) -> FloatArray:
-        """Derivatives at the places of `_entries`, which make up the Jacobian [W/K], (d, v)."""
+        """Derivatives at the places of `entries`, which make up the Jacobian [W/K], (d, v)."""
         links = np.concatenate([kind.slopes(rise, self.reference_k) for kind in self.kinds])
         own = self.sources.heat_by_rise(rise[self.sources.node], self.reference_k)
         return np.concatenate((links, -links, -own))
 
     def jacobian(self, rise: FloatArray) -> FloatArray:
         """Derivative of the unknown nodes' `imbalance` by their rises [W/K], shape (v, u, u)."""
-        values = self.derivatives(rise)
-        size = len(self.unknown)
-        return np.stack([dense(*self._entries, column, size) for column in values.T])
+        return np.stack([self.entries.dense(column) for column in self.derivatives(rise).T])
 
     def factor(self, values: FloatArray, shift: float = 0.0) -> Factor:
         """Factorise the Jacobian of one variant from its `derivatives`, shape (d,)."""
-        return factorise(*self._entries, values, len(self.unknown), shift)
+        return factorise(self.entries, values, shift)
 
     def first_guess(self) -> FloatArray:
         """Rises of the linear network whose links behave as at a nominal rise [K], shape (u, v)."""

@@ -10,6 +10,8 @@ FloatArray = npt.NDArray[np.float64]
 
 # Terms of the cosine series per ratio of plate to source, and bounds of their number. [-]
 _TERMS_PER_RATIO, _LEAST_TERMS, _MOST_TERMS = 4.0, 48, 480
+# Terms have died down where what lies between the sources is so many of their decay lengths. [-]
+_DIED_DOWN = 8.0
 
 
 def mutual_rise(
@@ -50,10 +52,26 @@ def mutual_rise(
     turn = (apart[:, 0] > apart[:, 1])[:, None, None]
     one, other = np.where(turn, one[:, ::-1], one), np.where(turn, other[:, ::-1], other)
     edges = np.where(turn[:, 0], edges[:, ::-1], edges)
-    length, width = edges[:, :1], edges[:, 1:]
     smaller = np.minimum(np.ptp(one[:, 0], axis=1), np.ptp(other[:, 0], axis=1))
-    ratio = float(np.max(length[:, 0] / smaller))
-    count = int(min(max(_TERMS_PER_RATIO * ratio, _LEAST_TERMS), _MOST_TERMS))
+    between = np.maximum(one[:, 1, 0] - other[:, 1, 1], other[:, 1, 0] - one[:, 1, 1])
+    fine = _TERMS_PER_RATIO * edges[:, 0] / smaller
+    alive = _DIED_DOWN * edges[:, 0] / (math.pi * np.maximum(between, 1e-12))
+    counts = np.clip(np.minimum(fine, alive), _LEAST_TERMS, _MOST_TERMS)
+    # Few pairs ask for many terms: those that ask for about as many go together.
+    groups = np.ceil(np.log2(counts / _LEAST_TERMS)).astype(np.intp)
+    rise = np.empty(len(one))
+    for group in np.unique(groups):
+        own = np.flatnonzero(groups == group)
+        terms = math.ceil(counts[own].max())
+        rise[own] = _series(one[own], other[own], edges[own], sheet[own], h, terms)
+    return rise
+
+
+def _series(
+    one: FloatArray, other: FloatArray, edges: FloatArray, sheet: FloatArray, h: float, count: int
+) -> FloatArray:
+    """The series of `mutual_rise`, so many terms of it."""
+    length, width = edges[:, :1], edges[:, 1:]
     terms = np.arange(count)
     wave = terms * (math.pi / length)
     p = np.sqrt(wave * wave + (h / sheet)[:, None])

@@ -10,7 +10,7 @@ from enclosure_check.network.linear import (
     DENSE_UP_TO,
     BorderedFactor,
     DenseFactor,
-    dense,
+    Entries,
     factorise,
 )
 from enclosure_check.solve.steady import solve_steady
@@ -27,13 +27,14 @@ def network():
 @pytest.fixture(scope="module")
 def system(network):
     rise = network.full_rise(np.linspace(5.0, 30.0, len(network.unknown))[:, None])
-    return (*network._entries, network.derivatives(rise)[:, 0], len(network.unknown))
+    return network.entries, network.derivatives(rise)[:, 0]
 
 
 @pytest.mark.parametrize("shift", [0.0, 0.3])
 def test_bordered_is_dense(system, shift):
-    right = np.random.default_rng(3).normal(size=(system[-1], 3))
-    plain = DenseFactor(dense(*system), shift)
+    entries, values = system
+    right = np.random.default_rng(3).normal(size=(entries.size, 3))
+    plain = DenseFactor(entries.dense(values), shift)
     bordered = BorderedFactor(*system, shift)
     assert 10 < len(bordered._border) < 200
     for solve in ("solve", "solve_transposed"):
@@ -43,9 +44,10 @@ def test_bordered_is_dense(system, shift):
 
 
 def test_large_systems_are_bordered(system):
-    assert system[-1] <= DENSE_UP_TO or isinstance(factorise(*system), BorderedFactor)
-    small = np.array([0, 1, 0, -1]), np.array([0, 1, 1, 0]), np.array([2.0, 4.0, 1.0, 9.0])
-    factor = factorise(*small, 2)
+    assert system[0].size > DENSE_UP_TO
+    assert isinstance(factorise(*system), BorderedFactor)
+    small = Entries(np.array([0, 1, 0, -1]), np.array([0, 1, 1, 0]), 2)
+    factor = factorise(small, np.array([2.0, 4.0, 1.0, 9.0]))
     assert isinstance(factor, DenseFactor)
     # What lies outside is left out.
     np.testing.assert_array_equal(factor.matrix, [[2.0, 1.0], [0.0, 4.0]])
@@ -53,7 +55,7 @@ def test_large_systems_are_bordered(system):
 
 def test_singular_matrices_are_refused():
     row = np.arange(3)
-    singular = BorderedFactor(row, row, np.array([1.0, 0.0, 1.0]), 3, 0.0)
+    singular = BorderedFactor(Entries(row, row, 3), np.array([1.0, 0.0, 1.0]), 0.0)
     with pytest.raises(np.linalg.LinAlgError):
         singular.solve(np.ones((3, 1)))
 
@@ -64,7 +66,7 @@ def test_a_large_network_has_the_answer_of_a_small_one(network):
     solution = solve_steady(network)
     assert solution.converged
     rise = solution.rise
-    matrix = dense(*network._entries, network.derivatives(rise)[:, 0], len(network.unknown))
+    matrix = network.entries.dense(network.derivatives(rise)[:, 0])
     left = network.imbalance(rise)[network.unknown]
     # A dense Newton step from there moves nothing any more.
     step = np.linalg.solve(matrix, -left)
