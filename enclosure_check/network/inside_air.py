@@ -154,8 +154,7 @@ class InsideAir(InsideAirHeat):
         # Lifts: by what they pick up, and by what they keep.
         up, down = self._retained(warm_mean, warm_layer)
         for sign, keep_on in ((1.0, up), (-1.0, down)):
-            active = (sign * entering > 0).astype(np.float64)
-            parts += self._lift_slopes(sign, active, entering, by, keep_on)
+            parts += self._lift_slopes(sign, entering, by, keep_on)
         inverted = layer[:-1] - layer[1:]
         slope = self.conduct_w_per_k * (1.0 + 4.0 / 3.0 * self._overturning(inverted))
         mixing = (slope + self.stirring).ravel()
@@ -163,12 +162,7 @@ class InsideAir(InsideAirHeat):
         return np.concatenate(parts)[:, None]
 
     def _lift_slopes(
-        self,
-        sign: float,
-        active: FloatArray,
-        entering: FloatArray,
-        by: FloatArray,
-        keep: FloatArray,
+        self, sign: float, entering: FloatArray, by: FloatArray, keep: FloatArray
     ) -> list[FloatArray]:
         """Derivatives of the lifts by cells, own means, facing means and air nodes."""
         n = len(self.air)
@@ -176,27 +170,24 @@ class InsideAir(InsideAirHeat):
         def flip(values: FloatArray) -> FloatArray:
             return values if sign > 0 else values[:, ::-1]
 
-        hat = self.hat if sign > 0 else self.hat[:, ::-1]
-        picked = np.stack(
-            [self._by_surface @ (hat[:, j : j + 1] * active * sign * entering) for j in range(n)],
-            axis=1,
-        )
+        # Only what heats the air lifts it, only what cools it lets it fall.
+        active = np.flatnonzero(sign * entering[:, 0] > 0)
+        hat, by = flip(self.hat)[active], by[active]
+        by_surface = self._by_surface[:, active]
+        picked = (by_surface @ (hat * (sign * entering[active])))[:, :, None]
         kept = flip(keep)
         lifts = march(np.repeat(picked, keep.shape[2], axis=2), kept)
         # What a watt picked up at node i gives at each lift j: products of what is kept.
-        passed = passing(kept[:, :, 0])
-        per_entry = np.einsum("ei,eij->ej", hat, passed[self._surface_of_entry])
-        per_entry = per_entry * active * sign
-        by_cell = per_entry * by[:, :1]
-        if sign < 0:
-            by_cell = by_cell[:, ::-1]
+        passed = passing(kept[:, :, 0])[self._surface_of_entry[active]]
+        per_entry = sign * (hat[:, None] @ passed)[:, 0]
+        by_cell = np.zeros((len(self.cell), n - 1))
+        by_cell[active] = flip(per_entry * by[:, :1])
         kept_by = flip((lifts[:, :, 1:] - lifts[:, :, :1]) / DIFFERENCE_K)
-        own = flip(self._by_surface @ (per_entry * by[:, 1:2])) + kept_by[:, :, 0]
-        facing = self._by_side @ (per_entry * by[:, 2:3])
-        facing = facing[:, ::-1] if sign < 0 else facing
-        layers = np.stack(
-            [flip(self._by_surface @ (per_entry * by[:, 3 + i : 4 + i])) for i in range(n)], axis=2
-        )
+        own = flip(by_surface @ (per_entry * by[:, 1:2])) + kept_by[:, :, 0]
+        facing = flip(self._by_side[:, active] @ (per_entry * by[:, 2:3]))
+        each = per_entry[:, :, None] * by[:, None, 3:]
+        layers = by_surface @ each.reshape(len(each), (n - 1) * n)
+        layers = flip(layers.reshape(len(layers), n - 1, n))
         return [by_cell.ravel(), own.ravel(), facing.ravel(), (layers + kept_by[:, :, 1:]).ravel()]
 
     @cached_property

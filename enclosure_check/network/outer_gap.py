@@ -95,17 +95,16 @@ class OuterGap(Links):
 
     def heat_by_rise(self, rise: FloatArray, reference_k: FloatArray) -> FloatArray:
         """Derivative of `heat` by each rise [W/K], shape (5, m, v)."""
-        own = rise[2:, 0]
-        base = self.coefficients(own, reference_k)
-        direct = self._shared(base) * self.area
+        # Columns: as it is, then each of the three warmer, variant by variant.
+        warmer = np.repeat(rise[2:, 0][:, None], 4, axis=1)
+        warmer[np.arange(3), np.arange(1, 4)] += DIFFERENCE_K
+        variants = rise.shape[2]
+        each = self.coefficients(warmer.reshape(3, -1), np.tile(reference_k, 4))
+        each = self._shared(each).reshape(len(self.a), 4, variants)
+        direct = each[:, 0] * self.area
         flow = self.area * (rise[0] - rise[1])
-        slopes = [direct, -direct]
-        for index in range(3):
-            warmer = own.copy()
-            warmer[index] += DIFFERENCE_K
-            change = (self.coefficients(warmer, reference_k) - base) / DIFFERENCE_K
-            slopes.append(self._shared(change) * flow)
-        return np.stack(slopes)
+        changes = (each[:, 1:] - each[:, :1]) / DIFFERENCE_K
+        return np.stack((direct, -direct, *(changes[:, index] * flow for index in range(3))))
 
     def factors(self, reference_k: FloatArray) -> FloatArray:
         """Factors at a nominal rise [W/K], shape (5, m, 1)."""

@@ -160,15 +160,25 @@ class Vents:
         return below
 
     @cached_property
-    def _growth(self) -> tuple[FloatArray, FloatArray]:
-        """What inflow has grown by to each step, falling and rising [-], shapes (s, j)."""
+    def _growth(self) -> FloatArray:
+        """What inflow has grown by to each step [-], falling (steps from the top) and rising.
+
+        Shape (2, s, j).
+        """
         low, share = self._place
         middles = np.arange(len(self.air) - 1) + 0.5
         fallen = self.spacing * (low + share - middles[:, None]).T
         radius = self.radius[self.opening]
-        return plume_growth(np.maximum(fallen, 0.0), radius), plume_growth(
-            np.maximum(-fallen, 0.0), radius
-        )
+        falling = plume_growth(np.maximum(fallen, 0.0), radius)
+        return np.stack((falling[:, ::-1], plume_growth(np.maximum(-fallen, 0.0), radius)))
+
+    @cached_property
+    def _on_the_way(self) -> FloatArray:
+        """Shares of the air nodes in the air at each piece, from the top and from the bottom.
+
+        Shape (2, s, n).
+        """
+        return np.stack((self.hat[:, ::-1], self.hat))
 
     # Laws ----------------------------------------------------------------------------------
 
@@ -182,8 +192,7 @@ class Vents:
         exchanged = self._exchange(lighter, outside, flow.flow)
         leaving = np.maximum(flow.flow, 0.0) + exchanged
         entering = np.maximum(-flow.flow, 0.0) + exchanged
-        fallen, fall_heat = self._streams(layer, entering, mean.specific_heat, falling=True)
-        risen, rise_heat = self._streams(layer, entering, mean.specific_heat, falling=False)
+        fallen, stream_heat = self._streams(layer, entering, mean.specific_heat)
         head = flow.base_pressure + GRAVITY * self._weights @ lighter
         lost = self._passage_loss(flow.passage, outside, mean.kinematic_viscosity)
         head[1:] -= np.cumsum(lost, axis=0)
@@ -191,8 +200,8 @@ class Vents:
             leaving,
             entering,
             head,
-            flow.passage + fallen - risen,
-            rise_heat - fall_heat,
+            flow.passage + fallen,
+            stream_heat,
             mean.specific_heat,
         )
 
@@ -233,34 +242,35 @@ class Vents:
         return np.asarray(most * np.maximum(1.0 - np.abs(flow) / np.maximum(stopped, 1e-30), 0.0))
 
     def _streams(
-        self, layer: FloatArray, entering: FloatArray, heat_capacity: FloatArray, *, falling: bool
+        self, layer: FloatArray, entering: FloatArray, heat_capacity: FloatArray
     ) -> tuple[FloatArray, FloatArray]:
-        """Mass and heat that streams of outside air take past each step, both (j, c).
+        """Streams of outside air past each step: mass downwards, heat upwards, both (j, c).
 
-        Falling streams are told from the top down; those that rise are the same upside down.
+        Those that fall are told from the top down, those that rise from the bottom up, both at
+        once: they are the same upside down.
         """
-        steps = len(self.air) - 1
-        order = range(steps - 1, -1, -1) if falling else range(steps)
-        grown = self._growth[0 if falling else 1]
-        fresh = np.zeros_like(entering)
-        heat = np.zeros_like(entering)
-        before = np.zeros(len(entering))
-        mass_past, heat_past = np.zeros((steps, layer.shape[1])), np.zeros((steps, layer.shape[1]))
-        for step in order:
-            here, there = (step + 1, step) if falling else (step, step + 1)
-            new = entering * self.hat[:, here : here + 1]
-            after = grown[:, step]
-            taken = fresh * (after - before)[:, None] + new * after[:, None]
-            fresh, heat = fresh + new, heat + heat_capacity * taken * layer[here]
+        ways = np.stack((layer[::-1], layer))[:, None]
+        grown = self._growth[..., None]
+        whole, further = 1.0 + grown, np.diff(grown, axis=2, prepend=0.0)
+        arriving = self._on_the_way[..., None] * entering[:, None]
+        colder = np.array([1.0, -1.0])[:, None, None]
+        capacity = heat_capacity * ways
+        fresh = np.zeros((2, *entering.shape))
+        heat = np.zeros_like(fresh)
+        masses, heats = [], []
+        for step in range(len(self.air) - 1):
+            new = arriving[:, :, step]
+            taken = fresh * further[:, :, step] + new * grown[:, :, step]
+            fresh, heat = fresh + new, heat + taken * capacity[:, :, step]
             # What it has taken up warms it: it goes on into air warmer than itself as it is now.
-            mass = np.maximum(fresh * (1.0 + after)[:, None], 1e-30)
-            warmer = layer[there] - heat / (heat_capacity * mass)
-            kept = sinking_share(warmer if falling else -warmer)
+            mass = np.maximum(fresh * whole[:, :, step], 1e-30)
+            warmer = ways[:, :, step + 1] - heat / (heat_capacity * mass)
+            kept = sinking_share(colder * warmer)
             fresh, heat = fresh * kept, heat * kept
-            before = after
-            mass_past[step] = (fresh * (1.0 + after)[:, None]).sum(axis=0)
-            heat_past[step] = heat.sum(axis=0)
-        return mass_past, heat_past
+            masses.append((fresh * whole[:, :, step]).sum(axis=1))
+            heats.append(heat.sum(axis=1))
+        mass_past, heat_past = np.stack(masses), np.stack(heats)
+        return mass_past[::-1, 0] - mass_past[:, 1], heat_past[:, 1] - heat_past[::-1, 0]
 
     # What the solver asks --------------------------------------------------------------------
 

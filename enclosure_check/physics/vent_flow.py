@@ -26,6 +26,8 @@ WHOLE = 1e-5
 NEAR = 1e-9
 MOST_STEPS = 80
 MOST_HALVINGS = 40
+# Steps that are taken whole as long as they bring the pressures closer; later ones go by energy.
+QUICK_STEPS = 12
 
 
 class VentFlows(NamedTuple):
@@ -74,57 +76,63 @@ def balanced_flows(
     ArithmeticError
         When the iteration does not end, which losses that grow with their flow do not allow.
     """
+    count, cases = head.shape
+    if count == 1:
+        return VentFlows(np.zeros_like(head), -head[0], np.zeros_like(passage_linear), 0)
     # Heads as good as equal drive what rounding leaves of them, and are not asked for more.
-    size = np.max(np.abs(head), axis=0)
-    scale = np.maximum(np.max(head, axis=0) - np.min(head, axis=0), 1e-3 * size + 1e-30)
-    flow = _start(head, quadratic_out, quadratic_in, linear)
-
-    def passing(m: FloatArray) -> FloatArray:
-        return below.T @ m
-
-    def loss(m: FloatArray) -> FloatArray:
-        quadratic = np.where(m > 0, quadratic_out, quadratic_in)
-        return quadratic * m * np.abs(m) + linear * m
-
-    def unmet(m: FloatArray) -> FloatArray:
-        """Loss of pieces and passages less the head, the base pressure for each piece."""
-        through = passing(m)
-        lost = passage_quadratic * through * np.abs(through) + passage_linear * through
-        return loss(m) + below @ lost - head
+    high, low = head.max(axis=0), head.min(axis=0)
+    scale = np.maximum(high - low, 1e-3 * np.maximum(high, -low) + 1e-30)
+    flow = _start(head, 0.5 * (high + low), quadratic_out, quadratic_in, linear)
+    across = np.ascontiguousarray(below.T)
 
     def energy(m: FloatArray) -> FloatArray:
         quadratic = np.where(m > 0, quadratic_out, quadratic_in)
-        through, size = np.abs(passing(m)), np.abs(m)
+        through, size = np.abs(across @ m), np.abs(m)
         own = (quadratic * size / 3.0 + linear / 2.0) * size * size - head * m
         lost = (passage_quadratic * through / 3.0 + passage_linear / 2.0) * through * through
         return np.asarray(own.sum(axis=0) + lost.sum(axis=0))
 
-    if len(flow) == 1:
-        return VentFlows(np.zeros_like(head), -head[0], np.zeros_like(passage_linear), 0)
-    count, cases = flow.shape
-    last = np.inf
+    matrix = np.zeros((cases, count + 1, count + 1))
+    matrix[:, :count, count] = -1.0
+    matrix[:, count, :count] = 1.0
+    right = np.empty((cases, count + 1, 1))
+    diagonal = np.arange(count)
+    last, off = np.inf, np.full(cases, np.inf)
+    before = flow, np.zeros_like(flow)
     for step in range(MOST_STEPS):
-        residual = unmet(flow)
-        quadratic = np.where(flow > 0, quadratic_out, quadratic_in)
-        slope = 2.0 * quadratic * np.abs(flow) + linear
-        through = np.abs(passing(flow))
-        passage_slope = 2.0 * passage_quadratic * through + passage_linear
-        matrix = np.zeros((cases, count + 1, count + 1))
-        matrix[:, :count, :count] = np.einsum("ij,jc,kj->cik", below, passage_slope, below)
-        matrix[:, np.arange(count), np.arange(count)] += slope.T
-        matrix[:, :count, count] = -1.0
-        matrix[:, count, :count] = 1.0
-        right = np.concatenate((-residual.T, -flow.sum(axis=0)[:, None]), axis=1)
-        change = np.linalg.solve(matrix, right[:, :, None])[:, :, 0].T
+        # Loss of pieces and passages less the head: the base pressure for each piece.
+        own = np.where(flow > 0, quadratic_out, quadratic_in) * np.abs(flow)
+        through = across @ flow
+        passed = passage_quadratic * np.abs(through)
+        residual = (own + linear) * flow + below @ ((passed + passage_linear) * through) - head
+        slope = 2.0 * own + linear
+        passage_slope = 2.0 * passed + passage_linear
+        matrix[:, :count, :count] = (below * passage_slope.T[:, None, :]) @ across
+        matrix[:, diagonal, diagonal] += slope.T
+        right[:, :count, 0] = -residual.T
+        right[:, count, 0] = -flow.sum(axis=0)
+        change = np.linalg.solve(matrix, right)[:, :, 0].T
         pressure, move = change[count], change[:count]
         # Where losses differ by many powers of ten, rounding leaves mass over: a step that does not
         # keep it seems to lead uphill.
         move = move - (flow + move).sum(axis=0) / (slope * (1.0 / slope).sum(axis=0))
-        off = float(np.max(np.abs(residual - pressure) / scale))
-        if off <= TOLERANCE or (off <= NEAR and off > 0.5 * last):
-            return VentFlows(flow, pressure, passing(flow), step)
-        last = off
-        flow = flow + move if off <= WHOLE else _stepped(flow, move, energy)
+        own_off = np.abs(residual - pressure).max(axis=0) / scale
+        worst = float(own_off.max())
+        if worst <= TOLERANCE or (worst <= NEAR and worst > 0.5 * last):
+            return VentFlows(flow, pressure, through, step)
+        last = worst
+        if worst <= WHOLE:
+            flow = flow + move
+        elif step < QUICK_STEPS and not (astray := own_off > off).any():
+            off, before = own_off, (flow, move)
+            flow = flow + move
+        elif step < QUICK_STEPS:
+            # The last step, taken whole, led away: as much of it as lowers the energy.
+            flow = np.where(astray, _stepped(*before, energy), flow)
+            off = np.where(astray, np.inf, own_off)
+            before = flow, np.zeros_like(flow)
+        else:
+            flow = _stepped(flow, move, energy)
     raise ArithmeticError("flows through the openings do not balance")
 
 
@@ -142,10 +150,14 @@ def _stepped(flow: FloatArray, move: FloatArray, energy: object) -> FloatArray:
 
 
 def _start(
-    head: FloatArray, quadratic_out: FloatArray, quadratic_in: FloatArray, linear: FloatArray
+    head: FloatArray,
+    middle: FloatArray,
+    quadratic_out: FloatArray,
+    quadratic_in: FloatArray,
+    linear: FloatArray,
 ) -> FloatArray:
     """Flows at a pressure that about halves the head, made to sum to zero."""
-    drive = head - 0.5 * (np.max(head, axis=0) + np.min(head, axis=0))
+    drive = head - middle
     quadratic = np.where(drive > 0, quadratic_out, quadratic_in)
     root = np.sqrt(linear * linear + 4.0 * quadratic * np.abs(drive))
     flow = 2.0 * drive / (linear + root)
