@@ -1,6 +1,7 @@
 """The whole line, from a document to its report."""
 
 from collections.abc import Callable, Sequence
+from functools import partial
 from typing import TYPE_CHECKING
 
 from enclosure_check import __version__
@@ -16,7 +17,7 @@ from enclosure_check.network.network import Network
 from enclosure_check.physics.view_closure import NotEnclosedError
 from enclosure_check.solve.nearby import Known, solve_known, stands_alone
 from enclosure_check.solve.steady import Outcome
-from enclosure_check.workers import Task, spread
+from enclosure_check.workers import Task, each, spread
 
 if TYPE_CHECKING:
     from enclosure_check.findings.certainty import Sensitivities
@@ -75,7 +76,9 @@ def check(
     # another, so that they may be found side by side.
     first = max(cases, key=_stated_power)
     network = _build(first)
-    closest: tuple[Solved, PartFinding] | None = None
+    # Of the cases that this process solves, the one with the smallest margin.
+    closest: tuple[float, Solved] | None = None
+    from_first: Known | None = None
 
     def prepare(case: Case) -> tuple[Network, Known | None]:
         if case is first:
@@ -84,26 +87,33 @@ def check(
         return own, solve_known(own, None) if stands_alone(own, network) else None
 
     def lead() -> Known:
+        nonlocal from_first
         known = solve_known(network, None)
         _refuse_unconverged(first, known)
-        return known.shared()
+        from_first = known.shared()
+        return from_first
+
+    def solved_with(
+        case: Case, prepared: tuple[Network, Known | None], shared: Known | None
+    ) -> Solved:
+        own, known = prepared
+        if known is None:
+            assert shared is not None  # see `alone`
+            known = shared if case is first else solve_known(own, shared)
+        return _solved(case, own, known)
 
     def finish(
         case: Case, prepared: tuple[Network, Known | None], shared: Known | None
     ) -> ConditionFinding:
         nonlocal closest
-        own, known = prepared
-        if known is None:
-            assert shared is not None  # see `alone`
-            known = shared if case is first else solve_known(own, shared)
-        solved = _solved(case, own, known)
+        solved = solved_with(case, prepared, shared)
         # Only tolerances ask for the document again.
         rebuild = document.variation(case).case_with if case.tolerances else None
         found = assess(solved, rebuild)
         if see is not None:
             see(solved, found)
-        if found.parts and (closest is None or found.parts[0].margin_k < closest[1].margin_k):
-            closest = solved, found.parts[0]
+        if found.parts and (closest is None or found.parts[0].margin_k < closest[0]):
+            closest = found.parts[0].margin_k, solved
         return found
 
     def alone(prepared: tuple[Network, Known | None]) -> bool:
@@ -113,14 +123,26 @@ def check(
         if tell is not None:
             tell(case.condition)
 
-    # What is wanted of the solutions themselves needs them in this process.
-    if see is not None or sensitivities > 0:
+    # Who wants to see the solutions needs them in this process.
+    if see is not None:
         processes = 1
     # Those least like the first, which may need nothing of it, are begun while it is solved.
     order = sorted(range(len(cases)), key=lambda at: (cases[at] is first, _stated_power(cases[at])))
     ordered = [cases[at] for at in order]
     results = spread(Task(prepare, lead, finish, alone, begins), ordered, processes)
     found = [result for _, result in sorted(zip(order, results, strict=True), key=lambda x: x[0])]
+    buys = None
+    judged = [
+        (case, result.parts[0])
+        for case, result in zip(ordered, results, strict=True)
+        if result.parts
+    ]
+    if sensitivities > 0 and judged:
+        case, part = min(judged, key=lambda pair: pair[1].margin_k)
+        # What another process solved is solved here again, from the same state.
+        at = closest[1] if closest is not None and closest[1].case is case else None
+        at = at or solved_with(case, prepare(case), from_first)
+        buys = _sensitivities(document, at, part, sensitivities, processes)
     return Report(
         format=1,
         version=__version__,
@@ -139,7 +161,7 @@ def check(
         caution=CAUTION,
         inputs=document.inputs(option),
         baseline=None,
-        sensitivities=_sensitivities(document, closest, sensitivities),
+        sensitivities=buys,
     )
 
 
@@ -150,15 +172,13 @@ def _stated_power(case: Case) -> float:
 
 
 def _sensitivities(
-    document: LoadedDocument, closest: tuple[Solved, PartFinding] | None, most: int
-) -> "Sensitivities | None":
-    """Give the numbers that move the smallest margin most, where they are asked for."""
-    if closest is None or most == 0:
-        return None
+    document: LoadedDocument, solved: Solved, part: PartFinding, most: int, processes: int
+) -> "Sensitivities":
+    """Give the numbers that move the smallest margin most."""
     from enclosure_check.findings.sensitivities import sensitivities
 
-    solved, part = closest
-    return sensitivities(solved, document.variation(solved.case), part, most)
+    variation = document.variation(solved.case)
+    return sensitivities(solved, variation, part, most, partial(each, processes=processes))
 
 
 def check_and_explain(

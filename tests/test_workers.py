@@ -16,7 +16,7 @@ from enclosure_check.check import check
 from enclosure_check.description.load import load_document
 from enclosure_check.report.json_report import write_json
 from enclosure_check.report.options import WriterOptions
-from enclosure_check.workers import MOST_PROCESSES, Task, available_processes, spread
+from enclosure_check.workers import MOST_PROCESSES, Task, available_processes, each, spread
 
 pytestmark = pytest.mark.skipif(not hasattr(os, "fork"), reason="no processes without fork")
 HERE = os.getpid()
@@ -215,3 +215,11 @@ def test_reports_are_the_same_byte_for_byte(path):
         write_json(check(document, processes=processes), WriterOptions()) for processes in (1, 3)
     )
     assert one == several
+
+
+@pytest.mark.parametrize("processes", [1, 3])
+@pytest.mark.parametrize("count", [0, 1, 7, 500])
+def test_work_with_each_in_lots(processes, count):
+    assert each(lambda item: 2 * item, range(count), processes=processes) == [
+        2 * item for item in range(count)
+    ]

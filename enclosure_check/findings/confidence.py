@@ -15,7 +15,7 @@ from enclosure_check.description.case import ToleranceCase
 from enclosure_check.findings.causes import CAUSES, LARGEST_GAP_SHARE
 from enclosure_check.findings.certainty import Contribution
 from enclosure_check.findings.quantities import Quantity, quantities
-from enclosure_check.findings.rebuilt import Rebuild, derivative_by_rebuilding
+from enclosure_check.findings.rebuilt import Rebuild, Rebuilding
 from enclosure_check.findings.solved import Solved
 from enclosure_check.findings.turning import Key
 from enclosure_check.network.knobs import Knobs
@@ -158,13 +158,14 @@ def _others(
     solved: Solved, weights: Adjoint, rebuild: Rebuild | None
 ) -> tuple[tuple[Cause, FloatArray], ...]:
     """Give what tolerances do of numbers that are shape, or several things at once."""
-    rows = []
+    if rebuild is None:
+        return ()
+    rows, rebuilding = [], Rebuilding(solved, weights, rebuild)
     for tolerance in solved.case.tolerances:
-        if not tolerance.about and rebuild is not None:
-            path, value = tolerance.path, tolerance.value
-            by = derivative_by_rebuilding(solved, weights, rebuild, path, value)
+        if not tolerance.about:
+            by = rebuilding.derivative(tolerance.path, tolerance.value)
             if by is not None and by.any():
-                cause = Cause(".".join(path), _half_width(tolerance), "stated", ())
+                cause = Cause(".".join(tolerance.path), _half_width(tolerance), "stated", ())
                 rows.append((cause, by * tolerance.half_width))
     return tuple(rows)
 

@@ -1,7 +1,8 @@
 """Which numbers of a document buy most margin where it is smallest, all by one adjoint."""
 
 import math
-from collections.abc import Sequence
+from collections.abc import Callable, Mapping, Sequence
+from typing import Literal, Protocol, TypeVar
 
 import numpy as np
 
@@ -11,10 +12,11 @@ from enclosure_check.description.variation import Variation
 from enclosure_check.findings.certainty import Sensitivities, Sensitivity
 from enclosure_check.findings.confidence import Bands, bands, stated_turns, unit_of
 from enclosure_check.findings.parts import point
-from enclosure_check.findings.rebuilt import derivative_by_rebuilding
+from enclosure_check.findings.rebuilt import Rebuilding
 from enclosure_check.findings.results import PartFinding
 from enclosure_check.findings.solved import Solved
 
+Result = TypeVar("Result")
 Key = tuple[str, ...]
 # Sections of the document that a designer does not choose.
 _INSTALLATION = ("surroundings", "mode")
@@ -22,10 +24,24 @@ _INSTALLATION = ("surroundings", "mode")
 _LIMITS = ("limits", "touch_max_c")
 # A number whose percent moves a margin by less is left out: it does nothing there. [K]
 LEAST_K = 1e-4
+# An estimate by `Rebuilding.estimate` is hardly ever less than the derivative over this: numbers
+# that are not among the first even so are not looked at more closely.
+LARGEST_MISS = 2.0
+
+
+class Each(Protocol):
+    """Does some work with every item, on several processes perhaps; results in their order."""
+
+    def __call__(self, work: Callable[[Key], Result], items: Sequence[Key], /) -> list[Result]:
+        """Give the results."""
+
+
+def _one_by_one(work: Callable[[Key], Result], items: Sequence[Key], /) -> list[Result]:
+    return [work(item) for item in items]
 
 
 def sensitivities(
-    solved: Solved, variation: Variation, worst: PartFinding, most: int
+    solved: Solved, variation: Variation, worst: PartFinding, most: int, each: Each = _one_by_one
 ) -> Sensitivities:
     """Give the numbers that move the smallest margin most, per percent of each.
 
@@ -39,52 +55,120 @@ def sensitivities(
         The finding with the smallest margin.
     most
         How many to give of those a designer can change, and of those of the installation.
+    each
+        Does the work with the numbers that are not read off the adjoint.
     """
     node = point(solved, worst.name, worst.limit_kind)
     own = bands(solved, [node])
-    rows: list[Sensitivity] = []
-    if own is not None:
-        sign = -1.0 if worst.limit_side == "max" else 1.0
-        rows = [
-            row
-            for path, value in numbers(variation.node).items()
-            if not any(step in _LIMITS for step in path)
-            and (row := _row(own, variation, path, value, sign)) is not None
-        ]
-    rows.sort(key=_rank)
+    found = [] if own is None else _Search(own, variation, worst, most, each).found()
     design, given = (
-        [row for row in rows if row.installation is kind][:most] for kind in (False, True)
+        [row for row in found if row.installation is kind][:most] for kind in (False, True)
     )
     return Sensitivities(
         worst.name, worst.limit_kind, worst.limit_side, solved.case.condition, (*design, *given)
     )
 
 
-def _row(
-    own: Bands, variation: Variation, path: Key, value: float, sign: float
-) -> Sensitivity | None:
-    """Give what a number buys; None where it does nothing."""
-    found = _by_adjoint(own, variation, path, value)
-    route = "adjoint"
-    if found is None:
-        route = "rebuilt"
-        by = derivative_by_rebuilding(own.solved, own.adjoint, variation.case_with, path, value)
-        if by is None:
-            return None
-        found = float(by[0])
-    per_pct = None if path[-1].endswith("_c") else sign * found * abs(value) / 100
-    moves = abs(found) if per_pct is None or value == 0 else abs(per_pct)
-    if not math.isfinite(found) or moves < LEAST_K:
-        return None
-    return Sensitivity(
-        path=".".join(path),
-        value=value,
-        unit=unit_of(path),
-        margin_per_pct_k=per_pct,
-        margin_per_unit_k=sign * found,
-        installation=_is_installation(path),
-        route="adjoint" if route == "adjoint" else "rebuilt",
-    )
+class _Search:
+    """Finds the numbers that move a margin most: exactly those that may be among them."""
+
+    def __init__(
+        self, own: Bands, variation: Variation, worst: PartFinding, most: int, each: Each
+    ) -> None:
+        self._own, self._variation = own, variation
+        self._sign = -1.0 if worst.limit_side == "max" else 1.0
+        self._most, self._each = most, each
+        self._rebuilding = Rebuilding(own.solved, own.adjoint, variation.case_with)
+
+    def found(self) -> list[Sensitivity]:
+        """Give what numbers buy, the most first; those left out cannot be among the first."""
+        asked = {
+            path: value
+            for path, value in numbers(self._variation.node).items()
+            if not any(step in _LIMITS for step in path)
+        }
+        exact: dict[Key, Sensitivity] = {}
+        others: list[Key] = []
+        for path, value in asked.items():
+            by = _by_adjoint(self._own, self._variation, path, value)
+            if by is None:
+                others.append(path)
+            elif (row := self._row(path, value, by, "adjoint")) is not None:
+                exact[path] = row
+        about: dict[Key, Sensitivity] = {}
+        for path, (by, is_exact) in zip(others, self._estimates(asked, others), strict=True):
+            row = None if by is None else self._row(path, asked[path], by, "rebuilt", LARGEST_MISS)
+            if row is not None:
+                (exact if is_exact else about)[path] = row
+        while doubtful := self._doubtful(exact, about):
+            for path, by in zip(doubtful, self._derivatives(asked, doubtful), strict=True):
+                del about[path]
+                row = None if by is None else self._row(path, asked[path], by, "rebuilt")
+                if row is not None:
+                    exact[path] = row
+        # As the document has them where they do as much.
+        rows = [row for path in asked if (row := exact.get(path)) is not None]
+        return sorted((row for row in rows if _moves(row) >= LEAST_K), key=_rank)
+
+    def _doubtful(
+        self, exact: Mapping[Key, Sensitivity], about: Mapping[Key, Sensitivity]
+    ) -> list[Key]:
+        """Give numbers known about that may do more than the last one to be given of their kind.
+
+        Those that seem to do most first, and not more than are given, as they settle the others.
+        """
+        doubtful: list[Key] = []
+        for kind in (False, True):
+            known = sorted(-_rank(row) for row in exact.values() if row.installation is kind)
+            least = known[-self._most] if len(known) >= self._most else 0.0
+            open_ = [path for path, row in about.items() if row.installation is kind]
+            open_ = [path for path in open_ if -_rank(about[path]) * LARGEST_MISS >= least]
+            doubtful += sorted(open_, key=lambda path: _rank(about[path]))[: self._most]
+        return doubtful
+
+    def _estimates(
+        self, asked: Mapping[Key, float], paths: Sequence[Key]
+    ) -> list[tuple[float | None, bool]]:
+        def work(path: Key) -> tuple[float | None, bool]:
+            by, is_exact = self._rebuilding.estimate(path, asked[path])
+            return None if by is None else float(by[0]), is_exact
+
+        return self._each(work, paths)
+
+    def _derivatives(self, asked: Mapping[Key, float], paths: Sequence[Key]) -> list[float | None]:
+        def work(path: Key) -> float | None:
+            by = self._rebuilding.derivative(path, asked[path])
+            return None if by is None else float(by[0])
+
+        return self._each(work, paths)
+
+    def _row(
+        self,
+        path: Key,
+        value: float,
+        by: float,
+        route: Literal["adjoint", "rebuilt"],
+        miss: float = 1.0,
+    ) -> Sensitivity | None:
+        """Give what a number buys; None where it does nothing, by so much more than it seems."""
+        per_pct = None if path[-1].endswith("_c") else self._sign * by * abs(value) / 100
+        row = Sensitivity(
+            path=".".join(path),
+            value=value,
+            unit=unit_of(path),
+            margin_per_pct_k=per_pct,
+            margin_per_unit_k=self._sign * by,
+            installation=_is_installation(path),
+            route=route,
+        )
+        return row if math.isfinite(by) and _moves(row) * miss >= LEAST_K else None
+
+
+def _moves(row: Sensitivity) -> float:
+    """Give what a percent, or one unit where there is none, does to the margin [K]."""
+    whole = row.margin_per_pct_k is None or row.value == 0
+    by = row.margin_per_unit_k if whole else row.margin_per_pct_k
+    return abs(by or 0.0)
 
 
 def _rank(row: Sensitivity) -> float:

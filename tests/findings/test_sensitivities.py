@@ -7,7 +7,7 @@ from support.cases import board, box, part
 from enclosure_check.check import check
 from enclosure_check.cli import main
 from enclosure_check.description.load import load_document
-from enclosure_check.findings.rebuilt import step_of
+from enclosure_check.findings.rebuilt import Rebuilding, step_of
 
 DOCUMENT = box(
     finishes={"coat": {"emissivity": 0.85, "solar_absorptivity": 0.4}},
@@ -32,6 +32,19 @@ DOCUMENT = box(
         "U2": part(at_mm=[20, 20], power_w=1, theta_jb_k_per_w=10),
     },
 )
+TWO_CONDITIONS = {
+    **DOCUMENT,
+    "conditions": {
+        "noon": {"surroundings": {"air_c": 45}},
+        "night": {"surroundings": {"air_c": 5}},
+    },
+}
+AT_REST = box(
+    boards={"main": board(other_power_w=0, from_walls_mm={"front": 30})},
+    parts={"U1": part(at_mm=[48, 42], power_w=0, limits={"case": {"min_c": -10}})},
+    surroundings={"air_c": -5},
+)
+POWERS = {"boards.main.other_power_w", "parts.U1.power_w"}
 # Derivatives are exact but for the step of the rebuilt difference and second order.
 TOLERANCE = 0.01
 
@@ -115,6 +128,30 @@ def test_so_many_as_asked_for(folder):
     few = check(document, sensitivities=2).sensitivities
     assert [row.installation for row in few.numbers] == [False, False, True, True]
     assert check(document).sensitivities is None
+
+
+def test_those_given_are_the_first_of_all(folder, found):
+    document = load_document(str(written(folder)))
+    few = check(document, sensitivities=3).sensitivities.numbers
+    rows = found.sensitivities.numbers
+    first = [
+        row for kind in (False, True) for row in [r for r in rows if r.installation is kind][:3]
+    ]
+    assert list(few) == first
+
+
+def test_as_many_processes_as_one_likes(folder, found):
+    document = load_document(str(written(folder, TWO_CONDITIONS)))
+    alone = check(document, sensitivities=4)
+    assert check(document, sensitivities=4, processes=3) == alone
+
+
+def test_where_all_is_at_rest_only_what_heats_or_cools_does_something(folder, monkeypatch):
+    document = load_document(str(written(folder, AT_REST)))
+    rows = check(document, sensitivities=50).sensitivities.numbers
+    assert {row.path for row in rows} == {"surroundings.air_c", *POWERS}
+    monkeypatch.setattr(Rebuilding, "_at_rest", False)
+    assert check(document, sensitivities=50).sensitivities.numbers == rows
 
 
 def test_command(folder, capsys):
