@@ -4,16 +4,21 @@ A few nodes (air, means, patches) touch every cell; in a plain sparse factorisat
 They are kept as a border: the cells are factorised alone, the border by its Schur complement.
 """
 
+from contextlib import suppress
 from functools import cached_property
 from typing import Any, Protocol
 
 import numpy as np
 
+from enclosure_check.network import condense
+from enclosure_check.network.condense import Blocks, find_blocks
 from enclosure_check.network.links import FloatArray, IntArray
 from enclosure_check.records import dataclass
 
 # Unknowns up to which dense factorisation is used; below, importing a sparse library costs more.
 DENSE_UP_TO = 1200
+# From so many on, blocks that stand apart are eliminated first; below, finding them costs more.
+CONDENSED_FROM = 400
 # A node with more derivatives in its row and column than this belongs to the border.
 BORDER_DEGREE = 120
 
@@ -43,6 +48,15 @@ class Entries:
     column: IntArray
     size: int
     """Rows and columns of the matrix."""
+    groups: tuple[IntArray, ...] = ()
+    """Unknowns linked mostly with each other; see `condense.find_blocks`."""
+
+    @cached_property
+    def blocks(self) -> Blocks | None:
+        """Blocks that are eliminated first; None where that saves nothing."""
+        if self.size < CONDENSED_FROM or not self.groups:
+            return None
+        return find_blocks(self.row, self.column, self.size, self.groups)
 
     @cached_property
     def _flat(self) -> IntArray:
@@ -70,26 +84,45 @@ def factorise(entries: Entries, values: FloatArray, shift: float = 0.0) -> Facto
         Adds this share of its size to every diagonal entry.
     """
     if entries.size <= DENSE_UP_TO:
-        return DenseFactor(entries.dense(values), shift)
+        return DenseFactor(entries.dense(values), shift, entries.blocks)
     return BorderedFactor(entries, values, shift)
 
 
 class DenseFactor:
     """A dense matrix, factorised anew for every solve: one is what a Newton step takes."""
 
-    def __init__(self, matrix: FloatArray, shift: float = 0.0) -> None:
-        self.matrix = matrix
+    def __init__(
+        self, matrix: FloatArray, shift: float = 0.0, blocks: Blocks | None = None
+    ) -> None:
+        self.matrix, self.blocks = matrix, blocks
         if shift:
             diagonal = np.arange(len(matrix))
             matrix[diagonal, diagonal] += shift * np.abs(matrix[diagonal, diagonal])
 
     def solve(self, right: FloatArray) -> FloatArray:
         """Solve for right sides, shape (u, k)."""
+        if self.blocks is not None:
+            with suppress(np.linalg.LinAlgError):  # a block alone may be singular
+                return condense.solve(self.matrix, self.blocks, right)
         return np.asarray(np.linalg.solve(self.matrix, right))
 
     def solve_transposed(self, right: FloatArray) -> FloatArray:
         """Solve the transposed system for right sides, shape (u, k)."""
-        return np.asarray(np.linalg.solve(self.matrix.T, right))
+        blocks = None if self.blocks is None else self.blocks.turned()
+        return DenseFactor(self.matrix.T, blocks=blocks).solve(right)
+
+    def inverse(self) -> FloatArray:
+        """Give the inverse, shape (u, u).
+
+        Raises
+        ------
+        numpy.linalg.LinAlgError
+            When the matrix is singular.
+        """
+        if self.blocks is not None:
+            with suppress(np.linalg.LinAlgError):
+                return condense.inverse(self.matrix, self.blocks)
+        return np.asarray(np.linalg.inv(self.matrix))
 
 
 class BorderedFactor:

@@ -241,7 +241,10 @@ class Network:
         ]
         own = positions[self.sources.node]
         row, column = np.concatenate([*rows, own]), np.concatenate([*columns, *columns, own])
-        return Entries(row, column, len(self.unknown))
+        plates = (self.places.boards, self.places.wall_inside, self.places.wall_outside)
+        cells = [positions[each.cells.ravel()] for plate in plates for each in plate.values()]
+        groups = tuple(own[own >= 0] for own in cells)
+        return Entries(row, column, len(self.unknown), groups)
 
     @cached_property
     def link_label(self) -> IntArray:

@@ -50,7 +50,7 @@ class Inverse:
     @cached_property
     def _matrix(self) -> FloatArray | None:
         factor = self._factor
-        return np.asarray(np.linalg.inv(factor.matrix)) if isinstance(factor, DenseFactor) else None
+        return factor.inverse() if isinstance(factor, DenseFactor) else None
 
     def apply(self, right: FloatArray) -> FloatArray:
         """Multiply by the inverse: shape (u, v)."""
