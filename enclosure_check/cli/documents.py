@@ -15,7 +15,7 @@ MAX_DOCUMENTS = 500
 MAX_ENTRIES = 100_000
 MAX_BYTES = 1 << 20
 
-_TELLING = re.compile(rb"^[\"']?(%s)[\"']?[ \t]*:" % "|".join(TELLING).encode(), re.MULTILINE)
+_TELLING = rb"^[\"']?(%s)[\"']?[ \t]*:" % "|".join(TELLING).encode()
 
 
 class Documents(NamedTuple):
@@ -98,7 +98,7 @@ def is_document(path: str) -> bool:
     """Tell whether a file looks like a document; one that cannot be read might be one."""
     try:
         with open(path, "rb") as file:
-            found = _TELLING.findall(file.read(MAX_BYTES))
+            found = re.findall(_TELLING, file.read(MAX_BYTES), re.MULTILINE)
     except OSError:
         return True
     return len(set(found)) >= FEWEST_TELLING

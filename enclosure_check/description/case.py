@@ -373,6 +373,11 @@ class Case:
     """Where its parts and walls stand in the document."""
     power_budget: PowerBudgetCase | None = None
 
+    @property
+    def vented(self) -> bool:
+        """Whether any opening lets air through."""
+        return any(not each.closed for wall in self.walls.values() for each in wall.openings)
+
 
 def _add(a: Vector, b: Vector) -> Vector:
     return (a[0] + b[0], a[1] + b[1], a[2] + b[2])

@@ -11,7 +11,6 @@ from enclosure_check.findings.heat import (
     hottest_cell,
     wall_findings,
 )
-from enclosure_check.findings.openings import openings_finding
 from enclosure_check.findings.parts import (
     board_findings,
     part_findings,
@@ -24,6 +23,7 @@ from enclosure_check.findings.readings import reading_bias, reading_findings, re
 from enclosure_check.findings.rebuilt import Rebuild
 from enclosure_check.findings.results import (
     ConditionFinding,
+    OpeningsFinding,
     PartFinding,
     SolverFinding,
     Verdict,
@@ -70,7 +70,7 @@ def assess(solved: Solved, rebuild: Rebuild | None = None) -> ConditionFinding:
         power_budget=budget,
         headroom=headroom(solved, parts, walls),
         hand_estimate=hand_estimate(solved),
-        openings=openings_finding(solved),
+        openings=_openings(solved),
         solver=SolverFinding(
             unknowns=len(solved.network.unknown),
             iterations=int(solution.steps[0]),
@@ -92,6 +92,14 @@ def assess(solved: Solved, rebuild: Rebuild | None = None) -> ConditionFinding:
         ),
         assumptions=case.assumptions,
     )
+
+
+def _openings(solved: Solved) -> OpeningsFinding:
+    if not solved.case.vented:
+        return OpeningsFinding(0.0, None, ())
+    from enclosure_check.findings.openings import openings_finding
+
+    return openings_finding(solved)
 
 
 def _note(note: Note) -> str:

@@ -10,7 +10,6 @@ from enclosure_check.network.grid import GridOptions
 from enclosure_check.network.inside import build_inside_radiation
 from enclosure_check.network.links import LinkLabel
 from enclosure_check.network.network import Network, Places
-from enclosure_check.network.openings import build_openings
 from enclosure_check.network.parts import build_parts
 from enclosure_check.network.site import Site
 from enclosure_check.network.walls import build_walls
@@ -30,7 +29,10 @@ def build_network(case: Case, options: GridOptions | None = None) -> Network:
     site.spots.join()
     build_inside_radiation(site)
     build_inside_air(site)
-    build_openings(case, site)
+    if case.vented:
+        from enclosure_check.network.openings import build_openings
+
+        build_openings(case, site)
     network = site.builder.finish(
         Places(
             ambient=site.ambient,

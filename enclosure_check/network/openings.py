@@ -19,19 +19,12 @@ PIECES = 8
 
 def build_openings(case: Case, site: Site) -> None:
     """Join the inside air to the air outside by every opening that is not closed."""
-    openings = [
-        (wall, opening)
-        for wall in case.walls.values()
-        for opening in wall.openings
-        if not opening.closed
-    ]
-    if not openings:
-        return
+    openings = [each for wall in case.walls.values() for each in wall.openings if not each.closed]
     builder, air_site = site.builder, site.air_site
     number: list[int] = []
     area: list[FloatArray] = []
     heights: list[FloatArray] = []
-    for index, (_, opening) in enumerate(openings):
+    for index, opening in enumerate(openings):
         at = piece_heights(opening, site)
         heights.append(at)
         area.append(np.full(len(at), opening.free_area_mm2 * 1e-6 / len(at)))
@@ -45,14 +38,13 @@ def build_openings(case: Case, site: Site) -> None:
     def column(values: list[float]) -> FloatArray:
         return np.array(values, dtype=np.float64)[:, None]
 
-    each = [opening for _, opening in openings]
-    losses = [opening_loss(opening) for opening in each]
+    losses = [opening_loss(opening) for opening in openings]
     builder.add(
         Vents(
             air=site.air_nodes,
             ambient=site.ambient,
             spacing=air_site.height / (len(site.air_nodes) - 1),
-            names=tuple((opening.wall, opening.name) for opening in each),
+            names=tuple((opening.wall, opening.name) for opening in openings),
             opening=np.array(number, dtype=np.intp),
             hat=air_site.share(np.concatenate(heights)),
             area=np.concatenate(area)[:, None],
@@ -62,13 +54,16 @@ def build_openings(case: Case, site: Site) -> None:
             radius=column([math.sqrt(loss.free_area_m2 / math.pi) for loss in losses]),
             exchange_diameter=column([loss.hole_m for loss in losses]),
             exchange_count=column([loss.free_area_m2 / hole_area(loss) for loss in losses]),
-            exchange_depth=column([metres(o.thickness_mm) for o in each]),
-            level_cosine=column([SIGN[o.wall] * case.up[AXIS[o.wall]] for o in each]),
+            exchange_depth=column([metres(o.thickness_mm) for o in openings]),
+            level_cosine=column([SIGN[o.wall] * case.up[AXIS[o.wall]] for o in openings]),
             passage_loss=quadratic[:, None],
             passage_friction=friction[:, None],
             pressure_pa=builder.pressure_pa,
             opening_label=np.array(
-                [builder.label(LinkLabel(f"opening:{o.wall}/{o.name}", "openings")) for o in each],
+                [
+                    builder.label(LinkLabel(f"opening:{o.wall}/{o.name}", "openings"))
+                    for o in openings
+                ],
                 dtype=np.intp,
             ),
             carried_label=builder.label(LinkLabel("inside", "carried")),

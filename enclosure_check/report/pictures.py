@@ -1,6 +1,7 @@
 """Small pictures in characters that read without colour: the map of a board, the air's profile."""
 
 from collections.abc import Sequence
+from functools import lru_cache
 
 from enclosure_check.findings.results import AirLayer, BoardFinding
 from enclosure_check.report.layout import tenths
@@ -72,6 +73,7 @@ def resampled(rows: Sequence[Sequence[float]], width: int, height: int) -> list[
     ]
 
 
+@lru_cache(maxsize=32)
 def _shares(many: int, few: int) -> list[list[tuple[int, float]]]:
     """Give, for each of ``few`` even stretches, the cells of ``many`` in it and their shares."""
     length = many / few

@@ -20,6 +20,7 @@ from support.features import (
     node,
     rises,
 )
+from support.places import NO_PLACES
 
 from enclosure_check.findings.heat import heat_balance, wall_findings
 from enclosure_check.network.builder import NetworkBuilder
@@ -119,7 +120,7 @@ def test_two_halves_conduct_in_series():
     for end, row in zip(ends, (cells[0], cells[-1]), strict=True):
         builder.conduct(row, end, 1e6, LinkLabel("plate:p", "end"))
     builder.heat(ends[0], 1.0, LinkLabel("plate:p", "power"))
-    network = builder.finish(places=None)
+    network = builder.finish(places=NO_PLACES)
     rise = solve_steady(network).rise[ends[0], 0]
     # From the middle of the first cell to the middle of the last.
     assert rise == pytest.approx(0.055 / (0.3 * 0.06) + 0.055 / (0.02 * 0.06), rel=1e-5)

@@ -9,6 +9,7 @@ from pathlib import Path
 
 import numpy as np
 import pytest
+from support.places import NO_PLACES
 from support.plates import Plates, at_edge, flat, on_edges
 
 from enclosure_check.description.load import load_document
@@ -197,7 +198,7 @@ def test_contacts_of_a_plate_dissipate_together():
         size = (*rng.uniform(0.002, 0.02, 2), 0.0)
         plates.spots.add(nodes[-1], 1e-3, grid, plate, (*low, 0.0), size, label, "under it")
     plates.spots.join()
-    network = plates.builder.finish(places=None)
+    network = plates.builder.finish(places=NO_PLACES)
     for _ in range(20):
         rise = np.zeros((network.size, 1))
         free = [*plate.cells.ravel(), *nodes]

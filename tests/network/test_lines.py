@@ -5,6 +5,7 @@ from types import SimpleNamespace
 import numpy as np
 import pytest
 from support.features import flat_grid
+from support.places import NO_PLACES
 
 from enclosure_check.network.builder import NetworkBuilder
 from enclosure_check.network.lines import (
@@ -89,7 +90,7 @@ def test_line_is_met_where_it_lies(at, per_metre):
     pieces = list(line_segments(grid, 0, at, 0.0, width, film=0.0))
     join_pieces(builder, cells, pieces, cold, per_metre, LABELS)
     builder.heat(cells[0], 1.0 / counts[1], LinkLabel("plate:p", "power"))
-    rise = solve_steady(builder.finish(places=None)).rise[cells[0], 0]
+    rise = solve_steady(builder.finish(places=NO_PLACES)).rise[cells[0], 0]
     exact = abs(at - 0.005) / (kt * width) + 1 / (per_metre * width)
     np.testing.assert_allclose(rise, exact, rtol=1e-6)
 
@@ -105,7 +106,7 @@ def test_line_between_two_fins(at, kt, cells_along):
     builder.conduct(cells, cold, film * grid.cell_area, LinkLabel("plate:p", "loss"))
     pieces = list(line_segments(grid, 0, at, 0.0, width))
     join_pieces(builder, cells, pieces, warm, per_metre, LABELS)
-    network = builder.finish(places=None)
+    network = builder.finish(places=NO_PLACES)
     heat = network.heat(solve_steady(network).rise)[:, 0]
     frame = list(network.labels).index(LABELS[0])
     found = float(heat[network.link_label == frame].sum())
@@ -119,7 +120,7 @@ def test_a_joint_never_takes_more_than_the_plate_conducts_between_rows():
     pieces = list(line_segments(grid, 0, 0.04, 0.0, 0.06))
     builder, cells, cold = plate_on(grid)
     join_pieces(builder, cells, pieces, cold, 1e4, LABELS, share=0.5)
-    network = builder.finish(places=None)
+    network = builder.finish(places=NO_PLACES)
     (kind,) = network.kinds
     least = kind.conductance.min()
     assert least == pytest.approx(-0.5 * 4e-4)
