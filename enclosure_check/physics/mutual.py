@@ -60,7 +60,7 @@ def mutual_rise(
     # Few pairs ask for many terms: those that ask for about as many go together.
     groups = np.ceil(np.log2(counts / _LEAST_TERMS)).astype(np.intp)
     rise = np.empty(len(one))
-    for group in np.unique(groups):
+    for group in sorted(set(groups.tolist())):  # `np.unique` imports masked arrays
         own = np.flatnonzero(groups == group)
         terms = math.ceil(counts[own].max())
         rise[own] = _series(one[own], other[own], edges[own], sheet[own], h, terms)
