@@ -126,6 +126,7 @@ def _side_by_side(
     task: Task[Item, Prepared, Shared, Result], items: Sequence[Item], processes: int
 ) -> tuple[Shared, dict[int, Result]]:
     """Give what is shared, and the results that were found, by place."""
+    _clear_away()
     # Whoever is free takes the next place out of the pipe.
     take, put = os.pipe()
     os.write(put, b"".join(_PLACE.pack(place) for place in range(len(items))))
@@ -252,11 +253,24 @@ def _work_and_end(
         os._exit(code)
 
 
+# Workers that were told to end: nobody waits while the system takes their memory back.
+_leaving: set[int] = set()
+
+
 def _ended(worker: _Worker) -> None:
     """Be rid of a worker; one that still works has no reader left."""
     os.close(worker.results)
     os.close(worker.led)
     with suppress(ProcessLookupError):
         os.kill(worker.number, signal.SIGKILL)
-    with suppress(ChildProcessError):
-        os.waitpid(worker.number, 0)
+    _leaving.add(worker.number)
+    _clear_away()
+
+
+def _clear_away() -> None:
+    """Forget the workers that are gone; those of a process that ends are cleared by the system."""
+    for number in tuple(_leaving):
+        with suppress(ChildProcessError):
+            if os.waitpid(number, os.WNOHANG) == (0, 0):
+                continue
+        _leaving.discard(number)
