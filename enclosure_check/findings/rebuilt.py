@@ -2,17 +2,20 @@
 
 from collections.abc import Callable, Hashable
 from functools import cached_property
+from typing import TYPE_CHECKING
 
 import numpy as np
 
 from enclosure_check.description.case import Case
 from enclosure_check.findings.solved import Solved
-from enclosure_check.network.build import build_network
 from enclosure_check.network.links import FloatArray
 from enclosure_check.records import replace
 from enclosure_check.solve.adjoint import Adjoint
 from enclosure_check.solve.nearby import solve_nearby
 from enclosure_check.solve.steady import SolveOptions
+
+if TYPE_CHECKING:
+    from enclosure_check.network.pieces import Builds
 
 Key = tuple[str, ...]
 # Gives the case with another number at a path; None where that is no valid document.
@@ -97,7 +100,7 @@ class Rebuilding:
             return still
         if self._at_rest and _driving(case) == self._driving:
             return still
-        network, own = build_network(case), solved.network
+        network, own = self._builds.network(case), solved.network
         if network.node_labels != own.node_labels or not np.array_equal(network.fixed, own.fixed):
             return None
         rise, left = network.full_rise(solved.solution.rise[own.unknown]), self._left
@@ -110,6 +113,13 @@ class Rebuilding:
         change = (network.imbalance(rise) - left)[:, 0]
         warmer = float(network.reference_k[0] - own.reference_k[0])
         return np.asarray(warmer + moved - change @ adjoint.weight)
+
+    @cached_property
+    def _builds(self) -> "Builds":
+        # Not needed for a check.
+        from enclosure_check.network.pieces import Builds
+
+        return Builds(self._solved.case)
 
     @cached_property
     def _left(self) -> FloatArray:

@@ -1,5 +1,7 @@
 """Builds the boards: one layer of cells each, with the films of both sides."""
 
+from functools import partial
+
 import numpy as np
 
 from enclosure_check.description.case import BoardCase, Case, ZoneCase
@@ -19,7 +21,7 @@ COPPER_W_PER_MK = 386.0
 def build_boards(case: Case, site: Site) -> None:
     """Add the cells of every board, joined along it, and its films and power."""
     for board in case.boards.values():
-        _build_board(case, board, site)
+        site.piece(("board", board.name), partial(_build_board, case, board, site))
 
 
 def board_conductivity(board: BoardCase, zone: ZoneCase | None = None) -> float:

@@ -1,5 +1,7 @@
 """From a case to its network: sets up the surroundings and the air, then runs the builders."""
 
+from functools import partial
+
 import numpy as np
 
 from enclosure_check.description.case import Case
@@ -20,19 +22,26 @@ STIRRED = 1e4
 
 def build_network(case: Case, options: GridOptions | None = None) -> Network:
     """Build the network of one case (one variant)."""
-    site = Site.of(case, options or GridOptions())
+    return build_on(Site.of(case, options or GridOptions()), case)
+
+
+def build_on(site: Site, case: Case) -> Network:
+    """Build the network of a case on a site that has just been set up for it."""
     build_walls(case, site)
     build_boards(case, site)
     covers = build_features(case, site)
     build_parts(case, site, covers)
-    build_cables(case, site)
-    site.spots.join()
+    site.piece(("cables", None), partial(build_cables, case, site))
+    site.settle()
+    site.spots.join(site.piece)
+    site.settle()
     build_inside_radiation(site)
     build_inside_air(site)
     if case.vented:
         from enclosure_check.network.openings import build_openings
 
-        build_openings(case, site)
+        site.piece(("openings", None), partial(build_openings, case, site))
+    site.settle()
     network = site.builder.finish(
         Places(
             ambient=site.ambient,

@@ -62,6 +62,17 @@ class Blocks:
             value_row[start:end] = entry
         self.count = end
 
+    def __len__(self) -> int:
+        return self.count
+
+    def take(self, other: "Blocks", first: int, last: int) -> None:
+        """Add some links of others of the kind as they are: from the first up to before the last.
+
+        The columns of both are the same.
+        """
+        numbers, values = other._numbers[:, first:last], other._values[:, first:last]
+        self.add(last - first, list(numbers), list(values))
+
     def columns(self) -> dict[str, Any]:
         """Give every column by name, values with a trailing axis for variants."""
         numbers, values = self._numbers[:, : self.count], self._values[:, : self.count]
@@ -92,6 +103,20 @@ class NetworkBuilder:
         self._readings = Blocks(("node", "of"), ("weight",))
         self._sources = Blocks(("node", "label"), ("power", "stated_at_k", "slope", "doublings"))
         self.nowhere = self.node("no place", self.reference_k)
+
+    def collected(self) -> tuple[Any, ...]:
+        """Give all that grows: nodes and labels first, then links, sources and readings."""
+        return (
+            self._node_labels,
+            self._labels,
+            self._fixed_k,
+            self._conduction,
+            self._radiation,
+            self._exchange,
+            self._made,
+            self._readings,
+            self._sources,
+        )
 
     # Nodes -------------------------------------------------------------------------------
 

@@ -5,6 +5,7 @@ walls; a can is a surface of its own over parts.
 """
 
 from collections.abc import Sequence
+from functools import partial
 from itertools import pairwise
 
 import numpy as np
@@ -36,19 +37,24 @@ LEAST_CAN_GAP = 1e-4
 
 def build_features(case: Case, site: Site) -> "Covers":
     """Add everything that boards carry; gives what lies over parts."""
-    cans = {}
     for board in case.boards.values():
-        for stand_off in board.stand_offs:
-            _build_stand_off(board, stand_off, site)
-        for clamp in board.edge_clamps:
-            _build_edge_clamp(board, clamp, site)
-        for filler in board.fillers:
-            parts = list(parts_on(case, board.name, filler.side))
-            _build_filler(board, filler, parts, site)
-        for can in board.shield_cans:
-            parts = list(parts_on(case, board.name, can.side))
-            cans[board.name, can.name] = _build_can(board, can, parts, site)
-    return Covers(case, site, cans)
+        if board.stand_offs or board.edge_clamps or board.fillers or board.shield_cans:
+            site.piece(("features", board.name), partial(_build_features_of, case, board, site))
+    return Covers(case, site)
+
+
+def _build_features_of(case: Case, board: BoardCase, site: Site) -> None:
+    """Add what one board carries."""
+    for stand_off in board.stand_offs:
+        _build_stand_off(board, stand_off, site)
+    for clamp in board.edge_clamps:
+        _build_edge_clamp(board, clamp, site)
+    for filler in board.fillers:
+        parts = list(parts_on(case, board.name, filler.side))
+        _build_filler(board, filler, parts, site)
+    for can in board.shield_cans:
+        parts = list(parts_on(case, board.name, can.side))
+        site.cans[board.name, can.name] = _build_can(board, can, parts, site)
 
 
 @dataclass(frozen=True, eq=False)
@@ -57,7 +63,6 @@ class Covers:
 
     case: Case
     site: Site
-    cans: dict[tuple[str, str], int]
 
     def can_over(self, part: PartCase) -> tuple[ShieldCanCase, int] | None:
         """Give the can over a part, and its node."""
@@ -65,7 +70,7 @@ class Covers:
             for can in self.case.boards[part.host].shield_cans:
                 # The description allows nothing between wholly under it and beside it.
                 if can.side == part.side and _area(part, can) > footprint(part) / 2:
-                    return can, self.cans[part.host, can.name]
+                    return can, self.site.cans[part.host, can.name]
         return None
 
     def join(self, part: PartCase, node: int) -> float:

@@ -1,5 +1,7 @@
 """Builds the parts: junction to case, board, wall and air."""
 
+from functools import partial
+
 import numpy as np
 
 from enclosure_check.description.case import Case, PadCase, PartCase
@@ -20,7 +22,7 @@ BODY_STAND_OFF = 1e-4
 def build_parts(case: Case, site: Site, covers: Covers) -> None:
     """Add the nodes of every part and join them, to what lies over them too."""
     for part in case.parts.values():
-        _build_part(part, site, covers)
+        site.piece(("part", part.name), partial(_build_part, part, site, covers))
 
 
 def _build_part(part: PartCase, site: Site, covers: Covers) -> None:

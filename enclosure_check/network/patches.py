@@ -24,12 +24,16 @@ _Rectangle = tuple[int, int, float, tuple[float, float], tuple[float, float]]
 class Patches:
     """Rectangles by patch, and what stands between them; all in the box frame [m]."""
 
-    _rectangles: list[_Rectangle] = field(default_factory=list)
-    _patch_of: list[int] = field(default_factory=list)
-    _obstacles: list[tuple[Vector, Vector]] = field(default_factory=list)
-    _faces: dict[tuple[str, str], IntArray] = field(default_factory=dict)
-    _grids: dict[tuple[str, str], PlateGrid] = field(default_factory=dict)
-    count: int = 0
+    rectangles: list[_Rectangle] = field(default_factory=list)
+    patch_of: list[int] = field(default_factory=list)
+    obstacles: list[tuple[Vector, Vector]] = field(default_factory=list)
+    faces: dict[tuple[str, str], IntArray] = field(default_factory=dict)
+    grids: dict[tuple[str, str], PlateGrid] = field(default_factory=dict)
+
+    @property
+    def count(self) -> int:
+        """How many patches there are."""
+        return self.patch_of[-1] + 1 if self.patch_of else 0
 
     def add_face(
         self, name: str, side: str, grid: PlateGrid, axis: int, sign: int, at: float
@@ -53,34 +57,34 @@ class Patches:
             for second in range(len(bounds[1]) - 1):
                 rows = slice(bounds[0][first], bounds[0][first + 1])
                 columns = slice(bounds[1][second], bounds[1][second + 1])
-                of_cell[rows, columns] = self.count
+                number = self.count
+                of_cell[rows, columns] = number
                 low = (grid.edges[0][rows.start], grid.edges[1][columns.start])
                 high = (grid.edges[0][rows.stop], grid.edges[1][columns.stop])
-                self._add(axis, sign, at, low, high)
-                self.count += 1
-        self._faces[name, side], self._grids[name, side] = of_cell, grid
+                self._add(number, axis, sign, at, low, high)
+        self.faces[name, side], self.grids[name, side] = of_cell, grid
         return of_cell
 
     def add_body(self, low: Vector, size: Vector) -> int:
         """Add a body in the air, all its faces one patch, which also stands in the way."""
         high = tuple(a + b for a, b in zip(low, size, strict=True))
+        number = self.count
         for axis in range(3):
             first, second = (other for other in range(3) if other != axis)
             for sign, at in ((-1, low[axis]), (1, high[axis])):
                 corners = (low[first], low[second]), (high[first], high[second])
-                self._add(axis, sign, at, *corners)
-        self.count += 1
+                self._add(number, axis, sign, at, *corners)
         self.add_obstacle(low, size)
-        return self.count - 1
+        return number
 
     def add_obstacle(self, low: Vector, size: Vector) -> None:
         """Add something that hides surfaces from each other."""
         x, y, z = (a + b for a, b in zip(low, size, strict=True))
-        self._obstacles.append((low, (x, y, z)))
+        self.obstacles.append((low, (x, y, z)))
 
     def under(self, name: str, side: str, point: Vector) -> int:
         """Give the patch of a face that a point lies over."""
-        of_cell, grid = self._faces[name, side], self._grids[name, side]
+        of_cell, grid = self.faces[name, side], self.grids[name, side]
         place = [
             int(np.clip(np.searchsorted(edges, point[axis]) - 1, 0, count - 1))
             for axis, edges, count in zip(grid.axes, grid.edges, grid.counts, strict=True)
@@ -89,14 +93,15 @@ class Patches:
 
     def exchange(self) -> FloatArray:
         """Give the exchange areas between patches [m2], symmetric, rows summing to their areas."""
-        between = _exchange(tuple(self._rectangles), tuple(self._obstacles))
+        between = _exchange(tuple(self.rectangles), tuple(self.obstacles))
         total = np.zeros((self.count, self.count))
-        patch = np.array(self._patch_of)
+        patch = np.array(self.patch_of)
         np.add.at(total, (patch[:, None], patch[None, :]), between)
         return total
 
     def _add(
         self,
+        number: int,
         axis: int,
         sign: int,
         at: float,
@@ -104,8 +109,8 @@ class Patches:
         high: tuple[float, float],
     ) -> None:
         corners = (float(low[0]), float(low[1])), (float(high[0]), float(high[1]))
-        self._rectangles.append((axis, sign, float(at), *corners))
-        self._patch_of.append(self.count)
+        self.rectangles.append((axis, sign, float(at), *corners))
+        self.patch_of.append(number)
 
 
 def _blocks(count: int) -> list[int]:

@@ -1,6 +1,8 @@
 """What the builders share while a network is being made: the surroundings, air and surfaces."""
 
+from collections.abc import Callable
 from functools import lru_cache
+from typing import TYPE_CHECKING
 
 import numpy as np
 
@@ -19,6 +21,9 @@ from enclosure_check.physics.air import air, pressure_at_altitude
 from enclosure_check.physics.plates import fall_length
 from enclosure_check.physics.radiation import sky_temperature_clear
 from enclosure_check.records import dataclass, field
+
+if TYPE_CHECKING:
+    from enclosure_check.network.pieces import Following, Name, Record
 
 
 @dataclass(frozen=True, eq=False)
@@ -56,6 +61,25 @@ class Site:
     boards: dict[str, PlateNodes] = field(default_factory=dict)
     board_faces: dict[tuple[str, str], PlaneFace] = field(default_factory=dict)
     parts: dict[str, PartNodes] = field(default_factory=dict)
+    cans: dict[tuple[str, str], int] = field(default_factory=dict)
+    """Nodes of cans, by board and name."""
+    follow: "Record | Following | None" = None
+
+    def piece(self, name: "Name", build: Callable[[], None]) -> None:
+        """Build a piece, which only adds to what is collected here.
+
+        Where the network follows another, what that has of it may be taken over; `pieces.Changed`
+        tells by the name what each is made of.
+        """
+        if self.follow is None:
+            build()
+        else:
+            self.follow.piece(name, build)
+
+    def settle(self) -> None:
+        """Have all pieces so far in place."""
+        if self.follow is not None:
+            self.follow.settle()
 
     @classmethod
     def of(cls, case: Case, options: GridOptions) -> "Site":

@@ -4,8 +4,8 @@ A contact gives its heat evenly to the area it covers; the cells tell the mean r
 they do not resolve of it, its own or that of contacts close by, is added: see `Spots.join`.
 """
 
-from collections.abc import Sequence
-from functools import lru_cache
+from collections.abc import Callable, Hashable, Sequence
+from functools import lru_cache, partial
 
 import numpy as np
 
@@ -28,6 +28,8 @@ _SHEET_STEP = 1e-3
 # Ending of the role of what makes the heat of one contact felt under others.
 FELT = ", felt"
 
+# Builds a piece of a network, by its name; see `Site.piece`.
+Piece = Callable[[tuple[str, Hashable], Callable[[], None]], None]
 _Ends = tuple[tuple[float, float], tuple[float, float]]
 
 
@@ -65,7 +67,8 @@ class Spots:
     """Contacts being collected, plate by plate."""
 
     builder: NetworkBuilder
-    _plates: dict[int, tuple[PlateGrid, PlateNodes, list[Contact]]] = field(default_factory=dict)
+    contacts: list[tuple[PlateGrid, PlateNodes, Contact]] = field(default_factory=list)
+    """Each with its plate."""
     _by_sheet: dict[LinkLabel, float] = field(default_factory=dict)
 
     def add(
@@ -160,17 +163,31 @@ class Spots:
             self._add_contact(grid, plate, contact)
 
     def _add_contact(self, grid: PlateGrid, plate: PlateNodes, contact: Contact) -> None:
-        self._plates.setdefault(plate.mean, (grid, plate, []))[2].append(contact)
+        self.contacts.append((grid, plate, contact))
 
-    def join(self) -> None:
+    def on(self, plate: Hashable) -> list[tuple[PlateGrid, PlateNodes, Contact]]:
+        """Give the contacts on a plate, by the node of its mean."""
+        return [each for each in self.contacts if each[1].mean == plate]
+
+    def _by_plate(self) -> list[tuple[PlateGrid, PlateNodes, list[Contact]]]:
+        plates: dict[int, tuple[PlateGrid, PlateNodes, list[Contact]]] = {}
+        for grid, plate, contact in self.contacts:
+            plates.setdefault(plate.mean, (grid, plate, []))[2].append(contact)
+        return list(plates.values())
+
+    def join(self, piece: Piece | None = None) -> None:
         """Join all contacts to their cells, and let their spots show the temperatures there.
 
         With the resistances ``D`` of the contacts and the mutual ones ``C`` that the cells do not
         resolve, ``D Q + C Q = T - S T_cells``, S the shares. A node under each contact keeps ``S
         T_cells + C Q``; its heat is ``Q = (T - T_under) / D``, taken by the cells' shares.
+        ``piece`` builds those of each plate; see `Site.piece`.
         """
-        for grid, plate, contacts in self._plates.values():
-            self._join_plate(grid, plate, contacts)
+        for each in self._by_plate():
+            if piece is None:
+                self._join_plate(*each)
+            else:
+                piece(("contacts", each[1].mean), partial(self._join_plate, *each))
 
     def felt_by_sheet(self, label: LinkLabel) -> float:
         """Relative change of what is felt of a contact per that of its plate's conductance [-].
@@ -178,7 +195,7 @@ class Spots:
         The mean over the contacts that feel it.
         """
         if not self._by_sheet:
-            for grid, _, contacts in self._plates.values():
+            for grid, _, contacts in self._by_plate():
                 shares = np.zeros((len(contacts), *grid.counts))
                 for row, contact in zip(shares, contacts, strict=True):
                     row[contact.places] = contact.shares

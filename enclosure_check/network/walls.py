@@ -1,6 +1,7 @@
 """Builds the walls: through and along them, outside to the surroundings, inside to the air."""
 
 import math
+from functools import partial
 from itertools import combinations
 from typing import TYPE_CHECKING
 
@@ -32,10 +33,19 @@ def build_walls(case: Case, site: Site) -> None:
     """Add the cells of the walls, outside and inside, and everything that joins them."""
     inside, outside = metres_3(case.inside_mm), metres_3(case.outside_mm)
     for name in WALL_NAMES:
-        _build_wall(case, name, inside, outside, site)
+        site.piece(("wall", name), partial(_build_wall, case, name, inside, outside, site))
+    site.piece(("corners", None), partial(_join_corners, site))
+    site.piece(("outside", None), partial(_build_film, case, outside, site))
+
+
+def _join_corners(site: Site) -> None:
     for one, other in combinations(WALL_NAMES, 2):
         if AXIS[one] != AXIS[other]:
             _join_corner(one, other, site)
+
+
+def _build_film(case: Case, outside: Vector, site: Site) -> None:
+    """Join all outer faces that are open to the air around."""
     open_faces = [case.walls[name].mounting.kind == "open_air" for name in WALL_NAMES]
     outer = [site.wall_outside[name] for name in WALL_NAMES]
     site.builder.box_film(

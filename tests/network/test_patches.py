@@ -225,7 +225,7 @@ def test_exchange_areas_of_patches_close(seed):
     np.testing.assert_array_equal(exchange, exchange.T)
     assert (exchange >= 0).all()
     whole = np.zeros(patches.count)
-    for (*_, low, high), patch in zip(patches._rectangles, patches._patch_of, strict=True):
+    for (*_, low, high), patch in zip(patches.rectangles, patches.patch_of, strict=True):
         whole[patch] += np.prod(np.subtract(high, low))
     assert (exchange.sum(axis=1) <= whole * (1 + 1e-9)).all()
 
@@ -233,7 +233,7 @@ def test_exchange_areas_of_patches_close(seed):
 def test_patches_divide_a_face_evenly_and_know_what_lies_over_them():
     site = site_of(box(boards={"main": board()}))
     for name, side in (("front", "front"), ("main", "front"), ("main", "back")):
-        of_cell, grid = site.patches._faces[name, side], site.patches._grids[name, side]
+        of_cell, grid = site.patches.faces[name, side], site.patches.grids[name, side]
         counts = np.bincount((of_cell - of_cell.min()).ravel())
         assert counts.tolist() == [of_cell.size // 4] * 4
         for i, x in enumerate(grid.centres[0]):
