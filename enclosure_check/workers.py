@@ -268,9 +268,16 @@ def _ended(worker: _Worker) -> None:
 
 
 def _clear_away() -> None:
-    """Forget the workers that are gone; those of a process that ends are cleared by the system."""
+    """Forget the workers that are gone."""
     for number in tuple(_leaving):
         with suppress(ChildProcessError):
             if os.waitpid(number, os.WNOHANG) == (0, 0):
                 continue
         _leaving.discard(number)
+
+
+def see_off() -> None:
+    """Wait until all workers are gone, so that what they took is told with this process."""
+    while _leaving:
+        with suppress(ChildProcessError):
+            os.waitpid(_leaving.pop(), 0)

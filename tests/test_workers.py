@@ -18,7 +18,14 @@ from enclosure_check.check import check
 from enclosure_check.description.load import load_document
 from enclosure_check.report.json_report import write_json
 from enclosure_check.report.options import WriterOptions
-from enclosure_check.workers import MOST_PROCESSES, Task, available_processes, each, spread
+from enclosure_check.workers import (
+    MOST_PROCESSES,
+    Task,
+    available_processes,
+    each,
+    see_off,
+    spread,
+)
 
 pytestmark = pytest.mark.skipif(not hasattr(os, "fork"), reason="no processes without fork")
 HERE = os.getpid()
@@ -109,6 +116,13 @@ def test_errors_are_raised_here_and_no_process_is_left():
     with pytest.raises(KeyError, match="3"):
         done(work, range(5), 2)
     all_end()
+
+
+def test_those_seen_off_are_gone():
+    assert [item for item, _ in done(where, range(4), 3)] == [0, 1, 2, 3]
+    see_off()
+    with pytest.raises(ChildProcessError):
+        os.waitpid(-1, os.WNOHANG)
 
 
 def test_no_fork_to_be_had(monkeypatch):

@@ -176,6 +176,7 @@ def run(arguments: argparse.Namespace) -> ExitCode:
     from enclosure_check.cli.answers import Asked, answer_all
     from enclosure_check.cli.documents import find_documents, is_several
     from enclosure_check.cli.whole_process import prepare
+    from enclosure_check.workers import see_off
 
     if arguments.quiet and arguments.format != "text":
         raise UsageError("--quiet shortens the text report; it does not go with --format")
@@ -219,6 +220,7 @@ def run(arguments: argparse.Namespace) -> ExitCode:
     for line in said:
         say(line)
     give_out(run, destinations, several=is_several(arguments.files), short=arguments.quiet)
+    see_off()
     return run_exit_code(run)
 
 
