@@ -33,6 +33,8 @@ _VISCOSITY = (
 )
 _CONDUCTIVITY = (26.354148056126e-3, 7.446437052782e-3, -0.41105656157651e-3, 0.040605262283e-3)
 _SPECIFIC_HEAT = (1006.3440598876834, 3.755193718577815, 4.156160766775556, -0.0772817748626283)
+# Degree by degree, shape (4, 3).
+_CUBICS = np.array((_VISCOSITY, _CONDUCTIVITY, _SPECIFIC_HEAT)).T
 
 
 class Air(NamedTuple):
@@ -52,8 +54,15 @@ class Air(NamedTuple):
     """Specific heat at constant pressure [J/(kg K)]."""
 
 
-def _cubic(u: FloatArray, c: tuple[float, float, float, float]) -> FloatArray:
-    return c[0] + u * (c[1] + u * (c[2] + u * c[3]))
+def _cubics(u: FloatArray) -> FloatArray:
+    """Viscosity, conductivity and specific heat, side by side, (3, ...)."""
+    c = _CUBICS.reshape(4, 3, *(1,) * u.ndim)
+    values: FloatArray = c[3] * u
+    for degree in (2, 1):
+        values += c[degree]
+        values *= u
+    values += c[0]
+    return values
 
 
 def air(film_temperature_k: ArrayLike, pressure_pa: ArrayLike = SEA_LEVEL_PRESSURE) -> Air:
@@ -81,10 +90,7 @@ def air(film_temperature_k: ArrayLike, pressure_pa: ArrayLike = SEA_LEVEL_PRESSU
     at 101325 Pa within 0.3 % over that range (scatter against independent data).
     """
     temperature = np.maximum(np.asarray(film_temperature_k, dtype=np.float64), _GUARD_K)
-    u = (temperature - 300.0) * 0.01
-    viscosity = _cubic(u, _VISCOSITY)
-    conductivity = _cubic(u, _CONDUCTIVITY)
-    specific_heat = _cubic(u, _SPECIFIC_HEAT)
+    viscosity, conductivity, specific_heat = _cubics((temperature - 300.0) * 0.01)
     density = np.asarray(pressure_pa, dtype=np.float64) / (GAS_CONSTANT * temperature)
     prandtl = viscosity * specific_heat / conductivity
     expansion = 1.0 / temperature
