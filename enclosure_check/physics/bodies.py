@@ -173,39 +173,6 @@ def cuboid_film(
     )
 
 
-def sparrow_stretton(ra: ArrayLike, pr: ArrayLike) -> FloatArray:
-    """Nusselt number of a cube-like body with air all round, for comparison.
-
-    ``5.748 + 0.752 (Ra / F)**0.252`` with ``F = (1 + (0.492/Pr)**(9/16))**(16/9)``.
-
-    Parameters
-    ----------
-    ra : array_like
-        Rayleigh number with the diameter of the sphere of equal area [-].
-    pr : array_like
-        Prandtl number [-].
-
-    Returns
-    -------
-    ndarray
-        Mean Nusselt number with the authors' length, the area over the diameter of the circle that
-        has the area of the body seen from above [-], broadcast shape.
-
-    Notes
-    -----
-    Valid for ``200 <= Ra <= 1.5e9`` (from memory, and so is the definition of the length).
-
-    References
-    ----------
-    E. M. Sparrow, A. J. Stretton, "Natural convection from variously oriented cubes and from other
-    bodies of unity aspect ratio", International Journal of Heat and Mass Transfer 28, 1985,
-    741-752 (from memory).
-    """
-    ra = np.asarray(ra, dtype=np.float64)
-    f = (1.0 + (0.492 / np.asarray(pr, dtype=np.float64)) ** 0.5625) ** (16.0 / 9.0)
-    return np.asarray(5.748 + 0.752 * (ra / f) ** 0.252)
-
-
 def horizontal_cylinder(ra: ArrayLike, pr: ArrayLike) -> FloatArray:
     """Nusselt number of a long isothermal horizontal cylinder.
 

@@ -65,45 +65,6 @@ def contact(area: ArrayLike, coefficient: ArrayLike) -> FloatArray:
     return np.asarray(np.asarray(coefficient, dtype=np.float64) * np.asarray(area))
 
 
-def corner_joint(
-    length_a: ArrayLike,
-    length_b: ArrayLike,
-    kt_a: ArrayLike,
-    kt_b: ArrayLike,
-    edge: ArrayLike,
-) -> FloatArray:
-    """Conductance between the mean temperatures of two plates joined along an edge.
-
-    ``w / (L_a / (3 k t_a) + L_b / (3 k t_b))``. A plate of length L that takes the heat Q in at one
-    edge and loses it evenly carries ``Q (1 - x/L)`` at x; its temperature falls from the edge by
-    ``Q / (k t w) (x - x**2 / (2 L))``, whose mean is ``Q L / (3 k t w)``. The two such resistances
-    are in series, the joint itself has none.
-
-    Parameters
-    ----------
-    length_a, length_b : array_like
-        Lengths of the plates away from the common edge [m].
-    kt_a, kt_b : array_like
-        Conductivity times thickness [W/K].
-    edge : array_like
-        Length of the common edge [m].
-
-    Returns
-    -------
-    ndarray
-        Conductance [W/K], broadcast shape; zero if either plate does not conduct.
-
-    Notes
-    -----
-    Exact for plates with even loss and for fins in the limit of small ``L sqrt(h / k t)``; at a
-    product of 1 the resistance of a fin is 6 % below ``L / (3 k t w)``.
-    """
-    a = np.asarray(kt_a, dtype=np.float64)
-    b = np.asarray(kt_b, dtype=np.float64)
-    below = np.asarray(length_a) * b + np.asarray(length_b) * a
-    return np.asarray(3.0 * np.asarray(edge) * a * b / np.where(below > 0.0, below, 1.0))
-
-
 def effective_conductivity(
     thickness: ArrayLike,
     conductivity: ArrayLike,

@@ -275,22 +275,6 @@ _ROWS = (
         "rectangular plates, Journal of Thermophysics and Heat Transfer 7, 173-175 (from memory)",
     ),
     Correlation(
-        key="carroll_mrt",
-        name="Carroll, mean radiant temperature",
-        equation="x_i (1 - x_i / sum x) = A_i; 1/F_i = 1/x_i + (1 - eps_i) / (eps_i A_i)",
-        characteristic_length="none",
-        variable="none",
-        valid_from=0.0,
-        valid_to=math.inf,
-        prandtl_from=0.0,
-        prandtl_to=math.inf,
-        accuracy_pct=4.0,
-        accuracy_basis="scatter against exact view factors: heat between two opposite faces of a "
-        "cuboid, emissivity 0.9, edges to 1 : 5, the other faces adiabatic",
-        reference="J. A. Carroll, 1980, An 'MRT method' of computing radiant energy exchange in "
-        "rooms, 2nd Systems Simulation and Economics Analysis Conference, San Diego (from memory)",
-    ),
-    Correlation(
         key="swinbank_sky",
         name="Swinbank, clear sky",
         equation="T_sky = 0.0552 T_air^1.5",

@@ -10,79 +10,10 @@ FloatArray = npt.NDArray[np.float64]
 
 #: Stefan-Boltzmann constant [W/(m2 K4)] (CODATA 2018).
 STEFAN_BOLTZMANN = 5.670374419e-8
-#: Largest exchange area over the surface's own area: stands for "sees the mean radiant node
-#: without any resistance" and costs at most 0.01 % [-].
-EXCHANGE_LIMIT = 1e4
-_BISECTIONS = 52
-_ROUNDING = 1e-13
-
-
-def mean_radiant_exchange_areas(areas: ArrayLike) -> FloatArray:
-    """Exchange areas of flat or convex surfaces with their common mean radiant node.
-
-    Solves ``x_i (1 - x_i / X) = A_i`` with ``X = sum x_i``. The star of the x_i is then equal to a
-    mesh in which surface i sees surface j through ``x_i x_j / X``, no surface sees itself, and each
-    one sees its own area in all. A surface sees the others in proportion to their x, whatever
-    their arrangement.
-
-    Parameters
-    ----------
-    areas : array_like, shape (n,)
-        Areas, above zero [m2].
-
-    Returns
-    -------
-    ndarray, shape (n,)
-        Exchange areas x_i [m2], of ``x_i sigma (T_i**4 - T_mean**4)`` for black surfaces.
-
-    Notes
-    -----
-    Solved by bisection in ``v = sqrt(1 - 4 A_max / X)`` of the largest surface, which takes the
-    large root (v below zero) where it has nearly as much area as all the others together. From
-    there on it cannot be flat or convex: it is taken as enclosing the others, with
-    ``x_i = A_i`` for them and no resistance for itself (`EXCHANGE_LIMIT`), which is the limit of
-    the solution and gives ``A eps sigma dT**4`` for a small body in a large enclosure. A single
-    surface sees nothing: x = 0.
-
-    Two parallel plates are exact; for a cube all view factors are 0.2 (exact: 0.1998 and 0.2000).
-    What stands near or in front of what is not seen.
-
-    References
-    ----------
-    J. A. Carroll, "An 'MRT method' of computing radiant energy exchange in rooms", 2nd Systems
-    Simulation and Economics Analysis Conference, San Diego, 1980 (from memory).
-    """
-    area = np.asarray(areas, dtype=np.float64)
-    if area.size < 2:
-        return np.zeros_like(area)
-    largest = int(np.argmax(area))
-    share = np.delete(area, largest) / area[largest]
-    exchange = np.empty_like(area)
-    others = np.arange(area.size) != largest
-    if share.sum() <= 1.0 + _ROUNDING and share.size > 1:
-        exchange[others] = area[others]
-        exchange[largest] = EXCHANGE_LIMIT * area[largest]
-        return exchange
-
-    low, high = -1.0, 1.0
-    for _ in range(_BISECTIONS):
-        v = 0.5 * (low + high)
-        excess = (1.0 - v) + np.sum(1.0 - np.sqrt(1.0 - share * (1.0 - v * v))) - 2.0
-        if excess >= -_ROUNDING:
-            low = v
-        else:
-            high = v
-    v = low
-    total = 4.0 * area[largest] / max(1.0 - v * v, _ROUNDING)
-    # x = X/2 (1 - sqrt(1 - s)) written without the cancellation of small s.
-    root = np.sqrt(1.0 - share * (1.0 - v * v))
-    exchange[others] = 2.0 * area[others] / (1.0 + root)
-    exchange[largest] = min(0.5 * total * (1.0 - v), EXCHANGE_LIMIT * area[largest])
-    return exchange
 
 
 def grey_exchange(area: ArrayLike, exchange_area: ArrayLike, emissivity: ArrayLike) -> FloatArray:
-    """Conductance of a grey surface to the mean radiant node, as an area.
+    """Conductance of a grey surface to what it exchanges with, as an area.
 
     ``1 / (1/x + (1 - eps) / (eps A))``: the exchange area in series with the surface's own grey
     resistance, written so that it is exactly zero at ``eps = 0``.
@@ -92,15 +23,14 @@ def grey_exchange(area: ArrayLike, exchange_area: ArrayLike, emissivity: ArrayLi
     area : array_like
         Area of the surface [m2].
     exchange_area : array_like
-        Exchange area, `mean_radiant_exchange_areas`; the area itself for surroundings that are
-        black or large [m2].
+        Exchange area; the area itself for surroundings that are black or large [m2].
     emissivity : array_like
         Hemispherical emissivity, 0 to 1 [-].
 
     Returns
     -------
     ndarray
-        Grey exchange area [m2], of ``F sigma (T**4 - T_mean**4)``; broadcast shape.
+        Grey exchange area [m2], of ``F sigma (T**4 - T_other**4)``; broadcast shape.
     """
     a = np.asarray(area, dtype=np.float64)
     x = np.asarray(exchange_area, dtype=np.float64)

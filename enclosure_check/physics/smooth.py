@@ -101,27 +101,3 @@ def smoothstep(x: ArrayLike) -> FloatArray:
     """
     t = np.minimum(np.maximum(np.asarray(x, dtype=np.float64), 0.0), 1.0)
     return t * t * (3.0 - 2.0 * t)
-
-
-def power_mean(a: ArrayLike, b: ArrayLike, power: float) -> FloatArray:
-    """Blend of two limits, ``(a**power + b**power)**(1 / power)``.
-
-    The larger term wins; equal terms give ``2**(1 / power)`` times either. Called "the usual
-    expression" for rates of transfer by S. W. Churchill and R. Usagi, "A general expression for
-    the correlation of rates of transfer and other phenomena", AIChE Journal 18, 1972.
-
-    Parameters
-    ----------
-    a, b : array_like
-        The two limits, zero or above [same unit].
-    power : float
-        Exponent [-]; the higher, the sharper.
-
-    Returns
-    -------
-    ndarray
-        Broadcast shape of ``a`` and ``b`` [their unit].
-    """
-    a = np.asarray(a, dtype=np.float64)
-    b = np.asarray(b, dtype=np.float64)
-    return np.asarray((a**power + b**power) ** (1.0 / power), dtype=np.float64)

@@ -6,7 +6,6 @@ import pytest
 from enclosure_check.physics.conduction import (
     azar_graebner,
     contact,
-    corner_joint,
     disc_source_on_infinite_plate,
     effective_conductivity,
     plate_source_rise,
@@ -27,33 +26,6 @@ def test_slab_and_contact():
 def test_contact_as_a_length_of_metal():
     """Cengel, Heat Transfer, example 3-4: 11000 W/(m2 K) on aluminium is 2.15 cm of metal."""
     assert float(slab(1.0, 0.0215, 237.0)) == pytest.approx(float(contact(1.0, 11000.0)), rel=0.003)
-
-
-def fin_mean_resistance(length, kt, h, edge):
-    """Edge minus mean temperature of a fin fed at its edge, per watt: exact."""
-    m = np.sqrt(h / kt)
-    return 1 / (np.tanh(m * length) * kt * m * edge) - 1 / (h * length * edge)
-
-
-def test_corner_joint_is_the_limit_of_two_fins():
-    a, b = (0.2, 0.4), (0.1, 0.9)
-    joint = corner_joint(a[0], b[0], a[1], b[1], 0.3)
-    for h, tolerance in ((1e-3, 1e-4), (1.0, 0.01)):
-        exact = 1 / sum(fin_mean_resistance(length, kt, h, 0.3) for length, kt in (a, b))
-        assert joint == pytest.approx(exact, rel=tolerance)
-
-
-def test_corner_joint_at_unit_fin_parameter():
-    """The documented 6 % at L sqrt(h / k t) = 1."""
-    exact = fin_mean_resistance(0.1, 0.4, 40.0, 1.0)
-    assert exact / (0.1 / (3 * 0.4)) == pytest.approx(0.939, abs=0.001)
-
-
-def test_corner_joint_limits():
-    assert corner_joint(0.2, 0.1, 0.0, 0.4, 0.3) == 0.0
-    assert corner_joint(0.2, 0.1, 0.0, 0.0, 0.3) == 0.0
-    assert corner_joint(0.2, 0.1, 1e9, 0.4, 0.3) == pytest.approx(3 * 0.4 * 0.3 / 0.1)
-    assert corner_joint(0.2, 0.1, 0.4, 0.5, 0.3) == corner_joint(0.1, 0.2, 0.5, 0.4, 0.3)
 
 
 # Boards of 1.6 mm with copper of 385 and laminate of 0.3 W/(m K): the two sums worked by hand, and

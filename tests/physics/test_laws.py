@@ -38,7 +38,6 @@ def test_required_keys():
         "raithby_hollands_hot_down",
         "yovanovich_cuboid",
         "box_shelter",
-        "carroll_mrt",
         "chen_eichhorn_stratified",
         "elsherbiny_vertical_gap",
         "hollands_heated_below",

@@ -5,7 +5,6 @@ import pytest
 
 from enclosure_check.physics.smooth import (
     RISE_WIDTH_K,
-    power_mean,
     smoothstep,
     soft_abs,
     soft_rise,
@@ -69,10 +68,3 @@ def test_smoothstep():
     assert (np.diff(y) >= 0).all()
     assert abs(smoothstep(1e-6)) < 1e-11
     assert abs(1 - smoothstep(1 - 1e-6)) < 1e-11
-
-
-def test_power_mean_limits():
-    assert power_mean(3.0, 4.0, 2.0) == pytest.approx(5.0)
-    assert power_mean(1.0, 10.0, 4.0) == pytest.approx(10.0, rel=1e-4)
-    assert power_mean(2.0, 2.0, 4.0) == pytest.approx(2.0 * 2**0.25)
-    assert power_mean(np.ones((3, 1)), np.ones(2), 3.0).shape == (3, 2)
