@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 from enclosure_check.description.combinations import BASE
 from enclosure_check.description.merge import merge_patch
 from enclosure_check.description.problems import DocumentError, FieldErrors
-from enclosure_check.description.quick import Known, validated
+from enclosure_check.description.quick import Known, Plain, plainly_valid, validated
 from enclosure_check.description.resolve import resolve
 from enclosure_check.description.yaml_nodes import (
     MappingNode,
@@ -63,8 +63,12 @@ class Variation:
         """Give the case with another number at a path; None where that is no valid document."""
         node = _with(self.node, path, value)
         assert isinstance(node, MappingNode)
+        document = plainly_valid(node, self._known)
+        if document is None and isinstance(self.document, Plain):
+            # All else is plainly valid, and a number out of its bounds is by no other rule.
+            return None
         try:
-            document = validated(node, self._file, self._known)
+            document = document or validated(node, self._file, self._known)
             return resolve(document, self._condition or BASE, self._option, self._listed)
         except (DocumentError, FieldErrors):
             return None

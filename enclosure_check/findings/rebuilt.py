@@ -9,6 +9,7 @@ import numpy as np
 from enclosure_check.description.case import Case
 from enclosure_check.findings.solved import Solved
 from enclosure_check.network.links import FloatArray
+from enclosure_check.network.network import Network
 from enclosure_check.records import replace
 from enclosure_check.solve.adjoint import Adjoint
 from enclosure_check.solve.nearby import solve_nearby
@@ -110,7 +111,7 @@ class Rebuilding:
                 return None
             rise, left = solution.rise, network.imbalance(solution.rise)
         moved = (rise - solved.solution.rise)[adjoint.nodes, 0]
-        change = (network.imbalance(rise) - left)[:, 0]
+        change = (network.imbalance(rise, self._heat(network, rise)) - left)[:, 0]
         warmer = float(network.reference_k[0] - own.reference_k[0])
         return np.asarray(warmer + moved - change @ adjoint.weight)
 
@@ -120,6 +121,27 @@ class Rebuilding:
         from enclosure_check.network.pieces import Builds
 
         return Builds(self._solved.case)
+
+    def _heat(self, network: Network, rise: FloatArray) -> FloatArray:
+        """Heat through every link [W], shape (links, 1).
+
+        Where nothing is warmer or colder than in the solved case, links in common carry the same.
+        """
+        known = self._own_heat if np.array_equal(rise, self._solved.solution.rise) else {}
+        return np.concatenate(
+            [
+                heat
+                if (heat := known.get(id(kind))) is not None
+                else kind.evaluate(rise, network.reference_k)
+                for kind in network.kinds
+            ]
+        )
+
+    @cached_property
+    def _own_heat(self) -> dict[int, FloatArray]:
+        """Heat through the links of the solved case [W], by the identity of their kind."""
+        own, rise = self._builds.own, self._solved.solution.rise
+        return {id(kind): kind.evaluate(rise, own.reference_k) for kind in own.kinds}
 
     @cached_property
     def _left(self) -> FloatArray:

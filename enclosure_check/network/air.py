@@ -202,8 +202,7 @@ class AirSite:
         films = self.films
         bottoms, tops = self._ends()
         nodes = np.linspace(0.0, self.height, AIR_NODES)
-        middles = (np.arange(SAMPLES) + 0.5) / SAMPLES
-        sampled = bottoms[:, None] + (tops - bottoms)[:, None] * middles
+        sampled = bottoms[:, None] + (tops - bottoms)[:, None] * _middles()
         samples = self.share(sampled.ravel()).reshape(len(films), SAMPLES, AIR_NODES)
         faces = [film.face for film in films]
         lengths = np.array([film.stream_length or film.face.fall_length for film in films])
@@ -246,40 +245,20 @@ class AirSite:
         return lowest - self.bottom, highest - self.bottom
 
     def _pairs(self, columns: list[Column], tops: list[tuple[Top, Face]]) -> Pairs:
-        rows: list[tuple[int, int, float, float, float, float, FloatArray]] = []
+        rows: list[tuple[int, int, float, float, float, float]] = []
         for column in columns:
             low, high = column.extent()
             axis, width = column.lower.axis, column.width
-            middle = 0.5 * (low + high)
-            middle[axis] = 0.5 * (column.lower.at + column.upper.at)
-            rows.append(
-                (
-                    column.lower.surface,
-                    column.upper.surface,
-                    width,
-                    *channel_shape(high - low, self.up, axis, width),
-                    self.up[axis],
-                    self._around(low, high, axis, middle[axis]),
-                )
-            )
+            shape = channel_shape(high - low, self.up, axis, width)
+            rows.append((column.lower.surface, column.upper.surface, width, *shape, self.up[axis]))
         for top, face in tops:
             width = max(abs(face.at - top.at), 1e-5)
             first, second = face.grid.axes
             along = float(np.hypot(self.up[first], self.up[second]))
             head = along + abs(self.up[top.axis]) * width / top.length
-            rows.append(
-                (
-                    top.surface,
-                    face.surface,
-                    width,
-                    top.length,
-                    head,
-                    top.sign * self.up[top.axis],
-                    self.share(self.heights(np.array([top.centre])))[0],
-                )
-            )
-        shapes = np.array([row[2:6] for row in rows], dtype=np.float64).reshape(-1, 4)
-        around = np.array([row[6] for row in rows]).reshape(-1, AIR_NODES)
+            up = top.sign * self.up[top.axis]
+            rows.append((top.surface, face.surface, width, top.length, head, up))
+        shapes = np.array([row[2:] for row in rows], dtype=np.float64).reshape(-1, 4)
         return Pairs(
             np.array([row[0] for row in rows], dtype=np.intp),
             np.array([row[1] for row in rows], dtype=np.intp),
@@ -288,50 +267,58 @@ class AirSite:
             shapes[:, 2:3],
             shapes[:, 3:4],
             closed=np.zeros((len(rows), 1)),
-            air=around,
+            air=np.concatenate((self._around(columns), self._over(tops))),
         )
 
-    def _around(self, low: FloatArray, high: FloatArray, axis: int, at: float) -> FloatArray:
-        """Mean shares of the air nodes around a gap, shape (n,)."""
-        corners = []
-        for a in (0.0, 1.0):
-            for b in (0.0, 1.0):
-                first, second = (other for other in range(3) if other != axis)
-                point = low.copy()
-                point[first] += a * (high - low)[first]
-                point[second] += b * (high - low)[second]
-                point[axis] = at
-                corners.append(point)
-        heights = self.heights(np.array(corners))
-        middles = (np.arange(SAMPLES) + 0.5) / SAMPLES
-        return np.asarray(
-            self.share(heights.min() + (heights.max() - heights.min()) * middles).mean(axis=0)
-        )
+    def _around(self, columns: list[Column]) -> FloatArray:
+        """Mean shares of the air nodes around gaps, half way across them, shape (columns, n)."""
+        if not columns:
+            return np.zeros((0, AIR_NODES))
+        # Low and high corners; both in the middle across the gap.
+        corners = np.array([column.extent() for column in columns])
+        across = np.array([column.lower.axis for column in columns])
+        every = np.arange(len(columns))
+        middle = [0.5 * (column.lower.at + column.upper.at) for column in columns]
+        corners[every, :, across] = np.array(middle)[:, None]
+        along = corners * np.asarray(self.up)
+        low = along.min(axis=1).sum(axis=1) - self.bottom
+        high = along.max(axis=1).sum(axis=1) - self.bottom
+        sampled = low[:, None] + (high - low)[:, None] * _middles()
+        shares = self.share(sampled.ravel()).reshape(len(columns), SAMPLES, AIR_NODES)
+        return np.asarray(shares.mean(axis=1))
+
+    def _over(self, tops: list[tuple[Top, Face]]) -> FloatArray:
+        """Shares of the air nodes at the middles of parts, shape (tops, n)."""
+        centres = np.array([top.centre for top, _ in tops]).reshape(-1, 3)
+        return self.share(self.heights(centres))
 
     def _straight(self, columns: list[Column], tops: list[tuple[Top, Face]]) -> dict[str, Any]:
-        cell_a, cell_b, pair, area, label = [], [], [], [], []
-        for number, column in enumerate(columns):
+        cell_a, cell_b, area, label = [], [], [], []
+        for column in columns:
             one, other, shared = column.straight()
-            owner = self.films[column.lower.surface]
             cell_a.append(one)
             cell_b.append(other)
             area.append(shared)
-            pair.append(np.full(len(one), number))
-            label.append(np.full(len(one), owner.label))
-        for number, (top, face) in enumerate(tops, start=len(columns)):
+            label.append(self.films[column.lower.surface].label)
+        for top, face in tops:
             cells, shares = _cells_over(face, top)
             cell_a.append(np.full(len(cells), top.node))
             cell_b.append(cells)
             area.append(shares * top.area)
-            pair.append(np.full(len(cells), number))
-            label.append(np.full(len(cells), self.films[top.surface].label))
+            label.append(self.films[top.surface].label)
+        sizes = [len(each) for each in area]
         return {
             "cell_a": np.concatenate(cell_a).astype(np.intp),
             "cell_b": np.concatenate(cell_b).astype(np.intp),
-            "pair": np.concatenate(pair).astype(np.intp),
+            "pair": np.repeat(np.arange(len(sizes)), sizes).astype(np.intp),
             "straight_area": np.concatenate(area)[:, None],
-            "straight_label": np.concatenate(label).astype(np.intp),
+            "straight_label": np.repeat(label, sizes).astype(np.intp),
         }
+
+
+def _middles() -> FloatArray:
+    """Middles of the parts of a height that films and gaps look at the air in, of one in all."""
+    return (np.arange(SAMPLES) + 0.5) / SAMPLES
 
 
 def _values(record: Film | Face) -> tuple[Hashable, ...]:
@@ -378,10 +365,9 @@ class _Entries:
         ends = np.cumsum([len(film.centres) for film in site.films])[:-1]
         self.shares = np.split(site.share(site.heights(centres)), ends)
         self.cell: list[IntArray] = []
-        self.side: list[IntArray] = []
         self.area: list[FloatArray] = []
         self.hat: list[FloatArray] = []
-        self.label: list[IntArray] = []
+        self.label: list[int] = []
         self.sides: list[tuple[int, int, int]] = []
 
     def add_column(self, number: int, column: Column) -> None:
@@ -407,21 +393,21 @@ class _Entries:
             return
         self.left[surface] = self.left[surface] - area
         self.cell.append(film.cells[some])
-        self.side.append(np.full(int(some.sum()), len(self.sides)))
         self.area.append(area[some])
         self.hat.append(self.shares[surface][some])
-        self.label.append(np.full(int(some.sum()), film.label))
+        self.label.append(film.label)
         self.sides.append((surface, pair, second))
 
     def columns(self) -> dict[str, Any]:
         """Give every column by name."""
         sides = np.array(self.sides, dtype=np.intp).reshape(-1, 3)
+        sizes = [len(each) for each in self.area]
         return {
             "cell": np.concatenate(self.cell).astype(np.intp),
-            "side": np.concatenate(self.side).astype(np.intp),
+            "side": np.repeat(np.arange(len(sizes)), sizes).astype(np.intp),
             "area": np.concatenate(self.area)[:, None],
             "hat": np.concatenate(self.hat),
-            "film_label": np.concatenate(self.label).astype(np.intp),
+            "film_label": np.repeat(self.label, sizes).astype(np.intp),
             "side_surface": sides[:, 0],
             "side_pair": sides[:, 1],
             "side_second": sides[:, 2],

@@ -202,15 +202,38 @@ class NetworkBuilder:
             values = (np.ravel(area), np.ravel(exchange_area), share, emissivity)
             self._radiation.add(a.size, (a, b, row, a, b), values)
 
-    def mean_emission(
-        self, label: str, cells: IntArray, area: FloatArray, emissivity: FloatArray
-    ) -> int:
-        """Give a node that keeps the mean emission of cells, which is no heat."""
-        node = self.node(label)
-        row = self.label(LinkLabel(label, "mean"))
-        values = (area, area, 1.0, emissivity)
-        self._radiation.add(cells.size, (node, self.nowhere, row, node, cells), values)
-        return node
+    def radiate_each(
+        self, a: IntArray, b: IntArray, area: FloatArray, emissivity: FloatArray, label: IntArray
+    ) -> None:
+        """Join nodes by radiation that sees all of their area [m2], one by one."""
+        self._radiation.add(a.size, (a, b, label, a, b), (area, area, 1.0, emissivity))
+
+    def mean_emissions(
+        self,
+        labels: Sequence[str],
+        sizes: IntArray,
+        cells: IntArray,
+        area: FloatArray,
+        emissivity: FloatArray,
+    ) -> IntArray:
+        """Give nodes that keep the mean emission of groups of cells, which is no heat.
+
+        Parameters
+        ----------
+        labels
+            Of the nodes, one for each group.
+        sizes
+            How many cells each has.
+        cells, area, emissivity
+            The cells, group after group, their areas [m2] and emissivities.
+        """
+        nodes = [self.node(label) for label in labels]
+        rows = [self.label(LinkLabel(label, "mean")) for label in labels]
+        node, row = np.repeat(nodes, sizes), np.repeat(rows, sizes)
+        self._radiation.add(
+            cells.size, (node, self.nowhere, row, node, cells), (area, area, 1.0, emissivity)
+        )
+        return np.array(nodes, dtype=np.intp)
 
     def exchange(
         self,

@@ -5,11 +5,9 @@ on a patch gives ``e A (sigma T^4 - H)`` to H; patches exchange their radiositie
 ``(1 - e) H + e E`` over the exchange areas of their view factors.
 """
 
-from itertools import pairwise
-
 import numpy as np
 
-from enclosure_check.network.links import FloatArray, IntArray, LinkLabel
+from enclosure_check.network.links import LinkLabel
 from enclosure_check.network.site import Site
 
 # A patch that is hidden altogether takes no part. [m2]
@@ -25,31 +23,37 @@ def build_inside_radiation(site: Site) -> None:
     builder, count = site.builder, site.patches.count
     exchange = site.patches.exchange()
     area = exchange.sum(axis=1)
+    surfaces = site.surfaces
+    sizes = [np.size(surface.cells) for surface in surfaces]
+    cells, patch, on_it = (
+        np.concatenate([np.ravel(column) for column in columns])
+        for columns in zip(*((each.cells, each.patch, each.area) for each in surfaces), strict=True)
+    )
+    emissivity = np.repeat([surface.emissivity for surface in surfaces], sizes)
+    label = np.repeat([builder.label(surface.label) for surface in surfaces], sizes)
     # What stands proud of a patch sees no more than through the patch's own outline.
     on_patch = np.zeros(count)
-    for surface in site.surfaces:
-        np.add.at(on_patch, np.ravel(surface.patch), np.ravel(surface.area))
+    np.add.at(on_patch, patch, on_it)
     outline = np.minimum(1.0, area / np.maximum(on_patch, 1e-300))
     sees = area > LEAST_AREA
-    emitting = np.zeros(count)
     irradiation = builder.nodes("irradiation of patch", (count,))
-    found: list[tuple[IntArray, IntArray, FloatArray, FloatArray]] = []
-    for surface in site.surfaces:
-        bare = (np.ravel(surface.area) > 0) & sees[np.ravel(surface.patch)]
-        nodes, patch = np.ravel(surface.cells)[bare], np.ravel(surface.patch)[bare]
-        seen = np.ravel(surface.area)[bare] * outline[patch]
-        builder.radiate(nodes, irradiation[patch], seen, seen, surface.emissivity, surface.label)
-        np.add.at(emitting, patch, surface.emissivity * seen)
-        found.append((patch, nodes, seen, np.full(nodes.size, max(surface.emissivity, _MIRROR))))
+    bare = (on_it > 0) & sees[patch]
+    cells, patch, emissivity, label = cells[bare], patch[bare], emissivity[bare], label[bare]
+    seen = on_it[bare] * outline[patch]
+    builder.radiate_each(cells, irradiation[patch], seen, emissivity, label)
+    emitting = np.zeros(count)
+    np.add.at(emitting, patch, emissivity * seen)
     emission = irradiation.copy()
-    patch, nodes, seen, weight = (np.concatenate(column) for column in zip(*found, strict=True))
     order = np.argsort(patch, kind="stable")
-    bounds = np.searchsorted(patch[order], np.arange(count + 1)).tolist()
-    for index, (start, end) in enumerate(pairwise(bounds)):
-        if end > start:
-            here = order[start:end]
-            label = f"emission of patch {index + 1}"
-            emission[index] = builder.mean_emission(label, nodes[here], seen[here], weight[here])
+    held = np.bincount(patch, minlength=count)
+    some = np.flatnonzero(held)
+    emission[some] = builder.mean_emissions(
+        [f"emission of patch {index + 1}" for index in some.tolist()],
+        held[some],
+        cells[order],
+        seen[order],
+        np.maximum(emissivity, _MIRROR)[order],
+    )
     mean = emitting / np.where(sees, area, 1.0)
     first, second = np.nonzero(np.triu(exchange > LEAST_SHARE * area.min(), 1))
     builder.exchange(

@@ -74,12 +74,20 @@ class Builds:
                 return network
         return build_network(case)
 
-    @cached_property
+    @property
+    def own(self) -> Network:
+        """The network of the case itself; others have the links in common that are the same."""
+        return self._recorded[1]
+
+    @property
     def _record(self) -> "Record":
+        return self._recorded[0]
+
+    @cached_property
+    def _recorded(self) -> "tuple[Record, Network]":
         site = Site.of(self._case, GridOptions())
         site.follow = record = Record(site)
-        build_on(site, self._case)
-        return record
+        return record, build_on(site, self._case)
 
 
 class Record:
