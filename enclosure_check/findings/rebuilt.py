@@ -27,8 +27,6 @@ Rebuild = Callable[[Key, float], Case | None]
 STEP, LEAST_STEP_MM, PLACE_STEP_MM, LEAST_STEP = 0.005, 0.5, 5.0, 1e-3
 # Balance of the states solved for: places.
 _CLOSE = SolveOptions(node_tolerance=1e-7, by_stirring=False, most_holds=1)
-# Sections of the document whose sizes say where cells and openings lie.
-_LAYOUT = ("box", "walls", "boards", "defaults")
 
 
 class Rebuilding:
@@ -45,7 +43,7 @@ class Rebuilding:
     """
 
     def __init__(self, solved: Solved, adjoint: Adjoint, rebuild: Rebuild) -> None:
-        self._solved, self._adjoint, self._rebuild = solved, adjoint, rebuild
+        self.solved, self.adjoint, self.case_with = solved, adjoint, rebuild
 
     def derivative(self, path: Key, value: float) -> FloatArray | None:
         """Derivatives of temperatures by a number, from the balance of the network it then makes.
@@ -60,44 +58,31 @@ class Rebuilding:
             By the number's own unit, shape (t,); None where no like network can be built either
             way.
         """
-        return self._difference(path, value, solves=is_place(path))
+        return self.difference(path, value, solves=is_place(path))
 
-    def estimate(self, path: Key, value: float) -> tuple[FloatArray | None, bool]:
-        """Give about the derivative for less, and whether it is the derivative itself.
-
-        Places are not solved for, and sizes that leave cells and openings where they are, copper
-        and powers are moved up only. Numerical experiments made for this project, on the sample
-        documents: hardly ever less than half of the derivative.
-        """
-        if is_place(path):
-            return self._difference(path, value, solves=False), False
-        if path[0] not in _LAYOUT or "copper" in path:
-            step = step_of(path, value)
-            high = self._moved(path, value + step, solves=False)
-            if high is not None:
-                return high / step, False
-        return self._difference(path, value, solves=False), True
-
-    def _difference(self, path: Key, value: float, *, solves: bool) -> FloatArray | None:
+    def difference(self, path: Key, value: float, *, solves: bool) -> FloatArray | None:
+        """Give the same, solved for or not, whatever the number is."""
         step = step_of(path, value)
-        high, low = (self._moved(path, value + way, solves=solves) for way in (step, -step))
+        cases = [self.case_with(path, value + way) for way in (step, -step)]
+        high, low = (None if case is None else self.moved(case, solves=solves) for case in cases)
         if high is None and low is None:
             return None
-        still = np.zeros(self._adjoint.weight.shape[1])
+        still = np.zeros(self.adjoint.weight.shape[1])
         span = step * ((high is not None) + (low is not None))
         return np.asarray(
             ((still if high is None else high) - (still if low is None else low)) / span
         )
 
-    def _moved(self, path: Key, value: float, *, solves: bool) -> FloatArray | None:
-        """Change of temperatures with another number, shape (t,); None without a like network."""
-        solved, adjoint = self._solved, self._adjoint
-        case = self._rebuild(path, value)
-        if case is None:
-            return None
+    def is_same(self, case: Case) -> bool:
+        """Whether a case is that which was solved, but for where it stands in the document."""
+        own = self.solved.case
+        return replace(case, positions=own.positions, tolerances=own.tolerances) == own
+
+    def moved(self, case: Case, *, solves: bool) -> FloatArray | None:
+        """Change of temperatures in another case, shape (t,); None where its network is unlike."""
+        solved, adjoint = self.solved, self.adjoint
         still = np.zeros(adjoint.weight.shape[1])
-        same = replace(case, positions=solved.case.positions, tolerances=solved.case.tolerances)
-        if same == solved.case:
+        if self.is_same(case):
             return still
         if self._at_rest and _driving(case) == self._driving:
             return still
@@ -120,14 +105,14 @@ class Rebuilding:
         # Not needed for a check.
         from enclosure_check.network.pieces import Builds
 
-        return Builds(self._solved.case)
+        return Builds(self.solved.case)
 
     def _heat(self, network: Network, rise: FloatArray) -> FloatArray:
         """Heat through every link [W], shape (links, 1).
 
         Where nothing is warmer or colder than in the solved case, links in common carry the same.
         """
-        known = self._own_heat if np.array_equal(rise, self._solved.solution.rise) else {}
+        known = self._own_heat if np.array_equal(rise, self.solved.solution.rise) else {}
         return np.concatenate(
             [
                 heat
@@ -140,13 +125,13 @@ class Rebuilding:
     @cached_property
     def _own_heat(self) -> dict[int, FloatArray]:
         """Heat through the links of the solved case [W], by the identity of their kind."""
-        own, rise = self._builds.own, self._solved.solution.rise
+        own, rise = self._builds.own, self.solved.solution.rise
         return {id(kind): kind.evaluate(rise, own.reference_k) for kind in own.kinds}
 
     @cached_property
     def _left(self) -> FloatArray:
         """What the solved case leaves out of balance [W], shape (n, 1)."""
-        return self._solved.network.imbalance(self._solved.solution.rise)
+        return self.solved.network.imbalance(self.solved.solution.rise)
 
     @cached_property
     def _at_rest(self) -> bool:
@@ -154,11 +139,11 @@ class Rebuilding:
 
         Whatever its law and size, a link passes none between equal temperatures.
         """
-        return not (self._solved.solution.rise.any() or self._solved.network.sources.power.any())
+        return not (self.solved.solution.rise.any() or self.solved.network.sources.power.any())
 
     @cached_property
     def _driving(self) -> Hashable:
-        return _driving(self._solved.case)
+        return _driving(self.solved.case)
 
 
 def _driving(case: Case) -> Hashable:

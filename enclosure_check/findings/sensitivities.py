@@ -11,6 +11,7 @@ from enclosure_check.description.numbers import meaning, numbers
 from enclosure_check.description.variation import Variation
 from enclosure_check.findings.certainty import Sensitivities, Sensitivity
 from enclosure_check.findings.confidence import Bands, bands, stated_turns, unit_of
+from enclosure_check.findings.estimates import LARGEST_MISS, Estimates
 from enclosure_check.findings.parts import point
 from enclosure_check.findings.rebuilt import Rebuilding
 from enclosure_check.findings.results import PartFinding
@@ -24,9 +25,6 @@ _INSTALLATION = ("surroundings", "mode")
 _LIMITS = ("limits", "touch_max_c")
 # A number whose percent moves a margin by less is left out: it does nothing there. [K]
 LEAST_K = 1e-4
-# An estimate by `Rebuilding.estimate` is hardly ever less than the derivative over this: numbers
-# that are not among the first even so are not looked at more closely.
-LARGEST_MISS = 2.0
 
 
 class Each(Protocol):
@@ -79,6 +77,7 @@ class _Search:
         self._sign = -1.0 if worst.limit_side == "max" else 1.0
         self._most, self._each = most, each
         self._rebuilding = Rebuilding(own.solved, own.adjoint, variation.case_with)
+        self._about = Estimates(self._rebuilding, worst.name)
 
     def found(self) -> list[Sensitivity]:
         """Give what numbers buy, the most first; those left out cannot be among the first."""
@@ -95,6 +94,8 @@ class _Search:
                 others.append(path)
             elif (row := self._row(path, value, by, "adjoint")) is not None:
                 exact[path] = row
+        least = self._least(exact, False)
+        others = [path for path in others if not self._is_beyond(path, asked[path], least)]
         about: dict[Key, Sensitivity] = {}
         for path, (by, is_exact) in zip(others, self._estimates(asked, others), strict=True):
             row = None if by is None else self._row(path, asked[path], by, "rebuilt", LARGEST_MISS)
@@ -119,19 +120,27 @@ class _Search:
         """
         doubtful: list[Key] = []
         for kind in (False, True):
-            known = sorted(-_rank(row) for row in exact.values() if row.installation is kind)
-            least = known[-self._most] if len(known) >= self._most else 0.0
+            least = self._least(exact, kind)
             open_ = [path for path, row in about.items() if row.installation is kind]
             open_ = [path for path in open_ if -_rank(about[path]) * LARGEST_MISS >= least]
             doubtful += sorted(open_, key=lambda path: _rank(about[path]))[: self._most]
         return doubtful
 
+    def _least(self, exact: Mapping[Key, Sensitivity], kind: bool) -> float:
+        """Give what the last one to be given of a kind does at least, by those known [K]."""
+        known = sorted(-_rank(row) for row in exact.values() if row.installation is kind)
+        return known[-self._most] if len(known) >= self._most else 0.0
+
+    def _is_beyond(self, path: Key, value: float, least: float) -> bool:
+        """Whether a number cannot do so much, as is known of places of parts."""
+        most = self._about.most(path) if least > 0 else None
+        return most is not None and most * abs(value) / 100 < least
+
     def _estimates(
         self, asked: Mapping[Key, float], paths: Sequence[Key]
     ) -> list[tuple[float | None, bool]]:
         def work(path: Key) -> tuple[float | None, bool]:
-            by, is_exact = self._rebuilding.estimate(path, asked[path])
-            return None if by is None else float(by[0]), is_exact
+            return self._about.about(path, asked[path])
 
         return self._each(work, paths)
 

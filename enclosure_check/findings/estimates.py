@@ -1,0 +1,200 @@
+"""What numbers that are shape do to a temperature, about or at most, for less than the derivative.
+
+Who wants only the numbers that do most need not know exactly what the others do. How far these
+can be trusted was found by numerical experiments made for this project, on the sample documents.
+"""
+
+import numpy as np
+
+from enclosure_check.description.case import BoardCase, Case, PartCase
+from enclosure_check.description.frames import OPPOSITE
+from enclosure_check.findings.rebuilt import STEP, Key, Rebuilding, is_place, step_of
+from enclosure_check.network.boards import board_conductivity
+from enclosure_check.network.grid import PlateGrid
+from enclosure_check.network.links import FloatArray
+from enclosure_check.network.network import PlateNodes
+from enclosure_check.network.units import metres, metres_3
+from enclosure_check.records import replace
+
+# An estimate is hardly ever less than the derivative over this.
+LARGEST_MISS = 2.0
+# Moving a part does hardly ever more than so many times what it does by where its heat goes; over
+# the samples at most 2.5 times.
+MOST_BY_MOVING = 5.0
+
+
+class Estimates:
+    """Estimates for one temperature, by the networks that numbers make.
+
+    Parameters
+    ----------
+    rebuilding
+        The case, and weights of that temperature alone.
+    part
+        The part whose temperature it is.
+    """
+
+    def __init__(self, rebuilding: Rebuilding, part: str) -> None:
+        self._rebuilding, self._part = rebuilding, part
+        self._case, self._places = rebuilding.solved.case, rebuilding.solved.network.places
+        self._weight: FloatArray = rebuilding.adjoint.weight[:, 0]
+        self._by_sheet: dict[Key, float | None] = {}
+
+    def about(self, path: Key, value: float) -> tuple[float | None, bool]:
+        """Give about the derivative by a number, and whether it is the derivative itself.
+
+        Places are not solved for, and sizes that leave the cells where they are and powers are
+        moved up only. Copper is told by what the conductivity of its board or zone does.
+
+        Returns
+        -------
+        tuple
+            By the number's own unit, None where no like network can be built; see `Rebuilding`.
+        """
+        rebuilding = self._rebuilding
+        if is_place(path):
+            return _first(rebuilding.difference(path, value, solves=False)), False
+        if not _lays_out(path):
+            step = step_of(path, value)
+            case = rebuilding.case_with(path, value + step)
+            if case is not None:
+                high = self._by_copper(path, case)
+                if high is None:
+                    high = _first(rebuilding.moved(case, solves=False))
+                if high is not None:
+                    return high / step, False
+        return _first(rebuilding.difference(path, value, solves=False)), True
+
+    # Copper ------------------------------------------------------------------------------
+
+    def _by_copper(self, path: Key, case: Case) -> float | None:
+        """Change of the temperature by copper alone [K]; None where anything else is different."""
+        if path[0] != "boards" or "copper" not in path:
+            return None
+        name, zone = path[1], path[3] if path[2] == "zones" else None
+        own, other = self._case.boards[name], case.boards[name]
+        alike = replace(case, boards={**case.boards, name: _with_copper(other, own, zone)})
+        if not self._rebuilding.is_same(alike):
+            return None
+        before, after = _conductivity(own, zone), _conductivity(other, zone)
+        by_whole = self._by_conductivity(name, zone)
+        return None if by_whole is None else by_whole * (after / before - 1.0)
+
+    def _by_conductivity(self, name: str, zone: str | None) -> float | None:
+        """Derivative by the relative conductivity of a board or zone [K]."""
+        key = (name, zone or "")
+        if key not in self._by_sheet:
+            own = self._case.boards[name]
+            other = _conducting(own, zone, _conductivity(own, zone) * (1.0 + STEP))
+            case = replace(self._case, boards={**self._case.boards, name: other})
+            high = _first(self._rebuilding.moved(case, solves=False))
+            self._by_sheet[key] = None if high is None else high / STEP
+        return self._by_sheet[key]
+
+    # Moved parts -------------------------------------------------------------------------
+
+    def most(self, path: Key) -> float | None:
+        """Give about the most that a part's place on its board or wall does; None for any other.
+
+        The heat it puts in, and that of the area it covers, go in where they weigh otherwise:
+        ``Q |W(x + dx) - W(x)| / dx``, W the mean weight of the cells under it; the most over both
+        directions and ways. Not of the part whose temperature it is, and of those beside it.
+
+        Returns
+        -------
+        float or None
+            [K/mm], a few times more than what it does as a rule; see `MOST_BY_MOVING`.
+        """
+        part = self._case.parts.get(path[1]) if len(path) == 4 and path[0] == "parts" else None
+        if part is None or path[2] != "at_mm" or path[1] == self._part:
+            return None
+        own = self._plate_of(part)
+        if own is None:
+            return None
+        grid, plate, heat_per_area = own
+        low, size = metres_3(part.low_mm), metres_3(part.size_mm)
+        if self._is_beside(part, grid):
+            return None
+        weight = self._weight[plate.cells]
+        step_mm = step_of(path, 0.0)
+        here = float(np.sum(grid.shares(low, size) * weight))
+        most = 0.0
+        for axis in grid.axes:
+            start, end = grid.low[axis], grid.low[axis] + grid.size[axis] - size[axis]
+            for way in (-1.0, 1.0):
+                moved = list(low)
+                moved[axis] = min(max(low[axis] + way * metres(step_mm), start), end)
+                shares = grid.shares((moved[0], moved[1], moved[2]), size)
+                most = max(most, abs(float(np.sum(shares * weight)) - here))
+        area = size[grid.axes[0]] * size[grid.axes[1]]
+        return MOST_BY_MOVING * (abs(part.power_w) + heat_per_area * area) * most / step_mm
+
+    def _plate_of(self, part: PartCase) -> tuple[PlateGrid, PlateNodes, float] | None:
+        """Give what a part stands on alone: cells, nodes, heat given off inside [W/m2]."""
+        places, host = self._places, part.host
+        if part.pad is not None or part.place == "air":
+            return None
+        owner, plates = f"board:{host}", places.boards
+        if part.place == "wall":
+            host = OPPOSITE[part.side]
+            owner, plates = f"wall:{host}", places.wall_inside
+        else:
+            board = self._case.boards[host]
+            if board.fillers or board.shield_cans:
+                return None
+        grid, solved = places.grids[host], self._rebuilding.solved
+        roles = ("convection_inside", "radiation_inside")
+        heat = sum(abs(solved.flow(owner, role)) for role in roles)
+        return grid, plates[host], heat / (grid.cell_area * plates[host].cells.size)
+
+    def _is_beside(self, part: PartCase, grid: PlateGrid) -> bool:
+        """Whether a part is within a cell of the one whose temperature it is, on the same plate."""
+        own = self._case.parts[self._part]
+        if (own.place, own.host) != (part.place, part.host):
+            return False
+        gaps = []
+        for axis, step in zip(grid.axes, grid.steps, strict=True):
+            ends = [
+                (metres(each.low_mm[axis]), metres(each.low_mm[axis] + each.size_mm[axis]))
+                for each in (own, part)
+            ]
+            gap = max(ends[0][0] - ends[1][1], ends[1][0] - ends[0][1])
+            gaps.append(gap < step)
+        return all(gaps)
+
+
+def _first(values: FloatArray | None) -> float | None:
+    return None if values is None else float(values[0])
+
+
+def _lays_out(path: Key) -> bool:
+    """Tell whether a number is a size that says where all cells lie: of the box, a board, walls."""
+    return path[0] == "box" or (path[0] == "boards" and len(path) == 3) or "wall" in path
+
+
+def _conductivity(board: BoardCase, zone: str | None) -> float:
+    zones = {each.name: each for each in board.zones}
+    return board_conductivity(board, None if zone is None else zones[zone])
+
+
+def _with_copper(board: BoardCase, other: BoardCase, zone: str | None) -> BoardCase:
+    """Give a board with the copper of another one like it, or that of a zone of it."""
+    if zone is None:
+        return replace(board, copper=other.copper)
+    copper = {each.name: each.copper for each in other.zones}
+    zones = tuple(
+        replace(each, copper=copper.get(zone, each.copper)) if each.name == zone else each
+        for each in board.zones
+    )
+    return replace(board, zones=zones)
+
+
+def _conducting(board: BoardCase, zone: str | None, conductivity: float) -> BoardCase:
+    """Give a board of another conductivity along it, or with such a zone [W/mK]."""
+    if zone is None:
+        return replace(board, conductivity_in_plane_w_per_mk=conductivity)
+    zones = tuple(
+        replace(each, conductivity_in_plane_w_per_mk=conductivity) if each.name == zone else each
+        for each in board.zones
+    )
+    return replace(board, zones=zones)
