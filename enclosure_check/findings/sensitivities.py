@@ -94,13 +94,14 @@ class _Search:
                 others.append(path)
             elif (row := self._row(path, value, by, "adjoint")) is not None:
                 exact[path] = row
-        least = self._least(exact, False)
-        others = [path for path in others if not self._is_beyond(path, asked[path], least)]
+        most = {path: self._about.most(path) for path in others}
         about: dict[Key, Sensitivity] = {}
-        for path, (by, is_exact) in zip(others, self._estimates(asked, others), strict=True):
-            row = None if by is None else self._row(path, asked[path], by, "rebuilt", LARGEST_MISS)
-            if row is not None:
-                (exact if is_exact else about)[path] = row
+        self._look_at([path for path in others if most[path] is None], asked, exact, about)
+        # Places of parts last: most of them are beyond hope when the others are known.
+        least = self._least(exact, False)
+        moved = [path for path, by in most.items() if by is not None]
+        moved = [path for path in moved if (most[path] or 0.0) * abs(asked[path]) / 100 >= least]
+        self._look_at(moved, asked, exact, about)
         while doubtful := self._doubtful(exact, about):
             for path, by in zip(doubtful, self._derivatives(asked, doubtful), strict=True):
                 del about[path]
@@ -131,18 +132,22 @@ class _Search:
         known = sorted(-_rank(row) for row in exact.values() if row.installation is kind)
         return known[-self._most] if len(known) >= self._most else 0.0
 
-    def _is_beyond(self, path: Key, value: float, least: float) -> bool:
-        """Whether a number cannot do so much, as is known of places of parts."""
-        most = self._about.most(path) if least > 0 else None
-        return most is not None and most * abs(value) / 100 < least
+    def _look_at(
+        self,
+        paths: Sequence[Key],
+        asked: Mapping[Key, float],
+        exact: dict[Key, Sensitivity],
+        about: dict[Key, Sensitivity],
+    ) -> None:
+        """Tell about what numbers do, or exactly."""
 
-    def _estimates(
-        self, asked: Mapping[Key, float], paths: Sequence[Key]
-    ) -> list[tuple[float | None, bool]]:
         def work(path: Key) -> tuple[float | None, bool]:
             return self._about.about(path, asked[path])
 
-        return self._each(work, paths)
+        for path, (by, is_exact) in zip(paths, self._each(work, paths), strict=True):
+            row = None if by is None else self._row(path, asked[path], by, "rebuilt", LARGEST_MISS)
+            if row is not None:
+                (exact if is_exact else about)[path] = row
 
     def _derivatives(self, asked: Mapping[Key, float], paths: Sequence[Key]) -> list[float | None]:
         def work(path: Key) -> float | None:
