@@ -10,13 +10,13 @@ from collections.abc import Callable, Hashable, Iterator, Mapping
 from functools import cached_property
 from typing import Any
 
-from enclosure_check.description.case import Case
+from enclosure_check.description.case import BoardCase, Case
 from enclosure_check.network.build import build_network, build_on
 from enclosure_check.network.builder import Blocks
 from enclosure_check.network.grid import GridOptions
 from enclosure_check.network.network import Network
 from enclosure_check.network.site import Site
-from enclosure_check.records import dataclass
+from enclosure_check.records import dataclass, replace
 
 # How far all that is collected has grown.
 Marks = tuple[int, ...]
@@ -184,7 +184,15 @@ class Changed:
     """What is different between two cases that have everything else alike."""
 
     walls: frozenset[str]
+    """In anything but openings and cables."""
+    sheets: frozenset[str]
+    """Walls, in what conducts along them."""
+    openings: bool
+    cables: bool
     boards: frozenset[str]
+    """In anything but what joins them to walls."""
+    joints: frozenset[str]
+    """Boards, in anything."""
     parts: frozenset[str]
     covered: frozenset[str]
     """Walls and boards that something stands on which is different."""
@@ -196,17 +204,21 @@ class Changed:
         match kind:
             case "wall":
                 return which in self.walls or which in self.covered
-            case "corners" | "outside" | "cables":
+            case "corners":
+                return bool(self.sheets)
+            case "outside":
                 return bool(self.walls)
+            case "cables":
+                return self.cables
             case "openings":
-                return bool(self.walls or self.boards)
+                return self.openings or bool(self.boards)
             case "board":
                 return which in self.boards or which in self.covered
             case "features":
-                return bool(self.walls) or which in self.boards or which in self.covered
+                return bool(self.sheets) or which in self.joints or which in self.covered
             case "part":
                 host = self.on[str(which)]
-                return bool(self.walls) or which in self.parts or host in self.boards
+                return bool(self.sheets) or which in self.parts or host in self.boards
         return True
 
 
@@ -219,18 +231,44 @@ def changed(case: Case, other: Case) -> Changed | None:
     things = [(case.walls, other.walls), (case.boards, other.boards), (case.parts, other.parts)]
     if any(list(one) != list(two) for one, two in things):
         return None
+    hosts = {name: part.host for name, part in case.parts.items()}
+    if hosts != {name: part.host for name, part in other.parts.items()}:
+        return None
     walls, boards, parts = (
         frozenset(name for name in one if one[name] != two[name]) for one, two in things
     )
+    pairs = {name: (case.walls[name], other.walls[name]) for name in case.walls if name in walls}
     covered = {
         plate
         for each in (case, other)
         for plate in (*_under_parts(each, parts), *_under_fillers(each, boards))
     }
-    hosts = {name: part.host for name, part in case.parts.items()}
-    if hosts != {name: part.host for name, part in other.parts.items()}:
-        return None
-    return Changed(walls, boards, parts, frozenset(covered), hosts)
+    return Changed(
+        walls=frozenset(
+            name
+            for name, (one, two) in pairs.items()
+            if replace(one, openings=two.openings, cables=two.cables) != two
+        ),
+        sheets=frozenset(
+            name
+            for name, (one, two) in pairs.items()
+            if (one.material, one.thickness_mm) != (two.material, two.thickness_mm)
+        ),
+        openings=any(one.openings != two.openings for one, two in pairs.values()),
+        cables=any(one.cables != two.cables for one, two in pairs.values()),
+        boards=frozenset(
+            name for name in boards if _alone(case.boards[name]) != _alone(other.boards[name])
+        ),
+        joints=boards,
+        parts=parts,
+        covered=frozenset(covered),
+        on=hosts,
+    )
+
+
+def _alone(board: BoardCase) -> BoardCase:
+    """Give a board without what joins it to walls and covers nothing of it."""
+    return replace(board, stand_offs=(), edge_clamps=())
 
 
 def _under_parts(case: Case, parts: frozenset[str]) -> Iterator[str]:
