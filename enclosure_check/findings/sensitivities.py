@@ -77,7 +77,7 @@ class _Search:
         self._sign = -1.0 if worst.limit_side == "max" else 1.0
         self._most, self._each = most, each
         self._rebuilding = Rebuilding(own.solved, own.adjoint, variation.case_with)
-        self._about = Estimates(self._rebuilding, worst.name)
+        self._about = Estimates(self._rebuilding, variation.document, worst.name)
 
     def found(self) -> list[Sensitivity]:
         """Give what numbers buy, the most first; those left out cannot be among the first."""
@@ -94,23 +94,43 @@ class _Search:
                 others.append(path)
             elif (row := self._row(path, value, by, "adjoint")) is not None:
                 exact[path] = row
-        most = {path: self._about.most(path) for path in others}
         about: dict[Key, Sensitivity] = {}
-        self._look_at([path for path in others if most[path] is None], asked, exact, about)
-        # Places of parts last: most of them are beyond hope when the others are known.
-        least = self._least(exact, False)
-        moved = [path for path, by in most.items() if by is not None]
-        moved = [path for path in moved if (most[path] or 0.0) * abs(asked[path]) / 100 >= least]
-        self._look_at(moved, asked, exact, about)
+        bounds = {path: self._bound(path, asked[path]) for path in others}
+        self._look_at([path for path in others if bounds[path] is None], asked, exact, about)
+        self._settle(asked, exact, about)
+        # Most of those that can do little are beyond hope when the others are known.
+        least = {kind: self._least(exact, kind) for kind in (False, True)}
+        bounded = [
+            path
+            for path, bound in bounds.items()
+            if bound is not None and bound >= least[_is_installation(path)]
+        ]
+        self._look_at(bounded, asked, exact, about)
+        self._settle(asked, exact, about)
+        # As the document has them where they do as much.
+        rows = [row for path in asked if (row := exact.get(path)) is not None]
+        return sorted((row for row in rows if _moves(row) >= LEAST_K), key=_rank)
+
+    def _bound(self, path: Key, value: float) -> float | None:
+        """Give about the most by which a number can rank [K]; None where that is not known."""
+        if value == 0 and not path[-1].endswith("_c"):
+            return 0.0  # as a percent of it is nothing
+        most = self._about.most(path)
+        return None if most is None else most * abs(value) / 100
+
+    def _settle(
+        self,
+        asked: Mapping[Key, float],
+        exact: dict[Key, Sensitivity],
+        about: dict[Key, Sensitivity],
+    ) -> None:
+        """Find exactly what those do that may be among the first."""
         while doubtful := self._doubtful(exact, about):
             for path, by in zip(doubtful, self._derivatives(asked, doubtful), strict=True):
                 del about[path]
                 row = None if by is None else self._row(path, asked[path], by, "rebuilt")
                 if row is not None:
                     exact[path] = row
-        # As the document has them where they do as much.
-        rows = [row for path in asked if (row := exact.get(path)) is not None]
-        return sorted((row for row in rows if _moves(row) >= LEAST_K), key=_rank)
 
     def _doubtful(
         self, exact: Mapping[Key, Sensitivity], about: Mapping[Key, Sensitivity]

@@ -1,5 +1,7 @@
 """Sensitivities of the smallest margin against documents changed and solved again."""
 
+from pathlib import Path
+
 import pytest
 import yaml
 from support.cases import board, box, part
@@ -32,6 +34,7 @@ DOCUMENT = box(
         "U2": part(at_mm=[20, 20], power_w=1, theta_jb_k_per_w=10),
     },
 )
+RIVER = Path(__file__).parent.parent.parent / "sample_boards" / "river_gauge_station.yaml"
 TWO_CONDITIONS = {
     **DOCUMENT,
     "conditions": {
@@ -65,6 +68,16 @@ def found(folder):
     report = check(load_document(str(written(folder))), sensitivities=1000)
     assert report.sensitivities is not None
     return report
+
+
+def first(report, most):
+    """So many of all numbers, the most first, of either kind."""
+    rows = report.sensitivities.numbers
+    return [
+        row
+        for kind in (False, True)
+        for row in [each for each in rows if each.installation is kind][:most]
+    ]
 
 
 def margin_with(folder, path, value):
@@ -130,14 +143,16 @@ def test_so_many_as_asked_for(folder):
     assert check(document).sensitivities is None
 
 
-def test_those_given_are_the_first_of_all(folder, found):
+@pytest.mark.parametrize("most", [1, 3, 8])
+def test_those_given_are_the_first_of_all(folder, found, most):
     document = load_document(str(written(folder)))
-    few = check(document, sensitivities=3).sensitivities.numbers
-    rows = found.sensitivities.numbers
-    first = [
-        row for kind in (False, True) for row in [r for r in rows if r.installation is kind][:3]
-    ]
-    assert list(few) == first
+    assert list(check(document, sensitivities=most).sensitivities.numbers) == first(found, most)
+
+
+def test_those_given_are_the_first_of_all_of_a_sample():
+    document = load_document(str(RIVER))
+    found = check(document, sensitivities=1000)
+    assert list(check(document, sensitivities=5).sensitivities.numbers) == first(found, 5)
 
 
 def test_as_many_processes_as_one_likes(folder, found):
