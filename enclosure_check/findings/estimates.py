@@ -50,21 +50,19 @@ class Estimates:
         self._weight: FloatArray = rebuilding.adjoint.weight[:, 0]
         self._by_sheet: dict[Key, float | None] = {}
 
-    def about(self, path: Key, value: float) -> tuple[float | None, bool]:
-        """Give about the derivative by a number, and whether it is the derivative itself.
+    def about(self, path: Key, value: float) -> float | None:
+        """Give about the derivative by a number.
 
-        Places are not solved for, and sizes that leave the cells where they are and powers are
-        moved up only. Copper is told by what the conductivity of its board or zone does.
+        Places are not solved for, and all else is moved up only. Copper is told by what the
+        conductivity of its board or zone does.
 
         Returns
         -------
-        tuple
+        float or None
             By the number's own unit, None where no like network can be built; see `Rebuilding`.
         """
         rebuilding = self._rebuilding
-        if is_place(path):
-            return _first(rebuilding.difference(path, value, solves=False)), False
-        if not _lays_out(path):
+        if not is_place(path):
             step = step_of(path, value)
             case = rebuilding.case_with(path, value + step)
             if case is not None:
@@ -72,8 +70,8 @@ class Estimates:
                 if high is None:
                     high = _first(rebuilding.moved(case, solves=False))
                 if high is not None:
-                    return high / step, False
-        return _first(rebuilding.difference(path, value, solves=False)), True
+                    return high / step
+        return _first(rebuilding.difference(path, value, solves=False))
 
     # Copper ------------------------------------------------------------------------------
 
@@ -217,11 +215,6 @@ def _area(part: PartCase, grid: PlateGrid) -> float:
 
 def _first(values: FloatArray | None) -> float | None:
     return None if values is None else float(values[0])
-
-
-def _lays_out(path: Key) -> bool:
-    """Tell whether a number is a size that says where all cells lie: of the box, a board, walls."""
-    return path[0] == "box" or (path[0] == "boards" and len(path) == 3) or "wall" in path
 
 
 def _conductivity(board: BoardCase, zone: str | None) -> float:

@@ -94,10 +94,9 @@ class _Search:
                 others.append(path)
             elif (row := self._row(path, value, by, "adjoint")) is not None:
                 exact[path] = row
-        about: dict[Key, Sensitivity] = {}
         bounds = {path: self._bound(path, asked[path]) for path in others}
-        self._look_at([path for path in others if bounds[path] is None], asked, exact, about)
-        self._settle(asked, exact, about)
+        first = [path for path in others if bounds[path] is None]
+        self._settle(asked, exact, self._estimates(first, asked))
         # Most of those that can do little are beyond hope when the others are known.
         least = {kind: self._least(exact, kind) for kind in (False, True)}
         bounded = [
@@ -105,8 +104,7 @@ class _Search:
             for path, bound in bounds.items()
             if bound is not None and bound >= least[_is_installation(path)]
         ]
-        self._look_at(bounded, asked, exact, about)
-        self._settle(asked, exact, about)
+        self._settle(asked, exact, self._estimates(bounded, asked))
         # As the document has them where they do as much.
         rows = [row for path in asked if (row := exact.get(path)) is not None]
         return sorted((row for row in rows if _moves(row) >= LEAST_K), key=_rank)
@@ -152,22 +150,21 @@ class _Search:
         known = sorted(-_rank(row) for row in exact.values() if row.installation is kind)
         return known[-self._most] if len(known) >= self._most else 0.0
 
-    def _look_at(
-        self,
-        paths: Sequence[Key],
-        asked: Mapping[Key, float],
-        exact: dict[Key, Sensitivity],
-        about: dict[Key, Sensitivity],
-    ) -> None:
-        """Tell about what numbers do, or exactly."""
+    def _estimates(
+        self, paths: Sequence[Key], asked: Mapping[Key, float]
+    ) -> dict[Key, Sensitivity]:
+        """Tell about what numbers do; those that do nothing even so are left out."""
 
-        def work(path: Key) -> tuple[float | None, bool]:
+        def work(path: Key) -> float | None:
             return self._about.about(path, asked[path])
 
-        for path, (by, is_exact) in zip(paths, self._each(work, paths), strict=True):
-            row = None if by is None else self._row(path, asked[path], by, "rebuilt", LARGEST_MISS)
-            if row is not None:
-                (exact if is_exact else about)[path] = row
+        found = zip(paths, self._each(work, paths), strict=True)
+        rows = {
+            path: self._row(path, asked[path], by, "rebuilt", LARGEST_MISS)
+            for path, by in found
+            if by is not None
+        }
+        return {path: row for path, row in rows.items() if row is not None}
 
     def _derivatives(self, asked: Mapping[Key, float], paths: Sequence[Key]) -> list[float | None]:
         def work(path: Key) -> float | None:

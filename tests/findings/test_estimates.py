@@ -81,21 +81,12 @@ COPPER = [
 @pytest.mark.parametrize("path", COPPER)
 def test_copper_by_the_conductivity_it_makes(of_document, path, monkeypatch):
     found, rebuilding, values = of_document
-    by, is_exact = found.about(path, values[path])
-    assert not is_exact
+    by = found.about(path, values[path])
     exact = rebuilding.derivative(path, values[path])[0]
     assert by == pytest.approx(exact, rel=0.01)
     # Once the board is known, other layers ask for no network.
     monkeypatch.setattr(rebuilding, "moved", None)
-    assert found.about(path, values[path]) == (by, False)
-
-
-def test_sizes_that_say_where_cells_lie_are_exact(of_document):
-    found, rebuilding, values = of_document
-    for path in (("box", "width_mm"), ("boards", "main", "length_mm")):
-        by, is_exact = found.about(path, values[path])
-        assert is_exact
-        assert by == rebuilding.derivative(path, values[path])[0]
+    assert found.about(path, values[path]) == by
 
 
 def test_estimates_are_not_much_less_than_derivatives(of_river):
@@ -104,7 +95,7 @@ def test_estimates_are_not_much_less_than_derivatives(of_river):
     doubtful = []
     for path, value in list(values.items())[::3]:
         exact = rebuilding.derivative(path, value)
-        by, _ = found.about(path, value)
+        by = found.about(path, value)
         assert (exact is None) == (by is None)
         if exact is not None:
             per_pct = abs(exact[0] * value / 100)
@@ -121,7 +112,7 @@ def test_parts_do_no_more_than_the_most(of_river):
     for path, value in values.items():
         most = found.most(path)
         if most is not None:
-            by, _ = found.about(path, value)
+            by = found.about(path, value)
             assert by is None or abs(by) <= most, path
             told += 1
     assert told > 30
