@@ -127,7 +127,8 @@ Checked after the keys themselves, with every option and condition applied:
 - Cables: the copper has room in the diameter.
 - Parts: sizes come from the part or its type. On a board: `side` and `at_mm`; on a wall: `at_mm`;
   in the air: `from_walls_mm` or the middle. Outlines stay on the board or wall, tops stay out of
-  the wall they face. Overlapping outlines are a warning.
+  the wall they face. Overlapping outlines are a warning, and so is a part that reaches into a board
+  it is not on. Boards that share space are refused, and bodies in the air that reach into one.
 - The path to the board is `theta_jb_k_per_w` when given, else `theta_jc_bottom_k_per_w` and
   `bottom_contact_k_per_w` in series (no joint when only the first is given), else 0.1 mm of air.
 - `output_w` and `efficiency_pct` go together and exclude `power_w`: the power is

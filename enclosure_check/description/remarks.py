@@ -12,6 +12,8 @@ ROUNDING_MM = 1e-6
 MOST_SPELLINGS = 100
 # Errors after which a document is given up.
 MOST_ERRORS = 500
+# Parts heaped on one spot overlap by pairs without end; nobody reads on after so many. [-]
+MOST_WARNINGS = 100
 
 
 @dataclass

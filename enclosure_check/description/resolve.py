@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from enclosure_check.description.case import Case, PowerBudgetCase, ReadingCase
+from enclosure_check.description.clearances import check_boards, check_bodies
 from enclosure_check.description.remarks import Remarks
 from enclosure_check.description.resolve_board import check_mode_names, mode_power, resolve_boards
 from enclosure_check.description.resolve_box import (
@@ -59,7 +60,9 @@ def resolve(
 
         document, folded = fold_listed(document, listed, remarks)
     boards = resolve_boards(document, inside, rows, remarks)
+    check_boards(boards, remarks)
     parts = PartResolver(document, inside, walls, boards, rows, remarks).resolve()
+    check_bodies(parts, boards, remarks)
     if folded:
         from enclosure_check.description.resolve_listed import with_folded
 

@@ -23,7 +23,7 @@ from enclosure_check.description.frames import (
     wall_pair,
 )
 from enclosure_check.description.names import AIR, WALL_NAMES, LimitKind, WallName
-from enclosure_check.description.remarks import ROUNDING_MM, Path, Remarks
+from enclosure_check.description.remarks import MOST_WARNINGS, ROUNDING_MM, Path, Remarks
 from enclosure_check.description.resolve_board import (
     check_mode_names,
     mode_power,
@@ -42,8 +42,6 @@ POWER_AT_C = 25.0
 # A pad squeezed to less than this share of its thickness is beyond what data sheets allow.
 # (common practice, no source)
 LEAST_PAD_SHARE = 0.5
-# Parts heaped on one spot overlap by pairs without end; nobody reads on after so many. [-]
-MOST_WARNINGS = 100
 
 
 class PartResolver:

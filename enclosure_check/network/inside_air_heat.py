@@ -162,6 +162,7 @@ class InsideAirHeat:
             s.area_perimeter_length,
             s.up_cosine,
             level_rise=signed,
+            level_width=cavity.LEVEL_WIDTH_K,
         )
         stratification = np.maximum(s.over_height @ layer, 0.0) / size
         boost = cavity.stratified_factor(s.stratified * stratification)
@@ -186,7 +187,7 @@ class InsideAirHeat:
         length, law = np.array(audit.length), np.array(audit.law)
         if len(s.body):
             body = cuboid_film(
-                signed[s.body],
+                size[s.body],
                 film_temperature[s.body],
                 self.pressure_pa,
                 s.body_area,

@@ -34,6 +34,8 @@ DIFFERENCE_WIDTH_K = 0.01
 # Rounding of the change from the shelter of a warm face to that of a cold one. It is wider, as what
 # goes straight across a gap follows the film where its face is as warm as the air. [K]
 SIGN_WIDTH_K = 0.2
+# Rounding of the change from the level law of a warm face to that of a cold one. [K]
+LEVEL_WIDTH_K = 0.05
 # Edges of a film in a corner, 2 (1 - 0.54 / 2): see `corner_factor`.
 CORNER = 1.46
 # Decay of the excess of a laminar plume above its source: plane 3/5, axisymmetric 1 (from memory).

@@ -10,7 +10,7 @@ import numpy.typing as npt
 from numpy.typing import ArrayLike
 
 from enclosure_check.physics.air import GRAVITY, Air, air
-from enclosure_check.physics.smooth import smoothstep, soft_rise
+from enclosure_check.physics.smooth import smoothstep, soft_abs, soft_rise
 
 FloatArray = npt.NDArray[np.float64]
 IntArray = npt.NDArray[np.intp]
@@ -292,6 +292,7 @@ def inclined_parts(
     *,
     laminar: bool = False,
     level_rise: FloatArray | None = None,
+    level_width: float = 0.0,
 ) -> tuple[FloatArray, FloatArray, FloatArray, FloatArray, FloatArray]:
     """Film coefficient of a plane face, and the pieces it was blended from.
 
@@ -311,6 +312,10 @@ def inclined_parts(
         Difference for the horizontal law [K], where it is another: in stratified air a face may
         be as much warmer at its foot as colder at its head, and drive films up and down but
         stand level in the mean.
+    level_width : float
+        Half-width over which the horizontal law goes from a warm face to a cold one [K]: a face
+        that is as warm as its air in the mean is not so everywhere, and its film has a finite
+        slope there.
 
     Returns
     -------
@@ -325,8 +330,13 @@ def inclined_parts(
     span = np.asarray(area_perimeter_length, dtype=np.float64)
     up = np.asarray(up_cosine, dtype=np.float64)
     ra_v = per_volume * soft_rise(rise) * (np.sqrt(np.maximum(1.0 - up * up, 0.0)) * fall**3)
-    ra_h = per_volume * (rise if level_rise is None else level_rise) * (up * span**3)
-    unstable, stable = np.maximum(ra_h, 0.0), np.maximum(-ra_h, 0.0)
+    signed = rise if level_rise is None else level_rise
+    ra_h = per_volume * signed * (up * span**3)
+    if level_width > 0.0:
+        size = per_volume * soft_abs(signed, level_width) * (np.abs(up) * span**3)
+        unstable, stable = 0.5 * (size + ra_h), 0.5 * (size - ra_h)
+    else:
+        unstable, stable = np.maximum(ra_h, 0.0), np.maximum(-ra_h, 0.0)
     if laminar:
         nu_v, nu_up = churchill_chu_laminar(ra_v, pr), hot_side_up_laminar(unstable)
     else:

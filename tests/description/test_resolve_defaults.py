@@ -220,7 +220,8 @@ def test_board_defaults_and_their_assumptions():
 
 def test_board_takes_the_defaults_of_the_document_and_overrides_them():
     defaults = {"board": {"thickness_mm": 1, "material": "alumina", "finish": "ceramic"}}
-    rows = {"main": board(), "own": board(thickness_mm=2, material="fr4", finish="bare_fr4")}
+    own = {"thickness_mm": 2, "material": "fr4", "finish": "bare_fr4", "from_walls_mm": {"back": 9}}
+    rows = {"main": board(), "own": board(**own)}
     case = case_of(box(defaults=defaults, boards=rows))
     main, own = case.boards["main"], case.boards["own"]
     assert (main.size_mm[1], main.laminate.name, main.finish.name) == (1, "alumina", "ceramic")
@@ -310,7 +311,11 @@ def test_two_paths_to_the_board_are_one():
     ],
 )
 def test_what_is_stated_and_has_no_effect_is_told(place, given, line):
-    on = {"main": {}, "back": {"side": None}, "air": {"side": None, "at_mm": None}}[place]
+    on = {
+        "main": {},
+        "back": {"side": None},
+        "air": {"side": None, "at_mm": None, "from_walls_mm": {"left": 10}},
+    }[place]
     assert line in assumptions(with_part(place=place, **on, **given))
     for key in given:
         if len(given) > 1:

@@ -249,8 +249,8 @@ def test_reading_of_an_unknown_part():
 @pytest.mark.parametrize("place", ["air", "back"])
 def test_board_reading_needs_a_board(place):
     assert errors_of(measured(U1={"board": 50})) == {}
-    at = None if place == "air" else [50, 50]
-    moved = {"parts": {"U1": {"place": place, "side": None, "at_mm": at}}}
+    where = {"from_walls_mm": {"left": 9}, "at_mm": None} if place == "air" else {"at_mm": [50, 50]}
+    moved = {"parts": {"U1": {"place": place, "side": None, **where}}}
     assert only(patched(measured(U1={"board": 50, "case": 40}), moved)) == (
         "measured.run.parts.U1.board",
         "a board reading needs a part on a board",

@@ -20,7 +20,8 @@ def test_the_documents_these_start_from_are_valid():
     assert errors_of(with_part()) == {}
     assert errors_of(with_part(pad=PAD)) == {}
     assert errors_of(with_part(place="back", side=None)) == {}
-    assert errors_of(with_part(place="air", side=None, at_mm=None)) == {}
+    in_the_air = {"place": "air", "side": None, "at_mm": None}
+    assert errors_of(with_part(**in_the_air, from_walls_mm={"left": 9})) == {}
 
 
 # Parts: names, types and sizes --------------------------------------------------------------

@@ -13,7 +13,9 @@ WARM = box(
     boards={"main": board(other_power_w=4)},
     parts={
         "U1": part(power_w=2),
-        "B1": part(place="air", side=None, at_mm=None, height_mm=20, power_w=2),
+        "B1": part(
+            place="air", side=None, at_mm=None, from_walls_mm={"left": 10}, height_mm=20, power_w=2
+        ),
         "R1": part(place="right", side=None, at_mm=[50, 70], power_w=1, bottom_contact_k_per_w=1),
     },
 )

@@ -23,7 +23,8 @@ from support.cases import (
     patched,
     solved,
 )
-from support.random_documents import mirrored, random_document
+from support.mirrored import mirrored
+from support.random_documents import random_document
 
 from enclosure_check.description.frames import wall_pair
 from enclosure_check.description.names import WALL_NAMES
@@ -230,7 +231,7 @@ def test_the_mirror_image_of_a_box_has_the_mirror_image_of_its_temperatures(axis
 
 @pytest.mark.parametrize("axis", [0, 1, 2], ids=["left-right", "front-back", "bottom-top"])
 def test_with_radiation_inside_the_mirror_image_is_as_near_as_rays(axis):
-    made = document(2)
+    made = document(8)
     found = by_name(solved(made, COARSE))
     image = swapped(by_name(solved(mirrored(made, axis), COARSE)), axis)
     assert image.keys() == found.keys()

@@ -21,9 +21,9 @@ SEEN = 150
 MOST_STEPS, MOST_BY_STIRRING, BY_STIRRING_OF_TEN = 18, 90, 2
 
 
-@pytest.mark.parametrize("seed", [558, 886])
+@pytest.mark.parametrize("seed", [238, 886, 935])
 def test_faces_as_much_warmer_as_colder_than_their_air(seed):
-    """Tilted faces whose mean difference comes close to none: once without a slope to follow."""
+    """Level faces and bodies whose mean difference comes close to none: once without a slope."""
     network = network_of(random_document(random.Random(seed)))
     solution = solve_steady(network)
     assert solution.converged

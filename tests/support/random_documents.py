@@ -3,16 +3,18 @@
 Import it as ``from support.random_documents import random_document``. The same random state gives
 the same document. Boxes of 30 mm to 2 m inside, up to 2 kW per square metre of open wall, air of
 -40 to 70 C, 0 to 5000 m, wind of up to 5 m/s, any tilt, every kind of mounting, up to four boards
-in any plane, up to twenty parts with every kind of path. Power that grows with temperature stays so small beside what
-cools its part that a steady state exists.
+in any plane that share no space, most of them one behind the other, up to twenty parts with every
+kind of path. Power that grows with temperature stays so small beside what cools its part that a
+steady state exists.
 """
 
 import math
 import random
+from collections.abc import Callable
 from typing import Any
 
-from enclosure_check.description.frames import AXIS, OPPOSITE, SIGN, wall_pair
-from enclosure_check.description.names import WALL_NAMES
+from enclosure_check.description.frames import AXIS, wall_pair
+from enclosure_check.description.names import WALL_NAMES, WallName
 
 Data = dict[str, Any]
 
@@ -38,6 +40,8 @@ FINISHES = (
 )
 # Least free length, so that nothing pokes through by rounding. [mm]
 _CLEAR = 0.2
+# How often a place is looked for that is free.
+_TRIES = 8
 # What limits the power of a board or part: flux through its own surface, and rise over its paths.
 _MOST_FLUX_W_PER_M2, _MOST_PATH_RISE_K = 2_000.0, 50.0
 
@@ -54,6 +58,10 @@ class _Maker:
         self.inside = [self.log(30, 2000) for _ in range(3)]
         self.heat: list[tuple[Data, str, float]] = []
         """Who takes power: the mapping, its key, and the most it may take [W]."""
+        self.boards: list[tuple[list[float], list[float]]] = []
+        """Low corners and sizes of the boards [mm]."""
+        self.plane: WallName | None = None
+        """The wall that most boards are parallel to."""
 
     def log(self, low: float, high: float) -> float:
         return math.exp(self.rng.uniform(math.log(low), math.log(high)))
@@ -65,9 +73,11 @@ class _Maker:
         rng = self.rng
         air_c = rng.uniform(-40, 70)
         walls = self.walls(air_c)
-        boards = {
-            f"board {index}": self.board() for index in range(rng.randint(0, self.most_boards))
-        }
+        boards: Data = {}
+        for index in range(rng.randint(0, self.most_boards)):
+            made = self.tried(self.board)
+            if made is not None:
+                boards[f"board {index}"] = made
         parts: Data = {}
         for index in range(rng.randint(0, 20)):
             made = self.part(boards)
@@ -185,9 +195,34 @@ class _Maker:
 
     # Boards --------------------------------------------------------------------------------
 
-    def board(self) -> Data:
+    def tried(self, make: Callable[[], Data | None]) -> Data | None:
+        """Try a few times to make what shares no space with a board."""
+        return next((made for _ in range(_TRIES) if (made := make()) is not None), None)
+
+    def corner(self, size: list[float], from_walls: dict[WallName, float]) -> list[float]:
+        """Low corner of a body that stands so far from walls, in the middle of the others."""
+        low = [(inside - edge) / 2 for inside, edge in zip(self.inside, size, strict=True)]
+        for wall, distance in from_walls.items():
+            axis = AXIS[wall]
+            first, _ = wall_pair(axis)
+            low[axis] = distance if wall == first else self.inside[axis] - size[axis] - distance
+        return low
+
+    def is_free(self, low: list[float], size: list[float]) -> bool:
+        """Tell whether a body shares no space with any board."""
+        return not any(
+            all(
+                a < b + of_b + _CLEAR and b < a + of_a + _CLEAR
+                for a, of_a, b, of_b in zip(low, size, board_low, board_size, strict=True)
+            )
+            for board_low, board_size in self.boards
+        )
+
+    def board(self) -> Data | None:
         rng = self.rng
         parallel = rng.choice(WALL_NAMES)
+        if self.plane is not None and self.chance(0.7):
+            parallel = self.plane
         axis = AXIS[parallel]
         along = {0: (1, 2), 1: (0, 2), 2: (0, 1)}[axis]
         made: Data = {
@@ -200,6 +235,13 @@ class _Maker:
         if self.chance(0.8):
             room = self.inside[axis] - made["thickness_mm"] - 2 * _CLEAR
             made["from_walls_mm"][parallel] = rng.uniform(_CLEAR, room)
+        size = [made["thickness_mm"]] * 3
+        size[along[0]], size[along[1]] = made["length_mm"], made["width_mm"]
+        low = self.corner(size, made["from_walls_mm"])
+        if not self.is_free(low, size):
+            return None
+        self.boards.append((low, size))
+        self.plane = parallel
         choice = rng.choice(["layers", "layers", "given", "bare"])
         if choice == "layers":
             made["copper"] = {
@@ -223,18 +265,7 @@ class _Maker:
         if place in boards:
             return self.on_board(place, boards[place])
         if place == "air":
-            size = [self.inside[axis] * rng.uniform(0.02, 0.5) for axis in range(3)]
-            made = self.body(size)
-            made["place"] = "air"
-            made["from_walls_mm"] = {
-                wall: (self.inside[AXIS[wall]] - size[AXIS[wall]]) * rng.random()
-                for wall in (rng.choice(wall_pair(axis)) for axis in range(3))
-                if self.chance(0.5)
-            }
-            if self.chance(0.3):
-                made["rotation_deg"] = rng.choice([0, 180])
-            self.paths(made, "air")
-            return made
+            return self.tried(self.in_the_air)
         axis = AXIS[place]
         right, up = {0: (1, 2), 1: (0, 2), 2: (0, 1)}[axis]
         made = self.on_face(self.inside[right], self.inside[up], self.inside[axis] * 0.6)
@@ -242,6 +273,22 @@ class _Maker:
         if self.chance(0.4):
             made["pad"] = self.pad(self.log(0.1, 3), made)
         self.paths(made, "wall")
+        return made
+
+    def in_the_air(self) -> Data | None:
+        rng = self.rng
+        size = [self.inside[axis] * rng.uniform(0.02, 0.5) for axis in range(3)]
+        walls = [rng.choice(wall_pair(axis)) for axis in range(3) if self.chance(0.5)]
+        from_walls = {
+            wall: (self.inside[AXIS[wall]] - size[AXIS[wall]]) * rng.random() for wall in walls
+        }
+        if not self.is_free(self.corner(size, from_walls), size):
+            return None
+        made = self.body(size)
+        made["place"], made["from_walls_mm"] = "air", from_walls
+        if self.chance(0.3):
+            made["rotation_deg"] = rng.choice([0, 180])
+        self.paths(made, "air")
         return made
 
     def on_board(self, name: str, board: Data) -> Data | None:
@@ -366,75 +413,3 @@ def with_strong_growth(document: Data, rng: random.Random) -> Data:
             else:
                 row["power_doubling_k"] = rng.uniform(5, 60)
     return image
-
-
-def mirrored(document: Data, axis: int) -> Data:
-    """Give the mirror image of a document across one axis of the box (0 left and right, 1 front
-    and back, 2 bottom and top).
-    """
-    first, second = wall_pair(axis)
-
-    def name(wall: str) -> str:
-        return OPPOSITE[wall] if wall in (first, second) else wall  # type: ignore[index,return-value]
-
-    def keys(mapping: Data) -> Data:
-        return {name(wall): value for wall, value in mapping.items()}
-
-    image = dict(document)
-    image["walls"] = keys(document.get("walls", {}))
-    lean, roll = (
-        document["box"].get("tilt", {}).get(key, 0) for key in ("lean_back_deg", "roll_right_deg")
-    )
-    # Up is (-sin roll, -sin lean cos roll, cos lean cos roll): turn one component round.
-    lean, roll = [(lean, -roll), (-lean, roll), (180 - lean, roll)][axis]
-    lean = (lean + 180) % 360 - 180
-    image["box"] = {**document["box"], "tilt": {"lean_back_deg": lean, "roll_right_deg": roll}}
-    around = dict(document["surroundings"])
-    if "sun_w_per_m2" in around:
-        around["sun_w_per_m2"] = keys(around["sun_w_per_m2"])
-    if "wind_from" in around:
-        around["wind_from"] = name(around["wind_from"])
-    image["surroundings"] = around
-    image["boards"] = {
-        key: {
-            **board,
-            "parallel_to": name(board["parallel_to"]),
-            "from_walls_mm": keys(board.get("from_walls_mm", {})),
-        }
-        for key, board in document.get("boards", {}).items()
-    }
-    image["parts"] = {
-        key: _mirrored_part(part, image["boards"], axis, name)
-        for key, part in document.get("parts", {}).items()
-    }
-    return image
-
-
-def _mirrored_part(part: Data, boards: Data, axis: int, name: Any) -> Data:
-    image = dict(part)
-    if part["place"] == "air":
-        image["from_walls_mm"] = {
-            name(wall): value for wall, value in part.get("from_walls_mm", {}).items()
-        }
-        return image
-    if part["place"] in WALL_NAMES:
-        image["place"] = name(part["place"])
-        normal = AXIS[part["place"]]
-    else:
-        image["side"] = name(part["side"])
-        normal = AXIS[part["side"]]
-    if "pad" in part and "to" in part["pad"]:
-        image["pad"] = {**part["pad"], "to": name(part["pad"]["to"])}
-    # Seen from its side, a mirror across the normal swaps right and left, one across the right
-    # axis does too, and one across the up axis swaps upper and lower.
-    up_axis = 2 if normal != 2 else 1
-    vertical, horizontal = part.get("at_from", "lower_left").split("_")
-    if axis == up_axis:
-        vertical = {"lower": "upper", "upper": "lower"}[vertical]
-    else:
-        horizontal = {"left": "right", "right": "left"}[horizontal]
-    image["at_from"] = f"{vertical}_{horizontal}"
-    return image
-
-
-assert all(SIGN[wall] == -SIGN[OPPOSITE[wall]] for wall in WALL_NAMES)

@@ -241,16 +241,18 @@ class Surfaces:
         kept = warm * (0.5 + 0.5 * lean) + cold * (0.5 - 0.5 * lean)
         film_k = self.ambient_k + mean - signed / 2
         if "body" in law:
-            return kept * float(
-                cuboid_film(signed, film_k, self.pressure, *law["body"]).coefficient
-            )
+            return kept * float(cuboid_film(size, film_k, self.pressure, *law["body"]).coefficient)
         properties = air(film_k, self.pressure)
         shape = law["fall"], law["span"], law["cosine"]
         upright = inclined_parts(np.array(size), properties, *shape)[1]
-        level = inclined_parts(np.array(signed), properties, *shape)[2]
+        # Of a face near its air's temperature one half is warmer, the other colder.
+        level, around = 0.0, math.hypot(signed, 0.05)
+        for half in (1.0, -1.0):
+            rise = half * (around + half * signed) / 2
+            level = max(level, float(inclined_parts(np.array(rise), properties, *shape)[2]))
         warming = max(self.air_at(high) - self.air_at(low), 0.0) / size
         upright = upright * cavity.stratified_factor(law.get("stratified", 0.0) * warming)
-        film = (float(upright) ** 10 + float(level) ** 10) ** 0.1 * kept
+        film = (float(upright) ** 10 + level**10) ** 0.1 * kept
         edges = law.get("edges", (np.inf, np.inf))
         return film * float(cavity.corner_factor(film, properties.conductivity, *edges))
 

@@ -1,0 +1,58 @@
+"""Things that cannot be where they are: boards that share space, bodies that reach into boards."""
+
+from itertools import combinations
+
+from enclosure_check.description.case import BoardCase, PartCase
+from enclosure_check.description.frames import Vector
+from enclosure_check.description.remarks import MOST_WARNINGS, ROUNDING_MM, Remarks
+
+
+def check_boards(boards: dict[str, BoardCase], remarks: Remarks) -> None:
+    """Refuse boards that share space with one named before them."""
+    for first, second in combinations(boards.values(), 2):
+        shared = shared_space(first.low_mm, first.size_mm, second.low_mm, second.size_mm)
+        if shared is not None:
+            remarks.error(
+                ("boards", second.name),
+                f"shares {_words(shared)} with board {first.name}: no two boards can be in one "
+                "place. Look at `from_walls_mm` and the sizes",
+            )
+
+
+def check_bodies(
+    parts: dict[str, PartCase], boards: dict[str, BoardCase], remarks: Remarks
+) -> None:
+    """Refuse bodies in the air that reach into a board; warn of parts on another face that do."""
+    for board in boards.values():
+        across = board.axis
+        back, front = board.low_mm[across], board.high_mm[across]
+        for part in parts.values():
+            # A board is thin: most parts lie before it or behind it.
+            start = part.low_mm[across]
+            if start >= front or start + part.size_mm[across] <= back or part.host == board.name:
+                continue
+            shared = shared_space(part.low_mm, part.size_mm, board.low_mm, board.size_mm)
+            if shared is None:
+                continue
+            path = ("parts", part.name)
+            if part.place == "air":
+                remarks.error(path, f"shares {_words(shared)} with board {board.name}")
+            elif len(remarks.warnings) < MOST_WARNINGS:
+                remarks.warn(
+                    path,
+                    f"reaches into board {board.name}, {_words(shared)}: too tall, or in the "
+                    "wrong place; computed as if it did not",
+                )
+
+
+def shared_space(low: Vector, size: Vector, other_low: Vector, other_size: Vector) -> Vector | None:
+    """Give the edges of what two boxes share [mm]; None where they touch or stand apart."""
+    edges = [
+        min(a + a_size, b + b_size) - max(a, b)
+        for a, a_size, b, b_size in zip(low, size, other_low, other_size, strict=True)
+    ]
+    return (edges[0], edges[1], edges[2]) if min(edges) > ROUNDING_MM else None
+
+
+def _words(size: Vector) -> str:
+    return " x ".join(f"{edge:.3g}" for edge in size) + " mm"
