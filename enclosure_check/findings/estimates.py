@@ -1,7 +1,8 @@
 """What numbers that are shape do to a temperature, about or at most, for less than the derivative.
 
 Who wants only the numbers that do most need not know exactly what the others do. How far these
-can be trusted was found by numerical experiments made for this project, on the sample documents.
+can be trusted was found by numerical experiments made for this project: over the samples and 40
+random documents the numbers that do most were those that are found with nothing left out.
 """
 
 from typing import TYPE_CHECKING
@@ -21,8 +22,9 @@ from enclosure_check.records import replace
 if TYPE_CHECKING:
     from enclosure_check.description.document import Document
 
-# An estimate is hardly ever less than the derivative over this.
-LARGEST_MISS = 2.0
+# An estimate is hardly ever less than the derivative over this; with 2 the first ten numbers of two
+# in 45 documents missed one.
+LARGEST_MISS = 3.0
 # Over the samples and random documents places and footprints of parts do half at most of what is
 # reckoned as the most, heights, which may close a gap, three times as much.
 MOST_OF_PART, MOST_OF_HEIGHT = 2.0, 10.0
