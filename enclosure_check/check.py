@@ -99,7 +99,7 @@ def check(
         own, known = prepared
         if known is None:
             assert shared is not None  # see `alone`
-            known = shared if case is first else solve_known(own, shared)
+            known = shared.of(own) if case is first else solve_known(own, shared)
         return _solved(case, own, known)
 
     def finish(

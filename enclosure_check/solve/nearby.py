@@ -91,6 +91,10 @@ class Known:
         """Give it as other processes can be told of it."""
         return replace(self, inverse=self.inverse.shared())
 
+    def of(self, network: Network) -> "Known":
+        """Give what was shared for its own network, which is there again."""
+        return replace(self, inverse=self.inverse.of(network))
+
 
 def stands_alone(network: Network, leading: Network) -> bool:
     """Whether a network is solved by itself: its heat is unlike that of the one that leads."""
