@@ -174,6 +174,18 @@ class NetworkBuilder:
         """Let heat from a to b follow the difference of two other nodes x and y [W/K]."""
         self._conduction.add(conductance.size, (a, b, self.label(label), x, y), (conductance,))
 
+    def conduct_by_each(
+        self,
+        a: ArrayLike,
+        b: ArrayLike,
+        x: ArrayLike,
+        y: ArrayLike,
+        conductance: FloatArray,
+        label: Sequence[int],
+    ) -> None:
+        """Do the same with a label for each, by number."""
+        self._conduction.add(conductance.size, (a, b, label, x, y), (conductance,))
+
     def resist(self, a: int, b: int, resistance: float, label: LinkLabel) -> None:
         """Join two nodes by a resistance [K/W]; one of nothing by the least there is."""
         self.conduct(a, b, 1.0 / max(resistance, LEAST_RESISTANCE), label)

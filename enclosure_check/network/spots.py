@@ -220,15 +220,19 @@ class Spots:
             for index, each in enumerate(contacts)
             if each.line is None or mutual[index].any()
         }
+        nodes = np.array([contact.node for contact in contacts], dtype=np.intp)
+        places = np.array([under.get(index, -1) for index in range(count)], dtype=np.intp)
+        felt = lru_cache(maxsize=None)(partial(self._felt, contacts))
         for index, node in under.items():
             contact = contacts[index]
             cells = plate.cells[contact.places]
             builder.keep_mean(node, cells, contact.shares)
-            for other in np.flatnonzero(mutual[index]).tolist():
-                each = contacts[other]
-                felt = LinkLabel(each.label.owner, each.label.role + FELT)
-                weight = np.array([-mutual[index, other] / each.resistance])
-                builder.conduct_by(node, builder.nowhere, each.node, under[other], weight, felt)
+            others = np.flatnonzero(mutual[index])
+            if others.size:
+                weights = -mutual[index, others] / own[others]
+                labels = [felt(other) for other in others.tolist()]
+                ends = nodes[others], places[others]
+                builder.conduct_by_each(node, builder.nowhere, *ends, weights, labels)
             taken = contact.shares / contact.resistance
             if contact.line is None:
                 builder.conduct_by(contact.node, cells, contact.node, node, taken, contact.label)
@@ -239,8 +243,13 @@ class Spots:
                     builder.conduct_by(contact.node, cells, cell, node, part, contact.label)
             if contact.spot is not None:
                 held = contact.held / contact.resistance
-                nodes, weights = np.array([node, contact.node]), np.array([1.0 - held, held])
-                builder.read(contact.spot, nodes, weights)
+                two, weights = np.array([node, contact.node]), np.array([1.0 - held, held])
+                builder.read(contact.spot, two, weights)
+
+    def _felt(self, contacts: Sequence[Contact], index: int) -> int:
+        """Number of the label of what others feel of a contact."""
+        label = contacts[index].label
+        return self.builder.label(LinkLabel(label.owner, label.role + FELT))
 
 
 def _mutual(
