@@ -222,7 +222,7 @@ def _work_and_end(
 ) -> NoReturn:
     """Be the other process: never return, print nothing, leave what fails to the first."""
     room, wait, give = ways
-    code = 1
+    code, first = 1, os.getppid()
     try:
         # Given at the end: until then nobody reads.
         results: list[tuple[int, Result]] = []
@@ -241,7 +241,8 @@ def _work_and_end(
             shared: Shared = pickle.loads(room[_SIZE.size : _SIZE.size + size])
             for place, prepared in waiting:
                 results.append((place, task.finish(items[place], prepared, shared)))
-            while (place := _taken(take)) is not None:
+            # Nobody waits for the rest where the first process was killed.
+            while os.getppid() == first and (place := _taken(take)) is not None:
                 item = items[place]
                 results.append((place, task.finish(item, task.prepare(item), shared)))
         with os.fdopen(give, "wb") as out:

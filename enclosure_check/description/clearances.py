@@ -1,26 +1,37 @@
 """Things that cannot be where they are: boards that share space, bodies that reach into boards."""
 
+from __future__ import annotations
+
+from collections.abc import Mapping
 from itertools import combinations
+from typing import TYPE_CHECKING
 
 from enclosure_check.description.case import BoardCase, PartCase
 from enclosure_check.description.frames import Vector
-from enclosure_check.description.remarks import MOST_WARNINGS, ROUNDING_MM, Remarks
+from enclosure_check.description.names import WallName
+from enclosure_check.description.remarks import MOST_WARNINGS, ROUNDING_MM, Path, Remarks
+
+if TYPE_CHECKING:
+    from enclosure_check.description.document import Document
 
 
-def check_boards(boards: dict[str, BoardCase], remarks: Remarks) -> None:
+def check_boards(document: Document, boards: dict[str, BoardCase], remarks: Remarks) -> None:
     """Refuse boards that share space with one named before them."""
     for first, second in combinations(boards.values(), 2):
         shared = shared_space(first.low_mm, first.size_mm, second.low_mm, second.size_mm)
         if shared is not None:
             remarks.error(
-                ("boards", second.name),
+                _place(("boards", second.name), document.boards[second.name].from_walls_mm),
                 f"shares {_words(shared)} with board {first.name}: no two boards can be in one "
                 "place. Look at `from_walls_mm` and the sizes",
             )
 
 
 def check_bodies(
-    parts: dict[str, PartCase], boards: dict[str, BoardCase], remarks: Remarks
+    document: Document,
+    parts: dict[str, PartCase],
+    boards: dict[str, BoardCase],
+    remarks: Remarks,
 ) -> None:
     """Refuse bodies in the air that reach into a board; warn of parts on another face that do."""
     for board in boards.values():
@@ -36,13 +47,22 @@ def check_bodies(
                 continue
             path = ("parts", part.name)
             if part.place == "air":
-                remarks.error(path, f"shares {_words(shared)} with board {board.name}")
+                remarks.error(
+                    _place(path, document.parts[part.name].from_walls_mm),
+                    f"shares {_words(shared)} with board {board.name}. Look at `from_walls_mm` and "
+                    "the sizes",
+                )
             elif len(remarks.warnings) < MOST_WARNINGS:
                 remarks.warn(
                     path,
                     f"reaches into board {board.name}, {_words(shared)}: too tall, or in the "
                     "wrong place; computed as if it did not",
                 )
+
+
+def _place(path: Path, from_walls: Mapping[WallName, float]) -> Path:
+    """Give where a document says how far something is from a wall, if it does."""
+    return (*path, "from_walls_mm", next(iter(from_walls))) if from_walls else path
 
 
 def shared_space(low: Vector, size: Vector, other_low: Vector, other_size: Vector) -> Vector | None:

@@ -60,9 +60,9 @@ def resolve(
 
         document, folded = fold_listed(document, listed, remarks)
     boards = resolve_boards(document, inside, rows, remarks)
-    check_boards(boards, remarks)
+    check_boards(document, boards, remarks)
     parts = PartResolver(document, inside, walls, boards, rows, remarks).resolve()
-    check_bodies(parts, boards, remarks)
+    check_bodies(document, parts, boards, remarks)
     if folded:
         from enclosure_check.description.resolve_listed import with_folded
 

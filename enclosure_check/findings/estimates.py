@@ -11,7 +11,15 @@ import numpy as np
 
 from enclosure_check.description.case import BoardCase, Case, PartCase
 from enclosure_check.description.frames import OPPOSITE
-from enclosure_check.findings.rebuilt import PLACE_STEP_MM, STEP, Key, Rebuilding, is_place, step_of
+from enclosure_check.findings.rebuilt import (
+    PLACE_STEP_MM,
+    STEP,
+    Key,
+    Rebuilding,
+    is_place,
+    moves_cells,
+    step_of,
+)
 from enclosure_check.network.boards import board_conductivity
 from enclosure_check.network.grid import PlateGrid
 from enclosure_check.network.links import FloatArray
@@ -55,7 +63,8 @@ class Estimates:
     def about(self, path: Key, value: float) -> float | None:
         """Give about the derivative by a number.
 
-        Places are not solved for, and all else is moved up only. Copper is told by what the
+        Places and sizes that move cells are not solved for, and all else is moved up only. Copper
+        is told by what the
         conductivity of its board or zone does.
 
         Returns
@@ -64,7 +73,7 @@ class Estimates:
             By the number's own unit, None where no like network can be built; see `Rebuilding`.
         """
         rebuilding = self._rebuilding
-        if not is_place(path):
+        if not is_place(path) and not moves_cells(path):
             step = step_of(path, value)
             case = rebuilding.case_with(path, value + step)
             if case is not None:

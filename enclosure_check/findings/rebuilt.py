@@ -25,6 +25,7 @@ Rebuild = Callable[[Key, float], Case | None]
 # millimetres; a place is moved by half a cell, so that what depends on how a source lies on cells
 # and patches is smoothed.
 STEP, LEAST_STEP_MM, PLACE_STEP_MM, LEAST_STEP = 0.005, 0.5, 5.0, 1e-3
+_CELL_SIZES = ("length_mm", "width_mm", "depth_mm", "height_mm")
 # Balance of the states solved for: places.
 _CLOSE = SolveOptions(node_tolerance=1e-7, by_stirring=False, most_holds=1)
 
@@ -50,7 +51,8 @@ class Rebuilding:
 
         ``dT/dp = -w . (r(x, p + dp) - r(x, p - dp)) / (2 dp)``: no new solve, a Newton correction
         in effect; from one side where there is no like network on the other. Places are solved
-        for: a source that moves by half a cell is no small change for the cells under it.
+        for: a source that moves by half a cell is no small change for the cells under it; and so
+        are sizes of boards and boxes, which move the cells under all parts.
 
         Returns
         -------
@@ -58,7 +60,7 @@ class Rebuilding:
             By the number's own unit, shape (t,); None where no like network can be built either
             way.
         """
-        return self.difference(path, value, solves=is_place(path))
+        return self.difference(path, value, solves=is_place(path) or moves_cells(path))
 
     def difference(self, path: Key, value: float, *, solves: bool) -> FloatArray | None:
         """Give the same, solved for or not, whatever the number is."""
@@ -166,7 +168,8 @@ def _driving(case: Case) -> Hashable:
 def step_of(path: Key, value: float) -> float:
     """Give the step a number is moved by, in its unit."""
     if is_place(path):
-        return PLACE_STEP_MM
+        # A board takes its cells along; it may be close to what it faces.
+        return LEAST_STEP_MM if path[0] == "boards" else PLACE_STEP_MM
     is_length = any(step.endswith("_mm") for step in path)
     return max(STEP * abs(value), LEAST_STEP_MM if is_length else LEAST_STEP)
 
@@ -174,3 +177,8 @@ def step_of(path: Key, value: float) -> float:
 def is_place(path: Key) -> bool:
     """Tell whether a number is a place, not a size."""
     return "at_mm" in path or "from_walls_mm" in path
+
+
+def moves_cells(path: Key) -> bool:
+    """Tell whether a number is a size that cells of boards or walls are divided by."""
+    return path[0] in ("boards", "box") and path[-1] in _CELL_SIZES

@@ -21,6 +21,7 @@ Result = TypeVar("Result")
 Key = tuple[str, ...]
 # Sections of the document that a designer does not choose.
 _INSTALLATION = ("surroundings", "mode")
+_AIR = ("surroundings", "air_c")
 # Keys that set limits, not temperatures.
 _LIMITS = ("limits", "touch_max_c")
 # A number whose percent moves a margin by less is left out: it does nothing there. [K]
@@ -210,6 +211,8 @@ def _rank(row: Sensitivity) -> float:
 
 def _by_adjoint(own: Bands, variation: Variation, path: Key, value: float) -> float | None:
     """Derivative by a number that is one thing in the case [K/unit]; None for any other."""
+    if path == _AIR:  # also what the document leaves to it, and the air in joints
+        return None
     about = meaning(variation.document, path).about
     by_key = {quantity.key: quantity for quantity in own.quantities}
     if not about or any(key not in by_key for key in about) or value == 0:

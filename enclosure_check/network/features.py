@@ -306,12 +306,12 @@ def _build_can(board: BoardCase, can: ShieldCanCase, parts: Sequence[PartCase], 
     surface = site.convect_body(node, outside, low, size, face, convection)
     top = first * second
     site.add_top(surface, node, top, AXIS[can.side], SIGN[can.side], low, size)
-    x, y, z = (start + extent / 2 for start, extent in zip(low, size, strict=True))
+    patch, shares = site.patches.under(board.name, can.side, low, size)
     site.surfaces.append(
         InsideSurface(
-            np.array([node]),
-            np.array([site.patches.under(board.name, can.side, (x, y, z))]),
-            np.array([outside]),
+            np.full(len(patch), node),
+            patch,
+            outside * shares,
             can.finish.emissivity,
             LinkLabel(owner, "radiation_inside"),
         )

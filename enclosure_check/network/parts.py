@@ -110,7 +110,7 @@ def _join_air(part: PartCase, case: int, site: Site, covers: Covers) -> None:
     convection = LinkLabel(owner, "convection_inside")
     if part.place == "air":
         free = whole
-        patch = site.patches.add_body(metres_3(part.low_mm), size)
+        patch, shares = np.array([site.patches.add_body(metres_3(part.low_mm), size)]), np.ones(1)
         gravity = float(cuboid_gravity_function_tilted(size, site.up))
         face = site.plane_face(size, 2, 1)
         low = metres_3(part.low_mm)
@@ -118,7 +118,7 @@ def _join_air(part: PartCase, case: int, site: Site, covers: Covers) -> None:
     elif part.place == "wall":
         free = whole - footprint(part)
         wall = OPPOSITE[part.side]
-        patch = site.patches.under(wall, wall, metres_3(part.centre_mm))
+        patch, shares = site.patches.under(wall, wall, metres_3(part.low_mm), size)
         mirrored = list(size)
         mirrored[AXIS[part.side]] *= 2
         gravity = float(cuboid_gravity_function_tilted(mirrored, site.up))
@@ -135,7 +135,7 @@ def _join_air(part: PartCase, case: int, site: Site, covers: Covers) -> None:
         free *= left
         if free == 0.0:
             return
-        patch = site.patches.under(part.host, part.side, metres_3(part.centre_mm))
+        patch, shares = site.patches.under(part.host, part.side, metres_3(part.low_mm), size)
         face = site.board_faces[part.host, part.side]
         low = metres_3(part.low_mm)
         surface = site.convect_body(case, free, low, size, face, convection)
@@ -144,9 +144,9 @@ def _join_air(part: PartCase, case: int, site: Site, covers: Covers) -> None:
             site.add_top(surface, case, top, AXIS[part.side], SIGN[part.side], low, size)
     site.surfaces.append(
         InsideSurface(
-            np.array([case]),
-            np.array([patch]),
-            np.array([free]),
+            np.full(len(patch), case),
+            patch,
+            free * shares,
             part.finish.emissivity,
             LinkLabel(owner, "radiation_inside"),
         )

@@ -82,14 +82,16 @@ class Patches:
         x, y, z = (a + b for a, b in zip(low, size, strict=True))
         self.obstacles.append((low, (x, y, z)))
 
-    def under(self, name: str, side: str, point: Vector) -> int:
-        """Give the patch of a face that a point lies over."""
+    def under(self, name: str, side: str, low: Vector, size: Vector) -> tuple[IntArray, FloatArray]:
+        """Give the patches of a face that a body stands on, and its shares on them, summing to one.
+
+        By its footprint: what stands across an edge between patches is seen as part of both.
+        """
         of_cell, grid = self.faces[name, side], self.grids[name, side]
-        place = [
-            int(np.clip(np.searchsorted(edges, point[axis]) - 1, 0, count - 1))
-            for axis, edges, count in zip(grid.axes, grid.edges, grid.counts, strict=True)
-        ]
-        return int(of_cell[place[0], place[1]])
+        on_cells = grid.shares(low, size).ravel()
+        shares: FloatArray = np.bincount(of_cell.ravel(), on_cells).astype(np.float64)
+        patches = np.flatnonzero(shares)
+        return patches, shares[patches]
 
     def exchange(self) -> FloatArray:
         """Give the exchange areas between patches [m2], symmetric, rows summing to their areas."""

@@ -385,6 +385,8 @@ def _step(network: Network, state: State, mu: FloatArray, options: SolveOptions)
             step[:, v] = factor.solve(-state.residual[:, v : v + 1])[:, 0]
     longest = np.max(np.abs(step), axis=0)
     step = step * np.minimum(1.0, options.largest_step_k / np.maximum(longest, 1e-300))
+    # Fourth powers are even: nothing may come to the other side of absolute zero.
+    step = np.maximum(step, -0.5 * (state.rise[network.unknown] + network.reference_k))
     return np.where(np.isfinite(step), step, 0.0)
 
 

@@ -34,7 +34,7 @@ def test_boards_that_touch_share_nothing():
     )
     assert not errors_of(document)
     nearer = patched(document, {"boards": {"two": {"from_walls_mm": {"front": 11.5}}}})
-    assert "0.1 x" in errors_of(nearer)["boards.two"]
+    assert "0.1 x" in errors_of(nearer)["boards.two.from_walls_mm.front"]
 
 
 def test_each_pair_is_told():

@@ -7,7 +7,7 @@ import random
 
 import numpy as np
 import pytest
-from support.cases import COARSE, Data, board, box, network_of
+from support.cases import COARSE, Data, board, box, network_of, part, solved
 from support.inside import held, site_of
 from support.random_documents import random_document
 
@@ -239,9 +239,40 @@ def test_patches_divide_a_face_evenly_and_know_what_lies_over_them():
         assert counts.tolist() == [of_cell.size // 4] * 4
         for i, x in enumerate(grid.centres[0]):
             for j, z in enumerate(grid.centres[1]):
-                point = [0.0, 0.0, 0.0]
-                point[grid.axes[0]], point[grid.axes[1]] = float(x), float(z)
-                assert site.patches.under(name, side, tuple(point)) == of_cell[i, j]
+                low, size = [0.0, 0.0, 0.0], [0.001, 0.001, 0.001]
+                low[grid.axes[0]], low[grid.axes[1]] = float(x) - 5e-4, float(z) - 5e-4
+                patches, shares = site.patches.under(name, side, tuple(low), tuple(size))
+                assert patches.tolist() == [of_cell[i, j]]
+                assert shares == pytest.approx([1.0])
+
+
+def test_what_stands_across_an_edge_between_patches_is_part_of_both():
+    site = site_of(box(boards={"main": board()}))
+    of_cell, grid = site.patches.faces["main", "front"], site.patches.grids["main", "front"]
+    first, second = grid.axes
+    low, size = [0.0, 0.0, 0.0], [0.0, 0.0, 0.0]
+    size[first], size[second] = 0.02, 0.01
+    # A quarter of it beyond the middle of the board along one axis, all before it along the other.
+    low[first] = grid.low[first] + grid.size[first] / 2 - 0.015
+    low[second] = grid.low[second] + 0.01
+    patches, shares = site.patches.under("main", "front", tuple(low), tuple(size))
+    assert patches.tolist() == sorted({int(of_cell[0, 0]), int(of_cell[-1, 0])})
+    assert shares == pytest.approx([0.75, 0.25])
+
+
+def test_a_part_that_passes_the_middle_of_its_board_changes_nothing_at_once():
+    """Seen before: half a kelvin where its centre came from one patch to the next."""
+
+    def case_at(x):
+        document = box(
+            boards={"main": board(other_power_w=1)},
+            parts={"U1": part(at_mm=[x, 50], power_w=3, theta_jb_k_per_w=20)},
+            surroundings={"air_c": 25, "sun_w_per_m2": {"left": 900}},
+        )
+        answer = solved(document)
+        return answer.at(answer.network.places.parts["U1"].junction)
+
+    assert abs(case_at(60.01) - case_at(59.99)) < 0.02
 
 
 # Emissivity 0 and 1, and shields ----------------------------------------------------------------
