@@ -64,8 +64,7 @@ class Estimates:
         """Give about the derivative by a number.
 
         Places and sizes that move cells are not solved for, and all else is moved up only. Copper
-        is told by what the
-        conductivity of its board or zone does.
+        is told by what the conductivity of its board or zone does.
 
         Returns
         -------
@@ -199,8 +198,8 @@ class Estimates:
     def _is_beside(self, part: PartCase, grid: PlateGrid) -> bool:
         """Whether a part is near the one whose temperature it is, on the same plate.
 
-        Within a cell, or where it may come to share its patch of radiation: one of two halves
-        along either axis.
+        Within a cell, or where it may come to share a patch of radiation, one of two halves along
+        either axis.
         """
         own = self._case.parts[self._part]
         if (own.place, own.host) != (part.place, part.host):
@@ -213,8 +212,10 @@ class Estimates:
             ]
             near.append(max(ends[0][0] - ends[1][1], ends[1][0] - ends[0][1]) < step)
             middle = grid.low[axis] + 0.5 * grid.size[axis]
-            here, there = (0.5 * sum(each) - middle for each in ends)
-            shares.append(here * there > 0 or abs(there) < metres(PLACE_STEP_MM))
+            (low, high), (start, end) = ends
+            reach = metres(PLACE_STEP_MM)
+            before = low < middle and start - reach < middle
+            shares.append(before or (high > middle and end + reach > middle))
         return all(near) or (own.side == part.side and all(shares))
 
 

@@ -169,22 +169,15 @@ class NetworkBuilder:
         x: ArrayLike,
         y: ArrayLike,
         conductance: FloatArray,
-        label: LinkLabel,
+        label: LinkLabel | list[LinkLabel],
     ) -> None:
-        """Let heat from a to b follow the difference of two other nodes x and y [W/K]."""
-        self._conduction.add(conductance.size, (a, b, self.label(label), x, y), (conductance,))
+        """Let heat from a to b follow the difference of two other nodes x and y [W/K].
 
-    def conduct_by_each(
-        self,
-        a: ArrayLike,
-        b: ArrayLike,
-        x: ArrayLike,
-        y: ArrayLike,
-        conductance: FloatArray,
-        label: Sequence[int],
-    ) -> None:
-        """Do the same with a label for each, by number."""
-        self._conduction.add(conductance.size, (a, b, label, x, y), (conductance,))
+        The label is one for all, or there is one for each.
+        """
+        each = [label] if isinstance(label, LinkLabel) else label
+        row = [self.label(own) for own in each]
+        self._conduction.add(conductance.size, (a, b, row, x, y), (conductance,))
 
     def resist(self, a: int, b: int, resistance: float, label: LinkLabel) -> None:
         """Join two nodes by a resistance [K/W]; one of nothing by the least there is."""

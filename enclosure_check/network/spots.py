@@ -222,7 +222,7 @@ class Spots:
         }
         nodes = np.array([contact.node for contact in contacts], dtype=np.intp)
         places = np.array([under.get(index, -1) for index in range(count)], dtype=np.intp)
-        felt = lru_cache(maxsize=None)(partial(self._felt, contacts))
+        felt = [LinkLabel(each.label.owner, each.label.role + FELT) for each in contacts]
         for index, node in under.items():
             contact = contacts[index]
             cells = plate.cells[contact.places]
@@ -230,9 +230,9 @@ class Spots:
             others = np.flatnonzero(mutual[index])
             if others.size:
                 weights = -mutual[index, others] / own[others]
-                labels = [felt(other) for other in others.tolist()]
+                labels = [felt[other] for other in others.tolist()]
                 ends = nodes[others], places[others]
-                builder.conduct_by_each(node, builder.nowhere, *ends, weights, labels)
+                builder.conduct_by(node, builder.nowhere, *ends, weights, labels)
             taken = contact.shares / contact.resistance
             if contact.line is None:
                 builder.conduct_by(contact.node, cells, contact.node, node, taken, contact.label)
@@ -245,11 +245,6 @@ class Spots:
                 held = contact.held / contact.resistance
                 two, weights = np.array([node, contact.node]), np.array([1.0 - held, held])
                 builder.read(contact.spot, two, weights)
-
-    def _felt(self, contacts: Sequence[Contact], index: int) -> int:
-        """Number of the label of what others feel of a contact."""
-        label = contacts[index].label
-        return self.builder.label(LinkLabel(label.owner, label.role + FELT))
 
 
 def _mutual(
